@@ -1,4 +1,4 @@
-import proj4 from 'proj4';
+import proj4, { type Converter } from 'proj4';
 import { RADIANS } from '../earth.js';
 import { LimitError, UsageError } from '../errors.js';
 
@@ -36,15 +36,22 @@ const GEOGRAPHIC = new Set(['EPSG:4326', 'EPSG:4269', 'OGC:CRS84']);
  * @throws UsageError `grid.crs` for a CRS that is not known
  */
 export function projection(crs: string): Projection {
-  const identity = { inverse: (x: number, y: number) => [x, y] as const, forward: (x: number, y: number) => [x, y] as const };
+  const identity = {
+    inverse: (x: number, y: number) => [x, y] as const,
+    forward: (x: number, y: number) => [x, y] as const,
+  };
   if (GEOGRAPHIC.has(crs.toUpperCase())) return { ...identity, geographic: true };
-  let converter: proj4.Converter;
+  let converter: Converter;
   let geographic: boolean;
   try {
     converter = proj4(proj4Definition(crs));
     geographic = /\+proj=(longlat|latlong)/.test(proj4Definition(crs));
   } catch (cause) {
-    throw new UsageError('grid.crs', `unknown coordinate reference system '${crs}'; give an EPSG code such as EPSG:4326, EPSG:3857 or EPSG:32617 (UTM), or a proj string`, { fields: { crs }, cause });
+    throw new UsageError(
+      'grid.crs',
+      `unknown coordinate reference system '${crs}'; give an EPSG code such as EPSG:4326, EPSG:3857 or EPSG:32617 (UTM), or a proj string`,
+      { fields: { crs }, cause },
+    );
   }
   if (geographic) return { ...identity, geographic: true };
   return {
@@ -72,22 +79,37 @@ function proj4Definition(crs: string): string {
  * A grid that covers `bounds`, its edges moved outward to whole cells.
  * @throws UsageError `grid.bounds`, `grid.cell`; LimitError `grid.cells`
  */
-export function gridOver(options: { crs: string; bounds: readonly [number, number, number, number]; cell: number }): Grid {
+export function gridOver(options: {
+  crs: string;
+  bounds: readonly [number, number, number, number];
+  cell: number;
+}): Grid {
   const { crs, cell } = options;
   const [west, south, east, north] = options.bounds;
   const { geographic } = projection(crs);
-  if (!(cell > 0) || !Number.isFinite(cell)) throw new UsageError('grid.cell', `the cell size ${cell} is not a positive number`);
+  if (!(cell > 0) || !Number.isFinite(cell))
+    throw new UsageError('grid.cell', `the cell size ${cell} is not a positive number`);
   if (![west, south, east, north].every(Number.isFinite) || !(east > west) || !(north > south)) {
-    throw new UsageError('grid.bounds', `bounds ${options.bounds.join(',')}: give west,south,east,north with west < east and south < north${geographic ? ' (across ±180° let east run past 180)' : ''}`);
+    throw new UsageError(
+      'grid.bounds',
+      `bounds ${options.bounds.join(',')}: give west,south,east,north with west < east and south < north${geographic ? ' (across ±180° let east run past 180)' : ''}`,
+    );
   }
   if (geographic && (south < -90 || north > 90 || east - west > 360 || west < -360 || east > 540)) {
-    throw new UsageError('grid.bounds', `bounds ${options.bounds.join(',')}: latitudes lie within ±90 and the span is at most 360 degrees`);
+    throw new UsageError(
+      'grid.bounds',
+      `bounds ${options.bounds.join(',')}: latitudes lie within ±90 and the span is at most 360 degrees`,
+    );
   }
   const whole = (span: number) => Math.max(1, Math.ceil(span / cell - 1e-6));
   const nx = whole(east - west);
   const ny = whole(north - south);
   if (nx * ny > MOST_CELLS) {
-    throw new LimitError('grid.cells', `the grid would have ${nx} × ${ny} = ${(nx * ny).toExponential(2)} cells (about ${((nx * ny * 40) / 1e9).toFixed(0)} GB); take a larger --cell or smaller --bounds (at most ${MOST_CELLS} cells)`, { fields: { nx, ny } });
+    throw new LimitError(
+      'grid.cells',
+      `the grid would have ${nx} × ${ny} = ${(nx * ny).toExponential(2)} cells (about ${((nx * ny * 40) / 1e9).toFixed(0)} GB); take a larger --cell or smaller --bounds (at most ${MOST_CELLS} cells)`,
+      { fields: { nx, ny } },
+    );
   }
   let top = south + ny * cell;
   let bottom = south;
@@ -96,7 +118,14 @@ export function gridOver(options: { crs: string; bounds: readonly [number, numbe
     top = 90;
     bottom = 90 - ny * cell;
   }
-  return { crs: geographic && crs.toUpperCase() === 'EPSG:4326' ? 'EPSG:4326' : crs, geographic, nx, ny, cell, bounds: [west, bottom, west + nx * cell, top] };
+  return {
+    crs: geographic && crs.toUpperCase() === 'EPSG:4326' ? 'EPSG:4326' : crs,
+    geographic,
+    nx,
+    ny,
+    cell,
+    bounds: [west, bottom, west + nx * cell, top],
+  };
 }
 
 /** CRS coordinates of the centre of a cell. */

@@ -84,13 +84,24 @@ export interface ReadOptions {
   readonly technique?: string;
   /** CSV: `key → heading` for files with headings of their own */
   readonly columns?: Readonly<Record<string, string>>;
+  /** rows may stand in any order of time: they are sorted instead of refused */
+  readonly sortTimes?: boolean;
+  /** IBTrACS: also the spur tracks, each as a storm of its own */
+  readonly spurs?: boolean;
+  /** a-deck: the initial time of the forecast (`2031090306`), instead of the newest */
+  readonly initialTime?: string;
+  /** CSV and GeoJSON: averaging period of the winds where the file does not say it, s */
+  readonly averagingS?: number;
 }
 
 /** +1 north, −1 south of the equator, by the first fix off it; taken once per storm. */
 export function hemisphereOf(track: Pick<Track, 'id' | 'fixes'>): 1 | -1 {
   const off = track.fixes.find((fix) => fix.latDeg !== 0);
   if (!off) {
-    throw new InputError('track.on-equator', `storm ${track.id} never leaves the equator: the sense of its rotation is undefined; move one fix off it`);
+    throw new InputError(
+      'track.on-equator',
+      `storm ${track.id} never leaves the equator: the sense of its rotation is undefined; move one fix off it`,
+    );
   }
   return off.latDeg > 0 ? 1 : -1;
 }

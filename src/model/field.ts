@@ -1,0 +1,209 @@
+import { coriolisPerS, RADIANS, wrapBearing } from '../earth.js';
+import { INFLOWS, type InflowMethod } from '../surface/inflow.js';
+import {
+  backgroundWind,
+  LIN_CHAVAS_2012,
+  MOTION_WEIGHTS,
+  type MotionShare,
+  type MotionWeight,
+} from '../surface/motion.js';
+import { REDUCTIONS, type ReductionMethod } from '../surface/reduction.js';
+import type { StormState } from '../track/path.js';
+import type { ProfileMethod, RadialProfile, VortexInput } from '../vortex/profile.js';
+import { profileMethod } from '../vortex/profiles.js';
+import { type Recipe, recipeNumber, recipeWord } from './recipe.js';
+import { maximumOf } from './round-trip.js';
+
+/**
+ * The 10-m wind of one moment, earth-relative, over open sea, in polar coordinates about the centre.
+ * Vectors are [east, north] in the frame at the centre; carried to a cell they turn with the great circle (see wind.ts).
+ */
+export interface WindField {
+  readonly state: StormState;
+  /** gradient-level profile whose surface field has the state's maximum */
+  readonly profile: RadialProfile;
+  /** maximum of the gradient-level wind that the profile was built with, m/s */
+  readonly gradientMaxMps: number;
+  /** no wind from here outward, m */
+  readonly outerRadiusM: number;
+  /**
+   * Winds on a circle: `directions` holds unit vectors east, north for each place seen from the centre;
+   * `out` (same length) gets east, north wind, m/s.
+   */
+  readonly onCircle: (out: Float64Array, radiusM: number, directions: Float64Array) => void;
+  /** highest wind on a circle, m/s */
+  readonly strongestOnCircle: (radiusM: number) => number;
+}
+
+/** The parts of a recipe that make a field, looked up once a storm. */
+export interface FieldMethods {
+  readonly profile: ProfileMethod;
+  readonly reduction: ReductionMethod;
+  readonly inflow: InflowMethod;
+  readonly motion: MotionShare | null;
+  readonly keepMaximum: boolean;
+  readonly airDensityKgM3: number;
+  readonly maximumIs: VortexInput['maximumIs'];
+  readonly numbers: Readonly<Record<string, number>>;
+}
+
+export function fieldMethods(recipe: Recipe): FieldMethods {
+  const motionWord = recipeWord(recipe, 'surface.motion');
+  const own: MotionShare = {
+    fraction: recipeNumber(recipe, 'surface.motion_fraction'),
+    rotationDeg: recipeNumber(recipe, 'surface.motion_rotation_deg'),
+    weight: recipeWord(recipe, 'surface.motion_weight') as MotionWeight,
+  };
+  return {
+    profile: profileMethod(recipeWord(recipe, 'vortex.profile'))!,
+    reduction: REDUCTIONS.find((method) => method.id === recipe['surface.reduction'])!,
+    inflow: INFLOWS.find((method) => method.id === recipe['surface.inflow'])!,
+    motion: motionWord === 'none' ? null : motionWord === 'vector' ? own : LIN_CHAVAS_2012,
+    keepMaximum: recipe['surface.maximum'] === 'kept',
+    airDensityKgM3: recipeNumber(recipe, 'vortex.density_kgm3'),
+    maximumIs: recipeWord(recipe, 'vortex.maximum') as VortexInput['maximumIs'],
+    numbers: { exponent: recipeNumber(recipe, 'vortex.exponent'), factor: recipeNumber(recipe, 'surface.factor') },
+  };
+}
+
+/** Share of the outer radius over which the wind is tapered to zero. */
+export const TAPER_SHARE = 0.1;
+
+/** 1 inside the taper, falling smoothly (3t² − 2t³) to 0 at the outer radius. */
+export function taper(radiusM: number, outerRadiusM: number): number {
+  const t = (outerRadiusM - radiusM) / (TAPER_SHARE * outerRadiusM);
+  if (t >= 1) return 1;
+  return t <= 0 ? 0 : t * t * (3 - 2 * t);
+}
+
+/**
+ * The wind field of a state. With `surface.maximum=kept` the gradient-level maximum is solved so that the maximum of the
+ * earth-relative 10-m field is the state's wind (to 10⁻⁴ of it).
+ */
+export function windField(
+  state: StormState,
+  methods: FieldMethods,
+  { outerRadiusM }: { outerRadiusM: number },
+): WindField {
+  const translationMps = Math.hypot(state.motionEastMps, state.motionNorthMps);
+  const background = methods.motion ? backgroundWind(methods.motion, state) : ([0, 0] as const);
+  const backgroundMps = Math.hypot(background[0], background[1]);
+  const nominal = methods.reduction.ratio({
+    gradientWindMps: state.maxWindMps,
+    radiusM: state.radiusOfMaxWindM,
+    radiusOfMaxWindM: state.radiusOfMaxWindM,
+    numbers: methods.numbers,
+  });
+  const fieldFor = (gradientMaxMps: number): WindField =>
+    buildField(state, methods, { gradientMaxMps, background, translationMps, outerRadiusM });
+  if (!methods.keepMaximum) return fieldFor(state.maxWindMps / nominal);
+
+  // the maximum grows with the gradient wind at about the reduction's ratio: step by it until the maximum is met
+  let gradientMaxMps = (state.maxWindMps - backgroundMps) / nominal;
+  let field = fieldFor(gradientMaxMps);
+  for (let i = 0; i < 12; i++) {
+    const excess = maximumOf(field) - state.maxWindMps;
+    if (Math.abs(excess) <= 1e-4 * state.maxWindMps) break;
+    gradientMaxMps = Math.max(0.05, gradientMaxMps - excess / nominal);
+    field = fieldFor(gradientMaxMps);
+  }
+  return field;
+}
+
+function buildField(
+  state: StormState,
+  methods: FieldMethods,
+  parts: {
+    gradientMaxMps: number;
+    background: readonly [number, number];
+    translationMps: number;
+    outerRadiusM: number;
+  },
+): WindField {
+  const { gradientMaxMps, background, translationMps, outerRadiusM } = parts;
+  const radiusOfMaxWindM = state.radiusOfMaxWindM;
+  const profile = methods.profile.build({
+    maxWindMps: gradientMaxMps,
+    radiusOfMaxWindM,
+    coriolisPerS: Math.abs(coriolisPerS(state.latDeg)),
+    latDeg: state.latDeg,
+    hollandB: state.hollandB,
+    centralPressurePa: state.centralPressurePa,
+    ambientPressurePa: state.ambientPressurePa,
+    airDensityKgM3: methods.airDensityKgM3,
+    translationMps,
+    maximumIs: methods.maximumIs,
+    numbers: methods.numbers,
+  });
+  const weightOf = methods.motion ? MOTION_WEIGHTS[methods.motion.weight] : () => 0;
+  const backgroundMps = Math.hypot(background[0], background[1]);
+  const headingRad = Math.atan2(state.motionEastMps, state.motionNorthMps);
+  const h = state.hemisphere;
+
+  /** tangential 10-m wind of the vortex and weight of the background at a radius, both tapered */
+  function vortexAndWeight(radiusM: number): readonly [number, number] {
+    const fade = taper(radiusM, outerRadiusM);
+    if (fade === 0) return [0, 0];
+    const gradient = Math.max(0, profile.windMps(radiusM));
+    const ratio = methods.reduction.ratio({
+      gradientWindMps: gradient,
+      radiusM,
+      radiusOfMaxWindM,
+      numbers: methods.numbers,
+    });
+    const weight = weightOf({
+      radiusM,
+      radiusOfMaxWindM,
+      relativeWind: gradientMaxMps > 0 ? gradient / gradientMaxMps : 0,
+    });
+    return [fade * ratio * gradient, fade * weight];
+  }
+
+  const angleAt = (radiusM: number, azimuthFromHeadingDeg: number): number =>
+    methods.inflow.angleDeg({
+      radiusRatio: radiusM / radiusOfMaxWindM,
+      maxWindMps: state.maxWindMps,
+      translationMps,
+      azimuthFromHeadingDeg,
+    }) * RADIANS;
+
+  function onCircle(out: Float64Array, radiusM: number, directions: Float64Array): void {
+    const [speed, weight] = vortexAndWeight(radiusM);
+    const east0 = weight * background[0];
+    const north0 = weight * background[1];
+    let angle = methods.inflow.asymmetric ? 0 : angleAt(radiusM, 0);
+    let along = speed * Math.cos(angle);
+    let inward = speed * Math.sin(angle);
+    for (let i = 0; i < directions.length; i += 2) {
+      const e = directions[i]!;
+      const n = directions[i + 1]!;
+      if (methods.inflow.asymmetric) {
+        angle = angleAt(radiusM, wrapBearing((h * (Math.atan2(e, n) - headingRad)) / RADIANS));
+        along = speed * Math.cos(angle);
+        inward = speed * Math.sin(angle);
+      }
+      // cyclonic direction: h·(−n, e); inward: −(e, n)
+      out[i] = -h * n * along - e * inward + east0;
+      out[i + 1] = h * e * along - n * inward + north0;
+    }
+  }
+
+  /** the vortex wind keeps its speed around the circle, so somewhere it is parallel to the background */
+  function strongestOnCircle(radiusM: number): number {
+    const [speed, weight] = vortexAndWeight(radiusM);
+    if (!methods.inflow.asymmetric) return speed + weight * backgroundMps;
+    onCircle(circleWinds, radiusM, CIRCLE);
+    let most = 0;
+    for (let i = 0; i < circleWinds.length; i += 2)
+      most = Math.max(most, circleWinds[i]! ** 2 + circleWinds[i + 1]! ** 2);
+    return Math.sqrt(most);
+  }
+
+  return { state, profile, gradientMaxMps, outerRadiusM, onCircle, strongestOnCircle };
+}
+
+/** 72 unit vectors around a circle: the maximum between two of them is at most 0.1 % above (cos 2.5°). */
+const CIRCLE = Float64Array.from({ length: 144 }, (_, i) =>
+  (i % 2 === 0 ? Math.sin : Math.cos)((i >> 1) * 5 * RADIANS),
+);
+const circleWinds = new Float64Array(CIRCLE.length);

@@ -1,0 +1,121 @@
+import { bearingDeg, distanceM, type Place, RADIANS, wrapBearing } from '../earth.js';
+import { type CompletedTrack, completeTrack } from '../track/complete.js';
+import { type Path, pathOf } from '../track/path.js';
+import type { Track } from '../track/track.js';
+import { knots } from '../units.js';
+import { type FieldMethods, fieldMethods, type WindField, windField } from './field.js';
+import { type Recipe, recipeNumber } from './recipe.js';
+
+/** The wind at a place and time: 10 m, earth-relative, in the recipe's averaging period. */
+export interface WindAt {
+  readonly eastMps: number;
+  readonly northMps: number;
+  readonly speedMps: number;
+  /** where it blows from, degrees clockwise from north; NaN in a calm */
+  readonly fromDeg: number;
+}
+
+/** A storm and a recipe: wind at any place and time. The plain, exact model; every faster way is judged by it. */
+export interface WindModel {
+  readonly recipe: Recipe;
+  readonly completed: CompletedTrack;
+  readonly path: Path;
+  readonly methods: FieldMethods;
+  /** one radius for the whole storm, m; the last tenth is tapered */
+  readonly outerRadiusM: number;
+  readonly averagingS: number;
+  readonly cautions: readonly string[];
+  readonly fieldAt: (timeMs: number) => WindField;
+  readonly windAt: (place: Place, timeMs: number) => WindAt;
+}
+
+/** The radius is chosen so that the wind outside is below this share of the lowest level. */
+const EDGE_SHARE = 0.45;
+const OUTER_RADIUS_BOUNDS_M = [200_000, 1_000_000] as const;
+
+/**
+ * The model of a track under a recipe.
+ * @param lowestLevelMps the lowest wind that anybody asks for; it sets the model's radius
+ * @throws InputError from the completion
+ */
+export function windModel(
+  track: Track,
+  recipe: Recipe,
+  { lowestLevelMps = knots(34) }: { lowestLevelMps?: number } = {},
+): WindModel {
+  const methods = fieldMethods(recipe);
+  const interpolation = recipe['path.interpolation'] as 'monotone-cubic' | 'linear';
+  const completed = completeTrack(track, {
+    averagingS: recipeNumber(recipe, 'wind.averaging_s'),
+    pressure: recipe['completion.pressure'] as string,
+    rmax: recipe['completion.rmax'] as string,
+    ambientHpa: recipe['completion.ambient_hpa'] as number | 'basin',
+    b: recipe['completion.b'] as number | 'gradient-consistent' | 'cyclostrophic',
+    maxGapH: recipeNumber(recipe, 'completion.max_gap_h'),
+    interpolation,
+    surfaceFactor: recipeNumber(recipe, 'surface.factor'),
+    airDensityKgM3: methods.airDensityKgM3,
+    motionShare: methods.keepMaximum ? (methods.motion?.fraction ?? 0) : 0,
+  });
+  const path = pathOf(completed, { interpolation });
+  const cautions = [...completed.cautions];
+  const outerRadiusM = outerRadius();
+  const fieldAt = (timeMs: number): WindField => windField(path.at(timeMs), methods, { outerRadiusM });
+  return {
+    recipe,
+    completed,
+    path,
+    methods,
+    outerRadiusM,
+    averagingS: completed.averagingS,
+    cautions,
+    fieldAt,
+    windAt: (place, timeMs) => windOf(fieldAt(timeMs), place),
+  };
+
+  function outerRadius(): number {
+    const chosen = recipe['vortex.radius_km'];
+    if (typeof chosen === 'number') return chosen * 1000;
+    const [least, most] = OUTER_RADIUS_BOUNDS_M;
+    const edge = EDGE_SHARE * lowestLevelMps;
+    let radius = least;
+    let reaches = false;
+    for (const timeMs of path.knotsMs) {
+      const field = windField(path.at(timeMs), methods, { outerRadiusM: 2 * most });
+      while (radius < most && field.strongestOnCircle(radius) > edge) radius *= 1.05;
+      reaches ||= radius >= most && field.strongestOnCircle(most) > lowestLevelMps;
+    }
+    if (reaches)
+      cautions.push(
+        `the wind still exceeds the lowest level ${most / 1000} km from the centre, where the model ends; the outer profile or the motion share is too flat for this storm`,
+      );
+    return Math.min(radius, most) / 0.9;
+  }
+}
+
+/** The wind of a field at a place: the vector at the centre, turned as the great circle turns on the way. */
+export function windOf(field: WindField, place: Place): WindAt {
+  const radiusM = distanceM(field.state, place);
+  if (radiusM >= field.outerRadiusM) return { eastMps: 0, northMps: 0, speedMps: 0, fromDeg: Number.NaN };
+  const outward = bearingDeg(field.state, place) * RADIANS;
+  const arrival = radiusM === 0 ? outward : (bearingDeg(place, field.state) + 180) * RADIANS;
+  direction[0] = Math.sin(outward);
+  direction[1] = Math.cos(outward);
+  field.onCircle(wind, radiusM, direction);
+  const turn = arrival - outward;
+  const c = Math.cos(turn);
+  const s = Math.sin(turn);
+  // bearings grow clockwise: turning a vector by `turn` clockwise
+  const eastMps = c * wind[0]! + s * wind[1]!;
+  const northMps = c * wind[1]! - s * wind[0]!;
+  const speedMps = Math.hypot(eastMps, northMps);
+  return {
+    eastMps,
+    northMps,
+    speedMps,
+    fromDeg: speedMps === 0 ? Number.NaN : wrapBearing(Math.atan2(-eastMps, -northMps) / RADIANS),
+  };
+}
+
+const direction = new Float64Array(2);
+const wind = new Float64Array(2);

@@ -1,0 +1,136 @@
+import { Command, CommanderError, Option } from 'commander';
+import { EXIT, guarded } from './failure.js';
+import { OVERVIEW } from './overview.js';
+
+const CAUTION =
+  '\nNo warning service: defer to the national meteorological service and the local emergency authorities.\n';
+
+/** Repeated options gather their values. */
+const gather = (value: string, before: string[] = []): string[] => [...before, value];
+
+/** Options of every command. */
+function common(command: Command): Command {
+  return command
+    .option('--json', 'print one JSON document on standard output')
+    .option('--quiet', 'no messages on standard error')
+    .addHelpText('after', CAUTION)
+    .showHelpAfterError('(--help tells the options)')
+    .exitOverride();
+}
+
+/** Options of every command that reads tracks. */
+function readsTracks(command: Command): Command {
+  return command
+    .option('--storm ID', 'a storm of a file with several, by id or name')
+    .option(
+      '--format NAME',
+      'format of the file, where its content does not tell: hurdat2, ibtracs, b-deck, a-deck, csv, geojson',
+    )
+    .option('--agency LIST', 'IBTrACS: whose columns, in order of preference (usa, then the others)')
+    .option('--technique NAME', 'a-deck: which technique')
+    .option('--columns LIST', 'CSV: key=heading,… for headings of your own')
+    .option('--sort-times', 'accept rows out of order in time and sort them');
+}
+
+/** Options of every command that models wind. */
+function models(command: Command): Command {
+  return command
+    .option('--recipe FILE', 'modelling choices as JSON (the built-in recipe)')
+    .option('--set KEY=VALUE', 'one modelling choice; may be repeated', gather)
+    .option('--wind PERIOD', 'averaging period of the sustained wind (1min)');
+}
+
+export async function runProgram(argv: readonly string[]): Promise<void> {
+  const program = new Command('galewake')
+    .description('Tropical-cyclone tracks to gridded wind')
+    .helpOption('-h, --help', 'this text')
+    .showSuggestionAfterError(true)
+    .exitOverride();
+  program.helpInformation = () => OVERVIEW;
+
+  readsTracks(
+    models(
+      common(
+        program
+          .command('tracks FILE')
+          .description('What is in a track file; with --storm the completed track and where every value came from.'),
+      ),
+    ),
+  )
+    .addOption(
+      new Option('--to FORMAT', 'convert, to standard output or --out').choices(['csv', 'geojson', 'svg', 'png']),
+    )
+    .option('--out FILE', 'where the conversion goes')
+    .option('--force', 'replace an existing file')
+    .action(async (file, options) => (await import('./tracks.js')).tracks(file, options));
+
+  models(
+    common(
+      program
+        .command('profile')
+        .description('Radial table of one vortex: winds, pressure, Rossby number, force budget, angular momentum.'),
+    ),
+  )
+    .option('--vmax SPEED', 'maximum sustained 10-m wind (kt)')
+    .option('--rmax LENGTH', 'radius of maximum wind (km)')
+    .option('--b NUMBER', 'Holland B (gradient-consistent)')
+    .option('--pressure-deficit PRESSURE', 'ambient less central pressure (hPa)')
+    .option('--lat DEGREES', 'latitude, south negative (20)')
+    .option('--profile NAME', 'profile (the recipe’s)')
+    .option('--compare LIST', 'several profiles side by side')
+    .option('--motion SPEED', 'translation speed (0 m/s)')
+    .option('--heading DEGREES', 'direction of motion, clockwise from north (0)')
+    .option('--radii LIST', 'radii of the table (km)')
+    .option('--cyclostrophic-above NUMBER', 'Rossby number above which the balance is called cyclostrophic (10)')
+    .option('--geostrophic-below NUMBER', 'Rossby number below which it is called geostrophic (0.1)')
+    .option('--track FILE', 'take the state of a track instead')
+    .option('--storm ID', 'a storm of the track file')
+    .option('--at TIME', 'time on the track, such as 2031-09-03T12:00Z')
+    .addOption(
+      new Option('--to FORMAT', 'draw or tabulate, to standard output or --out').choices(['csv', 'svg', 'png']),
+    )
+    .option('--out FILE', 'where the drawing or table goes')
+    .option('--force', 'replace an existing file')
+    .action(async (options) => (await import('./profile.js')).profile(options));
+
+  readsTracks(
+    models(
+      common(
+        program
+          .command('swath FILE')
+          .description('Peak wind and gust over the life of a storm, isotachs, rasters and pictures.'),
+      ),
+    ),
+  )
+    .option('--from TIME', 'first time of the track to take')
+    .option('--to TIME', 'last time of the track to take')
+    .option('--levels LIST', 'isotachs', '34kt,50kt,64kt,83kt,96kt,113kt,137kt')
+    .addOption(
+      new Option('--of QUANTITY', 'what the isotachs are drawn from').choices(['wind', 'gust']).default('wind'),
+    )
+    .option('--bands', 'disjoint bands instead of at-or-above areas')
+    .option('--crs CRS', 'coordinate reference system of the grid', 'EPSG:4326')
+    .option('--bounds W,S,E,N', 'edges of the grid in its own units (fitted to the lowest level)')
+    .option('--cell SIZE', 'cell size (0.02deg, or 2km in a projected CRS)')
+    .option('--out DIR', 'folder of the results (./<storm>)')
+    .option('--formats LIST', 'geojson, cog, csv, netcdf, kml, flatgeobuf, svg, png, html', 'geojson,cog')
+    .option('--force', 'replace existing files')
+    .option('--jobs N', 'workers (all cores)')
+    .action(async (file, options) => (await import('./swath.js')).swath(file, options));
+
+  common(program.command('recipe').description('The recipe in force with its sources; check one.'))
+    .option('--recipe FILE', 'read and check this recipe')
+    .option('--set KEY=VALUE', 'one modelling choice; may be repeated', gather)
+    .option('--schema', 'print the JSON Schema of a recipe')
+    .action(async (options) => (await import('./recipe.js')).recipe(options));
+
+  await guarded(async () => {
+    try {
+      await program.parseAsync(argv as string[]);
+    } catch (error) {
+      if (!(error instanceof CommanderError)) throw error;
+      // commander has said what was wrong on standard error, or shown the help that was asked for
+      process.exitCode = error.exitCode === 0 ? EXIT.done : EXIT.usage;
+    }
+  });
+}

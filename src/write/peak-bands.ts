@@ -35,7 +35,7 @@ export function peakBands(swath: Swath): PeakBand[] {
     return {
       kind: 'hours',
       name: `hours_${name}`,
-      heading: `hours_${name}_h`,
+      heading: `hours_${name}`,
       unit: 'h',
       decimals: 3,
       description: `hours with a sustained wind of ${name} or more`,

@@ -1,6 +1,7 @@
 import { createReadStream } from 'node:fs';
-import { InputError } from '../errors.js';
+import { GalewakeError, InputError } from '../errors.js';
 import { lineSplitter } from '../track/read/lines.js';
+import { unreadable } from './input.js';
 
 /** What messages call a source: its path, or `standard input` for `-`. */
 export const sourceName = (path: string): string => (path === '-' ? 'standard input' : path);
@@ -20,9 +21,13 @@ const SIGNATURES: readonly (readonly [bytes: readonly number[], what: string, re
 /**
  * The lines of a text file, or of standard input for `-`, many at a time. A byte-order mark and carriage returns are
  * taken off.
- * @throws InputError `io.not-found`, `io.unreadable`, `io.binary`, `io.encoding`, `track.line-length`
+ * @param options.onBytes sees the bytes as they are read: for a checksum
+ * @throws InputError `io.missing`, `io.read`, `io.binary`, `io.encoding`, `track.line-length`
  */
-export async function* readLineBatches(path: string): AsyncGenerator<readonly string[], void, undefined> {
+export async function* readLineBatches(
+  path: string,
+  options: { readonly onBytes?: (bytes: Uint8Array) => void } = {},
+): AsyncGenerator<readonly string[], void, undefined> {
   const source = sourceName(path);
   const stream = path === '-' ? process.stdin : createReadStream(path, { highWaterMark: 1 << 18 });
   const splitter = lineSplitter(source);
@@ -49,6 +54,7 @@ export async function* readLineBatches(path: string): AsyncGenerator<readonly st
     for await (const chunk of stream as AsyncIterable<Uint8Array>) {
       if (first) refuseBinary(chunk, source);
       first = false;
+      options.onBytes?.(chunk);
       if (chunk.includes(0)) {
         throw new InputError('io.binary', `${source}:${line}: holds bytes that no text has; give a text file`, {
           fields: { source, line },
@@ -59,7 +65,8 @@ export async function* readLineBatches(path: string): AsyncGenerator<readonly st
       if (lines.length > 0) yield lines;
     }
   } catch (cause) {
-    throw asInputError(cause, path);
+    const ours = cause instanceof GalewakeError || typeof (cause as NodeJS.ErrnoException | null)?.code !== 'string';
+    throw ours ? cause : unreadable(source, cause);
   }
   const rest = decode(undefined);
   const lines = rest === '' ? [] : splitter.push(rest);
@@ -78,22 +85,4 @@ function refuseBinary(bytes: Uint8Array, source: string): void {
       fields: { source },
     });
   }
-}
-
-const REASONS: Readonly<Record<string, readonly [code: string, what: string, remedy: string]>> = {
-  ENOENT: ['io.not-found', 'there is no such file', 'check the path'],
-  EISDIR: ['io.unreadable', 'is a folder', 'name a file in it'],
-  EACCES: ['io.unreadable', 'may not be read', 'check its permissions'],
-};
-
-function asInputError(cause: unknown, path: string): unknown {
-  const reason = (cause as NodeJS.ErrnoException | null)?.code;
-  if (cause instanceof InputError || typeof reason !== 'string' || !/^E[A-Z]+$/.test(reason)) return cause;
-  const [code, what, remedy] = REASONS[reason] ?? [
-    'io.unreadable',
-    `cannot be read (${reason})`,
-    'check the path and the disk',
-  ];
-  const source = sourceName(path);
-  return new InputError(code, `${source}: ${what}; ${remedy}`, { fields: { source, reason }, cause });
 }

@@ -4,11 +4,13 @@ import { readLineBatches, sourceName } from './lines.js';
 
 /**
  * The tracks of a file, or of standard input for `-`, storm after storm; see `readTracks` for formats and options.
+ * @param options.onBytes sees the bytes as they are read: for a checksum of the input
  * @throws InputError `io.*`, `track.*`; UsageError, LimitError `track.*`
  */
 export function readTrackFile(
   path: string,
-  options: Omit<ReadTracksOptions, 'source'> = {},
+  options: Omit<ReadTracksOptions, 'source'> & { readonly onBytes?: (bytes: Uint8Array) => void } = {},
 ): AsyncGenerator<Track, void, undefined> {
-  return readTracks(readLineBatches(path), { ...options, source: sourceName(path) });
+  const { onBytes, ...reading } = options;
+  return readTracks(readLineBatches(path, onBytes ? { onBytes } : {}), { ...reading, source: sourceName(path) });
 }

@@ -185,6 +185,8 @@ export function ibtracsParser(options: ReadOptions, emit: (track: Track) => void
         const odd = `outside the span of ${main.agency.prefix}: values are of ${agency.prefix}, ${averagingS}-s mean winds`;
         spot.cautions.add(`agency ${agency.prefix}`, row.line, odd);
       }
+      if (!agency)
+        spot.cautions.add('no agency', row.line, 'no agency asked gives wind or pressure: only the centre is read');
       builder.add(readFix(row, agency, averagingS));
     });
     const first = rows[0]!.cells;

@@ -1,0 +1,58 @@
+/**
+ * Every publication that a formula, a coefficient or a format is taken from, by the key that stands in brackets in doc
+ * comments and in `source` fields. A DOI is given where it is known for certain.
+ */
+export const BIBLIOGRAPHY: Readonly<Record<string, string>> = {
+  AbramowitzStegun1964:
+    'Abramowitz, M., and I. A. Stegun, eds., 1964: Handbook of Mathematical Functions. National Bureau of Standards, Applied Mathematics Series 55',
+  AtkinsonHolliday1977:
+    'Atkinson, G. D., and C. R. Holliday, 1977: Tropical cyclone minimum sea level pressure/maximum sustained wind relationship for the western North Pacific. Monthly Weather Review 105, 421–427. doi:10.1175/1520-0493(1977)105<0421:TCMSLP>2.0.CO;2',
+  CourtneyKnaff2009:
+    'Courtney, J., and J. A. Knaff, 2009: Adapting the Knaff and Zehr wind–pressure relationship for operational use in Tropical Cyclone Warning Centres. Australian Meteorological and Oceanographic Journal 58, 167–179',
+  Emanuel2011:
+    'Emanuel, K., 2011: Global warming effects on U.S. hurricane damage. Weather, Climate, and Society 3, 261–268. doi:10.1175/WCAS-D-11-00007.1',
+  Franklin2003:
+    'Franklin, J. L., M. L. Black, and K. Valde, 2003: GPS dropwindsonde wind profiles in hurricanes and their operational implications. Weather and Forecasting 18, 32–44. doi:10.1175/1520-0434(2003)018<0032:GDWPIH>2.0.CO;2',
+  FritschButland1984:
+    'Fritsch, F. N., and J. Butland, 1984: A method for constructing local monotone piecewise cubic interpolants. SIAM Journal on Scientific and Statistical Computing 5, 300–304. doi:10.1137/0905021',
+  FritschCarlson1980:
+    'Fritsch, F. N., and R. E. Carlson, 1980: Monotone piecewise cubic interpolation. SIAM Journal on Numerical Analysis 17, 238–246. doi:10.1137/0717021',
+  HarperKepertGinger2010:
+    'Harper, B. A., J. D. Kepert, and J. D. Ginger, 2010: Guidelines for converting between various wind averaging periods in tropical cyclone conditions. World Meteorological Organization, WMO/TD-No. 1555',
+  Holland1980:
+    'Holland, G. J., 1980: An analytic model of the wind and pressure profiles in hurricanes. Monthly Weather Review 108, 1212–1218. doi:10.1175/1520-0493(1980)108<1212:AAMOTW>2.0.CO;2',
+  Holton2004: 'Holton, J. R., 2004: An Introduction to Dynamic Meteorology, 4th ed. Elsevier Academic Press',
+  Hughes1952:
+    'Hughes, L. A., 1952: On the low-level wind structure of tropical storms. Journal of Meteorology 9, 422–428',
+  Jelesnianski1966:
+    'Jelesnianski, C. P., 1966: Numerical computations of storm surges without bottom stress. Monthly Weather Review 94, 379–394',
+  KnaffZehr2007:
+    'Knaff, J. A., and R. M. Zehr, 2007: Reexamination of tropical cyclone wind–pressure relationships. Weather and Forecasting 22, 71–88. doi:10.1175/WAF965.1',
+  KnappEtAl2010:
+    'Knapp, K. R., M. C. Kruk, D. H. Levinson, H. J. Diamond, and C. J. Neumann, 2010: The International Best Track Archive for Climate Stewardship (IBTrACS): unifying tropical cyclone data. Bulletin of the American Meteorological Society 91, 363–376. doi:10.1175/2009BAMS2755.1',
+  LandseaFranklin2013:
+    'Landsea, C. W., and J. L. Franklin, 2013: Atlantic hurricane database uncertainty and presentation of a new database format. Monthly Weather Review 141, 3576–3592. doi:10.1175/MWR-D-12-00254.1',
+  LinChavas2012:
+    'Lin, N., and D. Chavas, 2012: On hurricane parametric wind and applications in storm surge modeling. Journal of Geophysical Research 117, D09120. doi:10.1029/2011JD017126',
+  Miyazaki1961:
+    'Miyazaki, M., T. Ueno, and S. Unoki, 1961: Theoretical investigations of typhoon surges along the Japanese coast. Oceanographical Magazine 13, 51–75',
+  Moritz2000:
+    'Moritz, H., 2000: Geodetic Reference System 1980. Journal of Geodesy 74, 128–133. doi:10.1007/s001900050278',
+  RFC1950:
+    'Deutsch, P., and J.-L. Gailly, 1996: ZLIB compressed data format specification version 3.3. RFC 1950. doi:10.17487/RFC1950',
+  RFC4180:
+    'Shafranovich, Y., 2005: Common format and MIME type for comma-separated values (CSV) files. RFC 4180. doi:10.17487/RFC4180',
+  RFC7946:
+    'Butler, H., M. Daly, A. Doyle, S. Gillies, S. Hagen, and T. Schaub, 2016: The GeoJSON format. RFC 7946. doi:10.17487/RFC7946',
+  Rankine1882: 'Rankine, W. J. M., 1882: A Manual of Applied Physics, 10th ed. Charles Griffin, London',
+  SampsonSchrader2000:
+    'Sampson, C. R., and A. J. Schrader, 2000: The Automated Tropical Cyclone Forecasting System (version 3.2). Bulletin of the American Meteorological Society 81, 1231–1240',
+  SchwerdtHoWatkins1979:
+    'Schwerdt, R. W., F. P. Ho, and R. R. Watkins, 1979: Meteorological criteria for standard project hurricane and probable maximum hurricane windfields, Gulf and East Coasts of the United States. NOAA Technical Report NWS 23',
+  Sobey1977:
+    'Sobey, R. J., B. A. Harper, and K. P. Stark, 1977: Numerical simulation of tropical cyclone storm surge. James Cook University, Department of Civil and Systems Engineering, Research Bulletin CS14',
+  WGS84:
+    'National Imagery and Mapping Agency, 2000: Department of Defense World Geodetic System 1984, its definition and relationships with local geodetic systems, 3rd ed. TR8350.2',
+  Willoughby2006:
+    'Willoughby, H. E., R. W. R. Darling, and M. E. Rahn, 2006: Parametric representation of the primary hurricane vortex. Part II: A new family of sectionally continuous profiles. Monthly Weather Review 134, 1102–1120. doi:10.1175/MWR3106.1',
+};

@@ -1,6 +1,6 @@
 /**
  * The Earth as the model knows it: a sphere of the mean radius, turning at Ω.
- * Against the WGS 84 ellipsoid a distance on this sphere is at most 0.56 % off.
+ * Against the WGS 84 ellipsoid a distance on this sphere is at most 0.562 % off (along a meridian at the equator).
  */
 
 /** Mean radius R1 = (2a + b)/3 of WGS 84, m [Moritz2000]. */

@@ -68,11 +68,13 @@ function proj4Definition(crs: string): string {
   const known: Record<string, string> = {
     'EPSG:3995': '+proj=stere +lat_0=90 +lat_ts=71 +lon_0=0 +datum=WGS84 +units=m +no_defs',
     'EPSG:3031': '+proj=stere +lat_0=-90 +lat_ts=-71 +lon_0=0 +datum=WGS84 +units=m +no_defs',
-    'EPSG:6933': '+proj=cea +lat_ts=30 +lon_0=0 +datum=WGS84 +units=m +no_defs',
+    'EPSG:6933': '+proj=cea +lat_ts=30 +lon_0=0 +x_0=0 +y_0=0 +datum=WGS84 +units=m +no_defs',
   };
   const upper = crs.toUpperCase();
   if (known[upper]) return known[upper];
-  return crs.startsWith('+') ? crs : upper;
+  if (!crs.startsWith('+')) return upper;
+  // some projections of proj4 answer NaN when the false easting and northing are left out
+  return crs + (crs.includes('+x_0=') ? '' : ' +x_0=0') + (crs.includes('+y_0=') ? '' : ' +y_0=0');
 }
 
 /**

@@ -2,7 +2,8 @@ import { UsageError } from '../errors.js';
 import { readInputText } from '../io/input.js';
 import { makeRecipe, type Recipe } from '../model/recipe.js';
 import { nearest } from '../nearest.js';
-import type { ReadOptions } from '../track/track.js';
+import { TRACK_FORMATS } from '../track/read/detect.js';
+import type { ReadTracksOptions } from '../track/read/read.js';
 import { knots, quantityOf } from '../units.js';
 
 /** Options as commander hands them over. */
@@ -44,7 +45,7 @@ export async function recipeOf(options: ModelOptions): Promise<Recipe> {
 }
 
 /** How to read the track file. */
-export function readOptionsOf(source: string, options: TrackOptions): ReadOptions & { format?: string } {
+export function readOptionsOf(options: TrackOptions): Omit<ReadTracksOptions, 'source'> {
   const columns: Record<string, string> = {};
   for (const pair of list(options.columns)) {
     const at = pair.indexOf('=');
@@ -52,11 +53,10 @@ export function readOptionsOf(source: string, options: TrackOptions): ReadOption
     columns[pair.slice(0, at)] = pair.slice(at + 1);
   }
   return {
-    source: source === '-' ? 'standard input' : source,
     ...(options.agency === undefined ? {} : { agencies: list(options.agency) }),
     ...(options.technique === undefined ? {} : { technique: options.technique }),
     ...(options.columns === undefined ? {} : { columns }),
-    ...(options.format === undefined ? {} : { format: options.format }),
+    ...(options.format === undefined ? {} : { format: oneOf(options.format, TRACK_FORMATS, '--format') }),
     ...(options.sortTimes ? { sortTimes: true } : {}),
   };
 }
@@ -108,4 +108,24 @@ export function countOf(text: string, { name, least }: { name: string; least: nu
   if (!Number.isInteger(count) || count < least)
     throw new UsageError('count', `${name}: '${text}' is not a whole number of at least ${least}`);
   return count;
+}
+
+/**
+ * The part of a track between two times, either of which may be left open.
+ * @throws UsageError `period`
+ */
+export function periodOf(
+  from: string | undefined,
+  to: string | undefined,
+  path: { startMs: number; endMs: number },
+  names: readonly [string, string],
+): { fromMs: number; toMs: number } {
+  const fromMs = from === undefined ? path.startMs : timeOf(from, names[0]);
+  const toMs = to === undefined ? path.endMs : timeOf(to, names[1]);
+  const span = `${new Date(path.startMs).toISOString()} to ${new Date(path.endMs).toISOString()}`;
+  if (fromMs > toMs) throw new UsageError('period', `${names[0]} is after ${names[1]}; the track runs from ${span}`);
+  if (toMs < path.startMs || fromMs > path.endMs) {
+    throw new UsageError('period', `${names[0]} and ${names[1]} lie outside the track, which runs from ${span}`);
+  }
+  return { fromMs: Math.max(fromMs, path.startMs), toMs: Math.min(toMs, path.endMs) };
 }

@@ -118,6 +118,32 @@ export async function runProgram(argv: readonly string[]): Promise<void> {
     .option('--jobs N', 'workers (all cores)')
     .action(async (file, options) => (await import('./swath.js')).swath(file, options));
 
+  readsTracks(
+    models(
+      common(
+        program
+          .command('sites FILE PLACES')
+          .description('The model’s wind at places: peaks, hours, closest approach, series.'),
+      ),
+    ),
+  )
+    .option('--levels LIST', 'winds whose hours are counted', '34kt,50kt,64kt')
+    .option('--every PERIOD', 'also the series, at this interval (min)')
+    .option('--from TIME', 'first time of the track to take')
+    .option('--to TIME', 'last time of the track to take')
+    .option('--strict', 'refuse rows that would otherwise be skipped')
+    .addOption(
+      new Option('--as FORMAT', 'table or drawing, to standard output or --out').choices([
+        'csv',
+        'geojson',
+        'svg',
+        'png',
+      ]),
+    )
+    .option('--out FILE', 'where the table or drawing goes')
+    .option('--force', 'replace an existing file')
+    .action(async (file, places, options) => (await import('./sites.js')).sites(file, places, options));
+
   common(program.command('recipe').description('The recipe in force with its sources; check one.'))
     .option('--recipe FILE', 'read and check this recipe')
     .option('--set KEY=VALUE', 'one modelling choice; may be repeated', gather)

@@ -1,6 +1,6 @@
 /** Edge of a tile, pixels. */
 export const TILE = 256;
-export const TILE_BYTES = TILE * TILE * 4;
+const TILE_BYTES = TILE * TILE * 4;
 
 /**
  * One tile of a field of 32-bit floats, made ready for Deflate by the floating-point predictor (TIFF predictor 3)

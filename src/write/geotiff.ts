@@ -4,7 +4,7 @@ import type { Swath } from '../swath/swath.js';
 import { describeCrs } from './crs.js';
 import { geoKeys } from './crs-geokeys.js';
 import { type Deflate, webDeflate } from './deflate.js';
-import { predictedTile, TILE, TILE_BYTES } from './float-predictor.js';
+import { predictedTile, TILE } from './float-predictor.js';
 import { halved, type Level, type OverviewRule } from './overview.js';
 import { peakBands } from './peak-bands.js';
 import { type Provenance, provenanceItems } from './provenance.js';
@@ -122,7 +122,11 @@ export function peakTif(swath: Swath, options: { provenance: Provenance; deflate
       items: band.items,
     }),
   );
-  const metadata = { ...provenanceItems(options.provenance), time_origin: new Date(swath.originMs).toISOString() };
+  const metadata = {
+    ...provenanceItems(options.provenance),
+    time_origin: new Date(swath.originMs).toISOString(),
+    ...(swath.cautions.length > 0 ? { cautions: swath.cautions.join('\n') } : {}),
+  };
   return cogChunks({ grid: swath.grid, bands, metadata, ...(options.deflate && { deflate: options.deflate }) });
 }
 

@@ -19,6 +19,11 @@ export interface LandGrid {
   readonly forward: (lonDeg: number, latDeg: number) => readonly [number, number];
 }
 
+/** Longitude and latitude of a cell's centre, degrees. */
+export function cellLonLat(grid: LandGrid, column: number, row: number): readonly [number, number] {
+  return grid.inverse(grid.bounds[0] + (column + 0.5) * grid.cell, grid.bounds[3] - (row + 0.5) * grid.cell);
+}
+
 /** Longitudes and latitudes that a grid spans; east − west ≤ 360, east may exceed 180. */
 export interface LonLatBox {
   readonly west: number;

@@ -7,6 +7,8 @@ export const BIBLIOGRAPHY: Readonly<Record<string, string>> = {
     'Abramowitz, M., and I. A. Stegun, eds., 1964: Handbook of Mathematical Functions. National Bureau of Standards, Applied Mathematics Series 55',
   AtkinsonHolliday1977:
     'Atkinson, G. D., and C. R. Holliday, 1977: Tropical cyclone minimum sea level pressure/maximum sustained wind relationship for the western North Pacific. Monthly Weather Review 105, 421–427. doi:10.1175/1520-0493(1977)105<0421:TCMSLP>2.0.CO;2',
+  BoM2023:
+    'Bureau of Meteorology, 2023: Tropical cyclone categories. Knowledge Centre, Commonwealth of Australia, bom.gov.au',
   CourtneyKnaff2009:
     'Courtney, J., and J. A. Knaff, 2009: Adapting the Knaff and Zehr wind–pressure relationship for operational use in Tropical Cyclone Warning Centres. Australian Meteorological and Oceanographic Journal 58, 167–179',
   Emanuel2011:
@@ -24,8 +26,15 @@ export const BIBLIOGRAPHY: Readonly<Record<string, string>> = {
   Holton2004: 'Holton, J. R., 2004: An Introduction to Dynamic Meteorology, 4th ed. Elsevier Academic Press',
   Hughes1952:
     'Hughes, L. A., 1952: On the low-level wind structure of tropical storms. Journal of Meteorology 9, 422–428',
+  IMD2021:
+    'India Meteorological Department, 2021: Cyclone warning in India: standard operation procedure. Ministry of Earth Sciences, New Delhi',
+  JMA2023:
+    'Japan Meteorological Agency, 2023: Classification of tropical cyclones. RSMC Tokyo – Typhoon Center, www.jma.go.jp',
   Jelesnianski1966:
     'Jelesnianski, C. P., 1966: Numerical computations of storm surges without bottom stress. Monthly Weather Review 94, 379–394',
+  KML22: 'Open Geospatial Consortium, 2008: OGC KML, version 2.2.0. OGC 07-147r2',
+  KamelFaloutsos1993:
+    'Kamel, I., and C. Faloutsos, 1993: On packing R-trees. Proceedings of the second international conference on Information and knowledge management, 490–499. doi:10.1145/170088.170403',
   KnaffZehr2007:
     'Knaff, J. A., and R. M. Zehr, 2007: Reexamination of tropical cyclone wind–pressure relationships. Weather and Forecasting 22, 71–88. doi:10.1175/WAF965.1',
   KnappEtAl2010:
@@ -47,12 +56,17 @@ export const BIBLIOGRAPHY: Readonly<Record<string, string>> = {
   Rankine1882: 'Rankine, W. J. M., 1882: A Manual of Applied Physics, 10th ed. Charles Griffin, London',
   SampsonSchrader2000:
     'Sampson, C. R., and A. J. Schrader, 2000: The Automated Tropical Cyclone Forecasting System (version 3.2). Bulletin of the American Meteorological Society 81, 1231–1240',
+  SchottEtAl2012:
+    'Schott, T., C. Landsea, G. Hafele, J. Lorens, A. Taylor, H. Thurm, B. Ward, M. Willis, and W. Zaleski, 2012: The Saffir–Simpson hurricane wind scale. National Weather Service',
   SchwerdtHoWatkins1979:
     'Schwerdt, R. W., F. P. Ho, and R. R. Watkins, 1979: Meteorological criteria for standard project hurricane and probable maximum hurricane windfields, Gulf and East Coasts of the United States. NOAA Technical Report NWS 23',
   Sobey1977:
     'Sobey, R. J., B. A. Harper, and K. P. Stark, 1977: Numerical simulation of tropical cyclone storm surge. James Cook University, Department of Civil and Systems Engineering, Research Bulletin CS14',
+  VanOosteromStrackee1983:
+    'Van Oosterom, A., and J. Strackee, 1983: The solid angle of a plane triangle. IEEE Transactions on Biomedical Engineering BME-30, 125–126. doi:10.1109/TBME.1983.325207',
   WGS84:
     'National Imagery and Mapping Agency, 2000: Department of Defense World Geodetic System 1984, its definition and relationships with local geodetic systems, 3rd ed. TR8350.2',
+  WMO2018: 'World Meteorological Organization, 2018: Guide to instruments and methods of observation. WMO-No. 8',
   Willoughby2006:
     'Willoughby, H. E., R. W. R. Darling, and M. E. Rahn, 2006: Parametric representation of the primary hurricane vortex. Part II: A new family of sectionally continuous profiles. Monthly Weather Review 134, 1102–1120. doi:10.1175/MWR3106.1',
 };

@@ -293,8 +293,8 @@ describe('an interrupt', () => {
     const child = spawn(process.execPath, [script], { cwd: folder, stdio: ['ignore', 'pipe', 'inherit'] });
     let out = '';
     child.stdout.on('data', (data: Buffer) => {
+      if (!out.includes('ready') && String(data).includes('ready')) child.kill(signal);
       out += data;
-      if (out.includes('ready')) child.kill(signal);
     });
     const code = await new Promise<number | null>((done) => child.on('close', done));
     return { code, out };

@@ -5,12 +5,16 @@
 export const BIBLIOGRAPHY: Readonly<Record<string, string>> = {
   AbramowitzStegun1964:
     'Abramowitz, M., and I. A. Stegun, eds., 1964: Handbook of Mathematical Functions. National Bureau of Standards, Applied Mathematics Series 55',
+  Adobe1992: 'Adobe Developers Association, 1992: TIFF, revision 6.0. Adobe Systems',
+  Adobe2005:
+    'Adobe Systems, 2005: Adobe Photoshop TIFF technical note 3: floating point values and the floating point predictor',
   AtkinsonHolliday1977:
     'Atkinson, G. D., and C. R. Holliday, 1977: Tropical cyclone minimum sea level pressure/maximum sustained wind relationship for the western North Pacific. Monthly Weather Review 105, 421–427. doi:10.1175/1520-0493(1977)105<0421:TCMSLP>2.0.CO;2',
   BoM2023:
     'Bureau of Meteorology, 2023: Tropical cyclone categories. Knowledge Centre, Commonwealth of Australia, bom.gov.au',
   CourtneyKnaff2009:
     'Courtney, J., and J. A. Knaff, 2009: Adapting the Knaff and Zehr wind–pressure relationship for operational use in Tropical Cyclone Warning Centres. Australian Meteorological and Oceanographic Journal 58, 167–179',
+  EatonEtAl2023: 'Eaton, B., and coauthors, 2023: NetCDF Climate and Forecast (CF) metadata conventions, version 1.11',
   Emanuel2011:
     'Emanuel, K., 2011: Global warming effects on U.S. hurricane damage. Weather, Climate, and Society 3, 261–268. doi:10.1175/WCAS-D-11-00007.1',
   Franklin2003:
@@ -21,6 +25,8 @@ export const BIBLIOGRAPHY: Readonly<Record<string, string>> = {
     'Fritsch, F. N., and R. E. Carlson, 1980: Monotone piecewise cubic interpolation. SIAM Journal on Numerical Analysis 17, 238–246. doi:10.1137/0717021',
   HarperKepertGinger2010:
     'Harper, B. A., J. D. Kepert, and J. D. Ginger, 2010: Guidelines for converting between various wind averaging periods in tropical cyclone conditions. World Meteorological Organization, WMO/TD-No. 1555',
+  Harrtell2020:
+    'Harrtell, B., 2020: FlatGeobuf, a performant binary encoding for geographic data: specification, version 3',
   Holland1980:
     'Holland, G. J., 1980: An analytic model of the wind and pressure profiles in hurricanes. Monthly Weather Review 108, 1212–1218. doi:10.1175/1520-0493(1980)108<1212:AAMOTW>2.0.CO;2',
   Holton2004: 'Holton, J. R., 2004: An Introduction to Dynamic Meteorology, 4th ed. Elsevier Academic Press',
@@ -28,6 +34,7 @@ export const BIBLIOGRAPHY: Readonly<Record<string, string>> = {
     'Hughes, L. A., 1952: On the low-level wind structure of tropical storms. Journal of Meteorology 9, 422–428',
   IMD2021:
     'India Meteorological Department, 2021: Cyclone warning in India: standard operation procedure. Ministry of Earth Sciences, New Delhi',
+  IogpEpsg2019: 'International Association of Oil and Gas Producers, 2019: EPSG geodetic parameter dataset',
   JMA2023:
     'Japan Meteorological Agency, 2023: Classification of tropical cyclones. RSMC Tokyo – Typhoon Center, www.jma.go.jp',
   Jelesnianski1966:
@@ -47,6 +54,11 @@ export const BIBLIOGRAPHY: Readonly<Record<string, string>> = {
     'Miyazaki, M., T. Ueno, and S. Unoki, 1961: Theoretical investigations of typhoon surges along the Japanese coast. Oceanographical Magazine 13, 51–75',
   Moritz2000:
     'Moritz, H., 2000: Geodetic Reference System 1980. Journal of Geodesy 74, 128–133. doi:10.1007/s001900050278',
+  OgcCog2023: 'Open Geospatial Consortium, 2023: Cloud Optimized GeoTIFF standard, version 1.0. OGC 21-026',
+  OgcGeotiff2019: 'Open Geospatial Consortium, 2019: GeoTIFF standard, version 1.1. OGC 19-008r4',
+  OgcKml2008: 'Open Geospatial Consortium, 2008: KML, version 2.2. OGC 07-147r2',
+  OgcWkt2019:
+    'Open Geospatial Consortium, 2019: Geographic information: well-known text representation of coordinate reference systems, version 2.0.6. OGC 18-010r7',
   RFC1950:
     'Deutsch, P., and J.-L. Gailly, 1996: ZLIB compressed data format specification version 3.3. RFC 1950. doi:10.17487/RFC1950',
   RFC4180:
@@ -54,6 +66,8 @@ export const BIBLIOGRAPHY: Readonly<Record<string, string>> = {
   RFC7946:
     'Butler, H., M. Daly, A. Doyle, S. Gillies, S. Hagen, and T. Schaub, 2016: The GeoJSON format. RFC 7946. doi:10.17487/RFC7946',
   Rankine1882: 'Rankine, W. J. M., 1882: A Manual of Applied Physics, 10th ed. Charles Griffin, London',
+  RewHartnettCaron2006:
+    'Rew, R., E. Hartnett, and J. Caron, 2006: NetCDF-4: software implementing an enhanced data model for the geosciences. 22nd International Conference on Interactive Information Processing Systems, American Meteorological Society',
   SampsonSchrader2000:
     'Sampson, C. R., and A. J. Schrader, 2000: The Automated Tropical Cyclone Forecasting System (version 3.2). Bulletin of the American Meteorological Society 81, 1231–1240',
   SchottEtAl2012:

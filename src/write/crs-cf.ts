@@ -6,7 +6,7 @@ import { crsWkt } from './crs-wkt.js';
 export type GridMapping = Readonly<Record<string, string | number | readonly number[]>>;
 
 /**
- * A coordinate reference system as the attributes of a CF grid mapping, with `crs_wkt` beside [CF, appendix F].
+ * A coordinate reference system as the attributes of a CF grid mapping, with `crs_wkt` beside [EatonEtAl2023, appendix F].
  * @throws UsageError `write.crs` for what the convention has no attribute for
  */
 export function gridMapping(crs: CrsDescription): GridMapping {

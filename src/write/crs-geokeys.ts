@@ -1,6 +1,6 @@
 import type { CrsDescription, MapProjection, ProjectionMethod } from './crs.js';
 
-/** The three GeoTIFF tags that carry a coordinate reference system [GeoTIFF]. */
+/** The three GeoTIFF tags that carry a coordinate reference system [OgcGeotiff2019]. */
 export interface GeoKeys {
   /** GeoKeyDirectoryTag 34735 */
   readonly directory: readonly number[];
@@ -66,7 +66,7 @@ const KEY = {
 
 /**
  * A coordinate reference system as GeoTIFF keys, cells as areas (PixelIsArea): by EPSG code where there is one, else
- * by datum, method and parameters [GeoTIFF].
+ * by datum, method and parameters [OgcGeotiff2019].
  */
 export function geoKeys(crs: CrsDescription): GeoKeys {
   const entries: [key: number, value: number | string | { double: number }][] = [];

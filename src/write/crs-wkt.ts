@@ -6,7 +6,7 @@ const METRE = 'LENGTHUNIT["metre",1]';
 const quoted = (text: string): string => `"${text.replaceAll('"', '""')}"`;
 const identifier = (epsg: number | null): string => (epsg === null ? '' : `,ID["EPSG",${epsg}]`);
 
-/** A coordinate reference system as well-known text, second edition [WKT2]; methods and parameters by EPSG code. */
+/** A coordinate reference system as well-known text, second edition [OgcWkt2019]; methods and parameters by EPSG code. */
 export function crsWkt(crs: CrsDescription): string {
   const { datum, projection } = crs;
   if (!projection) {

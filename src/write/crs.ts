@@ -81,7 +81,7 @@ const NAD83: Datum = {
 const SUPPORTED =
   'EPSG:4326, 4269, 3857, 3031, 3995, 5041, 5042, 6933, 32601–32660, 32701–32760, or a proj string in metres with +proj= longlat, utm, tmerc, merc, lcc, laea, aea, aeqd, stere, cea or sinu, on +datum=WGS84 or NAD83, +ellps=, +R= or +a= +b=';
 
-/** The proj strings behind EPSG codes that a grid may have [EPSG]. */
+/** The proj strings behind EPSG codes that a grid may have [IogpEpsg2019]. */
 const EPSG_PROJECTED: Readonly<Record<number, readonly [name: string, proj: string]>> = {
   3031: ['WGS 84 / Antarctic Polar Stereographic', '+proj=stere +lat_0=-90 +lat_ts=-71 +lon_0=0 +datum=WGS84'],
   3995: ['WGS 84 / Arctic Polar Stereographic', '+proj=stere +lat_0=90 +lat_ts=71 +lon_0=0 +datum=WGS84'],

@@ -31,7 +31,7 @@ export interface FlatGeobufInput {
 }
 
 /**
- * A FlatGeobuf file [FlatGeobuf] with spatial index, in EPSG:4326. Attributes are text, numbers or truth values; null
+ * A FlatGeobuf file [Harrtell2020] with spatial index, in EPSG:4326. Attributes are text, numbers or truth values; null
  * and absent ones have no value. Up to 16 features keep their order, more are sorted along a Hilbert curve.
  * @throws UsageError `write.attribute` where an attribute is text in one feature and a number in another
  */

@@ -4,7 +4,7 @@ const TILE_BYTES = TILE * TILE * 4;
 
 /**
  * One tile of a field of 32-bit floats, made ready for Deflate by the floating-point predictor (TIFF predictor 3)
- * [TIFFTN3]: in every row the bytes are sorted by significance, most significant first, then each becomes its
+ * [Adobe2005]: in every row the bytes are sorted by significance, most significant first, then each becomes its
  * difference from the one before it. Past the edge of the field its last column and row go on.
  * @param field bytes of a little-endian Float32 field, row 0 = north, index = row * nx + column
  */

@@ -38,7 +38,7 @@ export interface RasterInput {
 const IN_WORK = 8;
 
 /**
- * A Cloud Optimized GeoTIFF in pieces, to be written one after another [COG, GeoTIFF, TIFF6]: every directory stands
+ * A Cloud Optimized GeoTIFF in pieces, to be written one after another [OgcCog2023, OgcGeotiff2019, Adobe1992]: every directory stands
  * first, then the tiles from the smallest overview to the full image; 32-bit floats, one plane a band, tiles of
  * 256 × 256, Deflate with the floating-point predictor, overviews by the rule of each band down to one tile, NaN as no
  * data, cells as areas.
@@ -204,7 +204,7 @@ function geographicFields(grid: Grid, keys: ReturnType<typeof geoKeys>): TiffFie
   ];
 }
 
-/** The XML by which GDAL carries names, units and further items [GDAL]. */
+/** The XML by which GDAL carries names, units and further items. */
 function metadataXml(bands: readonly RasterBand[], metadata: Readonly<Record<string, string>>): string {
   const item = (name: string, value: string, more = ''): string =>
     `  <Item name="${xmlAscii(name)}"${more}>${xmlAscii(value)}</Item>\n`;

@@ -21,7 +21,7 @@ export interface KmlInput {
 }
 
 /**
- * `swath.kml` [KML22]: a folder of styled isotachs with typed attributes, and one of the track: its line, cut at ±180°,
+ * `swath.kml` [OgcKml2008]: a folder of styled isotachs with typed attributes, and one of the track: its line, cut at ±180°,
  * and the fixes with their times. Areas come cut at ±180°; one that touches the cut is drawn without outline, so that
  * no seam shows. Refers to no other file and to no network address.
  * @throws UsageError `write.colour` for a colour that is not `#rrggbb`

@@ -26,7 +26,7 @@ const DEFLATE_LEVEL = 1;
 let files = 0;
 
 /**
- * A netCDF-4 file [NetCDF4]: HDF5 with dimension scales. A dimension that has a variable of its own name is described
+ * A netCDF-4 file [RewHartnettCaron2006]: HDF5 with dimension scales. A dimension that has a variable of its own name is described
  * by it, any other by an empty scale. Large fields are compressed. The HDF5 library is loaded on first use.
  */
 export async function netcdfBytes(file: NetcdfFile): Promise<Uint8Array> {

@@ -13,7 +13,7 @@ export const MOST_NETCDF_CELLS = 60_000_000;
 const FILL = new Float32Array([Number.NaN]);
 
 /**
- * `peak.nc`: netCDF-4 by the CF conventions, version 1.11 [CF]. Fields as in `peak.tif`, row 0 = north; the time of the
+ * `peak.nc`: netCDF-4 by the CF conventions, version 1.11 [EatonEtAl2023]. Fields as in `peak.tif`, row 0 = north; the time of the
  * peak as CF time; one step of time with the bounds of the period that was modelled.
  * @throws UsageError `write.crs` for a reference system without CF grid mapping; LimitError `write.netcdf-cells`
  */

@@ -59,7 +59,7 @@ export function hilbertDistance(column: number, row: number): number {
 }
 
 /**
- * A packed R-tree as FlatGeobuf stores it [FlatGeobuf]: nodes of 40 bytes (box, then the first child's index or, in a
+ * A packed R-tree as FlatGeobuf stores it [Harrtell2020]: nodes of 40 bytes (box, then the first child's index or, in a
  * leaf, the feature's byte offset), the root first, the leaves last.
  */
 export function packedTree(boxes: readonly Box[], offsets: readonly number[]): Uint8Array {

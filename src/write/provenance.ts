@@ -1,4 +1,4 @@
-/** Stands in every output [caution of the product]. */
+/** Stands in every output that has room for words. */
 export const CAUTION =
   'Galewake is no warning service. This is the output of a wind model: it does not replace official warnings. Follow your national meteorological service and your local emergency authorities.';
 

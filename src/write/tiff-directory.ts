@@ -1,4 +1,4 @@
-/** Types of a TIFF field that are used here, with the bytes that one value takes [TIFF6]. */
+/** Types of a TIFF field that are used here, with the bytes that one value takes [Adobe1992]. */
 const SIZE = { ascii: 1, short: 2, long: 4, double: 8, long8: 8 } as const;
 const CODE = { ascii: 2, short: 3, long: 4, double: 12, long8: 16 } as const;
 

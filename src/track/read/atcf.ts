@@ -5,7 +5,7 @@ import { type DeckLine, readDeckLine } from './atcf-line.js';
 import { mergeLines } from './atcf-merge.js';
 import { buildTracks, nameOrNull } from './builder.js';
 import { collectCautions } from './cautions.js';
-import { refusal, shown, spotIn } from './checks.js';
+import { refusal, shown, shownList, spotIn } from './checks.js';
 import type { TrackParser } from './parser.js';
 import { formatTime, parseTime } from './time.js';
 
@@ -66,7 +66,7 @@ export function atcfParser(
     const asked = (options.technique ?? (options.deck === 'b-deck' ? 'BEST' : undefined))?.trim().toUpperCase();
     if (asked !== undefined && techniques.includes(asked)) return asked;
     if (asked === undefined && techniques.length === 1) return techniques[0]!;
-    const listed = techniques.map(shown).join(', ');
+    const listed = shownList(techniques);
     throw new UsageError(
       'track.technique',
       asked === undefined

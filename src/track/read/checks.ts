@@ -21,6 +21,12 @@ export function shown(text: string): string {
   return plain.length > 60 ? `${plain.slice(0, 57)}…` : plain;
 }
 
+/** A list as a message may show it: the first twenty. */
+export function shownList(items: readonly string[]): string {
+  const some = items.slice(0, 20).map(shown).join(', ');
+  return items.length > 20 ? `${some} and ${items.length - 20} more` : some;
+}
+
 /** An error about the current row: `storm.csv:14: …`. */
 export function refusal(spot: Spot, code: string, problem: string, value: string | number = ''): InputError {
   const place = spot.record === 'line' ? `${spot.source}:${spot.line}` : `${spot.source}: feature ${spot.line}`;

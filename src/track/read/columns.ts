@@ -1,7 +1,7 @@
 import { UsageError } from '../../errors.js';
 import { didYouMean, nearest } from '../../nearest.js';
 import { HECTOPASCAL_PA, KNOT_MPS, NAUTICAL_MILE_M } from '../../units.js';
-import { refusal, type Spot, shown } from './checks.js';
+import { refusal, type Spot, shown, shownList } from './checks.js';
 
 /** A heading of the documented table, and its unit as a factor to SI. */
 export interface UnitKey {
@@ -113,11 +113,10 @@ export function columnsOf(
     }
     const index = lower.indexOf(heading.trim().toLowerCase());
     if (index === -1) {
-      const known = headings.map(shown);
-      const guess = didYouMean(heading, known);
+      const guess = didYouMean(heading, headings.map(shown));
       throw new UsageError(
         'track.columns',
-        `${spot.source}: has no heading '${shown(heading)}' for ${key}${guess}; its headings are ${known.join(', ')}`,
+        `${spot.source}: has no heading '${shown(heading)}' for ${key}${guess}; its headings are ${shownList(headings)}`,
         { fields: { key, heading: shown(heading) } },
       );
     }
@@ -151,7 +150,7 @@ export function columnsOf(
   const missing = (['time', 'lat_deg', 'lon_deg'] as const).filter((key) => !columns.has(key));
   if (missing.length > 0) {
     const map = missing.map((key) => `${key}=${guessHeading(key, headings) ?? 'HEADING'}`).join(',');
-    const found = headings.map(shown).filter(Boolean).join(', ') || 'none';
+    const found = shownList(headings.filter((heading) => heading.trim() !== '')) || 'none';
     throw refusal(
       spot,
       'track.heading',

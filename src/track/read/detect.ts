@@ -8,7 +8,7 @@ import { isHurdat2Header } from './hurdat2.js';
 export const TRACK_FORMATS = ['hurdat2', 'ibtracs', 'b-deck', 'a-deck', 'csv', 'geojson'] as const;
 export type TrackFormat = (typeof TRACK_FORMATS)[number];
 
-const ATCF = /^\s*[A-Za-z]{2}\s*,\s*\d{1,2}\s*,\s*\d{10}\s*,[^,]*,\s*([^,]*?)\s*,/;
+const ATCF = /^\s*[A-Za-z]{2}\s*,\s*\d{1,2}\s*,\s*\d{10}\s*,[^,]*,([^,]*),/;
 
 /**
  * The format of a file by its first line that is neither blank nor a comment.
@@ -26,7 +26,7 @@ export function detectFormat(
   if (text.startsWith('{') || text.startsWith('[')) return 'geojson';
   if (isHurdat2Header(text)) return 'hurdat2';
   const deck = ATCF.exec(text);
-  if (deck) return deck[1]!.toUpperCase() === 'BEST' ? 'b-deck' : 'a-deck';
+  if (deck) return deck[1]!.trim().toUpperCase() === 'BEST' ? 'b-deck' : 'a-deck';
   const headings = (splitCells(text, delimiterOf(text)) ?? []).map((cell) => cell.trim());
   if (headings.includes('SID') && headings.includes('ISO_TIME')) return 'ibtracs';
   const mapped = Object.values(options.columns ?? {}).map((heading) => heading.trim().toLowerCase());

@@ -1,3 +1,4 @@
+import { UsageError } from '../../errors.js';
 import type { Fix, Quadrants, ReadOptions, WindRadii } from '../track.js';
 import {
   checkedLatitude,
@@ -52,7 +53,9 @@ export function planRows(headings: readonly string[], options: ReadOptions, spot
     return { index: found.get(key.key)!, unit: key.unit, name: key.key };
   };
   const averagingS = options.averagingS ?? 60;
-  checkedPeriod(averagingS, spot);
+  if (!isPeriod(averagingS)) {
+    throw new UsageError('track.averaging', `averagingS: ${averagingS} s ${NO_PERIOD}`, { fields: { averagingS } });
+  }
 
   const radii = new Map<number, UnitColumn[]>();
   for (const [key, index] of found) {
@@ -151,14 +154,12 @@ function radiusIn(cells: readonly string[], column: UnitColumn, spot: Spot): num
 function readPeriod(cells: readonly string[], plan: RowPlan, spot: Spot): number {
   const value = numberIn(cells, plan.columns.averaging_s, spot, 'averaging_s');
   if (value === null) return plan.averagingS;
-  return checkedPeriod(value, spot);
+  if (isPeriod(value)) return value;
+  throw refusal(spot, 'track.averaging', `averaging period ${value} s ${NO_PERIOD}`, value);
 }
 
-function checkedPeriod(averagingS: number, spot: Spot): number {
-  if (averagingS >= 1 && averagingS <= PERIOD_LIMIT_S) return averagingS;
-  const problem = `averaging period ${averagingS} s is not between 1 s and an hour; 60 is the 1-minute mean, 600 the 10-minute one`;
-  throw refusal(spot, 'track.averaging', problem, averagingS);
-}
+const isPeriod = (averagingS: number): boolean => averagingS >= 1 && averagingS <= PERIOD_LIMIT_S;
+const NO_PERIOD = 'is not between 1 s and an hour; 60 is the 1-minute mean, 600 the 10-minute one';
 
 function readHollandB(cells: readonly string[], plan: RowPlan, spot: Spot): number | null {
   const value = numberIn(cells, plan.columns.holland_b, spot, 'holland_b');
@@ -210,10 +211,14 @@ function numberIn(cells: readonly string[], index: number, spot: Spot, name: str
 /** A latitude or longitude: signed degrees, or degrees with a letter (`16.1N`). */
 function angleIn(cells: readonly string[], index: number, spot: Spot, letters: 'NS' | 'EW'): number {
   const name = letters === 'NS' ? 'latitude' : 'longitude';
-  const text = (cells[index] ?? '').trim();
+  const given = cells[index] ?? '';
+  const last = given.charCodeAt(given.length - 1);
+  // it ends in a digit, so that it has no letter: the usual case
+  if (last >= 48 && last <= 57) return numberIn(cells, index, spot, name)!;
+  const text = given.trim();
   if (text === '') throw refusal(spot, `track.${name}`, `the ${name} is missing; every row needs a time and a centre`);
   const letter = text.slice(-1).toUpperCase();
-  if (!letters.includes(letter)) return numberIn(cells, index, spot, name)!;
+  if (!letters.includes(letter) || /^[a-z]/i.test(text)) return numberIn(cells, index, spot, name)!;
   const degrees = numberOf(text.slice(0, -1), spot, name);
   if (degrees >= 0) return letter === letters[1] ? -degrees : degrees;
   throw refusal(spot, `track.${name}`, `${name} '${shown(text)}' has a sign and a letter; write one of them`, text);

@@ -86,7 +86,7 @@ export function gatherStorms(
       }
       const fix = readFix(cells, plan, spot);
       if (options.averagingS === undefined && (fix.maxWindMps !== null || fix.windRadii.length > 0)) {
-        sayAveraging ||= columns.averaging_s === -1 || textIn(cells, columns.averaging_s) === null;
+        sayAveraging ||= columns.averaging_s === -1 || cells[columns.averaging_s]!.trim() === '';
       }
       builder.add(fix);
     },

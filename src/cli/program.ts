@@ -21,23 +21,23 @@ function common(command: Command): Command {
 /** Options of every command that reads tracks. */
 function readsTracks(command: Command): Command {
   return command
-    .option('--storm ID', 'a storm of a file with several, by id or name')
+    .option('--storm <ID>', 'a storm of a file with several, by id or name')
     .option(
-      '--format NAME',
+      '--format <NAME>',
       'format of the file, where its content does not tell: hurdat2, ibtracs, b-deck, a-deck, csv, geojson',
     )
-    .option('--agency LIST', 'IBTrACS: whose columns, in order of preference (usa, then the others)')
-    .option('--technique NAME', 'a-deck: which technique')
-    .option('--columns LIST', 'CSV: key=heading,… for headings of your own')
+    .option('--agency <LIST>', 'IBTrACS: whose columns, in order of preference (usa, then the others)')
+    .option('--technique <NAME>', 'a-deck: which technique')
+    .option('--columns <LIST>', 'CSV: key=heading,… for headings of your own')
     .option('--sort-times', 'accept rows out of order in time and sort them');
 }
 
 /** Options of every command that models wind. */
 function models(command: Command): Command {
   return command
-    .option('--recipe FILE', 'modelling choices as JSON (the built-in recipe)')
-    .option('--set KEY=VALUE', 'one modelling choice; may be repeated', gather)
-    .option('--wind PERIOD', 'averaging period of the sustained wind (1min)');
+    .option('--recipe <FILE>', 'modelling choices as JSON (the built-in recipe)')
+    .option('--set <KEY=VALUE>', 'one modelling choice; may be repeated', gather)
+    .option('--wind <PERIOD>', 'averaging period of the sustained wind (1min)');
 }
 
 export async function runProgram(argv: readonly string[]): Promise<void> {
@@ -52,15 +52,15 @@ export async function runProgram(argv: readonly string[]): Promise<void> {
     models(
       common(
         program
-          .command('tracks FILE')
+          .command('tracks <FILE>')
           .description('What is in a track file; with --storm the completed track and where every value came from.'),
       ),
     ),
   )
     .addOption(
-      new Option('--to FORMAT', 'convert, to standard output or --out').choices(['csv', 'geojson', 'svg', 'png']),
+      new Option('--to <FORMAT>', 'convert, to standard output or --out').choices(['csv', 'geojson', 'svg', 'png']),
     )
-    .option('--out FILE', 'where the conversion goes')
+    .option('--out <FILE>', 'where the conversion goes')
     .option('--force', 'replace an existing file')
     .action(async (file, options) => (await import('./tracks.js')).tracks(file, options));
 
@@ -71,25 +71,25 @@ export async function runProgram(argv: readonly string[]): Promise<void> {
         .description('Radial table of one vortex: winds, pressure, Rossby number, force budget, angular momentum.'),
     ),
   )
-    .option('--vmax SPEED', 'maximum sustained 10-m wind (kt)')
-    .option('--rmax LENGTH', 'radius of maximum wind (km)')
-    .option('--b NUMBER', 'Holland B (gradient-consistent)')
-    .option('--pressure-deficit PRESSURE', 'ambient less central pressure (hPa)')
-    .option('--lat DEGREES', 'latitude, south negative (20)')
-    .option('--profile NAME', 'profile (the recipe’s)')
-    .option('--compare LIST', 'several profiles side by side')
-    .option('--motion SPEED', 'translation speed (0 m/s)')
-    .option('--heading DEGREES', 'direction of motion, clockwise from north (0)')
-    .option('--radii LIST', 'radii of the table (km)')
-    .option('--cyclostrophic-above NUMBER', 'Rossby number above which the balance is called cyclostrophic (10)')
-    .option('--geostrophic-below NUMBER', 'Rossby number below which it is called geostrophic (0.1)')
-    .option('--track FILE', 'take the state of a track instead')
-    .option('--storm ID', 'a storm of the track file')
-    .option('--at TIME', 'time on the track, such as 2031-09-03T12:00Z')
+    .option('--vmax <SPEED>', 'maximum sustained 10-m wind (kt)')
+    .option('--rmax <LENGTH>', 'radius of maximum wind (km)')
+    .option('--b <NUMBER>', 'Holland B (gradient-consistent)')
+    .option('--pressure-deficit <PRESSURE>', 'ambient less central pressure (hPa)')
+    .option('--lat <DEGREES>', 'latitude, south negative (20)')
+    .option('--profile <NAME>', 'profile (the recipe’s)')
+    .option('--compare <LIST>', 'several profiles side by side')
+    .option('--motion <SPEED>', 'translation speed (0 m/s)')
+    .option('--heading <DEGREES>', 'direction of motion, clockwise from north (0)')
+    .option('--radii <LIST>', 'radii of the table (km)')
+    .option('--cyclostrophic-above <NUMBER>', 'Rossby number above which the balance is called cyclostrophic (10)')
+    .option('--geostrophic-below <NUMBER>', 'Rossby number below which it is called geostrophic (0.1)')
+    .option('--track <FILE>', 'take the state of a track instead')
+    .option('--storm <ID>', 'a storm of the track file')
+    .option('--at <TIME>', 'time on the track, such as 2031-09-03T12:00Z')
     .addOption(
-      new Option('--to FORMAT', 'draw or tabulate, to standard output or --out').choices(['csv', 'svg', 'png']),
+      new Option('--to <FORMAT>', 'draw or tabulate, to standard output or --out').choices(['csv', 'svg', 'png']),
     )
-    .option('--out FILE', 'where the drawing or table goes')
+    .option('--out <FILE>', 'where the drawing or table goes')
     .option('--force', 'replace an existing file')
     .action(async (options) => (await import('./profile.js')).profile(options));
 
@@ -97,56 +97,56 @@ export async function runProgram(argv: readonly string[]): Promise<void> {
     models(
       common(
         program
-          .command('swath FILE')
+          .command('swath <FILE>')
           .description('Peak wind and gust over the life of a storm, isotachs, rasters and pictures.'),
       ),
     ),
   )
-    .option('--from TIME', 'first time of the track to take')
-    .option('--to TIME', 'last time of the track to take')
-    .option('--levels LIST', 'isotachs', '34kt,50kt,64kt,83kt,96kt,113kt,137kt')
+    .option('--from <TIME>', 'first time of the track to take')
+    .option('--to <TIME>', 'last time of the track to take')
+    .option('--levels <LIST>', 'isotachs', '34kt,50kt,64kt,83kt,96kt,113kt,137kt')
     .addOption(
-      new Option('--of QUANTITY', 'what the isotachs are drawn from').choices(['wind', 'gust']).default('wind'),
+      new Option('--of <QUANTITY>', 'what the isotachs are drawn from').choices(['wind', 'gust']).default('wind'),
     )
     .option('--bands', 'disjoint bands instead of at-or-above areas')
-    .option('--crs CRS', 'coordinate reference system of the grid', 'EPSG:4326')
-    .option('--bounds W,S,E,N', 'edges of the grid in its own units (fitted to the lowest level)')
-    .option('--cell SIZE', 'cell size (0.02deg, or 2km in a projected CRS)')
-    .option('--out DIR', 'folder of the results (./<storm>)')
-    .option('--formats LIST', 'geojson, cog, csv, netcdf, kml, flatgeobuf, svg, png, html', 'geojson,cog')
+    .option('--crs <CRS>', 'coordinate reference system of the grid', 'EPSG:4326')
+    .option('--bounds <W,S,E,N>', 'edges of the grid in its own units (fitted to the lowest level)')
+    .option('--cell <SIZE>', 'cell size (0.02deg, or 2km in a projected CRS)')
+    .option('--out <DIR>', 'folder of the results (./<storm>)')
+    .option('--formats <LIST>', 'geojson, cog, csv, netcdf, kml, flatgeobuf, svg, png, html', 'geojson,cog')
     .option('--force', 'replace existing files')
-    .option('--jobs N', 'workers (all cores)')
+    .option('--jobs <N>', 'workers (all cores)')
     .action(async (file, options) => (await import('./swath.js')).swath(file, options));
 
   readsTracks(
     models(
       common(
         program
-          .command('sites FILE PLACES')
+          .command('sites <FILE> <PLACES>')
           .description('The model’s wind at places: peaks, hours, closest approach, series.'),
       ),
     ),
   )
-    .option('--levels LIST', 'winds whose hours are counted', '34kt,50kt,64kt')
-    .option('--every PERIOD', 'also the series, at this interval (min)')
-    .option('--from TIME', 'first time of the track to take')
-    .option('--to TIME', 'last time of the track to take')
+    .option('--levels <LIST>', 'winds whose hours are counted', '34kt,50kt,64kt')
+    .option('--every <PERIOD>', 'also the series, at this interval (min)')
+    .option('--from <TIME>', 'first time of the track to take')
+    .option('--to <TIME>', 'last time of the track to take')
     .option('--strict', 'refuse rows that would otherwise be skipped')
     .addOption(
-      new Option('--as FORMAT', 'table or drawing, to standard output or --out').choices([
+      new Option('--as <FORMAT>', 'table or drawing, to standard output or --out').choices([
         'csv',
         'geojson',
         'svg',
         'png',
       ]),
     )
-    .option('--out FILE', 'where the table or drawing goes')
+    .option('--out <FILE>', 'where the table or drawing goes')
     .option('--force', 'replace an existing file')
     .action(async (file, places, options) => (await import('./sites.js')).sites(file, places, options));
 
   common(program.command('recipe').description('The recipe in force with its sources; check one.'))
-    .option('--recipe FILE', 'read and check this recipe')
-    .option('--set KEY=VALUE', 'one modelling choice; may be repeated', gather)
+    .option('--recipe <FILE>', 'read and check this recipe')
+    .option('--set <KEY=VALUE>', 'one modelling choice; may be repeated', gather)
     .option('--schema', 'print the JSON Schema of a recipe')
     .action(async (options) => (await import('./recipe.js')).recipe(options));
 

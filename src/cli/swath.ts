@@ -92,7 +92,9 @@ export async function swath(file: string, options: SwathCommandOptions): Promise
       cautions,
       levels,
       classOf: (thresholdMps) =>
-        options.of === 'wind' && model.averagingS === 60 ? windClass(thresholdMps, { scale: 'saffir-simpson' }) : null,
+        options.of === 'wind' && model.averagingS === 60
+          ? windClass(thresholdMps, { scale: 'saffir-simpson' }).name
+          : null,
       period,
       provenance: {
         storm: track.id,

@@ -3,7 +3,7 @@ import { type IsotachContext, type IsotachShape, isotachAttributes } from './iso
 import { CAUTION, type Provenance } from './provenance.js';
 
 /** Version of the layout of the collection. */
-export const ISOTACHS_SCHEMA = 'galewake.isotachs/1';
+export const ISOTACHS_SCHEMA = 'galewake-isotachs/1';
 
 /**
  * Isotachs as a GeoJSON feature collection [RFC7946]: one MultiPolygon for each level that is reached, by rising

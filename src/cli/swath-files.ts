@@ -1,0 +1,118 @@
+import { poolDeflate } from '../io/deflate.js';
+import { OutputFolder } from '../io/output.js';
+import { safeName } from '../io/safe-name.js';
+import type { PolygonCoordinates } from '../isotach/area.js';
+import type { WindModel } from '../model/wind.js';
+import type { Swath } from '../swath/swath.js';
+import { isotachsFlatGeobuf } from '../write/flatgeobuf.js';
+import { peakTif } from '../write/geotiff.js';
+import { isotachsGeojson } from '../write/isotachs-geojson.js';
+import { swathKml } from '../write/kml.js';
+import { peakNetcdf } from '../write/netcdf.js';
+import { peakCsv } from '../write/peak-csv.js';
+import type { Provenance } from '../write/provenance.js';
+import { tracksToGeojson } from '../write/track-geojson.js';
+
+/** What `--formats` may name. */
+export const FORMATS = ['geojson', 'cog', 'csv', 'netcdf', 'kml', 'flatgeobuf', 'svg', 'png', 'html'] as const;
+export type Format = (typeof FORMATS)[number];
+
+/** Everything that the files of one run are made from. */
+export interface SwathResult {
+  readonly model: WindModel;
+  readonly swath: Swath;
+  readonly isotachs: readonly {
+    thresholdMps: number;
+    upperMps: number | null;
+    polygons: readonly PolygonCoordinates[];
+    areaM2: number;
+  }[];
+  readonly quantity: 'wind' | 'gust';
+  readonly bands: boolean;
+  readonly levels: readonly number[];
+  readonly classOf: (thresholdMps: number) => string | null;
+  readonly cautions: readonly string[];
+  readonly period: { readonly fromMs: number; readonly toMs: number };
+  readonly provenance: Provenance;
+}
+
+/** Writes the files of a run, all or none, and the summary that names them. */
+export async function writeSwath(
+  result: SwathResult,
+  options: {
+    /** null: a folder named after the storm */
+    folder: string | null;
+    formats: readonly Format[];
+    force: boolean;
+    signal: AbortSignal;
+    summaryOf: (files: readonly string[]) => Record<string, unknown>;
+  },
+): Promise<{ folder: string; files: readonly string[]; summary: Record<string, unknown> }> {
+  const path = options.folder ?? safeName(result.provenance.storm);
+  const files = filesOf(options.formats);
+  const folder = await OutputFolder.open(path, {
+    force: options.force,
+    signal: options.signal,
+    derived: options.folder === null,
+  });
+  try {
+    await folder.check([...files, 'summary.json']);
+    for (const name of files) await folder.write(name, await contentOf(name, result));
+    const summary = options.summaryOf([...files, 'summary.json']);
+    await folder.write('summary.json', [`${JSON.stringify(summary, null, 2)}\n`]);
+    await folder.commit();
+    return { folder: path, files: [...files, 'summary.json'], summary };
+  } finally {
+    await folder.discard();
+  }
+}
+
+const FILES: Readonly<Record<Format, readonly string[]>> = {
+  geojson: ['isotachs.geojson', 'track.geojson'],
+  cog: ['peak.tif'],
+  csv: ['peak.csv'],
+  netcdf: ['peak.nc'],
+  kml: ['swath.kml'],
+  flatgeobuf: ['isotachs.fgb'],
+  svg: ['map.svg'],
+  png: ['map.png'],
+  html: ['map.html'],
+};
+
+/** Names of the files of some formats, in the order of the list of formats. */
+export function filesOf(formats: readonly Format[]): string[] {
+  return FORMATS.filter((format) => formats.includes(format)).flatMap((format) => FILES[format]);
+}
+
+/** The bytes or text of one file. Pictures are loaded only when asked for. */
+async function contentOf(name: string, result: SwathResult): Promise<Iterable<Uint8Array | string>> {
+  const { swath, isotachs, model, provenance } = result;
+  const context = {
+    quantity: result.quantity,
+    averagingS: result.quantity === 'gust' ? swath.gustDurationS : swath.averagingS,
+    classOf: result.classOf,
+  };
+  switch (name) {
+    case 'isotachs.geojson':
+      return [isotachsGeojson({ isotachs, context, provenance })];
+    case 'track.geojson':
+      return [tracksToGeojson([model.completed.track])];
+    case 'peak.tif':
+      return peakTif(swath, { provenance, deflate: poolDeflate });
+    case 'peak.csv':
+      return peakCsv(swath);
+    case 'peak.nc':
+      return [await peakNetcdf(swath, { provenance })];
+    case 'swath.kml': {
+      const { levelColour } = await import('../picture/colours.js');
+      const colourOf = (thresholdMps: number): string => levelColour(result.levels, thresholdMps);
+      return [swathKml({ isotachs, context, track: model.completed.track, provenance, colourOf })];
+    }
+    case 'isotachs.fgb':
+      return [isotachsFlatGeobuf({ isotachs, context, provenance })];
+    default: {
+      const { mapFile } = await import('./map-files.js');
+      return [await mapFile(name, result)];
+    }
+  }
+}

@@ -3,7 +3,7 @@ import { cellCentre, type Grid, projection } from '../swath/grid.js';
 import type { Swath } from '../swath/swath.js';
 import { describeCrs } from './crs.js';
 import { gridMapping } from './crs-cf.js';
-import { type NetcdfAttribute, type NetcdfVariable, netcdfBytes } from './netcdf-file.js';
+import { type NetcdfAttribute, type NetcdfFile, type NetcdfVariable, netcdfBytes } from './netcdf-file.js';
 import { type PeakBand, peakBands } from './peak-bands.js';
 import { CAUTION, type Provenance } from './provenance.js';
 
@@ -13,11 +13,16 @@ export const MOST_NETCDF_CELLS = 60_000_000;
 const FILL = new Float32Array([Number.NaN]);
 
 /**
- * `peak.nc`: netCDF-4 by the CF conventions, version 1.11 [EatonEtAl2023]. Fields as in `peak.tif`, row 0 = north; the time of the
- * peak as CF time; one step of time with the bounds of the period that was modelled.
+ * `peak.nc`: netCDF-4 by the CF conventions, version 1.11 [EatonEtAl2023]. Fields as in `peak.tif`, row 0 = north; the
+ * time of the peak as CF time; one step of time with the bounds of the period that was modelled.
  * @throws UsageError `write.crs` for a reference system without CF grid mapping; LimitError `write.netcdf-cells`
  */
-export async function peakNetcdf(swath: Swath, options: { provenance: Provenance }): Promise<Uint8Array> {
+export function peakNetcdf(swath: Swath, options: { provenance: Provenance }): Promise<Uint8Array> {
+  return netcdfBytes(peakNetcdfFile(swath, options));
+}
+
+/** What {@link peakNetcdf} writes: dimensions, variables and attributes. */
+export function peakNetcdfFile(swath: Swath, options: { provenance: Provenance }): NetcdfFile {
   const { grid } = swath;
   const cells = grid.nx * grid.ny;
   if (cells > MOST_NETCDF_CELLS) {
@@ -32,7 +37,7 @@ export async function peakNetcdf(swath: Swath, options: { provenance: Provenance
   const horizontal = horizontalCoordinates(grid);
   const [rows, columns] = grid.geographic ? ['lat', 'lon'] : ['y', 'x'];
   const since = `seconds since ${cfTime(swath.originMs)}`;
-  return netcdfBytes({
+  return {
     dimensions: { time: 1, [rows!]: grid.ny, [columns!]: grid.nx, bnds: 2 },
     variables: [
       ...horizontal,
@@ -53,7 +58,7 @@ export async function peakNetcdf(swath: Swath, options: { provenance: Provenance
       ),
     ],
     attributes: globalAttributes(swath, options.provenance),
-  });
+  };
 }
 
 /** `2024-01-05 06:00:00`, in UTC as CF takes it without a zone. */

@@ -3,6 +3,8 @@
  * comments and in `source` fields. A DOI is given where it is known for certain.
  */
 export const BIBLIOGRAPHY: Readonly<Record<string, string>> = {
+  ASCE2005:
+    'American Society of Civil Engineers, 2005: Minimum Design Loads for Buildings and Other Structures. ASCE/SEI 7-05',
   AbramowitzStegun1964:
     'Abramowitz, M., and I. A. Stegun, eds., 1964: Handbook of Mathematical Functions. National Bureau of Standards, Applied Mathematics Series 55',
   Adobe1992: 'Adobe Developers Association, 1992: TIFF, revision 6.0. Adobe Systems',
@@ -14,6 +16,7 @@ export const BIBLIOGRAPHY: Readonly<Record<string, string>> = {
     'Bureau of Meteorology, 2023: Tropical cyclone categories. Knowledge Centre, Commonwealth of Australia, bom.gov.au',
   CourtneyKnaff2009:
     'Courtney, J., and J. A. Knaff, 2009: Adapting the Knaff and Zehr wind–pressure relationship for operational use in Tropical Cyclone Warning Centres. Australian Meteorological and Oceanographic Journal 58, 167–179',
+  Durst1960: 'Durst, C. S., 1960: Wind speeds over short periods of time. Meteorological Magazine 89, 181–186',
   EatonEtAl2023: 'Eaton, B., and coauthors, 2023: NetCDF Climate and Forecast (CF) metadata conventions, version 1.11',
   Emanuel2011:
     'Emanuel, K., 2011: Global warming effects on U.S. hurricane damage. Weather, Climate, and Society 3, 261–268. doi:10.1175/WCAS-D-11-00007.1',
@@ -42,10 +45,16 @@ export const BIBLIOGRAPHY: Readonly<Record<string, string>> = {
   KML22: 'Open Geospatial Consortium, 2008: OGC KML, version 2.2.0. OGC 07-147r2',
   KamelFaloutsos1993:
     'Kamel, I., and C. Faloutsos, 1993: On packing R-trees. Proceedings of the second international conference on Information and knowledge management, 490–499. doi:10.1145/170088.170403',
+  KaplanDeMaria1995:
+    'Kaplan, J., and M. DeMaria, 1995: A simple empirical model for predicting the decay of tropical cyclone winds after landfall. Journal of Applied Meteorology 34, 2499–2512. doi:10.1175/1520-0450(1995)034<2499:ASEMFP>2.0.CO;2',
+  KaplanDeMaria2001:
+    'Kaplan, J., and M. DeMaria, 2001: On the decay of tropical cyclone winds after landfall in the New England area. Journal of Applied Meteorology 40, 280–286',
   KnaffZehr2007:
     'Knaff, J. A., and R. M. Zehr, 2007: Reexamination of tropical cyclone wind–pressure relationships. Weather and Forecasting 22, 71–88. doi:10.1175/WAF965.1',
   KnappEtAl2010:
     'Knapp, K. R., M. C. Kruk, D. H. Levinson, H. J. Diamond, and C. J. Neumann, 2010: The International Best Track Archive for Climate Stewardship (IBTrACS): unifying tropical cyclone data. Bulletin of the American Meteorological Society 91, 363–376. doi:10.1175/2009BAMS2755.1',
+  KrayerMarshall1992:
+    'Krayer, W. R., and R. D. Marshall, 1992: Gust factors applied to hurricane winds. Bulletin of the American Meteorological Society 73, 613–617',
   LandseaFranklin2013:
     'Landsea, C. W., and J. L. Franklin, 2013: Atlantic hurricane database uncertainty and presentation of a new database format. Monthly Weather Review 141, 3576–3592. doi:10.1175/MWR-D-12-00254.1',
   LinChavas2012:
@@ -54,6 +63,8 @@ export const BIBLIOGRAPHY: Readonly<Record<string, string>> = {
     'Miyazaki, M., T. Ueno, and S. Unoki, 1961: Theoretical investigations of typhoon surges along the Japanese coast. Oceanographical Magazine 13, 51–75',
   Moritz2000:
     'Moritz, H., 2000: Geodetic Reference System 1980. Journal of Geodesy 74, 128–133. doi:10.1007/s001900050278',
+  NaturalEarth2018:
+    'Natural Earth, 2018: version 4.1, land polygons at 1:10 million and 1:50 million, public domain, naturalearthdata.com',
   OgcCog2023: 'Open Geospatial Consortium, 2023: Cloud Optimized GeoTIFF standard, version 1.0. OGC 21-026',
   OgcGeotiff2019: 'Open Geospatial Consortium, 2019: GeoTIFF standard, version 1.1. OGC 19-008r4',
   OgcKml2008: 'Open Geospatial Consortium, 2008: KML, version 2.2. OGC 07-147r2',
@@ -74,13 +85,20 @@ export const BIBLIOGRAPHY: Readonly<Record<string, string>> = {
     'Schott, T., C. Landsea, G. Hafele, J. Lorens, A. Taylor, H. Thurm, B. Ward, M. Willis, and W. Zaleski, 2012: The Saffir–Simpson hurricane wind scale. National Weather Service',
   SchwerdtHoWatkins1979:
     'Schwerdt, R. W., F. P. Ho, and R. R. Watkins, 1979: Meteorological criteria for standard project hurricane and probable maximum hurricane windfields, Gulf and East Coasts of the United States. NOAA Technical Report NWS 23',
+  SimiuScanlan1996: 'Simiu, E., and R. H. Scanlan, 1996: Wind Effects on Structures, 3rd ed. Wiley',
   Sobey1977:
     'Sobey, R. J., B. A. Harper, and K. P. Stark, 1977: Numerical simulation of tropical cyclone storm surge. James Cook University, Department of Civil and Systems Engineering, Research Bulletin CS14',
+  Stull2000: 'Stull, R. B., 2000: Meteorology for Scientists and Engineers, 2nd ed. Brooks/Cole',
+  USACE2002: 'U.S. Army Corps of Engineers, 2002: Coastal Engineering Manual, part II, chapter 2. EM 1110-2-1100',
   VanOosteromStrackee1983:
     'Van Oosterom, A., and J. Strackee, 1983: The solid angle of a plane triangle. IEEE Transactions on Biomedical Engineering BME-30, 125–126. doi:10.1109/TBME.1983.325207',
   WGS84:
     'National Imagery and Mapping Agency, 2000: Department of Defense World Geodetic System 1984, its definition and relationships with local geodetic systems, 3rd ed. TR8350.2',
   WMO2018: 'World Meteorological Organization, 2018: Guide to instruments and methods of observation. WMO-No. 8',
+  Wieringa1976:
+    'Wieringa, J., 1976: An objective exposure correction method for average wind speeds measured at a sheltered location. Quarterly Journal of the Royal Meteorological Society 102, 241–253',
+  Wieringa1992:
+    'Wieringa, J., 1992: Updating the Davenport roughness classification. Journal of Wind Engineering and Industrial Aerodynamics 41, 357–368',
   Willoughby2006:
     'Willoughby, H. E., R. W. R. Darling, and M. E. Rahn, 2006: Parametric representation of the primary hurricane vortex. Part II: A new family of sectionally continuous profiles. Monthly Weather Review 134, 1102–1120. doi:10.1175/MWR3106.1',
 };

@@ -30,7 +30,7 @@ export function coastScaleFor(cellM: number): CoastScale {
 type Topology = Parameters<typeof feature>[0];
 
 /**
- * Land of a Natural Earth topology (`land-10m.json` or `land-50m.json` of the package world-atlas)   [NaturalEarth].
+ * Land of a Natural Earth topology (`land-10m.json` or `land-50m.json` of the package world-atlas)   [NaturalEarth2018].
  * Lakes other than the Caspian Sea count as land.
  * @throws InputError `land.topology` when the document holds no land
  */

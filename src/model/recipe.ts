@@ -1,8 +1,11 @@
 import { InputError, UsageError } from '../errors.js';
 import { nearest } from '../nearest.js';
+import { GUST_METHODS } from '../surface/gust-method.js';
 import { INFLOWS } from '../surface/inflow.js';
+import { DECAY_SETS } from '../surface/inland-decay.js';
 import { MOTION_WEIGHTS } from '../surface/motion.js';
 import { REDUCTIONS } from '../surface/reduction.js';
+import { BLENDING_HEIGHT_M } from '../surface/roughness.js';
 import { PRESSURE_WIND_RELATIONS } from '../track/relations/pressure-wind.js';
 import { RADIUS_RELATIONS } from '../track/relations/radius-of-max-wind.js';
 import { PROFILES } from '../vortex/profiles.js';
@@ -38,6 +41,13 @@ export const RECIPE_ENTRIES: readonly RecipeEntry[] = [
     standard: 3,
     range: [3, 600],
     help: 'averaging period of the gust, s: 3, 60, 120, 180 or 600, below the sustained wind’s',
+    source: 'HarperKepertGinger2010',
+  },
+  {
+    key: 'gust.method',
+    standard: 'wmo-2010',
+    words: ids(GUST_METHODS),
+    help: 'gust over the mean wind: table by exposure, from the roughness, or hurricanes over land',
     source: 'HarperKepertGinger2010',
   },
   {
@@ -169,6 +179,55 @@ export const RECIPE_ENTRIES: readonly RecipeEntry[] = [
     words: ['kept', 'added'],
     help: 'kept: the field’s maximum is the fix’s wind; added: the motion comes on top of it',
     source: 'own choice',
+  },
+  {
+    key: 'land.surface',
+    standard: 'off',
+    words: ['on', 'off'],
+    help: 'on: roughness and exposure of the land act on wind and gust; off: open sea everywhere',
+    source: 'common practice',
+  },
+  {
+    key: 'land.z0_m',
+    standard: 0.1,
+    range: [0.001, 5],
+    help: 'roughness length of land where no raster says it, m: 0.1 is roughly open country',
+    source: 'Wieringa1992',
+  },
+  {
+    key: 'land.blending_m',
+    standard: BLENDING_HEIGHT_M,
+    range: [20, 200],
+    help: 'height at which sea and land share one wind, m',
+    source: 'Wieringa1976',
+  },
+  {
+    key: 'land.coast_km',
+    standard: 5,
+    range: [0, 20],
+    help: 'how deep inland a place still counts as coast, km',
+    source: 'own choice',
+  },
+  {
+    key: 'land.fetch_km',
+    standard: 0,
+    range: [0, 10],
+    help: 'length of the way upwind over which the roughness is averaged, km; 0: the cell’s own',
+    source: 'own choice',
+  },
+  {
+    key: 'land.decay',
+    standard: 'auto',
+    words: ['auto', 'on', 'off'],
+    help: 'decay of the storm over land; auto: for drawn, synthetic and forecast tracks, never for best tracks',
+    source: 'KaplanDeMaria1995',
+  },
+  {
+    key: 'land.decay_set',
+    standard: 'kaplan-demaria-1995',
+    words: ids(DECAY_SETS),
+    help: 'coefficients of the decay: coasts south of 37° N, or New England',
+    source: 'KaplanDeMaria1995',
   },
 ];
 

@@ -1,6 +1,9 @@
 import { EARTH_RADIUS_M, RADIANS, wrapBearing } from '../earth.js';
+import { type SurfaceMap, sectorValue } from '../land/surface-map.js';
 import type { WindModel } from '../model/wind.js';
-import { type Exposure, gustFactor } from '../surface/averaging.js';
+import type { Exposure } from '../surface/averaging.js';
+import { gustMethod } from '../surface/gust-method.js';
+import { SEA_Z0_M } from '../surface/roughness.js';
 import { knots } from '../units.js';
 import { cellCentre, type Grid, projection } from './grid.js';
 import type { Swath } from './swath.js';
@@ -12,6 +15,8 @@ export interface SwathOptions {
   /** part of the track; the whole by default */
   readonly fromMs?: number;
   readonly toMs?: number;
+  /** what the surface makes of the wind over open sea; open sea everywhere by default */
+  readonly surface?: SurfaceMap;
 }
 
 /** Steps of at most `stepS` from start to end, both included. */
@@ -23,6 +28,8 @@ export function stepTimes(startMs: number, endMs: number, stepS: number): number
 /**
  * The swath by the plain model: every cell at every step, in double precision, no table, nothing skipped. Slow on
  * purpose; the judge of the fast one. Hours above a level take the wind as linear in time between steps.
+ * With a surface the wind and the gust of a moment are those over open sea times the ratios of the cell for the direction
+ * of that moment; the peak gust is the highest gust over time, which need not fall together with the peak wind.
  */
 export function exactSwath(model: WindModel, grid: Grid, options: SwathOptions & { stepS?: number } = {}): Swath {
   const originMs = model.path.startMs;
@@ -30,6 +37,9 @@ export function exactSwath(model: WindModel, grid: Grid, options: SwathOptions &
   const n = grid.nx * grid.ny;
   const places = cellPlaces(grid);
   const peak = new Float64Array(n);
+  const peakGust = new Float64Array(n);
+  const { surface } = options;
+  const gustAtSea = gustFactorOf(model, 'at-sea');
   const peakTime = new Float64Array(n).fill(Number.NaN);
   const from = new Float64Array(n).fill(Number.NaN);
   const before = new Float64Array(n);
@@ -48,6 +58,14 @@ export function exactSwath(model: WindModel, grid: Grid, options: SwathOptions &
         direction[1] = seen.north;
         field.onCircle(wind, seen.radiusM, direction);
         speed = Math.hypot(wind[0]!, wind[1]!);
+        let gust = speed * gustAtSea;
+        const row = surface?.rowOf[k] ?? 0;
+        if (surface && row > 0) {
+          const [east, north] = turned(wind, seen.turnDeg());
+          gust = speed * sectorValue(surface.gustRatio, row, east, north);
+          speed *= sectorValue(surface.windRatio, row, east, north);
+        }
+        if (gust > peakGust[k]!) peakGust[k] = gust;
         if (speed > peak[k]!) {
           peak[k] = speed;
           peakTime[k] = (times[step]! - originMs) / 1000;
@@ -59,24 +77,31 @@ export function exactSwath(model: WindModel, grid: Grid, options: SwathOptions &
       before[k] = speed;
     }
   }
-  const gust = gustFactorOf(model, 'at-sea');
   return {
     grid,
     windMps: Float32Array.from(peak),
-    gustMps: Float32Array.from(peak, (wind) => wind * gust),
+    gustMps: Float32Array.from(peakGust),
     windFromDeg: Float32Array.from(from),
     peakTimeS: Float32Array.from(peakTime),
     hoursAbove: HOURS_THRESHOLDS_MPS.map((thresholdMps, i) => ({ thresholdMps, hours: Float32Array.from(hours[i]!) })),
     originMs,
     averagingS: model.averagingS,
     gustDurationS: model.recipe['gust.duration_s'] as number,
-    cautions: model.cautions,
+    cautions: [...model.cautions, ...(surface?.cautions ?? [])],
   };
 }
 
-/** The gust factor of a model's recipe for one exposure. */
-export function gustFactorOf(model: WindModel, exposure: Exposure): number {
-  return gustFactor(exposure, { durationS: model.recipe['gust.duration_s'] as number, periodS: model.averagingS });
+/** The gust factor of a model's recipe for one exposure; `z0M` is the roughness length upwind, by default the sea's. */
+export function gustFactorOf(model: WindModel, exposure: Exposure, z0M = SEA_Z0_M): number {
+  const { recipe, averagingS: periodS } = model;
+  const durationS = recipe['gust.duration_s'] as number;
+  return gustMethod(recipe['gust.method']).factor({ exposure, z0M, durationS, periodS });
+}
+
+/** A vector [east, north] turned clockwise, as bearings grow. */
+function turned(vector: Float64Array, degrees: number): readonly [number, number] {
+  const [c, s] = [Math.cos(degrees * RADIANS), Math.sin(degrees * RADIANS)];
+  return [c * vector[0]! + s * vector[1]!, c * vector[1]! - s * vector[0]!];
 }
 
 /** Share of a step during which a wind that runs from `a` to `b` in a straight line is at or above `threshold`. */

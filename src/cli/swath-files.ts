@@ -36,35 +36,44 @@ export interface SwathResult {
   readonly provenance: Provenance;
 }
 
+/**
+ * The folder of a run, opened before any work is done: what could not be written at the end is refused now.
+ * @param path null: a folder named after the storm
+ */
+export async function openFolder(
+  path: string | null,
+  options: { storm: string; formats: readonly Format[]; force: boolean; signal: AbortSignal },
+): Promise<OutputFolder> {
+  const folder = await OutputFolder.open(path ?? safeName(options.storm), {
+    force: options.force,
+    signal: options.signal,
+    derived: path === null,
+  });
+  try {
+    await folder.check([...filesOf(options.formats), 'summary.json']);
+  } catch (error) {
+    await folder.discard();
+    throw error;
+  }
+  return folder;
+}
+
 /** Writes the files of a run, all or none, and the summary that names them. */
 export async function writeSwath(
   result: SwathResult,
   options: {
-    /** null: a folder named after the storm */
-    folder: string | null;
+    folder: OutputFolder;
     formats: readonly Format[];
-    force: boolean;
-    signal: AbortSignal;
     summaryOf: (files: readonly string[]) => Record<string, unknown>;
   },
-): Promise<{ folder: string; files: readonly string[]; summary: Record<string, unknown> }> {
-  const path = options.folder ?? safeName(result.provenance.storm);
+): Promise<{ files: readonly string[]; summary: Record<string, unknown> }> {
+  const { folder } = options;
   const files = filesOf(options.formats);
-  const folder = await OutputFolder.open(path, {
-    force: options.force,
-    signal: options.signal,
-    derived: options.folder === null,
-  });
-  try {
-    await folder.check([...files, 'summary.json']);
-    for (const name of files) await folder.write(name, await contentOf(name, result));
-    const summary = options.summaryOf([...files, 'summary.json']);
-    await folder.write('summary.json', [`${JSON.stringify(summary, null, 2)}\n`]);
-    await folder.commit();
-    return { folder: path, files: [...files, 'summary.json'], summary };
-  } finally {
-    await folder.discard();
-  }
+  for (const name of files) await folder.write(name, await contentOf(name, result));
+  const summary = options.summaryOf([...files, 'summary.json']);
+  await folder.write('summary.json', [`${JSON.stringify(summary, null, 2)}\n`]);
+  await folder.commit();
+  return { files: [...files, 'summary.json'], summary };
 }
 
 const FILES: Readonly<Record<Format, readonly string[]>> = {

@@ -24,7 +24,7 @@ import {
 } from './choices.js';
 import { type Console, makeConsole, table } from './console.js';
 import { readStorm } from './storm.js';
-import { FORMATS, type SwathResult, writeSwath } from './swath-files.js';
+import { FORMATS, openFolder, type SwathResult, writeSwath } from './swath-files.js';
 
 export interface SwathCommandOptions extends CommonOptions, ModelOptions, TrackOptions {
   readonly from?: string;
@@ -62,6 +62,12 @@ export async function swath(file: string, options: SwathCommandOptions): Promise
   const interrupted = new AbortController();
   const stop = (): void => interrupted.abort();
   process.once('SIGINT', stop);
+  const folder = await openFolder(options.out ?? null, {
+    storm: track.id,
+    formats,
+    force: options.force === true,
+    signal: interrupted.signal,
+  });
   try {
     out.progress('wind …');
     const field = await peakSwath(model, grid, {
@@ -123,17 +129,12 @@ export async function swath(file: string, options: SwathCommandOptions): Promise
         },
       });
     };
-    const written = await writeSwath(result, {
-      folder: options.out ?? null,
-      formats,
-      force: options.force === true,
-      summaryOf,
-      signal: interrupted.signal,
-    });
+    const written = await writeSwath(result, { folder, formats, summaryOf });
     out.progress('');
     if (options.json) out.print(`${JSON.stringify(written.summary, null, 2)}\n`);
-    else report(out, result, grid, written);
+    else report(out, result, grid, { folder: folder.path, files: written.files });
   } finally {
+    await folder.discard();
     process.removeListener('SIGINT', stop);
   }
 }

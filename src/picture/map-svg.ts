@@ -1,5 +1,6 @@
 import { type GeoPermissibleObjects, geoPath } from 'd3-geo';
 import { HOUR_MS } from '../units.js';
+import { CAUTION } from '../write/provenance.js';
 import { levelColours, PAPER } from './colours.js';
 import { type LonLat, type MapFrame, mapFrame, PROJECTION_NAMES } from './extent.js';
 import { graticule } from './graticule.js';
@@ -9,15 +10,7 @@ import { legend } from './legend.js';
 import { scaleBar } from './scale-bar.js';
 import { coordinate, element, svgDocument, textAt } from './svg.js';
 import { cutText, textWidth, wrapText } from './text.js';
-import {
-  averagingText,
-  CAUTION,
-  latitudeLongitudeText,
-  levelTexts,
-  momentText,
-  periodText,
-  windText,
-} from './words.js';
+import { averagingText, latitudeLongitudeText, levelTexts, momentText, periodText, windText } from './words.js';
 
 /** One moment of the track. */
 export interface MapFix {
@@ -39,6 +32,18 @@ export interface MapPeak {
 /** Polygons of land as a sphere wants them: as `topojson-client` gives the land of world-atlas. */
 export type Coast = GeoPermissibleObjects;
 
+/** An area of the user's own, as RFC 7946 has it [RFC7946]. */
+export interface MapZone {
+  readonly name: string;
+  readonly polygons: PictureIsotach['polygons'];
+}
+
+export interface MapPlace {
+  readonly name: string;
+  readonly lonDeg: number;
+  readonly latDeg: number;
+}
+
 export interface MapInput {
   /** the storm's name and identifier as the file has them */
   readonly storm: { readonly id: string; readonly name: string | null };
@@ -54,6 +59,9 @@ export interface MapInput {
   readonly recipe: string;
   readonly version: string;
   readonly coast: Coast | null;
+  /** the user's own places and zones, in this order of drawing: zones, places */
+  readonly zones?: readonly MapZone[];
+  readonly places?: readonly MapPlace[];
   /** the centre at any time, for marks between fixes; the fixes alone without it */
   readonly centreAt?: (timeMs: number) => { readonly lonDeg: number; readonly latDeg: number };
 }
@@ -97,6 +105,7 @@ export function mapPicture(input: MapInput): MapPicture {
   const shown = input.isotachs.some((isotach) => isotach.polygons.length > 0);
 
   const ground = groundOf(frame, input.coast);
+  const own = ownOf(input, frame);
   const grid = graticule(frame, { size: LABEL });
   const areas = input.isotachs.map((isotach, i) => ({
     ...isotachPath(isotach, frame.projection),
@@ -172,6 +181,7 @@ export function mapPicture(input: MapInput): MapPicture {
       'g',
       { 'clip-path': 'url(#frame)' },
       ground.land +
+        own.grounds +
         areas
           .map(({ area, colour }) =>
             area
@@ -210,7 +220,9 @@ export function mapPicture(input: MapInput): MapPicture {
           'stroke-opacity': 0.75,
         }) +
         ground.shore +
+        own.outlines +
         track.svg +
+        own.marks +
         peakMark(input, frame),
     ),
     element('rect', { ...rectOf(frame.box), fill: 'none', stroke: PAPER.ink, 'stroke-width': 1.2 }),
@@ -285,6 +297,47 @@ function groundOf(frame: MapFrame, coast: Coast | null): { land: string; shore: 
       'stroke-width': 0.9,
       'stroke-linejoin': 'round',
     }),
+  };
+}
+
+/** The user's zones and places: grounds beneath the wind, outlines and marks above it. */
+function ownOf(input: MapInput, frame: MapFrame): { grounds: string; outlines: string; marks: string } {
+  const zones = (input.zones ?? []).map(({ polygons }) =>
+    isotachPath({ thresholdMps: 0, polygons, areaM2: 0 }, frame.projection),
+  );
+  const marks = (input.places ?? []).map(({ lonDeg, latDeg }) => {
+    const at = frame.project([lonDeg, latDeg]);
+    return at
+      ? element('rect', {
+          class: 'place',
+          x: at[0] - 3.5,
+          y: at[1] - 3.5,
+          width: 7,
+          height: 7,
+          fill: PAPER.ink,
+          stroke: PAPER.halo,
+          'stroke-width': 1.5,
+        })
+      : '';
+  });
+  return {
+    grounds: zones
+      .map(({ area }) => (area ? element('path', { class: 'zone', d: area, fill: PAPER.land }) : ''))
+      .join(''),
+    outlines: zones
+      .map(({ edge }) =>
+        edge
+          ? element('path', {
+              d: edge,
+              fill: 'none',
+              stroke: PAPER.ink,
+              'stroke-width': 1.2,
+              'stroke-linejoin': 'round',
+            })
+          : '',
+      )
+      .join(''),
+    marks: marks.join(''),
   };
 }
 
@@ -397,6 +450,16 @@ function labelsOf(
   }
   for (const { timeMs, at: point } of track.marks)
     wish([momentText(timeMs, { short: true })], point, { bold: false, gap: 9 });
+  for (const { name, lonDeg, latDeg } of input.places ?? []) {
+    const point = frame.project([lonDeg, latDeg]);
+    if (!point) continue;
+    marks.push({ x: point[0] - 5, y: point[1] - 5, width: 10, height: 10 });
+    wish([cutText(name, { size: LABEL, width: 160 })], point, { bold: false, gap: 8 });
+  }
+  for (const { name, polygons } of input.zones ?? []) {
+    const point = zoneMiddle(polygons, frame);
+    if (point) wish([cutText(name, { size: LABEL, width: 160 })], point, { bold: false, gap: 2 });
+  }
   const { box } = frame;
   const places = placeLabels(wishes, {
     frame: { x: box.x + 4, y: box.y + 4, width: box.width - 8, height: box.height - 8 },
@@ -445,4 +508,15 @@ function noticeOf(input: MapInput, frame: MapFrame, levels: readonly number[]): 
         class: 'notice',
       }),
   };
+}
+
+/** The middle of a zone's largest shell on the picture. */
+function zoneMiddle(polygons: MapZone['polygons'], frame: MapFrame): readonly [number, number] | null {
+  const path = geoPath(frame.projection);
+  const shells = polygons.flatMap(([shell]) => (shell ? [[...shell].reverse().map(([x, y]) => [x!, y!])] : []));
+  const areas = shells.map((shell) => path.area({ type: 'Polygon', coordinates: [shell] }));
+  const largest = shells[areas.indexOf(Math.max(...areas))];
+  if (!largest) return null;
+  const at = path.centroid({ type: 'Polygon', coordinates: [largest] });
+  return Number.isFinite(at[0]) ? at : null;
 }

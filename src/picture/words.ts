@@ -1,11 +1,8 @@
+import type { Recipe } from '../model/recipe.js';
 import { tidy, toKnots } from '../units.js';
 
 const MONTHS = ['Jan', 'Feb', 'Mar', 'Apr', 'May', 'Jun', 'Jul', 'Aug', 'Sep', 'Oct', 'Nov', 'Dec'];
 const two = (value: number): string => String(value).padStart(2, '0');
-
-/** Said on every picture and page. */
-export const CAUTION =
-  'Output of a wind model. It is no warning and no substitute for official warnings: follow your national meteorological service and your local emergency authorities.';
 
 /** `14 Sep` */
 export function dayText(timeMs: number): string {
@@ -65,4 +62,17 @@ export function latitudeLongitudeText({
 }): string {
   const lon = ((((lonDeg + 180) % 360) + 360) % 360) - 180;
   return `${Math.abs(latDeg).toFixed(2)}°${latDeg < 0 ? 'S' : 'N'} ${Math.abs(lon).toFixed(2)}°${lon < 0 ? 'W' : 'E'}`;
+}
+
+/** The choices of a recipe that shape the wind, in one line. */
+export function recipeText(recipe: Recipe): string {
+  const motion = recipe['surface.motion'];
+  return [
+    `profile ${recipe['vortex.profile']}`,
+    `reduction ${recipe['surface.reduction']}${recipe['surface.reduction'] === 'constant' ? ` ${recipe['surface.factor']}` : ''}`,
+    `inflow ${recipe['surface.inflow']}`,
+    `motion ${motion}${motion === 'none' ? '' : `, maximum ${recipe['surface.maximum']}`}`,
+    `missing pressure ${recipe['completion.pressure']}`,
+    `missing radius ${recipe['completion.rmax']}`,
+  ].join('; ');
 }

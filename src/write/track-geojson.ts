@@ -1,4 +1,5 @@
 import type { Feature, FeatureCollection, LineString, MultiLineString, Point, Position } from 'geojson';
+import { boundingBox } from '../isotach/bounding-box.js';
 import { formatTime } from '../track/read/time.js';
 import type { Fix, Track } from '../track/track.js';
 import { type TrackColumn, trackColumns } from './track-columns.js';
@@ -94,11 +95,19 @@ export function tracksToFeatures(tracks: readonly Track[]): FeatureCollection<Po
       : [];
     return [...lines, ...fixes.map((fix) => pointOf(fix, track, columns))];
   });
-  return { type: 'FeatureCollection', features };
+  const box = boundingBox(features.flatMap(({ geometry }) => linesOf(geometry).map((line) => [line])));
+  return { type: 'FeatureCollection', ...(box ? { bbox: box } : {}), features };
+}
+
+/** The pieces of a geometry; a point is a piece of one position. */
+function linesOf(geometry: Point | LineString | MultiLineString): readonly (readonly number[])[][] {
+  if (geometry.type === 'Point') return [[geometry.coordinates]];
+  return geometry.type === 'LineString' ? [geometry.coordinates] : geometry.coordinates;
 }
 
 /** {@link tracksToFeatures} as text, one feature a line. */
 export function tracksToGeojson(tracks: readonly Track[]): string {
-  const { features } = tracksToFeatures(tracks);
-  return `{"type":"FeatureCollection","features":[\n${features.map((feature) => JSON.stringify(feature)).join(',\n')}\n]}\n`;
+  const { bbox, features } = tracksToFeatures(tracks);
+  const box = bbox ? `"bbox":${JSON.stringify(bbox)},` : '';
+  return `{"type":"FeatureCollection",${box}"features":[\n${features.map((feature) => JSON.stringify(feature)).join(',\n')}\n]}\n`;
 }

@@ -55,10 +55,6 @@ export function fitGrid(
       }
     }
   }
-  if (geographic && east - west > 360) {
-    west = -180;
-    east = 180;
-  }
   if (geographic && west < -180) {
     west += 360;
     east += 360;
@@ -66,16 +62,20 @@ export function fitGrid(
     west -= 360;
     east -= 360;
   }
-  const whole = (value: number, round: (x: number) => number): number => round(value / options.cell) * options.cell;
-  const tidy = (value: number): number => Number(value.toFixed(9));
+  const all = geographic && east - west + 2 * options.cell > 360;
+  // cells are counted from the first fix in longitude, so that the same storm elsewhere has the same cells
+  const first = model.path.at(options.fromMs).lonDeg;
+  const anchor = geographic ? first + 360 * Math.round((west - first) / 360) : 0;
+  const whole = (value: number, round: (x: number) => number, from = 0): number =>
+    Number((from + round((value - from) / options.cell) * options.cell).toFixed(9));
   return gridOver({
     crs: options.crs,
     cell: options.cell,
     bounds: [
-      tidy(whole(west, Math.floor)),
-      Math.max(geographic ? -90 : Number.NEGATIVE_INFINITY, tidy(whole(south, Math.floor))),
-      tidy(whole(east, Math.ceil)),
-      Math.min(geographic ? 90 : Number.POSITIVE_INFINITY, tidy(whole(north, Math.ceil))),
+      all ? -180 : whole(west, Math.floor, anchor),
+      Math.max(geographic ? -90 : Number.NEGATIVE_INFINITY, whole(south, Math.floor)),
+      all ? 180 : whole(east, Math.ceil, anchor),
+      Math.min(geographic ? 90 : Number.POSITIVE_INFINITY, whole(north, Math.ceil)),
     ],
   });
 }

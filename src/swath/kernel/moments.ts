@@ -1,0 +1,204 @@
+import { EARTH_RADIUS_M } from '../../earth.js';
+import type { WindModel } from '../../model/wind.js';
+import {
+  type Layout,
+  layoutOf,
+  type MomentTable,
+  rowsBeyond,
+  rowX,
+  type Sampling,
+  samplingOf,
+  tableOf,
+} from './table.js';
+import type { Leg, Timeline } from './timeline.js';
+
+/** Tables are this far apart in time at most, s: between two of them the nearer one serves, with R and V of the moment. */
+const SLOT_S = 340;
+/** A table is interpolated between two neighbours that explain the one in their middle within this, m/s. */
+const TOLERANCE_MPS = 0.03;
+/** Truncation of the harmonics that is left out, m/s. */
+const TRUNCATION_MPS = 0.01;
+const MOST_HARMONICS = 10;
+/** Splits of a leg at most: 2⁵ tables of a leg are built, the others interpolated. */
+const MOST_SPLITS = 5;
+
+/** The tables of a storm in time. */
+export interface Moments {
+  readonly layout: Layout;
+  /** whether the harmonics that were kept explain the field */
+  readonly complete: boolean;
+  /** the table that serves a moment of the timeline */
+  readonly tableAt: (index: number) => MomentTable;
+}
+
+/** Builds the tables of a storm as they are needed. */
+export function momentsOf(model: WindModel, timeline: Timeline): Moments {
+  const { layout, sampling, complete } = planTables(model, timeline);
+  const build = (timeMs: number): MomentTable => tableOf(model.fieldAt(timeMs), layout, sampling);
+  const legTables: (readonly (readonly [number, MomentTable])[] | undefined)[] = new Array(timeline.legs.length);
+  const slots = new Map<number, MomentTable>();
+  // where the model is continuous a fix serves the legs on both sides
+  const continuous = model.recipe['path.interpolation'] !== 'linear';
+  const atFix = new Map<number, MomentTable>();
+
+  const endTable = (leg: Leg, end: 0 | 1): MomentTable => {
+    const timeMs = end === 0 ? leg.startMs : leg.endMs;
+    if (!continuous) return build(end === 0 || leg.endMs === leg.startMs ? timeMs : timeMs - 1);
+    const known = atFix.get(timeMs);
+    if (known) return known;
+    const made = build(timeMs);
+    atFix.set(timeMs, made);
+    return made;
+  };
+
+  const tablesOfLeg = (number: number): readonly (readonly [number, MomentTable])[] => {
+    const known = legTables[number];
+    if (known) return known;
+    const leg = timeline.legs[number]!;
+    const list: [number, MomentTable][] = [[0, endTable(leg, 0)]];
+    if (leg.endMs > leg.startMs) {
+      const split = (from: number, a: MomentTable, to: number, b: MomentTable, depth: number): void => {
+        const at = 0.5 * (from + to);
+        const middle = build(leg.startMs + at * (leg.endMs - leg.startMs));
+        const fine =
+          depth >= MOST_SPLITS ||
+          explains(a, b, middle, layout, timeline.frame(leg.first + Math.round(at * (1 << leg.depth)))[9]!);
+        if (!fine) split(from, a, at, middle, depth + 1);
+        list.push([at, middle]);
+        if (!fine) split(at, middle, to, b, depth + 1);
+      };
+      const last = endTable(leg, 1);
+      split(0, list[0]![1], 1, last, 1);
+      list.push([1, last]);
+    }
+    legTables[number] = list;
+    return list;
+  };
+
+  const tableAt = (index: number): MomentTable => {
+    const leg = timeline.legOf(index);
+    const number = timeline.legs.indexOf(leg);
+    const fineS = (leg.endMs - leg.startMs) / 1000 / (1 << leg.depth);
+    const shift = fineS > 0 ? Math.max(0, Math.min(leg.depth, Math.floor(Math.log2(SLOT_S / fineS)))) : 0;
+    const slot = Math.round((index - leg.first) / (1 << shift));
+    // slots of one leg have one spacing: its first index plus the slot's is unlike any other leg's
+    const id = leg.first + number + slot;
+    const known = slots.get(id);
+    if (known) return known;
+    const made = interpolated(tablesOfLeg(number), (slot * (1 << shift)) / (1 << leg.depth));
+    slots.set(id, made);
+    return made;
+  };
+  return { layout, complete, tableAt };
+}
+
+/** How many rows and harmonics the fields of this storm need. */
+function planTables(model: WindModel, timeline: Timeline): { layout: Layout; sampling: Sampling; complete: boolean } {
+  let smallest = Number.POSITIVE_INFINITY;
+  for (const leg of timeline.legs) {
+    const steps = Math.min(8, 1 << leg.depth);
+    for (let i = 0; i <= steps; i++) {
+      const index = Math.min(timeline.count - 1, leg.first + Math.round((i * (1 << leg.depth)) / steps));
+      smallest = Math.min(smallest, timeline.frame(index)[8]!);
+    }
+  }
+  const farthest = (EARTH_RADIUS_M * Math.sin(Math.min(Math.PI / 2, model.outerRadiusM / EARTH_RADIUS_M))) / smallest;
+  const rows = rowsBeyond(farthest * farthest * 1.02);
+  // probe a few moments with many directions
+  const probe = samplingOf(48);
+  const winds = new Float64Array(96);
+  let [harmonics, windHarmonics] = [1, 1];
+  let complete = true;
+  const { legs } = timeline;
+  const probed = [...new Set([0, 1, 2, 3, 4, 5, 6, 7].map((i) => Math.floor((i * (legs.length - 1)) / 7)))];
+  for (const number of probed) {
+    const leg = legs[number]!;
+    for (const share of [0, 0.4]) {
+      const field = model.fieldAt(leg.startMs + share * (leg.endMs - leg.startMs));
+      for (const ratio of [0.5, 0.9, 1, 1.1, 1.5, 2, 3, 5, 8, 12]) {
+        const radiusM = ratio * field.state.radiusOfMaxWindM;
+        if (radiusM > 0.95 * field.outerRadiusM) continue;
+        field.onCircle(winds, radiusM, probe.directions);
+        const squared = Array.from({ length: 48 }, (_, i) => winds[2 * i]! ** 2 + winds[2 * i + 1]! ** 2);
+        const mean = Math.sqrt(squared.reduce((a, b) => a + b, 0) / 48);
+        const needed = harmonicsNeeded(squared, 2 * Math.max(mean, 8) * TRUNCATION_MPS);
+        complete &&= needed <= MOST_HARMONICS;
+        harmonics = Math.max(harmonics, Math.min(MOST_HARMONICS, needed));
+        for (const part of [0, 1]) {
+          const component = Array.from({ length: 48 }, (_, i) => winds[2 * i + part]!);
+          // half a degree of the local wind
+          windHarmonics = Math.max(
+            windHarmonics,
+            Math.min(MOST_HARMONICS, harmonicsNeeded(component, 0.008 * Math.max(mean, 4))),
+          );
+        }
+      }
+    }
+  }
+  const most = Math.max(harmonics, windHarmonics);
+  return {
+    layout: layoutOf(harmonics, windHarmonics, rows),
+    sampling: samplingOf(most === 1 ? 4 : 2 * most + 4),
+    complete,
+  };
+}
+
+/** The harmonic beyond which the sum of amplitudes falls below a bound. */
+function harmonicsNeeded(values: readonly number[], bound: number): number {
+  const n = values.length;
+  let rest = 0;
+  for (let k = n / 2 - 1; k >= 1; k--) {
+    let [sine, cosine] = [0, 0];
+    for (let i = 0; i < n; i++) {
+      sine += values[i]! * Math.sin((2 * Math.PI * i * k) / n);
+      cosine += values[i]! * Math.cos((2 * Math.PI * i * k) / n);
+    }
+    rest += (2 / n) * Math.hypot(sine, cosine);
+    if (rest > bound) return k;
+  }
+  return 1;
+}
+
+/** Whether the mean of two tables gives the one in their middle. */
+function explains(a: MomentTable, b: MomentTable, middle: MomentTable, layout: Layout, maxWindMps: number): boolean {
+  const { rows, speedStride } = layout;
+  for (let row = 1; row < rows; row++) {
+    const s = Math.sqrt(rowX(row));
+    const at = row * speedStride;
+    let off = Math.abs(middle.speed[at]! - 0.5 * (a.speed[at]! + b.speed[at]!));
+    for (let c = 1; c < speedStride; c++)
+      off += s * Math.abs(middle.speed[at + c]! - 0.5 * (a.speed[at + c]! + b.speed[at + c]!));
+    const speed = Math.max(0.1, Math.sqrt(Math.max(0, middle.speed[at]!)));
+    if ((off / (2 * speed)) * maxWindMps > TOLERANCE_MPS && speed * maxWindMps > 4) return false;
+  }
+  return true;
+}
+
+/** The table at a share of a leg, straight between the two that surround it. */
+function interpolated(tables: readonly (readonly [number, MomentTable])[], at: number): MomentTable {
+  let i = 0;
+  while (i + 2 < tables.length && tables[i + 1]![0] <= at) i++;
+  const [from, a] = tables[i]!;
+  const next = tables[i + 1];
+  if (!next || at <= from) return a;
+  const [to, b] = next;
+  const t = Math.min(1, (at - from) / (to - from));
+  if (t === 0) return a;
+  if (t === 1) return b;
+  const mix = (p: Float32Array, q: Float32Array): Float32Array => {
+    const out = new Float32Array(p.length);
+    for (let k = 0; k < out.length; k++) out[k] = p[k]! + t * (q[k]! - p[k]!);
+    return out;
+  };
+  const most = (p: Float32Array, q: Float32Array): Float32Array => {
+    const out = new Float32Array(p.length);
+    for (let k = 0; k < out.length; k++) out[k] = Math.max(p[k]!, q[k]!);
+    return out;
+  };
+  return {
+    speed: mix(a.speed, b.speed),
+    wind: mix(a.wind, b.wind),
+    steepest: most(a.steepest, b.steepest),
+    steepestWithTaper: most(a.steepestWithTaper, b.steepestWithTaper),
+  };
+}

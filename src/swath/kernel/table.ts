@@ -1,0 +1,166 @@
+import { EARTH_RADIUS_M, RADIANS } from '../../earth.js';
+import type { WindField } from '../../model/field.js';
+
+/**
+ * The wind of one moment as a table over the squared distance x = (r/R)² (r by the sine of the angle), its rows spaced in
+ * x as floating-point numbers are: 32 to every doubling, so that a number's own bits give the row. The first row is the
+ * centre, the second x = 2⁻⁸; x = 1, the radius of maximum wind, is a row.
+ *
+ * Columns, for the harmonics 0 … K of the squared speed over V²: [mean, b₁, a₁, b₂, a₂ …] with
+ *   S²/V² = mean + Σ (b_k E_k + a_k N_k),  E_k = s·sin kφ, N_k = s·cos kφ, s = √x, φ clockwise from north;
+ * E₁ and N₁ are the cell's coordinates in units of R. Then the same for the wind's east and north part over V, and a bound
+ * of the speed's gradient, m/s per metre.
+ */
+export interface Layout {
+  readonly harmonics: number;
+  readonly windHarmonics: number;
+  /** floats of one row of the speed part: 1 + 2K, padded to a multiple of 4 */
+  readonly speedStride: number;
+  /** floats of one row of the wind part */
+  readonly windStride: number;
+  readonly rows: number;
+}
+
+export interface MomentTable {
+  /** rows × speedStride */
+  readonly speed: Float32Array;
+  /** rows × windStride: east [mean, b₁, a₁ …], north [mean, b₁, a₁ …] */
+  readonly wind: Float32Array;
+  /** rows: the largest gradient of the speed from this row outward, the taper left out; then the same with it */
+  readonly steepest: Float32Array;
+  readonly steepestWithTaper: Float32Array;
+}
+
+export const ROWS_PER_OCTAVE_BITS = 5;
+const ROWS_PER_OCTAVE = 1 << ROWS_PER_OCTAVE_BITS;
+/** x of the second row is 2^FIRST_EXPONENT */
+export const FIRST_EXPONENT = -8;
+
+/** x of a row. */
+export function rowX(row: number): number {
+  if (row === 0) return 0;
+  const octave = (row - 1) >> ROWS_PER_OCTAVE_BITS;
+  const step = (row - 1) & (ROWS_PER_OCTAVE - 1);
+  return 2 ** (FIRST_EXPONENT + octave) * (1 + step / ROWS_PER_OCTAVE);
+}
+
+/** Rows that reach beyond x. */
+export function rowsBeyond(x: number): number {
+  const octaves = Math.max(1, Math.ceil(Math.log2(x) - FIRST_EXPONENT));
+  return 1 + octaves * ROWS_PER_OCTAVE + 1;
+}
+
+export function layoutOf(harmonics: number, windHarmonics: number, rows: number): Layout {
+  return {
+    harmonics,
+    windHarmonics,
+    rows,
+    speedStride: (1 + 2 * harmonics + 3) & ~3,
+    windStride: 2 * (1 + 2 * windHarmonics),
+  };
+}
+
+/** Directions of one sampling of the circle and the weights of its Fourier sums. */
+export interface Sampling {
+  readonly count: number;
+  readonly directions: Float64Array;
+}
+
+export function samplingOf(count: number): Sampling {
+  const directions = new Float64Array(2 * count);
+  for (let i = 0; i < count; i++) {
+    directions[2 * i] = Math.sin((i * 360 * RADIANS) / count);
+    directions[2 * i + 1] = Math.cos((i * 360 * RADIANS) / count);
+  }
+  return { count, directions };
+}
+
+/** The table of a field. */
+export function tableOf(field: WindField, layout: Layout, sampling: Sampling): MomentTable {
+  const { rows, speedStride, windStride, harmonics, windHarmonics } = layout;
+  const { count, directions } = sampling;
+  const { radiusOfMaxWindM, maxWindMps } = field.state;
+  const speed = new Float32Array(rows * speedStride);
+  const wind = new Float32Array(rows * windStride);
+  const gradient = new Float64Array(rows);
+  const winds = new Float64Array(2 * count);
+  const speeds = new Float64Array(count);
+  const lastSpeeds = new Float64Array(count);
+  let lastRadius = 0;
+  const inverse = 1 / (maxWindMps * maxWindMps);
+  for (let row = 0; row < rows; row++) {
+    const s = row === 0 ? 1e-3 : Math.sqrt(rowX(row));
+    const radiusM = EARTH_RADIUS_M * Math.asin(Math.min(1, (s * radiusOfMaxWindM) / EARTH_RADIUS_M));
+    if (radiusM >= field.outerRadiusM) winds.fill(0);
+    else field.onCircle(winds, radiusM, directions);
+    fourier(winds, 2, count, directions, windHarmonics, 1 / maxWindMps, s, wind, row * windStride, 0);
+    fourier(
+      winds,
+      2,
+      count,
+      directions,
+      windHarmonics,
+      1 / maxWindMps,
+      s,
+      wind,
+      row * windStride + 1 + 2 * windHarmonics,
+      1,
+    );
+    let around = 0;
+    for (let i = 0; i < count; i++) {
+      const squared = winds[2 * i]! ** 2 + winds[2 * i + 1]! ** 2;
+      winds[2 * i] = squared;
+      speeds[i] = Math.sqrt(squared);
+    }
+    fourier(winds, 2, count, directions, harmonics, inverse, s, speed, row * speedStride, 0);
+    let radial = 0;
+    for (let i = 0; i < count; i++) {
+      around = Math.max(around, Math.abs(speeds[i]! - speeds[(i + 1) % count]!));
+      if (row > 0) radial = Math.max(radial, Math.abs(speeds[i]! - lastSpeeds[i]!) / (radiusM - lastRadius));
+      lastSpeeds[i] = speeds[i]!;
+    }
+    const arc = (2 * Math.PI * radiusM) / count;
+    gradient[row] = Math.hypot(radial, around / Math.max(arc, 0.2 * radiusOfMaxWindM));
+    lastRadius = radiusM;
+  }
+  const steepest = new Float32Array(rows);
+  const steepestWithTaper = new Float32Array(rows);
+  const taperX = (0.9 * field.outerRadiusM) / radiusOfMaxWindM;
+  let [inner, all] = [0, 0];
+  for (let row = rows - 1; row >= 0; row--) {
+    all = Math.max(all, gradient[row]!);
+    if (Math.sqrt(rowX(row)) < taperX) inner = Math.max(inner, gradient[row]!);
+    steepest[row] = inner;
+    steepestWithTaper[row] = all;
+  }
+  return { speed, wind, steepest, steepestWithTaper };
+}
+
+/** Fourier coefficients of values on a circle: mean, then for each harmonic the sine and cosine part over s. */
+function fourier(
+  values: Float64Array,
+  step: number,
+  count: number,
+  directions: Float64Array,
+  harmonics: number,
+  factor: number,
+  s: number,
+  out: Float32Array,
+  at: number,
+  offset: number,
+): void {
+  let mean = 0;
+  for (let i = 0; i < count; i++) mean += values[step * i + offset]!;
+  out[at] = (mean * factor) / count;
+  for (let k = 1; k <= harmonics; k++) {
+    let [sine, cosine] = [0, 0];
+    for (let i = 0; i < count; i++) {
+      const j = (i * k) % count;
+      sine += values[step * i + offset]! * directions[2 * j]!;
+      cosine += values[step * i + offset]! * directions[2 * j + 1]!;
+    }
+    const scale = (2 * factor) / (count * s);
+    out[at + 2 * k - 1] = sine * scale;
+    out[at + 2 * k] = cosine * scale;
+  }
+}

@@ -1,0 +1,127 @@
+import { EARTH_RADIUS_M, RADIANS } from '../../earth.js';
+import type { WindModel } from '../../model/wind.js';
+
+/** Shortest step that the timeline can take, about, s. */
+const FINEST_S = 40;
+/** Numbers in a frame: see {@link Timeline.frame}. */
+export const FRAME = 10;
+
+/** One leg of the timeline: from a fix to the next, cut into 2^depth fine steps. */
+export interface Leg {
+  readonly startMs: number;
+  readonly endMs: number;
+  /** index of its start; its end is `first + (1 << depth)`, the start of the next leg */
+  readonly first: number;
+  readonly depth: number;
+  /** upper bounds over the leg: speed of the centre, m/s; growth of the radius of maximum wind, 1/s; change of the maximum wind, m/s² */
+  readonly speedMps: number;
+  readonly growthPerS: number;
+  readonly changeMps2: number;
+}
+
+/** Moments of a storm on a dyadic grid between its fixes, each fix being one of them. */
+export interface Timeline {
+  readonly legs: readonly Leg[];
+  /** moments in all */
+  readonly count: number;
+  readonly legOf: (index: number) => Leg;
+  readonly timeMs: (index: number) => number;
+  /**
+   * The frame of a moment at `index * FRAME`: the centre as a unit vector (3), then its local east (2) and north (3)
+   * times a/R, then R in metres and the maximum wind in m/s. Dot products of a cell with the scaled vectors are its
+   * coordinates in units of R.
+   */
+  readonly frame: (index: number) => Float64Array;
+}
+
+/** The timeline of a model between two times. */
+export function timelineOf(model: WindModel, fromMs: number, toMs: number): Timeline {
+  const knots = [
+    fromMs,
+    ...model.path.knotsMs.filter((time) => time > fromMs && time < toMs),
+    ...(toMs > fromMs ? [toMs] : []),
+  ];
+  const legs: Leg[] = [];
+  let first = 0;
+  for (let i = 0; i + 1 < knots.length; i++) {
+    const [startMs, endMs] = [knots[i]!, knots[i + 1]!];
+    const depth = Math.max(2, Math.ceil(Math.log2((endMs - startMs) / 1000 / FINEST_S)));
+    legs.push({ startMs, endMs, first, depth, ...boundsOf(model, startMs, endMs) });
+    first += 1 << depth;
+  }
+  if (legs.length === 0)
+    legs.push({ startMs: fromMs, endMs: fromMs, first: 0, depth: 0, speedMps: 0, growthPerS: 0, changeMps2: 0 });
+  const count = legs.length === 1 && legs[0]!.depth === 0 ? 1 : first + 1;
+  const frames: (Float64Array | undefined)[] = new Array(count);
+
+  const legOf = (index: number): Leg => {
+    let low = 0;
+    let high = legs.length - 1;
+    while (low < high) {
+      const middle = (low + high + 1) >> 1;
+      if (legs[middle]!.first <= index) low = middle;
+      else high = middle - 1;
+    }
+    return legs[low]!;
+  };
+  const timeMs = (index: number): number => {
+    const leg = legOf(index);
+    return leg.startMs + ((leg.endMs - leg.startMs) * (index - leg.first)) / (1 << leg.depth);
+  };
+  const frame = (index: number): Float64Array => {
+    const known = frames[index];
+    if (known) return known;
+    const state = model.path.at(timeMs(index));
+    const made = frameOf(state);
+    frames[index] = made;
+    return made;
+  };
+  return { legs, count, legOf, timeMs, frame };
+}
+
+function frameOf(state: {
+  latDeg: number;
+  lonDeg: number;
+  radiusOfMaxWindM: number;
+  maxWindMps: number;
+}): Float64Array {
+  const la = state.latDeg * RADIANS;
+  const lo = state.lonDeg * RADIANS;
+  const scale = EARTH_RADIUS_M / state.radiusOfMaxWindM;
+  const [sla, cla, slo, clo] = [Math.sin(la), Math.cos(la), Math.sin(lo), Math.cos(lo)];
+  return Float64Array.of(
+    cla * clo,
+    cla * slo,
+    sla,
+    -slo * scale,
+    clo * scale,
+    -sla * clo * scale,
+    -sla * slo * scale,
+    cla * scale,
+    state.radiusOfMaxWindM,
+    state.maxWindMps,
+  );
+}
+
+/** Samples of a leg, from which its bounds are taken with a margin. */
+const SAMPLES = 16;
+const MARGIN = 1.15;
+
+function boundsOf(
+  model: WindModel,
+  startMs: number,
+  endMs: number,
+): Pick<Leg, 'speedMps' | 'growthPerS' | 'changeMps2'> {
+  const dt = (endMs - startMs) / 1000 / SAMPLES;
+  let [speedMps, growthPerS, changeMps2] = [0, 0, 0];
+  let before = frameOf(model.path.at(startMs));
+  for (let i = 1; i <= SAMPLES; i++) {
+    const after = frameOf(model.path.at(startMs + i * dt * 1000));
+    const chord = Math.hypot(after[0]! - before[0]!, after[1]! - before[1]!, after[2]! - before[2]!);
+    speedMps = Math.max(speedMps, (chord * EARTH_RADIUS_M) / dt);
+    growthPerS = Math.max(growthPerS, Math.abs(Math.log(after[8]! / before[8]!)) / dt);
+    changeMps2 = Math.max(changeMps2, Math.abs(after[9]! - before[9]!) / dt);
+    before = after;
+  }
+  return { speedMps: MARGIN * speedMps, growthPerS: MARGIN * growthPerS, changeMps2: MARGIN * changeMps2 };
+}

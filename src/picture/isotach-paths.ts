@@ -32,6 +32,11 @@ export function isotachPath(isotach: PictureIsotach, projection: GeoProjection):
   return { area: area ?? '', edge: edge ?? '' };
 }
 
+/** The edges of polygons without the cuts at ±180° and the poles, as lines. */
+export function openEdges(polygons: PictureIsotach['polygons']): [number, number][][] {
+  return polygons.flatMap((polygon) => polygon.flatMap((ring) => openParts(finer(ring))));
+}
+
 /** A ring with long edges broken where they run straight in longitude and latitude. */
 function finer(ring: readonly Position[]): [number, number][] {
   const out: [number, number][] = [];

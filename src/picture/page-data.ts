@@ -19,7 +19,6 @@ export interface PageFacts {
   readonly quantity: 'wind' | 'gust';
   readonly averagingS: number;
   readonly gustDurationS: number;
-  readonly gustFactor: number;
   readonly isotachs: readonly PictureIsotach[];
   readonly places: readonly MapPlace[];
   readonly zones: readonly MapZone[];

@@ -141,6 +141,8 @@ function htmlOf(
 <fieldset id="layers"><legend>Coloured by</legend>
 ${radio('wind', 'Peak wind', true)}${radio('gust', 'Peak gust')}${radio('direction', 'Peak wind with its direction')}${radio('time', 'Time of the peak')}${hours}${radio('now', 'Wind at the moment')}
 </fieldset>
+</aside>
+<div class="bench">
 <section><h2>Cut through the centre</h2>
 <canvas id="cut" role="img" aria-label="Wind along a line through the centre"></canvas>
 <label class="range">Bearing <input type="range" id="bearing" min="0" max="175" step="5" value="90"> <output id="bearing-text" for="bearing"></output></label>
@@ -149,7 +151,7 @@ ${radio('wind', 'Peak wind', true)}${radio('gust', 'Peak gust')}${radio('directi
 <fieldset id="own" hidden><legend>Places and zones</legend></fieldset>
 <section class="about"><h2>How this was made</h2><p id="cells"></p><p>${escapeXml(input.recipeText)}</p><ul id="cautions"></ul>
 <p>Galewake ${escapeXml(input.version)}. Coast: Natural Earth. Times in UTC. 10 m, ${averagingText(swath.averagingS)}, ${averagingText(swath.gustDurationS, 'gust')}.</p></section>
-</aside>
+</div>
 </main>
 </div>
 <div class="print-map">${data.mapSvg.replace(/^<svg /, '<svg preserveAspectRatio="xMidYMin meet" ')}</div>

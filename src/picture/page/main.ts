@@ -165,7 +165,7 @@ function tellMoment(): void {
   const state = timeMs === null ? null : storm.model.path.at(timeMs);
   byId('moment').textContent = state
     ? `${text}: maximum wind ${speed(state.maxWindMps)}, pressure ${(state.centralPressurePa / 100).toFixed(0)} hPa, radius of maximum wind ${(state.radiusOfMaxWindM / 1000).toFixed(0)} km`
-    : 'The whole storm: the strongest wind of each place. Draw along the ruler for one moment.';
+    : 'The whole storm: the strongest wind of each place. Drag along the ruler to see one moment.';
   ruler.setAttribute('aria-valuetext', text);
   const share = timeMs === null ? 0 : (100 * (timeMs - facts.fromMs)) / Math.max(1, facts.toMs - facts.fromMs);
   ruler.setAttribute('aria-valuenow', share.toFixed(0));

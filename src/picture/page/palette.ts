@@ -54,7 +54,7 @@ export function strengthOf(windMps: number): number {
 }
 
 /** Winds below these fade out: nothing below the first, all from the second. */
-const FADE_MPS = [5, 14] as const;
+const FADE_MPS = [7, 15] as const;
 
 /** Colour and opacity (0–255) of a wind. */
 export function windPaint(windMps: number, palette: Palette): readonly [Rgb, number] {

@@ -38,7 +38,9 @@ button[aria-pressed=true]{background:var(--accent);border-color:var(--accent);co
 .legend .step:nth-child(2) i{border-left-width:1px}
 .legend b{font-weight:600}
 .legend small{display:block;color:var(--quiet);font-size:14px}
-aside{display:grid;gap:20px}
+aside{display:grid;gap:20px;grid-column:2;grid-row:1/span 2}
+.sheet{grid-column:1}
+.bench{grid-column:1;display:grid;grid-template-columns:repeat(auto-fit,minmax(280px,1fr));gap:24px 32px;align-items:start;border-top:1px solid var(--rule);padding-top:18px}
 fieldset{border:0;margin:0;padding:0;min-width:0}
 fieldset label{display:flex;gap:8px;align-items:center;padding:4px 0;min-height:32px;overflow-wrap:anywhere}
 input[type=radio],input[type=checkbox],input[type=range]{accent-color:var(--accent);flex:none;width:18px;height:18px;margin:0}
@@ -69,6 +71,7 @@ dd{margin:0;font-variant-numeric:tabular-nums}
 #app{padding:14px 14px 28px}
 h1{font-size:28px}
 main{grid-template-columns:minmax(0,1fr);gap:18px}
+aside,.sheet,.bench{grid-column:1;grid-row:auto}
 .frame{height:56vh;min-height:320px}
 .ruler{grid-template-columns:1fr 1fr}
 .lane{grid-column:1/-1;grid-row:1}

@@ -1,5 +1,4 @@
 import { Builder } from 'flatbuffers';
-import type { Feature, LineString, MultiLineString, MultiPolygon, Point, Polygon, Position } from 'geojson';
 import { UsageError } from '../errors.js';
 import { type IsotachContext, type IsotachShape, isotachAttributes } from './isotach-attributes.js';
 import { type Box, boxAround, hilbertOrder, NODE_SIZE, packedTree } from './packed-tree.js';
@@ -17,8 +16,20 @@ const MAGIC = new Uint8Array([0x66, 0x67, 0x62, 0x03, 0x66, 0x67, 0x62, 0x00]);
 const GEOMETRY = { Point: 1, LineString: 2, Polygon: 3, MultiLineString: 5, MultiPolygon: 6 } as const;
 const COLUMN = { boolean: 2, number: 10, string: 11 } as const;
 
-type Written = Point | LineString | Polygon | MultiLineString | MultiPolygon;
-type Value = string | number | boolean | null;
+type Position = readonly number[];
+
+/** A geometry as GeoJSON has it: degrees east and north on WGS 84. */
+export type FlatGeometry =
+  | { readonly type: 'Point'; readonly coordinates: Position }
+  | { readonly type: 'LineString'; readonly coordinates: readonly Position[] }
+  | { readonly type: 'Polygon' | 'MultiLineString'; readonly coordinates: readonly (readonly Position[])[] }
+  | { readonly type: 'MultiPolygon'; readonly coordinates: readonly (readonly (readonly Position[])[])[] };
+
+/** A feature as GeoJSON has it; null and absent attributes have no value. */
+export interface FlatFeature {
+  readonly properties: Readonly<Record<string, string | number | boolean | null>>;
+  readonly geometry: FlatGeometry;
+}
 
 export interface FlatGeobufInput {
   /** name of the layer */
@@ -26,8 +37,7 @@ export interface FlatGeobufInput {
   readonly title?: string;
   readonly description?: string;
   readonly metadata?: Readonly<Record<string, string>>;
-  /** degrees east and north on WGS 84, as GeoJSON has them */
-  readonly features: readonly Feature<Written, Readonly<Record<string, Value>>>[];
+  readonly features: readonly FlatFeature[];
 }
 
 /**
@@ -77,12 +87,11 @@ export function isotachsFlatGeobuf(input: {
     features: isotachs
       .filter((isotach) => isotach.polygons.length > 0)
       .map((isotach) => ({
-        type: 'Feature',
         properties: {
           ...isotachAttributes(isotach, context),
           ...(colourOf && { fill: colourOf(isotach.thresholdMps) }),
         },
-        geometry: { type: 'MultiPolygon', coordinates: isotach.polygons as Position[][][] },
+        geometry: { type: 'MultiPolygon', coordinates: isotach.polygons },
       })),
   });
 }
@@ -109,7 +118,7 @@ function columnsOf(features: FlatGeobufInput['features']): Column[] {
   return [...types].map(([name, type]) => ({ name, type: type ?? 'string' }));
 }
 
-function boxOf(geometry: Written): Box {
+function boxOf(geometry: FlatGeometry): Box {
   const positions = (nested: readonly unknown[]): Position[] =>
     typeof nested[0] === 'number'
       ? [nested as Position]
@@ -161,7 +170,7 @@ function headerBytes(
   return b.asUint8Array();
 }
 
-function featureBytes(feature: FlatGeobufInput['features'][number], columns: readonly Column[]): Uint8Array {
+function featureBytes(feature: FlatFeature, columns: readonly Column[]): Uint8Array {
   const b = new Builder(4096);
   const bytes = attributeBytes(feature.properties, columns);
   b.startVector(1, bytes.length, 1);
@@ -176,7 +185,7 @@ function featureBytes(feature: FlatGeobufInput['features'][number], columns: rea
 }
 
 /** Attributes one after another: number of the column (16 bits), then its value; text with its length before it. */
-function attributeBytes(properties: Readonly<Record<string, Value>>, columns: readonly Column[]): Uint8Array {
+function attributeBytes(properties: FlatFeature['properties'], columns: readonly Column[]): Uint8Array {
   const encoder = new TextEncoder();
   const parts: Uint8Array[] = [];
   columns.forEach((column, index) => {
@@ -199,7 +208,7 @@ function attributeBytes(properties: Readonly<Record<string, Value>>, columns: re
   return out;
 }
 
-function geometryTable(b: Builder, geometry: Written): number {
+function geometryTable(b: Builder, geometry: FlatGeometry): number {
   if (geometry.type === 'MultiPolygon') {
     const parts = offsetVector(
       b,
@@ -213,7 +222,7 @@ function geometryTable(b: Builder, geometry: Written): number {
   return simpleTable(b, { lines: linesOf(geometry), type: GEOMETRY[geometry.type] });
 }
 
-function linesOf(geometry: Exclude<Written, MultiPolygon>): readonly (readonly Position[])[] {
+function linesOf(geometry: Exclude<FlatGeometry, { type: 'MultiPolygon' }>): readonly (readonly Position[])[] {
   if (geometry.type === 'Point') return [[geometry.coordinates]];
   return geometry.type === 'LineString' ? [geometry.coordinates] : geometry.coordinates;
 }

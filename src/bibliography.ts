@@ -14,6 +14,9 @@ export const BIBLIOGRAPHY: Readonly<Record<string, string>> = {
     'Atkinson, G. D., and C. R. Holliday, 1977: Tropical cyclone minimum sea level pressure/maximum sustained wind relationship for the western North Pacific. Monthly Weather Review 105, 421–427. doi:10.1175/1520-0493(1977)105<0421:TCMSLP>2.0.CO;2',
   BoM2023:
     'Bureau of Meteorology, 2023: Tropical cyclone categories. Knowledge Centre, Commonwealth of Australia, bom.gov.au',
+  CIE15: 'Commission Internationale de l’Éclairage, 2004: Colorimetry, 3rd ed. CIE 15:2004',
+  ChavasKnaff2022:
+    'Chavas, D. R., and J. A. Knaff, 2022: A simple model for predicting the tropical cyclone radius of maximum wind from outer size. Weather and Forecasting 37, 563–579. doi:10.1175/WAF-D-21-0103.1',
   CourtneyKnaff2009:
     'Courtney, J., and J. A. Knaff, 2009: Adapting the Knaff and Zehr wind–pressure relationship for operational use in Tropical Cyclone Warning Centres. Australian Meteorological and Oceanographic Journal 58, 167–179',
   Durst1960: 'Durst, C. S., 1960: Wind speeds over short periods of time. Meteorological Magazine 89, 181–186',
@@ -35,6 +38,8 @@ export const BIBLIOGRAPHY: Readonly<Record<string, string>> = {
   Holton2004: 'Holton, J. R., 2004: An Introduction to Dynamic Meteorology, 4th ed. Elsevier Academic Press',
   Hughes1952:
     'Hughes, L. A., 1952: On the low-level wind structure of tropical storms. Journal of Meteorology 9, 422–428',
+  IEC61966:
+    'International Electrotechnical Commission, 1999: Multimedia systems and equipment – Colour measurement and management – Part 2-1: Default RGB colour space – sRGB. IEC 61966-2-1:1999',
   IMD2021:
     'India Meteorological Department, 2021: Cyclone warning in India: standard operation procedure. Ministry of Earth Sciences, New Delhi',
   IogpEpsg2019: 'International Association of Oil and Gas Producers, 2019: EPSG geodetic parameter dataset',
@@ -74,6 +79,8 @@ export const BIBLIOGRAPHY: Readonly<Record<string, string>> = {
     'Deutsch, P., and J.-L. Gailly, 1996: ZLIB compressed data format specification version 3.3. RFC 1950. doi:10.17487/RFC1950',
   RFC4180:
     'Shafranovich, Y., 2005: Common format and MIME type for comma-separated values (CSV) files. RFC 4180. doi:10.17487/RFC4180',
+  RFC4648:
+    'Josefsson, S., 2006: The Base16, Base32, and Base64 Data Encodings. RFC 4648, Internet Engineering Task Force. doi:10.17487/RFC4648',
   RFC7946:
     'Butler, H., M. Daly, A. Doyle, S. Gillies, S. Hagen, and T. Schaub, 2016: The GeoJSON format. RFC 7946. doi:10.17487/RFC7946',
   Rankine1882: 'Rankine, W. J. M., 1882: A Manual of Applied Physics, 10th ed. Charles Griffin, London',
@@ -86,12 +93,17 @@ export const BIBLIOGRAPHY: Readonly<Record<string, string>> = {
   SchwerdtHoWatkins1979:
     'Schwerdt, R. W., F. P. Ho, and R. R. Watkins, 1979: Meteorological criteria for standard project hurricane and probable maximum hurricane windfields, Gulf and East Coasts of the United States. NOAA Technical Report NWS 23',
   SimiuScanlan1996: 'Simiu, E., and R. H. Scanlan, 1996: Wind Effects on Structures, 3rd ed. Wiley',
+  SmithVanDerWalt2015:
+    'Smith, N., and S. van der Walt, 2015: A better default colormap for Matplotlib. 14th Python in Science Conference (SciPy 2015), Austin; colour tables released under CC0',
+  Snyder1987:
+    'Snyder, J. P., 1987: Map Projections – A Working Manual. U.S. Geological Survey Professional Paper 1395. doi:10.3133/pp1395',
   Sobey1977:
     'Sobey, R. J., B. A. Harper, and K. P. Stark, 1977: Numerical simulation of tropical cyclone storm surge. James Cook University, Department of Civil and Systems Engineering, Research Bulletin CS14',
   Stull2000: 'Stull, R. B., 2000: Meteorology for Scientists and Engineers, 2nd ed. Brooks/Cole',
   USACE2002: 'U.S. Army Corps of Engineers, 2002: Coastal Engineering Manual, part II, chapter 2. EM 1110-2-1100',
   VanOosteromStrackee1983:
     'Van Oosterom, A., and J. Strackee, 1983: The solid angle of a plane triangle. IEEE Transactions on Biomedical Engineering BME-30, 125–126. doi:10.1109/TBME.1983.325207',
+  WCAG22: 'World Wide Web Consortium, 2023: Web Content Accessibility Guidelines (WCAG) 2.2. W3C Recommendation',
   WGS84:
     'National Imagery and Mapping Agency, 2000: Department of Defense World Geodetic System 1984, its definition and relationships with local geodetic systems, 3rd ed. TR8350.2',
   WMO2018: 'World Meteorological Organization, 2018: Guide to instruments and methods of observation. WMO-No. 8',

@@ -132,8 +132,8 @@ function htmlOf(
 <section><h2>Under the cross</h2>
 <dl id="reading" aria-live="polite"></dl>
 <form id="place-form" class="place">
-<label>Latitude <input id="lat" inputmode="decimal" autocomplete="off" placeholder="27.9 or 27.9N"></label>
-<label>Longitude <input id="lon" inputmode="decimal" autocomplete="off" placeholder="−45.2 or 45.2W"></label>
+<label>Latitude <input id="lat" inputmode="decimal" autocomplete="off" placeholder="27.9N"></label>
+<label>Longitude <input id="lon" inputmode="decimal" autocomplete="off" placeholder="45.2W"></label>
 <button type="submit" id="read">Read here</button>
 </form>
 <p id="place-error" role="alert" class="error"></p>

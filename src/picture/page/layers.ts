@@ -74,7 +74,7 @@ export function layersOf(facts: PageFacts, fields: PageFields): Layer[] {
     { id: 'gust', title: 'Peak gust, m/s', sample: smooth(facts, fields.gust), paint: windPaint, legend },
     {
       id: 'direction',
-      title: 'Peak wind, m/s; arrows fly with it',
+      title: 'Peak wind, m/s; arrows point with it',
       sample: smooth(facts, fields.wind),
       paint: windPaint,
       legend,

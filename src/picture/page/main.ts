@@ -175,7 +175,7 @@ function tellMoment(): void {
 function tellLegend(): void {
   const layer = layers.find(({ id }) => id === layerId);
   const entries = (layer?.legend ?? momentLegend(facts))(palette);
-  const titleText = layer?.title ?? 'Wind at the moment, m/s; arrows fly with it';
+  const titleText = layer?.title ?? 'Wind at the moment, m/s; arrows point with it';
   const title = document.createElement('span');
   title.className = 'title';
   title.textContent = titleText;

@@ -1,4 +1,5 @@
 import { coriolisPerS, RADIANS, wrapBearing } from '../earth.js';
+import { averagingFactor } from '../surface/averaging.js';
 import { INFLOWS, type InflowMethod } from '../surface/inflow.js';
 import {
   backgroundWind,
@@ -45,6 +46,8 @@ export interface FieldMethods {
   readonly airDensityKgM3: number;
   readonly maximumIs: VortexInput['maximumIs'];
   readonly numbers: Readonly<Record<string, number>>;
+  /** turns the recipe's winds into 1-min means */
+  readonly toOneMinute: number;
 }
 
 export function fieldMethods(recipe: Recipe): FieldMethods {
@@ -62,6 +65,7 @@ export function fieldMethods(recipe: Recipe): FieldMethods {
     keepMaximum: recipe['surface.maximum'] === 'kept',
     airDensityKgM3: recipeNumber(recipe, 'vortex.density_kgm3'),
     maximumIs: recipeWord(recipe, 'vortex.maximum') as VortexInput['maximumIs'],
+    toOneMinute: averagingFactor('at-sea', { fromS: recipeNumber(recipe, 'wind.averaging_s'), toS: 60 }),
     numbers: { exponent: recipeNumber(recipe, 'vortex.exponent'), factor: recipeNumber(recipe, 'surface.factor') },
   };
 }
@@ -95,7 +99,7 @@ export function windField(
     numbers: methods.numbers,
   });
   const fieldFor = (gradientMaxMps: number): WindField =>
-    buildField(state, methods, { gradientMaxMps, background, translationMps, outerRadiusM });
+    buildField(state, methods, { gradientMaxMps, ratio: nominal, background, translationMps, outerRadiusM });
   if (!methods.keepMaximum) return fieldFor(state.maxWindMps / nominal);
 
   // the maximum grows with the gradient wind at about the reduction's ratio: step by it until the maximum is met
@@ -115,6 +119,8 @@ function buildField(
   methods: FieldMethods,
   parts: {
     gradientMaxMps: number;
+    /** 10-m over gradient-level wind at the maximum */
+    ratio: number;
     background: readonly [number, number];
     translationMps: number;
     outerRadiusM: number;
@@ -133,6 +139,11 @@ function buildField(
     airDensityKgM3: methods.airDensityKgM3,
     translationMps,
     maximumIs: methods.maximumIs,
+    size: {
+      radiusM: state.sizeRadiusM,
+      ownMaxMps: methods.toOneMinute * parts.ratio * gradientMaxMps,
+      fieldMaxMps: methods.toOneMinute * state.maxWindMps,
+    },
     numbers: methods.numbers,
   });
   const weightOf = methods.motion ? MOTION_WEIGHTS[methods.motion.weight] : () => 0;

@@ -8,6 +8,7 @@ import { REDUCTIONS } from '../surface/reduction.js';
 import { BLENDING_HEIGHT_M } from '../surface/roughness.js';
 import { PRESSURE_WIND_RELATIONS } from '../track/relations/pressure-wind.js';
 import { RADIUS_RELATIONS } from '../track/relations/radius-of-max-wind.js';
+import { SIZE_RELATIONS } from '../track/relations/size.js';
 import { PROFILES } from '../vortex/profiles.js';
 
 export type RecipeValue = string | number;
@@ -52,17 +53,25 @@ export const RECIPE_ENTRIES: readonly RecipeEntry[] = [
   },
   {
     key: 'completion.pressure',
-    standard: 'courtney-knaff-2009',
+    standard: 'galewake-pressure-2016',
     words: ids(PRESSURE_WIND_RELATIONS),
     help: 'relation that gives a missing central pressure from the wind, or the wind from the pressure',
-    source: 'CourtneyKnaff2009',
+    source: 'own calibration',
   },
   {
     key: 'completion.rmax',
-    standard: 'willoughby-2006',
+    standard: 'chavas-knaff-2022',
     words: ids(RADIUS_RELATIONS),
     help: 'relation that gives a missing radius of maximum wind',
-    source: 'Willoughby2006',
+    source: 'ChavasKnaff2022',
+  },
+  {
+    key: 'completion.size',
+    standard: 'galewake-size-2016',
+    words: ids(SIZE_RELATIONS),
+    range: [20, 800],
+    help: 'relation for the size: the radius of 17.5 m/s of the storm’s own wind; or a number, km',
+    source: 'own calibration',
   },
   {
     key: 'completion.ambient_hpa',
@@ -96,10 +105,17 @@ export const RECIPE_ENTRIES: readonly RecipeEntry[] = [
   },
   {
     key: 'vortex.profile',
-    standard: 'holland-1980',
+    standard: 'galewake-2016',
     words: ids(PROFILES),
     help: 'radial profile of the gradient-level wind',
-    source: 'Holland1980',
+    source: 'own calibration',
+  },
+  {
+    key: 'vortex.radii',
+    standard: 'fit',
+    words: ['fit', 'ignore'],
+    help: 'observed wind radii of the track: the field is fitted to them, or they are left aside',
+    source: 'own choice',
   },
   {
     key: 'vortex.exponent',

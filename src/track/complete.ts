@@ -7,6 +7,7 @@ import { monotoneCubic, piecewiseLinear } from './interpolate.js';
 import { ambientPressurePa } from './relations/ambient-pressure.js';
 import { PRESSURE_WIND_RELATIONS, type PressureWindInput } from './relations/pressure-wind.js';
 import { RADIUS_RELATIONS } from './relations/radius-of-max-wind.js';
+import { dayMeans, SIZE_RELATIONS } from './relations/size.js';
 import { type Fix, hemisphereOf, type Track } from './track.js';
 
 /** Where a value came from: the source, a neighbour in time, or a relation. */
@@ -30,6 +31,8 @@ export interface CompletedFix {
   readonly centralPressurePa: Traced;
   readonly ambientPressurePa: Traced;
   readonly radiusOfMaxWindM: Traced;
+  /** the radius at which the storm's own 10-m wind would be 17.5 m/s by the size relation, m */
+  readonly sizeRadiusM: Traced;
   readonly hollandB: Traced;
 }
 
@@ -47,6 +50,10 @@ export interface CompletionOptions {
   readonly averagingS: number;
   readonly pressure: string;
   readonly rmax: string;
+  /** name of the size relation, or the size itself, m */
+  readonly size: string | number;
+  /** whether observed wind radii count: an estimated radius of maximum wind then lies inside them */
+  readonly radii: 'fit' | 'ignore';
   readonly ambientHpa: number | 'basin';
   readonly b: number | 'gradient-consistent' | 'cyclostrophic';
   readonly maxGapH: number;
@@ -88,6 +95,7 @@ export function completeTrack(track: Track, options: CompletionOptions): Complet
   const translation = translationSpeeds(fixes);
   const pressureWind = named(PRESSURE_WIND_RELATIONS, options.pressure);
   const radius = named(RADIUS_RELATIONS, options.rmax);
+  const sizeRelation = typeof options.size === 'string' ? named(SIZE_RELATIONS, options.size) : null;
 
   const ambient = fixes.map((fix): Traced => {
     if (fix.ambientPressurePa !== null) return { value: fix.ambientPressurePa, origin: 'given', by: null };
@@ -122,7 +130,7 @@ export function completeTrack(track: Track, options: CompletionOptions): Complet
     );
   }
 
-  const completed = fixes.map((fix, i): CompletedFix => {
+  const intensities = fixes.map((fix, i) => {
     const maxWind = { ...wind[i]!, value: Math.max(LEAST_WIND_MPS, wind[i]!.value) };
     const oneMinute = maxWind.value * toOneMinute;
     let pressure: Traced =
@@ -143,8 +151,35 @@ export function completeTrack(track: Track, options: CompletionOptions): Complet
           by: 'central pressure + 1 hPa (the usual ambient pressure is below it)',
         };
     }
-    const deficit = around.value - pressure.value;
-    const rmax: Traced =
+    return { maxWind, oneMinute, pressure, around, deficit: around.value - pressure.value };
+  });
+  const dayMeanWind = dayMeans(
+    times,
+    intensities.map(({ oneMinute }) => oneMinute),
+  );
+  const dayMeanDeficit = dayMeans(
+    times,
+    intensities.map(({ deficit }) => deficit),
+  );
+  let highestWindMps = 0;
+  const completed = fixes.map((fix, i): CompletedFix => {
+    const { maxWind, oneMinute, pressure, around, deficit } = intensities[i]!;
+    highestWindMps = Math.max(highestWindMps, oneMinute);
+    const size: Traced = sizeRelation
+      ? {
+          value: sizeRelation.radiusM({
+            maxWindMps: oneMinute,
+            dayMeanWindMps: dayMeanWind[i]!,
+            dayMeanDeficitPa: dayMeanDeficit[i]!,
+            highestWindMps,
+            latDeg: fix.latDeg,
+            translationMps: translation[i]!,
+          }),
+          origin: 'estimated',
+          by: sizeRelation.id,
+        }
+      : { value: options.size as number, origin: 'estimated', by: 'recipe' };
+    let rmax: Traced =
       fix.radiusOfMaxWindM !== null
         ? { value: fix.radiusOfMaxWindM, origin: 'given', by: null }
         : {
@@ -155,10 +190,14 @@ export function completeTrack(track: Track, options: CompletionOptions): Complet
               pressureDeficitPa: deficit,
               translationMps: translation[i]!,
               radiusOf34KtM: meanRadiusM(fix, knots(34)),
+              sizeRadiusM: size.value,
             }),
             origin: 'estimated',
             by: radius.id,
           };
+    const innermostM = options.radii === 'fit' ? innermostRadiusM(fix) : null;
+    if (rmax.origin === 'estimated' && innermostM !== null && rmax.value > SHARE_OF_INNERMOST * innermostM)
+      rmax = { value: SHARE_OF_INNERMOST * innermostM, origin: 'estimated', by: `${rmax.by}, inside the wind radii` };
     return {
       fix,
       timeMs: fix.timeMs,
@@ -168,6 +207,7 @@ export function completeTrack(track: Track, options: CompletionOptions): Complet
       centralPressurePa: pressure,
       ambientPressurePa: around,
       radiusOfMaxWindM: rmax,
+      sizeRadiusM: size,
       hollandB: hollandB(fix, options, {
         maxWindMps: maxWind.value,
         translationMps: translation[i]!,
@@ -212,6 +252,18 @@ export function meanRadiusM(fix: Fix, thresholdMps: number): number | null {
   const radii = fix.windRadii.find((entry) => Math.abs(entry.thresholdMps - thresholdMps) < 0.1);
   const known = radii?.radiiM.filter((radius): radius is number => radius !== null && radius > 0) ?? [];
   return known.length === 0 ? null : known.reduce((sum, radius) => sum + radius, 0) / known.length;
+}
+
+/** An estimated radius of maximum wind is at most this share of the farthest radius of the highest wind observed; own choice. */
+const SHARE_OF_INNERMOST = 0.8;
+
+/** The farthest radius of the highest wind below the maximum that has one, m. */
+function innermostRadiusM(fix: Fix): number | null {
+  for (const { thresholdMps, radiiM } of [...fix.windRadii].sort((a, b) => b.thresholdMps - a.thresholdMps)) {
+    const farthest = Math.max(...radiiM.map((radius) => radius ?? 0));
+    if (farthest > 0 && (fix.maxWindMps === null || thresholdMps < fix.maxWindMps)) return farthest;
+  }
+  return null;
 }
 
 /** Fills gaps from the neighbours in time; beyond the first and last stated value that value is held. */

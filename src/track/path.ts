@@ -16,6 +16,8 @@ export interface StormState {
   readonly centralPressurePa: number;
   readonly ambientPressurePa: number;
   readonly radiusOfMaxWindM: number;
+  /** the radius at which the storm's own 10-m wind would be 17.5 m/s by the size relation, m */
+  readonly sizeRadiusM: number;
   readonly hollandB: number;
 }
 
@@ -57,6 +59,7 @@ export function pathOf(
   const pressure = curveThrough(fixes.map((fix) => fix.centralPressurePa.value));
   const ambient = curveThrough(fixes.map((fix) => fix.ambientPressurePa.value));
   const radius = curveThrough(fixes.map((fix) => fix.radiusOfMaxWindM.value));
+  const size = curveThrough(fixes.map((fix) => fix.sizeRadiusM.value));
   const shape = curveThrough(fixes.map((fix) => fix.hollandB.value));
   const motion = motionOf();
 
@@ -77,6 +80,7 @@ export function pathOf(
       centralPressurePa: pressure(s),
       ambientPressurePa: ambient(s),
       radiusOfMaxWindM: radius(s),
+      sizeRadiusM: size(s),
       hollandB: shape(s),
     };
   }

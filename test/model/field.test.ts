@@ -15,6 +15,7 @@ const storm = (over: Partial<StormState> = {}): StormState => ({
   centralPressurePa: 95_500,
   ambientPressurePa: 101_000,
   radiusOfMaxWindM: 35_000,
+  sizeRadiusM: 150_000,
   hollandB: 1.4,
   ...over,
 });

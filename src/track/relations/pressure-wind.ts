@@ -1,4 +1,5 @@
 import { knots, toKnots } from '../../units.js';
+import { deficit2016Hpa } from './pressure2016.js';
 
 /** What a pressure–wind relation may use. Winds are 1-min means at 10 m. */
 export interface PressureWindInput {
@@ -99,5 +100,20 @@ const atkinsonHolliday1977: PressureWindRelation = {
   maxWindMps: (pressurePa) => knots(6.7 * Math.max(0, 1010 - pressurePa / 100) ** 0.644),
 };
 
+const pressure2016Pa = (maxWindMps: number, input: PressureWindInput): number =>
+  input.ambientPressurePa - 100 * deficit2016Hpa(maxWindMps, input);
+
+const pressure2016: PressureWindRelation = {
+  id: 'galewake-pressure-2016',
+  title: 'Own calibration on 2004–2016: wind, latitude, motion, radius of 34 kt',
+  source: 'own calibration',
+  centralPressurePa: pressure2016Pa,
+  maxWindMps: (pressurePa, input) => windOfPressure((wind) => pressure2016Pa(wind, input), pressurePa),
+};
+
 /** Every pressure–wind relation that a recipe may name. */
-export const PRESSURE_WIND_RELATIONS: readonly PressureWindRelation[] = [courtneyKnaff2009, atkinsonHolliday1977];
+export const PRESSURE_WIND_RELATIONS: readonly PressureWindRelation[] = [
+  pressure2016,
+  courtneyKnaff2009,
+  atkinsonHolliday1977,
+];

@@ -1,3 +1,5 @@
+import { chavasKnaff2022 } from './chavas-knaff2022.js';
+
 /** What a relation for the radius of maximum wind may use. */
 export interface RadiusInput {
   /** maximum sustained 10-m wind, 1-min mean, m/s */
@@ -7,7 +9,10 @@ export interface RadiusInput {
   readonly latDeg: number;
   readonly pressureDeficitPa: number;
   readonly translationMps: number;
+  /** mean radius of 34 kt over the quadrants that have it; null where not known */
   readonly radiusOf34KtM: number | null;
+  /** size by the recipe's relation: the radius at which the storm's own wind would be 17.5 m/s, m */
+  readonly sizeRadiusM: number;
 }
 
 /** A relation that gives the radius of maximum wind, m. */
@@ -31,4 +36,4 @@ const willoughby2006: RadiusRelation = {
 };
 
 /** Every relation for the radius of maximum wind that a recipe may name. */
-export const RADIUS_RELATIONS: readonly RadiusRelation[] = [willoughby2006];
+export const RADIUS_RELATIONS: readonly RadiusRelation[] = [willoughby2006, chavasKnaff2022];

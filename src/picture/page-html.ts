@@ -2,6 +2,7 @@ import type { Swath } from '../swath/swath.js';
 import type { Deflate } from '../write/deflate.js';
 import { CAUTION } from '../write/provenance.js';
 import { toBase64 } from './base64.js';
+import { knownPeak } from './map-input.js';
 import { lighterPolygons, type PageFacts, packFields, pageFields } from './page-data.js';
 import { escapeXml } from './svg.js';
 import { averagingText, latitudeLongitudeText, levelTexts, momentText, periodText, windText } from './words.js';
@@ -36,7 +37,8 @@ export async function mapPage(
   input: PageInput,
   { deflate, assets }: { readonly deflate: Deflate; readonly assets: PageAssets },
 ): Promise<string> {
-  const { swath, mapSvg, coastTopology, ...own } = input;
+  const { swath, mapSvg, coastTopology, ...rest } = input;
+  const own = { ...rest, peak: knownPeak(rest.peak) };
   const packed = async (cells: number) => {
     const { grid, fields } = pageFields(swath, cells);
     return { grid, bytes: await deflate(packFields(fields, grid.nx)) };
@@ -64,7 +66,12 @@ export async function mapPage(
     facts = await deflate(encoder.encode(JSON.stringify(factsWith(least))));
   }
   const coast = coastTopology === null ? '' : toBase64(await deflate(encoder.encode(coastTopology)));
-  return htmlOf(input, assets, { facts: toBase64(facts), fields: toBase64(small.bytes), coast, mapSvg });
+  return htmlOf({ ...input, peak: own.peak }, assets, {
+    facts: toBase64(facts),
+    fields: toBase64(small.bytes),
+    coast,
+    mapSvg,
+  });
 }
 
 function htmlOf(

@@ -2,16 +2,21 @@ import { EARTH_RADIUS_M, RADIANS, wrapBearing } from '../earth.js';
 import type { WindModel } from '../model/wind.js';
 import { gustFactorOf, HOURS_THRESHOLDS_MPS, type SwathOptions } from './exact.js';
 import type { Grid } from './grid.js';
+import type { Arithmetic } from './kernel/arithmetic.js';
 import { momentsOf } from './kernel/moments.js';
 import { newTile, tileRunner } from './kernel/tile.js';
 import { type Tiling, tilingOf } from './kernel/tiling.js';
 import { timelineOf } from './kernel/timeline.js';
+import { twinArithmetic } from './kernel/twin.js';
+import { wasmArithmetic } from './kernel/wasm.js';
 import type { Swath } from './swath.js';
 
 export interface PeakOptions extends SwathOptions {
   /** without hours above 34, 50 and 64 kt, which then are zero */
   readonly peakOnly?: boolean;
   readonly jobs?: number;
+  /** the hot loops; WebAssembly where there is any */
+  readonly arithmetic?: Arithmetic;
   readonly signal?: AbortSignal;
   readonly onProgress?: (share: number) => void;
 }
@@ -77,14 +82,16 @@ export interface SwathWork {
 export function swathWork(
   model: WindModel,
   grid: Grid,
-  options: Pick<PeakOptions, 'fromMs' | 'toMs' | 'peakOnly'>,
+  options: Pick<PeakOptions, 'fromMs' | 'toMs' | 'peakOnly' | 'arithmetic'>,
 ): SwathWork {
   const fromMs = options.fromMs ?? model.path.startMs;
   const timeline = timelineOf(model, fromMs, options.toMs ?? model.path.endMs);
-  const moments = momentsOf(model, timeline);
+  const arithmetic = options.arithmetic ?? wasmArithmetic() ?? twinArithmetic();
+  arithmetic.release();
+  const moments = momentsOf(model, timeline, arithmetic);
   const tiling = tilingOf(grid);
-  const tile = newTile(HOURS_THRESHOLDS_MPS.length);
-  const runner = tileRunner(timeline, moments, {
+  const tile = newTile();
+  const runner = tileRunner(timeline, moments, arithmetic, {
     outerRadiusM: model.outerRadiusM,
     thresholdsMps: HOURS_THRESHOLDS_MPS,
     hours: options.peakOnly !== true,
@@ -98,18 +105,21 @@ export function swathWork(
     cautions,
     runRow(row, fields) {
       for (let column = 0; column < tiling.columns; column++) {
-        const { centre, radiusM, cells } = tiling.load(tile, column, row);
-        if (!runner.run(tile, centre, radiusM)) continue;
+        const bounds = tiling.load(tile, arithmetic.arrays, { column, row });
+        const { cells } = bounds;
+        const { arrays } = arithmetic;
+        if (!runner.run(tile, bounds)) continue;
         for (let i = 0; i < tile.count; i++) {
           const k = cells[i]!;
-          for (let h = 0; h < fields.hours.length; h++) fields.hours[h]![k] = tile.hours[h]![i]!;
+          for (let h = 0; h < fields.hours.length; h++) fields.hours[h]![k] = arrays.hours[h]![i]!;
           const wind = tile.windMps[i]!;
           if (!(wind > 0)) continue;
           fields.windMps[k] = wind;
           fields.peakTimeS[k] = offsetS + tile.peakS[i]!;
           const frame = timeline.frame(tile.peakIndex[i]!);
           fields.windFromDeg[k] = wrapBearing(
-            (Math.atan2(-tile.eastMps[i]!, -tile.northMps[i]!) + turn(tile.x[i]!, tile.y[i]!, tile.z[i]!, frame)) /
+            (Math.atan2(-tile.eastMps[i]!, -tile.northMps[i]!) +
+              turn(arrays.x[i]!, arrays.y[i]!, arrays.z[i]!, frame)) /
               RADIANS,
           );
         }

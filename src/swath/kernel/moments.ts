@@ -1,5 +1,6 @@
 import { EARTH_RADIUS_M } from '../../earth.js';
 import type { WindModel } from '../../model/wind.js';
+import type { Arithmetic } from './arithmetic.js';
 import {
   type Layout,
   layoutOf,
@@ -32,8 +33,12 @@ export interface Moments {
 }
 
 /** Builds the tables of a storm as they are needed. */
-export function momentsOf(model: WindModel, timeline: Timeline): Moments {
+export function momentsOf(model: WindModel, timeline: Timeline, arithmetic: Arithmetic): Moments {
   const { layout, sampling, complete } = planTables(model, timeline);
+  arithmetic.reserve(
+    timeline.legs.reduce((sum, leg) => sum + (1 << (leg.depth - shiftOf(leg))) + 1, 0) *
+      (layout.rows * layout.speedStride + 4),
+  );
   const build = (timeMs: number): MomentTable => tableOf(model.fieldAt(timeMs), layout, sampling);
   const legTables: (readonly (readonly [number, MomentTable])[] | undefined)[] = new Array(timeline.legs.length);
   const slots = new Map<number, MomentTable>();
@@ -78,18 +83,25 @@ export function momentsOf(model: WindModel, timeline: Timeline): Moments {
   const tableAt = (index: number): MomentTable => {
     const leg = timeline.legOf(index);
     const number = timeline.legs.indexOf(leg);
-    const fineS = (leg.endMs - leg.startMs) / 1000 / (1 << leg.depth);
-    const shift = fineS > 0 ? Math.max(0, Math.min(leg.depth, Math.floor(Math.log2(SLOT_S / fineS)))) : 0;
+    const shift = shiftOf(leg);
     const slot = Math.round((index - leg.first) / (1 << shift));
     // slots of one leg have one spacing: its first index plus the slot's is unlike any other leg's
     const id = leg.first + number + slot;
     const known = slots.get(id);
     if (known) return known;
     const made = interpolated(tablesOfLeg(number), (slot * (1 << shift)) / (1 << leg.depth));
-    slots.set(id, made);
-    return made;
+    const placed = { ...made, speed: arithmetic.allocate(made.speed.length) };
+    placed.speed.set(made.speed);
+    slots.set(id, placed);
+    return placed;
   };
   return { layout, complete, tableAt };
+}
+
+/** Fine steps of a leg between two tables, as a power of two. */
+function shiftOf(leg: Leg): number {
+  const fineS = (leg.endMs - leg.startMs) / 1000 / (1 << leg.depth);
+  return fineS > 0 ? Math.max(0, Math.min(leg.depth, Math.floor(Math.log2(SLOT_S / fineS)))) : 0;
 }
 
 /** How many rows and harmonics the fields of this storm need. */
@@ -200,5 +212,7 @@ function interpolated(tables: readonly (readonly [number, MomentTable])[], at: n
     wind: mix(a.wind, b.wind),
     steepest: most(a.steepest, b.steepest),
     steepestWithTaper: most(a.steepestWithTaper, b.steepestWithTaper),
+    bent: most(a.bent, b.bent),
+    bentWithTaper: most(a.bentWithTaper, b.bentWithTaper),
   };
 }

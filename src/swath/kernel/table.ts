@@ -29,6 +29,9 @@ export interface MomentTable {
   /** rows: the largest gradient of the speed from this row outward, the taper left out; then the same with it */
   readonly steepest: Float32Array;
   readonly steepestWithTaper: Float32Array;
+  /** the same for the second derivative of the speed, m/s per m² */
+  readonly bent: Float32Array;
+  readonly bentWithTaper: Float32Array;
 }
 
 export const ROWS_PER_OCTAVE_BITS = 5;
@@ -83,6 +86,9 @@ export function tableOf(field: WindField, layout: Layout, sampling: Sampling): M
   const speed = new Float32Array(rows * speedStride);
   const wind = new Float32Array(rows * windStride);
   const gradient = new Float64Array(rows);
+  const curvature = new Float64Array(rows);
+  const slopes = new Float64Array(count);
+  let lastMiddle = 0;
   const winds = new Float64Array(2 * count);
   const speeds = new Float64Array(count);
   const lastSpeeds = new Float64Array(count);
@@ -113,27 +119,50 @@ export function tableOf(field: WindField, layout: Layout, sampling: Sampling): M
       speeds[i] = Math.sqrt(squared);
     }
     fourier(winds, 2, count, directions, harmonics, inverse, s, speed, row * speedStride, 0);
-    let radial = 0;
+    const arc = Math.max((2 * Math.PI * radiusM) / count, 0.2 * radiusOfMaxWindM);
+    const middle = 0.5 * (radiusM + lastRadius);
+    let [radial, bend] = [0, 0];
     for (let i = 0; i < count; i++) {
-      around = Math.max(around, Math.abs(speeds[i]! - speeds[(i + 1) % count]!));
-      if (row > 0) radial = Math.max(radial, Math.abs(speeds[i]! - lastSpeeds[i]!) / (radiusM - lastRadius));
+      const next = speeds[(i + 1) % count]!;
+      const previous = speeds[(i + count - 1) % count]!;
+      around = Math.max(around, Math.abs(speeds[i]! - next));
+      if (row > 0) {
+        const slope = (speeds[i]! - lastSpeeds[i]!) / (radiusM - lastRadius);
+        radial = Math.max(radial, Math.abs(slope));
+        const outward = row > 1 ? Math.abs(slope - slopes[i]!) / (middle - lastMiddle) : 0;
+        bend = Math.max(
+          bend,
+          outward,
+          Math.abs(slope) / radiusM + Math.abs(next - 2 * speeds[i]! + previous) / (arc * arc),
+        );
+        slopes[i] = slope;
+      }
       lastSpeeds[i] = speeds[i]!;
     }
-    const arc = (2 * Math.PI * radiusM) / count;
-    gradient[row] = Math.hypot(radial, around / Math.max(arc, 0.2 * radiusOfMaxWindM));
+    gradient[row] = Math.hypot(radial, around / arc);
+    curvature[row] = bend;
     lastRadius = radiusM;
+    lastMiddle = middle;
   }
   const steepest = new Float32Array(rows);
   const steepestWithTaper = new Float32Array(rows);
   const taperX = (0.9 * field.outerRadiusM) / radiusOfMaxWindM;
-  let [inner, all] = [0, 0];
+  const bent = new Float32Array(rows);
+  const bentWithTaper = new Float32Array(rows);
+  let [inner, all, innerBend, allBend] = [0, 0, 0, 0];
   for (let row = rows - 1; row >= 0; row--) {
     all = Math.max(all, gradient[row]!);
-    if (Math.sqrt(rowX(row)) < taperX) inner = Math.max(inner, gradient[row]!);
+    allBend = Math.max(allBend, curvature[row]!);
+    if (Math.sqrt(rowX(row)) < taperX) {
+      inner = Math.max(inner, gradient[row]!);
+      innerBend = Math.max(innerBend, curvature[row]!);
+    }
     steepest[row] = inner;
     steepestWithTaper[row] = all;
+    bent[row] = innerBend;
+    bentWithTaper[row] = allBend;
   }
-  return { speed, wind, steepest, steepestWithTaper };
+  return { speed, wind, steepest, steepestWithTaper, bent, bentWithTaper };
 }
 
 /** Fourier coefficients of values on a circle: mean, then for each harmonic the sine and cosine part over s. */

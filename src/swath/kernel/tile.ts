@@ -1,49 +1,48 @@
 import { EARTH_RADIUS_M } from '../../earth.js';
+import type { Arithmetic } from './arithmetic.js';
 import type { Moments } from './moments.js';
 import { FIRST_EXPONENT, type Layout, type MomentTable, ROWS_PER_OCTAVE_BITS } from './table.js';
+import { MOST_CELLS_OF_TILE } from './tile-size.js';
 import type { Timeline } from './timeline.js';
 
-/** Most cells of one tile. */
-export const MOST_CELLS_OF_TILE = 256;
 /** A step moves the storm by at most this share of the distance from it (or of its radius of maximum wind). */
 const STEP_SHARE = 0.12;
 /** A step changes the maximum wind by at most this, m/s, and R by at most this share. */
 const STEP_CHANGE_MPS = 2;
 const STEP_GROWTH = 0.06;
+/** What the tables' rounding may hide, m/s. */
+const ROUNDING_MPS = 0.02;
+/** A parabola is trusted when the wind at its vertex is this near to it, m/s. */
+const PARABOLA_MPS = 0.01;
+/** A second maximum in time within this share of the first is looked at too. */
+const RIVAL_SHARE = 0.95;
 /** Longest step, s. */
 const LONGEST_STEP_S = 3600;
 
-/** The cells of a tile as unit vectors, and what was found for each. */
+/** The cells of a tile, and what was found for each. The arrays of cells and hours are the kernel's. */
 export interface Tile {
   /** cells in use */
   count: number;
-  readonly x: Float32Array;
-  readonly y: Float32Array;
-  readonly z: Float32Array;
-  /** results: peak wind m/s, its time in seconds after the timeline's start, its direction as east and north parts */
+  /** peak wind, m/s; 0 for none */
   readonly windMps: Float32Array;
+  /** its time, s after the timeline's start */
   readonly peakS: Float64Array;
+  /** moment of the timeline nearest to it */
+  readonly peakIndex: Int32Array;
+  /** its parts in the frame at the storm's centre */
   readonly eastMps: Float32Array;
   readonly northMps: Float32Array;
-  /** moment of the timeline nearest to the peak */
-  readonly peakIndex: Int32Array;
-  /** hours above each threshold */
-  readonly hours: readonly Float32Array[];
 }
 
-export function newTile(thresholds: number): Tile {
+export function newTile(): Tile {
   const floats = (): Float32Array => new Float32Array(MOST_CELLS_OF_TILE);
   return {
     count: 0,
-    x: floats(),
-    y: floats(),
-    z: floats(),
     windMps: floats(),
     peakS: new Float64Array(MOST_CELLS_OF_TILE),
+    peakIndex: new Int32Array(MOST_CELLS_OF_TILE),
     eastMps: floats(),
     northMps: floats(),
-    peakIndex: new Int32Array(MOST_CELLS_OF_TILE),
-    hours: Array.from({ length: thresholds }, floats),
   };
 }
 
@@ -105,10 +104,19 @@ function squaredAt(table: MomentTable, layout: Layout, east: number, north: numb
   return value;
 }
 
+/** Where a tile lies. */
+export interface TileBounds {
+  readonly centre: readonly [number, number, number];
+  /** every cell is within this distance of the centre, m */
+  readonly radiusM: number;
+  /** unit vectors of four corners; every cell lies between them */
+  readonly corners: Float64Array;
+}
+
 /** A storm on its way past tiles. */
 export interface TileRunner {
-  /** fills the tile's results from its cells; `centre` and `radiusM` bound them */
-  readonly run: (tile: Tile, centre: readonly [number, number, number], radiusM: number) => boolean;
+  /** fills the tile's results from its cells; false where the storm never comes near */
+  readonly run: (tile: Tile, bounds: TileBounds) => boolean;
 }
 
 /**
@@ -123,6 +131,7 @@ export interface TileRunner {
 export function tileRunner(
   timeline: Timeline,
   moments: Moments,
+  arithmetic: Arithmetic,
   options: { outerRadiusM: number; thresholdsMps: readonly number[]; hours: boolean },
 ): TileRunner {
   const { layout } = moments;
@@ -134,38 +143,38 @@ export function tileRunner(
   const walkMs: number[] = [];
   const centreMps: number[] = [];
   const slack: number[] = [];
-  const within: number[] = [];
+  const margin: number[] = [];
+  const cornerMps: number[] = [];
   const broken: boolean[] = [];
   const wanted: number[] = [];
-  const n = MOST_CELLS_OF_TILE;
-  const best = new Float64Array(n);
-  const bestAt = new Int32Array(n);
-  const before = new Float64Array(n);
-  const after = new Float64Array(n);
-  const last = new Float64Array(n);
-  const now = new Float64Array(n);
+  const rivals = new Int32Array(5);
+  const found = { peak: 0, index: 0 };
   const startMs = timeline.timeMs(0);
 
   return { run };
 
-  function run(tile: Tile, centre: readonly [number, number, number], radiusM: number): boolean {
-    tile.windMps.fill(0, 0, tile.count);
-    tile.peakS.fill(Number.NaN, 0, tile.count);
-    tile.eastMps.fill(0, 0, tile.count);
-    tile.northMps.fill(0, 0, tile.count);
-    for (const hours of tile.hours) hours.fill(0, 0, tile.count);
-    const lowest = walk(centre, radiusM);
+  function run(tile: Tile, { centre, radiusM, corners }: TileBounds): boolean {
+    walk(centre, radiusM, corners);
     if (walkIndex.length === 0) return false;
-    choose(lowest);
-    evaluate(tile);
+    const { arrays } = arithmetic;
+    const quads = (tile.count + 3) >> 2;
+    // cells beyond the last of a group are copies of none: the earth's centre, where there is no wind
+    for (let i = tile.count; i < 4 * quads; i++) {
+      arrays.x[i] = 0;
+      arrays.y[i] = 0;
+      arrays.z[i] = 0;
+    }
+    for (const part of arrays.state) part.fill(-1, 0, 4 * quads);
+    if (options.hours) for (let h = 0; h < thresholdsMps.length; h++) arrays.hours[h]!.fill(0, 0, 4 * quads);
+    choose();
+    evaluate(tile, quads);
     finish(tile);
     return true;
   }
 
-  /** Walks the storm's way; returns the lower bound of every cell's peak. */
-  function walk(centre: readonly [number, number, number], tileM: number): number {
+  /** Walks the storm's way with steps that follow its distance. */
+  function walk(centre: readonly [number, number, number], tileM: number, corners: Float64Array): void {
     walkIndex.length = 0;
-    let lowest = 0;
     let index = 0;
     let gap = true;
     let number = 0;
@@ -213,13 +222,23 @@ export function tileRunner(
         const k = walkIndex.length - 1;
         walkMs[k] = leg.startMs + ((leg.endMs - leg.startMs) * (index - leg.first)) / (1 << leg.depth);
         centreMps[k] = wind;
-        within[k] = gradient * tileM;
         slack[k] = gradient * (tileM + moveM) + change;
         broken[k] = gap;
         gap = false;
-        lowest = Math.max(lowest, wind - gradient * tileM);
+        const bend = 1.1 * (distanceM + reachM < taperM ? table.bent : table.bentWithTaper)[row]!;
+        margin[k] = Math.min(bend * (0.5 * tileM * tileM + 0.125 * moveM * moveM), slack[k]!) + ROUNDING_MPS;
+        for (let q = 0; q < 4; q++) {
+          const [cx, cy, cz] = [corners[3 * q]!, corners[3 * q + 1]!, corners[3 * q + 2]!];
+          const squared = squaredAt(
+            table,
+            layout,
+            cx * frame[3]! + cy * frame[4]!,
+            cx * frame[5]! + cy * frame[6]! + cz * frame[7]!,
+          );
+          cornerMps[4 * k + q] = Math.sqrt(Math.max(0, squared)) * frame[9]!;
+        }
       }
-      if (index === end) return lowest;
+      if (index === end) return;
       const local = index - leg.first;
       const full = 1 << leg.depth;
       // the longest dyadic step that fits, starts on its own grid and ends within the leg
@@ -229,17 +248,26 @@ export function tileRunner(
     }
   }
 
-  /** Marks the moments at which the cells are evaluated: 1 for the peak, 2 for the hours. */
-  function choose(lowest: number): void {
+  /**
+   * Marks the moments at which the cells are evaluated: 1 for the peak, 2 for the hours. A moment holds no peak when at
+   * another one, the strongest at the centre or at a corner, all four corners have more wind by more than the margins:
+   * what a cell between the corners may differ from their interpolation, and what may rise between two steps.
+   */
+  function choose(): void {
     const count = walkIndex.length;
-    for (let k = 0; k < count; k++) wanted[k] = 0;
+    rivals.fill(0);
+    for (let k = 0; k < count; k++) {
+      wanted[k] = 0;
+      if (centreMps[k]! > centreMps[rivals[4]!]!) rivals[4] = k;
+      for (let q = 0; q < 4; q++) if (cornerMps[4 * k + q]! > cornerMps[4 * rivals[q]! + q]!) rivals[q] = k;
+    }
     for (let k = 0; k < count; k++) {
       const joined = k + 1 < count && !broken[k + 1];
+      if (!beaten(k)) {
+        for (let j = Math.max(0, k - 1); j <= Math.min(count - 1, k + 1); j++) wanted[j]! |= 1;
+      }
       const strongest = joined ? Math.max(centreMps[k]!, centreMps[k + 1]!) : centreMps[k]!;
       const upper = strongest + (joined ? Math.max(slack[k]!, slack[k + 1]!) : slack[k]!);
-      if (upper >= lowest && upper > 0) {
-        for (let j = Math.max(0, k - 1); j <= Math.min(count - 1, k + 2); j++) wanted[j]! |= 1;
-      }
       if (options.hours && joined) {
         const lower = Math.min(centreMps[k]! - slack[k]!, centreMps[k + 1]! - slack[k + 1]!);
         for (const threshold of thresholdsMps) {
@@ -253,13 +281,26 @@ export function tileRunner(
     }
   }
 
-  function evaluate(tile: Tile): void {
-    const { count } = tile;
-    best.fill(-1, 0, count);
-    bestAt.fill(-1, 0, count);
-    before.fill(-1, 0, count);
-    after.fill(-1, 0, count);
-    let lastEvaluated = -2;
+  function beaten(k: number): boolean {
+    for (const rival of rivals) {
+      const m = margin[k]! + margin[rival]!;
+      const [i, j] = [4 * k, 4 * rival];
+      if (
+        cornerMps[i]! + m < cornerMps[j]! &&
+        cornerMps[i + 1]! + m < cornerMps[j + 1]! &&
+        cornerMps[i + 2]! + m < cornerMps[j + 2]! &&
+        cornerMps[i + 3]! + m < cornerMps[j + 3]!
+      )
+        return true;
+    }
+    return false;
+  }
+
+  function evaluate(tile: Tile, quads: number): void {
+    const groups = layout.speedStride / 4;
+    const lastRow = layout.rows - 2;
+    // buffers of the two moments before; −1 for none
+    let [first, middle, middleK] = [-1, -1, -1];
     for (let k = 0; k < walkIndex.length; k++) {
       const joined = k > 0 && !broken[k];
       const stepHours = joined ? (walkMs[k]! - walkMs[k - 1]!) / 3_600_000 : 0;
@@ -267,34 +308,30 @@ export function tileRunner(
         if (options.hours && joined) wholeHours(tile, k, stepHours);
         continue;
       }
-      speeds(tile, walkIndex[k]!);
-      const follows = joined && lastEvaluated === k - 1;
-      for (let i = 0; i < count; i++) {
-        const value = now[i]!;
-        if (value > best[i]!) {
-          best[i] = value;
-          bestAt[i] = k;
-          before[i] = follows ? last[i]! : -1;
-          after[i] = -1;
-        } else if (follows && bestAt[i] === k - 1) {
-          after[i] = value;
-        }
-      }
+      const index = walkIndex[k]!;
+      const to = first !== 0 && middle !== 0 ? 0 : first !== 1 && middle !== 1 ? 1 : 2;
+      arithmetic.sample(quads, moments.tableAt(index).speed, groups, lastRow, timeline.frame(index), to);
+      const follows = joined && middleK === k - 1;
+      if (middle >= 0) passed(quads, first, middle, follows ? to : -1, middleK);
       if (options.hours && joined) {
         if (follows) {
-          for (let h = 0; h < thresholdsMps.length; h++) {
-            const hours = tile.hours[h]!;
-            const threshold = thresholdsMps[h]!;
-            for (let i = 0; i < count; i++) {
-              const [low, high] = now[i]! < last[i]! ? [now[i]!, last[i]!] : [last[i]!, now[i]!];
-              hours[i]! += stepHours * Math.min(1, Math.max(0, (high - threshold) / Math.max(1e-6, high - low)));
-            }
-          }
+          for (let h = 0; h < thresholdsMps.length; h++)
+            arithmetic.addHours(quads, middle, to, h, thresholdsMps[h]!, stepHours);
         } else wholeHours(tile, k, stepHours);
       }
-      last.set(now.subarray(0, count));
-      lastEvaluated = k;
+      first = follows ? middle : -1;
+      middle = to;
+      middleK = k;
     }
+    if (middle >= 0) passed(quads, first, middle, -1, middleK);
+  }
+
+  /** Looks for local maxima at a moment whose neighbours are known. */
+  function passed(quads: number, first: number, middle: number, last: number, k: number): void {
+    const index = walkIndex[k]!;
+    const t0 = first >= 0 ? walkIndex[k - 1]! - index : -1;
+    const t2 = last >= 0 ? walkIndex[k + 1]! - index : 1;
+    arithmetic.maxima(quads, first, middle, last, index, t0, t2);
   }
 
   /** A step in which no threshold lies between the bounds: all cells are above it or none is. */
@@ -302,73 +339,98 @@ export function tileRunner(
     const lower = Math.min(centreMps[k - 1]! - slack[k - 1]!, centreMps[k]! - slack[k]!);
     for (let h = 0; h < thresholdsMps.length; h++) {
       if (lower < thresholdsMps[h]!) continue;
-      const hours = tile.hours[h]!;
+      const hours = arithmetic.arrays.hours[h]!;
       for (let i = 0; i < tile.count; i++) hours[i]! += stepHours;
     }
   }
 
-  /** Winds of all cells of the tile at a moment, into `now`. */
-  function speeds(tile: Tile, index: number): void {
+  /** Wind of one cell at a moment. */
+  function speedAt(i: number, index: number): number {
     const frame = timeline.frame(index);
-    const table = moments.tableAt(index);
-    const maxWind = frame[9]!;
-    const [e0, e1, n0, n1, n2] = [frame[3]!, frame[4]!, frame[5]!, frame[6]!, frame[7]!];
-    const { x, y, z, count } = tile;
-    for (let i = 0; i < count; i++) {
-      const east = x[i]! * e0 + y[i]! * e1;
-      const north = x[i]! * n0 + y[i]! * n1 + z[i]! * n2;
-      now[i] = Math.sqrt(Math.max(0, squaredAt(table, layout, east, north))) * maxWind;
-    }
+    const east = arithmetic.arrays.x[i]! * frame[3]! + arithmetic.arrays.y[i]! * frame[4]!;
+    const north =
+      arithmetic.arrays.x[i]! * frame[5]! + arithmetic.arrays.y[i]! * frame[6]! + arithmetic.arrays.z[i]! * frame[7]!;
+    return Math.sqrt(Math.max(0, squaredAt(moments.tableAt(index), layout, east, north))) * frame[9]!;
   }
 
-  /** Peak between moments by a parabola, and the wind's direction at the nearest moment. */
+  /** The peak between the moments that were evaluated, and the wind's direction then. */
   function finish(tile: Tile): void {
+    const [best, bestMoment, second, secondMoment] = arithmetic.arrays.state;
     for (let i = 0; i < tile.count; i++) {
-      const k = bestAt[i]!;
-      if (k < 0 || best[i]! <= 0) continue;
-      let peak = best[i]!;
-      let ms = walkMs[k]!;
-      const index = walkIndex[k]!;
-      const leg = timeline.legOf(index);
-      if (before[i]! >= 0 && after[i]! >= 0 && index !== leg.first) {
-        const [t0, t2] = [walkMs[k - 1]! - ms, walkMs[k + 1]! - ms];
-        const d0 = before[i]! - peak;
-        const d2 = after[i]! - peak;
-        // peak + b t + c t² through the three
-        const c = (d0 * t2 - d2 * t0) / (t0 * t2 * (t0 - t2));
-        const b = (d0 - c * t0 * t0) / t0;
-        if (c < 0) {
-          const vertex = Math.min(t2, Math.max(t0, -b / (2 * c)));
-          peak += b * vertex + c * vertex * vertex;
-          ms += vertex;
+      if (!(best[i]! > 0)) {
+        tile.windMps[i] = 0;
+        continue;
+      }
+      settle(i, best[i]!, bestMoment[i]!);
+      const { peak, index } = found;
+      // the estimates may be off where the wind has a corner: then the second may be the first
+      if (second[i]! > RIVAL_SHARE * best[i]!) {
+        settle(i, second[i]!, secondMoment[i]!);
+        if (found.peak <= peak) {
+          found.peak = peak;
+          found.index = index;
         }
       }
-      tile.windMps[i] = peak;
-      tile.peakS[i] = (ms - startMs) / 1000;
-      direction(tile, i, ms, leg);
+      const nearest = Math.round(found.index);
+      tile.windMps[i] = found.peak;
+      tile.peakS[i] = (timeline.timeMs(found.index) - startMs) / 1000;
+      tile.peakIndex[i] = nearest;
+      direction(tile, i, nearest);
     }
   }
 
-  function direction(
-    tile: Tile,
-    i: number,
-    ms: number,
-    near: { startMs: number; endMs: number; first: number; depth: number },
-  ): void {
-    const leg = ms < near.startMs ? timeline.legOf(near.first - 1) : near;
-    const span = leg.endMs - leg.startMs;
-    const index =
-      span === 0
-        ? leg.first
-        : leg.first +
-          Math.min(
-            (1 << leg.depth) - (ms < near.startMs ? 1 : 0),
-            Math.round(((ms - leg.startMs) / span) * (1 << leg.depth)),
-          );
-    tile.peakIndex[i] = index;
+  /** A peak that was estimated by a parabola, checked where it was put, and searched for where it does not hold. */
+  function settle(i: number, estimate: number, moment: number): void {
+    const near = Math.round(moment);
+    if (Math.abs(speedAt(i, near) - estimate) <= PARABOLA_MPS) {
+      found.peak = estimate;
+      found.index = moment;
+      return;
+    }
+    let k = 0;
+    while (k + 1 < walkIndex.length && walkIndex[k + 1]! <= near) k++;
+    const low = broken[k] ? walkIndex[k]! : walkIndex[k - 1]!;
+    const next = k + 1 < walkIndex.length && !broken[k + 1] ? k + 1 : k;
+    const high = next + 1 < walkIndex.length && !broken[next + 1] ? walkIndex[next + 1]! : walkIndex[next]!;
+    search(i, low, near, high);
+  }
+
+  /** Halves the wider side around the best moment until neighbours are left; a parabola through the last three. */
+  function search(i: number, from: number, at: number, to: number): void {
+    let [low, middle, high] = [from, at, to];
+    let [before, peak, after] = [speedAt(i, low), speedAt(i, middle), speedAt(i, high)];
+    while (high - middle > 1 || middle - low > 1) {
+      const right = high - middle > middle - low;
+      const probe = right ? (middle + high) >> 1 : (low + middle) >> 1;
+      const value = speedAt(i, probe);
+      if (value > peak) {
+        if (right) [low, before] = [middle, peak];
+        else [high, after] = [middle, peak];
+        [middle, peak] = [probe, value];
+      } else if (right) [high, after] = [probe, value];
+      else [low, before] = [probe, value];
+    }
+    found.peak = peak;
+    found.index = middle;
+    if (before > peak || after > peak) {
+      found.peak = Math.max(before, after);
+      found.index = before > after ? low : high;
+      return;
+    }
+    const bend = 0.5 * (before + after) - peak;
+    if (low === middle || high === middle || !(bend < -1e-9)) return;
+    const slope = 0.5 * (after - before);
+    const rise = (-0.25 * slope * slope) / bend;
+    // a corner has no vertex above it
+    if (rise > 0.25 * Math.min(peak - before, peak - after) + 0.02) return;
+    found.peak = peak + rise;
+    found.index = middle - (0.5 * slope) / bend;
+  }
+
+  function direction(tile: Tile, i: number, index: number): void {
     const frame = timeline.frame(index);
     const { wind } = moments.tableAt(index);
-    const [x, y, z] = [tile.x[i]!, tile.y[i]!, tile.z[i]!];
+    const [x, y, z] = [arithmetic.arrays.x[i]!, arithmetic.arrays.y[i]!, arithmetic.arrays.z[i]!];
     const east = x * frame[3]! + y * frame[4]!;
     const north = x * frame[5]! + y * frame[6]! + z * frame[7]!;
     const s2 = east * east + north * north;

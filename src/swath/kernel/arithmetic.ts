@@ -1,0 +1,54 @@
+/** Views of one tile's arrays in the kernel's memory; each holds `MOST_CELLS_OF_TILE` floats. */
+export interface KernelArrays {
+  readonly x: Float32Array;
+  readonly y: Float32Array;
+  readonly z: Float32Array;
+  /** winds of three moments in turn */
+  readonly winds: readonly [Float32Array, Float32Array, Float32Array];
+  /** first estimate, its moment, second estimate, its moment */
+  readonly state: readonly [Float32Array, Float32Array, Float32Array, Float32Array];
+  readonly hours: readonly Float32Array[];
+}
+
+/** A table in the kernel's memory. */
+export interface KernelTable {
+  readonly values: Float32Array;
+}
+
+/** The hot loops: WebAssembly, or its twin in plain JavaScript with the same bits. */
+export interface Arithmetic {
+  readonly name: 'webassembly' | 'javascript';
+  readonly arrays: KernelArrays;
+  /** floats in the kernel's memory, 16-byte aligned; all are given back by {@link Arithmetic.release} */
+  readonly allocate: (length: number) => Float32Array;
+  readonly release: () => void;
+  /** makes room for tables before any is allocated: floats in all */
+  readonly reserve: (floats: number) => void;
+  /** winds of the first `quads` × 4 cells at a moment into `winds[to]` */
+  readonly sample: (
+    quads: number,
+    table: Float32Array,
+    groups: number,
+    lastRow: number,
+    frame: Float64Array,
+    to: number,
+  ) => void;
+  /** see `maxima` in assembly/kernel.ts; first, middle and last are indices of `winds`, −1 where there is none */
+  readonly maxima: (
+    quads: number,
+    first: number,
+    middle: number,
+    last: number,
+    moment: number,
+    t0: number,
+    t2: number,
+  ) => void;
+  readonly addHours: (
+    quads: number,
+    from: number,
+    to: number,
+    hours: number,
+    threshold: number,
+    stepHours: number,
+  ) => void;
+}

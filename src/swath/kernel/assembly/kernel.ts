@@ -1,0 +1,196 @@
+// The hot loops of the swath on four cells at a time. `twin.ts` does the same in plain JavaScript, bit for bit: every
+// operation here is a single-precision one in the same order. Pointers are byte offsets; arrays hold f32 and are padded
+// to whole groups of four.
+
+const FIRST_X: f32 = 0.00390625; // 2^-8, x of the second row
+const PER_FIRST_X: f32 = 256;
+const SHIFT: i32 = 18; // 23 bits of fraction less 5 bits of rows in an octave
+const FIRST_WORD: i32 = ((127 - 8) << 5) - 1;
+const FRACTION: i32 = (1 << 18) - 1;
+const FRACTION_SCALE: f32 = 1.0 / 262144.0;
+
+/** Room for the products s·cos kφ and s·sin kφ of four cells: 1 + 2·10, padded. */
+const BASIS: usize = memory.data(24 * 16, 16);
+
+/**
+ * Winds of cells at one moment.
+ * @param cells x, y, z of the cells: three arrays of `pitch` bytes
+ * @param table rows of `groups` × 4 floats
+ */
+export function sample(
+  cells: usize, pitch: usize, quads: i32, table: usize, groups: i32, lastRow: i32,
+  e0: f32, e1: f32, n0: f32, n1: f32, n2: f32, maxWind: f32, out: usize,
+): void {
+  const ve0 = f32x4.splat(e0);
+  const ve1 = f32x4.splat(e1);
+  const vn0 = f32x4.splat(n0);
+  const vn1 = f32x4.splat(n1);
+  const vn2 = f32x4.splat(n2);
+  const vmax = f32x4.splat(maxWind);
+  const zero = f32x4.splat(0);
+  const stride: i32 = groups << 4;
+  for (let q = 0; q < quads; q++) {
+    const at = <usize>q << 4;
+    const x = v128.load(cells + at);
+    const y = v128.load(cells + pitch + at);
+    const z = v128.load(cells + 2 * pitch + at);
+    const east = f32x4.add(f32x4.mul(x, ve0), f32x4.mul(y, ve1));
+    const north = f32x4.add(f32x4.add(f32x4.mul(x, vn0), f32x4.mul(y, vn1)), f32x4.mul(z, vn2));
+    const s2 = f32x4.add(f32x4.mul(east, east), f32x4.mul(north, north));
+    // row and share of the way to the next from the number's bits
+    const inner = f32x4.lt(s2, f32x4.splat(FIRST_X));
+    const row0 = i32x4.sub(i32x4.shr_s(s2, SHIFT), i32x4.splat(FIRST_WORD));
+    const beyond = i32x4.ge_s(row0, i32x4.splat(lastRow));
+    const row1 = i32x4.min_s(row0, i32x4.splat(lastRow));
+    const row = v128.andnot(row1, inner);
+    const share0 = f32x4.mul(f32x4.convert_i32x4_s(v128.and(s2, i32x4.splat(FRACTION))), f32x4.splat(FRACTION_SCALE));
+    const share1 = v128.andnot(share0, beyond);
+    const share = v128.bitselect(f32x4.mul(s2, f32x4.splat(PER_FIRST_X)), share1, inner);
+    const p0 = table + <usize>(i32x4.extract_lane(row, 0) * stride);
+    const p1 = table + <usize>(i32x4.extract_lane(row, 1) * stride);
+    const p2 = table + <usize>(i32x4.extract_lane(row, 2) * stride);
+    const p3 = table + <usize>(i32x4.extract_lane(row, 3) * stride);
+    const t0 = f32x4.splat(f32x4.extract_lane(share, 0));
+    const t1 = f32x4.splat(f32x4.extract_lane(share, 1));
+    const t2 = f32x4.splat(f32x4.extract_lane(share, 2));
+    const t3 = f32x4.splat(f32x4.extract_lane(share, 3));
+    let value: v128;
+    if (groups == 1) {
+      const a = between(p0, 16, t0);
+      const b = between(p1, 16, t1);
+      const c = between(p2, 16, t2);
+      const d = between(p3, 16, t3);
+      const ab01 = v128.shuffle<f32>(a, b, 0, 4, 1, 5);
+      const cd01 = v128.shuffle<f32>(c, d, 0, 4, 1, 5);
+      const ab2 = v128.shuffle<f32>(a, b, 2, 6, 2, 6);
+      const cd2 = v128.shuffle<f32>(c, d, 2, 6, 2, 6);
+      const mean = v128.shuffle<f32>(ab01, cd01, 0, 1, 4, 5);
+      const sine = v128.shuffle<f32>(ab01, cd01, 2, 3, 6, 7);
+      const cosine = v128.shuffle<f32>(ab2, cd2, 0, 1, 4, 5);
+      value = f32x4.add(f32x4.add(mean, f32x4.mul(east, sine)), f32x4.mul(north, cosine));
+    } else {
+      basis(east, north, s2, groups);
+      value = zero;
+      for (let g = 0; g < groups; g++) {
+        const offset = <usize>g << 4;
+        const a = between(p0 + offset, stride, t0);
+        const b = between(p1 + offset, stride, t1);
+        const c = between(p2 + offset, stride, t2);
+        const d = between(p3 + offset, stride, t3);
+        const ab01 = v128.shuffle<f32>(a, b, 0, 4, 1, 5);
+        const cd01 = v128.shuffle<f32>(c, d, 0, 4, 1, 5);
+        const ab23 = v128.shuffle<f32>(a, b, 2, 6, 3, 7);
+        const cd23 = v128.shuffle<f32>(c, d, 2, 6, 3, 7);
+        const from = BASIS + (<usize>g << 6);
+        value = f32x4.add(value, f32x4.mul(v128.shuffle<f32>(ab01, cd01, 0, 1, 4, 5), v128.load(from)));
+        value = f32x4.add(value, f32x4.mul(v128.shuffle<f32>(ab01, cd01, 2, 3, 6, 7), v128.load(from, 16)));
+        value = f32x4.add(value, f32x4.mul(v128.shuffle<f32>(ab23, cd23, 0, 1, 4, 5), v128.load(from, 32)));
+        value = f32x4.add(value, f32x4.mul(v128.shuffle<f32>(ab23, cd23, 2, 3, 6, 7), v128.load(from, 48)));
+      }
+    }
+    v128.store(out + at, f32x4.mul(f32x4.sqrt(f32x4.max(value, zero)), vmax));
+  }
+}
+
+// @ts-ignore: decorator
+@inline
+function between(row: usize, stride: i32, t: v128): v128 {
+  const a = v128.load(row);
+  return f32x4.add(a, f32x4.mul(t, f32x4.sub(v128.load(row + <usize>stride), a)));
+}
+
+/** 1, s sin φ, s cos φ, s sin 2φ, s cos 2φ … of four cells. */
+function basis(east: v128, north: v128, s2: v128, groups: i32): void {
+  const zero = f32x4.splat(0);
+  const inverse = v128.bitselect(f32x4.div(f32x4.splat(1), f32x4.sqrt(s2)), zero, f32x4.gt(s2, zero));
+  const c = f32x4.mul(north, inverse);
+  const s = f32x4.mul(east, inverse);
+  let e = east;
+  let n = north;
+  v128.store(BASIS, f32x4.splat(1));
+  v128.store(BASIS + 16, e);
+  v128.store(BASIS + 32, n);
+  const columns = groups << 2;
+  for (let k = 3; k < columns; k += 2) {
+    const nextE = f32x4.add(f32x4.mul(e, c), f32x4.mul(n, s));
+    n = f32x4.sub(f32x4.mul(n, c), f32x4.mul(e, s));
+    e = nextE;
+    const to = BASIS + (<usize>k << 4);
+    v128.store(to, e);
+    v128.store(to, n, 16);
+  }
+}
+
+/**
+ * Local maxima in time of three moments that follow each other: the middle one where it is above the first and not below
+ * the last. Of all that pass, the two highest are kept for each cell, by the vertex of their parabola.
+ * @param state per cell: first estimate, first moment, second estimate, second moment; four arrays of `pitch` bytes
+ * @param moment number of the middle moment; t0 < 0 < t2: the other two as seen from it
+ * @param has0, has2 whether the first and the last moment exist; a missing one counts as lower
+ */
+export function maxima(
+  first: usize, middle: usize, last: usize, state: usize, pitch: usize, quads: i32,
+  moment: f32, t0: f32, t2: f32, has0: i32, has2: i32,
+): void {
+  const lowest = f32x4.splat(-1);
+  const zero = f32x4.splat(0);
+  const w0 = f32x4.splat(t0);
+  const w2 = f32x4.splat(t2);
+  const divisor = f32x4.splat(1 / (t0 * t2 * (t0 - t2)));
+  const perT0 = f32x4.splat(1 / t0);
+  const vmoment = f32x4.splat(moment);
+  const both = has0 != 0 && has2 != 0;
+  for (let q = 0; q < quads; q++) {
+    const at = <usize>q << 4;
+    const b = v128.load(middle + at);
+    const a = has0 != 0 ? v128.load(first + at) : lowest;
+    const c = has2 != 0 ? v128.load(last + at) : lowest;
+    const peak = v128.and(f32x4.gt(b, a), f32x4.ge(b, c));
+    if (!v128.any_true(peak)) continue;
+    let estimate = b;
+    let moments = vmoment;
+    if (both) {
+      const d0 = f32x4.sub(a, b);
+      const d2 = f32x4.sub(c, b);
+      const bend = f32x4.mul(f32x4.sub(f32x4.mul(d0, w2), f32x4.mul(d2, w0)), divisor);
+      const slope = f32x4.mul(f32x4.sub(d0, f32x4.mul(bend, f32x4.mul(w0, w0))), perT0);
+      const falls = f32x4.lt(bend, zero);
+      const vertex0 = f32x4.div(slope, f32x4.mul(f32x4.splat(-2), bend));
+      const vertex1 = f32x4.min(w2, f32x4.max(w0, vertex0));
+      const vertex = v128.bitselect(vertex1, zero, falls);
+      estimate = f32x4.add(b, f32x4.add(f32x4.mul(slope, vertex), f32x4.mul(bend, f32x4.mul(vertex, vertex))));
+      estimate = v128.bitselect(estimate, b, falls);
+      moments = f32x4.add(vmoment, vertex);
+    }
+    const bestAt = state + at;
+    const best = v128.load(bestAt);
+    const bestMoment = v128.load(bestAt + pitch);
+    const second = v128.load(bestAt + 2 * pitch);
+    const secondMoment = v128.load(bestAt + 3 * pitch);
+    const wins = v128.and(peak, f32x4.gt(estimate, best));
+    const follows = v128.andnot(v128.and(peak, f32x4.gt(estimate, second)), wins);
+    v128.store(bestAt, v128.bitselect(estimate, best, wins));
+    v128.store(bestAt + pitch, v128.bitselect(moments, bestMoment, wins));
+    v128.store(bestAt + 2 * pitch, v128.bitselect(best, v128.bitselect(estimate, second, follows), wins));
+    v128.store(bestAt + 3 * pitch, v128.bitselect(bestMoment, v128.bitselect(moments, secondMoment, follows), wins));
+  }
+}
+
+/** Adds the hours of one step in which a wind that runs straight from `a` to `b` is at or above a threshold. */
+export function addHours(a: usize, b: usize, hours: usize, quads: i32, threshold: f32, stepHours: f32): void {
+  const one = f32x4.splat(1);
+  const zero = f32x4.splat(0);
+  const least = f32x4.splat(0.000001);
+  const vthreshold = f32x4.splat(threshold);
+  const vstep = f32x4.splat(stepHours);
+  for (let q = 0; q < quads; q++) {
+    const at = <usize>q << 4;
+    const from = v128.load(a + at);
+    const to = v128.load(b + at);
+    const high = f32x4.max(from, to);
+    const low = f32x4.min(from, to);
+    const share = f32x4.div(f32x4.sub(high, vthreshold), f32x4.max(f32x4.sub(high, low), least));
+    const part = f32x4.min(one, f32x4.max(zero, share));
+    v128.store(hours + at, f32x4.add(v128.load(hours + at), f32x4.mul(vstep, part)));
+  }
+}

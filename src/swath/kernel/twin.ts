@@ -1,0 +1,147 @@
+import type { Arithmetic, KernelArrays } from './arithmetic.js';
+import { FIRST_EXPONENT, ROWS_PER_OCTAVE_BITS } from './table.js';
+import { MOST_CELLS_OF_TILE, THRESHOLD_SLOTS } from './tile-size.js';
+
+const f = Math.fround;
+const FIRST_X = 2 ** FIRST_EXPONENT;
+const PER_FIRST_X = 1 / FIRST_X;
+const SHIFT = 23 - ROWS_PER_OCTAVE_BITS;
+const FIRST_WORD = ((127 + FIRST_EXPONENT) << ROWS_PER_OCTAVE_BITS) - 1;
+const FRACTION = (1 << SHIFT) - 1;
+const FRACTION_SCALE = 1 / (1 << SHIFT);
+const bits = new Float32Array(1);
+const word = new Int32Array(bits.buffer);
+
+/** The hot loops in plain JavaScript: every step rounded to single precision, in the order of assembly/kernel.ts. */
+export function twinArithmetic(): Arithmetic {
+  const floats = (): Float32Array => new Float32Array(MOST_CELLS_OF_TILE);
+  const arrays: KernelArrays = {
+    x: floats(),
+    y: floats(),
+    z: floats(),
+    winds: [floats(), floats(), floats()],
+    state: [floats(), floats(), floats(), floats()],
+    hours: Array.from({ length: THRESHOLD_SLOTS }, floats),
+  };
+  const products = new Float32Array(24);
+  return {
+    name: 'javascript',
+    arrays,
+    allocate: (length) => new Float32Array(length),
+    release: () => undefined,
+    reserve: () => undefined,
+    sample(quads, table, groups, lastRow, frame, to) {
+      const { x, y, z } = arrays;
+      const out = arrays.winds[to]!;
+      const [e0, e1] = [f(frame[3]!), f(frame[4]!)];
+      const [n0, n1, n2] = [f(frame[5]!), f(frame[6]!), f(frame[7]!)];
+      const maxWind = f(frame[9]!);
+      const stride = groups * 4;
+      for (let i = 0; i < quads * 4; i++) {
+        const cx = x[i]!;
+        const cy = y[i]!;
+        const east = f(f(cx * e0) + f(cy * e1));
+        const north = f(f(f(cx * n0) + f(cy * n1)) + f(z[i]! * n2));
+        const s2 = f(f(east * east) + f(north * north));
+        let row = 0;
+        let t: number;
+        if (s2 < FIRST_X) t = f(s2 * PER_FIRST_X);
+        else {
+          bits[0] = s2;
+          const w = word[0]!;
+          row = (w >> SHIFT) - FIRST_WORD;
+          t = f(f(w & FRACTION) * FRACTION_SCALE);
+          if (row >= lastRow) {
+            row = lastRow;
+            t = 0;
+          }
+        }
+        const a = row * stride;
+        const b = a + stride;
+        const mean = f(table[a]! + f(t * f(table[b]! - table[a]!)));
+        const sine = f(table[a + 1]! + f(t * f(table[b + 1]! - table[a + 1]!)));
+        const cosine = f(table[a + 2]! + f(t * f(table[b + 2]! - table[a + 2]!)));
+        let value: number;
+        if (groups === 1) value = f(f(mean + f(east * sine)) + f(north * cosine));
+        else {
+          basis(east, north, s2, stride);
+          value = 0;
+          for (let c = 0; c < stride; c++) {
+            const column = f(table[a + c]! + f(t * f(table[b + c]! - table[a + c]!)));
+            value = f(value + f(column * products[c]!));
+          }
+        }
+        out[i] = f(f(Math.sqrt(Math.max(value, 0))) * maxWind);
+      }
+    },
+    maxima(quads, first, middle, last, moment, t0, t2) {
+      const [best, bestMoment, second, secondMoment] = arrays.state;
+      const [w0, w2] = [f(t0), f(t2)];
+      const divisor = f(1 / f(f(w0 * w2) * f(w0 - w2)));
+      const perT0 = f(1 / w0);
+      const m = f(moment);
+      const both = first >= 0 && last >= 0;
+      const before = arrays.winds[Math.max(0, first)]!;
+      const now = arrays.winds[middle]!;
+      const after = arrays.winds[Math.max(0, last)]!;
+      for (let i = 0; i < quads * 4; i++) {
+        const b = now[i]!;
+        const a = first >= 0 ? before[i]! : -1;
+        const c = last >= 0 ? after[i]! : -1;
+        if (!(b > a && b >= c)) continue;
+        let estimate = b;
+        let at = m;
+        if (both) {
+          const d0 = f(a - b);
+          const d2 = f(c - b);
+          const bend = f(f(f(d0 * w2) - f(d2 * w0)) * divisor);
+          if (bend < 0) {
+            const slope = f(f(d0 - f(bend * f(w0 * w0))) * perT0);
+            const vertex = Math.min(w2, Math.max(w0, f(slope / f(-2 * bend))));
+            estimate = f(b + f(f(slope * vertex) + f(bend * f(vertex * vertex))));
+            at = f(m + vertex);
+          }
+        }
+        if (estimate > best[i]!) {
+          second[i] = best[i]!;
+          secondMoment[i] = bestMoment[i]!;
+          best[i] = estimate;
+          bestMoment[i] = at;
+        } else if (estimate > second[i]!) {
+          second[i] = estimate;
+          secondMoment[i] = at;
+        }
+      }
+    },
+    addHours(quads, from, to, slot, threshold, stepHours) {
+      const a = arrays.winds[from]!;
+      const b = arrays.winds[to]!;
+      const hours = arrays.hours[slot]!;
+      const [t, step, least] = [f(threshold), f(stepHours), f(0.000001)];
+      for (let i = 0; i < quads * 4; i++) {
+        const high = Math.max(a[i]!, b[i]!);
+        const low = Math.min(a[i]!, b[i]!);
+        const share = f(f(high - t) / Math.max(f(high - low), least));
+        hours[i] = f(hours[i]! + f(step * Math.min(1, Math.max(0, share))));
+      }
+    },
+  };
+
+  function basis(east: number, north: number, s2: number, columns: number): void {
+    const inverse = s2 > 0 ? f(1 / f(Math.sqrt(s2))) : 0;
+    const c = f(north * inverse);
+    const s = f(east * inverse);
+    let e = east;
+    let n = north;
+    products[0] = 1;
+    products[1] = e;
+    products[2] = n;
+    for (let k = 3; k < columns; k += 2) {
+      const nextE = f(f(e * c) + f(n * s));
+      n = f(f(n * c) - f(e * s));
+      e = nextE;
+      products[k] = e;
+      products[k + 1] = n;
+    }
+  }
+}

@@ -1,0 +1,141 @@
+import type { Arithmetic, KernelArrays } from './arithmetic.js';
+import { KERNEL_BASE64 } from './kernel-bytes.js';
+import { MOST_CELLS_OF_TILE, THRESHOLD_SLOTS } from './tile-size.js';
+
+interface Exports {
+  readonly sample: (
+    cells: number,
+    pitch: number,
+    quads: number,
+    table: number,
+    groups: number,
+    lastRow: number,
+    e0: number,
+    e1: number,
+    n0: number,
+    n1: number,
+    n2: number,
+    maxWind: number,
+    out: number,
+  ) => void;
+  readonly maxima: (
+    first: number,
+    middle: number,
+    last: number,
+    state: number,
+    pitch: number,
+    quads: number,
+    moment: number,
+    t0: number,
+    t2: number,
+    has0: number,
+    has2: number,
+  ) => void;
+  readonly addHours: (a: number, b: number, hours: number, quads: number, threshold: number, stepHours: number) => void;
+}
+
+const PAGE = 65_536;
+/** bytes of one array of a tile */
+const PITCH = MOST_CELLS_OF_TILE * 4;
+/** the module's own data lies below this */
+const START = 4096;
+const CELLS = START;
+const WINDS = CELLS + 3 * PITCH;
+const STATE = WINDS + 3 * PITCH;
+const HOURS = STATE + 4 * PITCH;
+const HEAP = HOURS + THRESHOLD_SLOTS * PITCH;
+
+let compiled: WebAssembly.Module | null | undefined;
+
+/** The compiled module, made once; null where WebAssembly with SIMD is missing. */
+function kernelModule(): WebAssembly.Module | null {
+  if (compiled !== undefined) return compiled;
+  try {
+    const bytes = Uint8Array.from(atob(KERNEL_BASE64), (character) => character.charCodeAt(0));
+    compiled = new WebAssembly.Module(bytes);
+  } catch {
+    compiled = null;
+  }
+  return compiled;
+}
+
+/** The hot loops in WebAssembly; null where it or its SIMD is missing. */
+export function wasmArithmetic(): Arithmetic | null {
+  const module = kernelModule();
+  if (!module) return null;
+  const memory = new WebAssembly.Memory({ initial: Math.ceil(HEAP / PAGE) + 1, maximum: 65_536 });
+  const { sample, maxima, addHours } = new WebAssembly.Instance(module, { env: { memory } })
+    .exports as unknown as Exports;
+  let top = HEAP;
+  let arrays = viewsOf(memory.buffer);
+  const windAt = (index: number): number => WINDS + Math.max(0, index) * PITCH;
+  return {
+    name: 'webassembly',
+    get arrays() {
+      return arrays;
+    },
+    reserve(floats) {
+      const need = HEAP + 4 * floats - memory.buffer.byteLength;
+      if (need <= 0) return;
+      memory.grow(Math.ceil(need / PAGE));
+      arrays = viewsOf(memory.buffer);
+    },
+    allocate(length) {
+      const bytes = (4 * length + 15) & ~15;
+      if (top + bytes > memory.buffer.byteLength) throw new RangeError('the kernel’s memory was reserved too small');
+      const view = new Float32Array(memory.buffer, top, length);
+      top += bytes;
+      return view;
+    },
+    release() {
+      top = HEAP;
+    },
+    sample(quads, table, groups, lastRow, frame, to) {
+      sample(
+        CELLS,
+        PITCH,
+        quads,
+        table.byteOffset,
+        groups,
+        lastRow,
+        frame[3]!,
+        frame[4]!,
+        frame[5]!,
+        frame[6]!,
+        frame[7]!,
+        frame[9]!,
+        windAt(to),
+      );
+    },
+    maxima(quads, first, middle, last, moment, t0, t2) {
+      maxima(
+        windAt(first),
+        windAt(middle),
+        windAt(last),
+        STATE,
+        PITCH,
+        quads,
+        moment,
+        t0,
+        t2,
+        first >= 0 ? 1 : 0,
+        last >= 0 ? 1 : 0,
+      );
+    },
+    addHours(quads, from, to, slot, threshold, stepHours) {
+      addHours(windAt(from), windAt(to), HOURS + slot * PITCH, quads, threshold, stepHours);
+    },
+  };
+}
+
+function viewsOf(buffer: ArrayBuffer): KernelArrays {
+  const at = (offset: number): Float32Array => new Float32Array(buffer, offset, MOST_CELLS_OF_TILE);
+  return {
+    x: at(CELLS),
+    y: at(CELLS + PITCH),
+    z: at(CELLS + 2 * PITCH),
+    winds: [at(WINDS), at(WINDS + PITCH), at(WINDS + 2 * PITCH)],
+    state: [at(STATE), at(STATE + PITCH), at(STATE + 2 * PITCH), at(STATE + 3 * PITCH)],
+    hours: Array.from({ length: THRESHOLD_SLOTS }, (_, i) => at(HOURS + i * PITCH)),
+  };
+}

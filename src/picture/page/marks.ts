@@ -29,7 +29,6 @@ const FONT = "'Source Sans 3','Segoe UI',Roboto,'Helvetica Neue',Arial,sans-seri
 
 export interface Marks {
   readonly facts: PageFacts;
-  readonly coast: Coast | null;
   readonly palette: Palette;
   /** indices of the isotachs that are drawn */
   readonly isotachs: ReadonlySet<number>;
@@ -40,7 +39,26 @@ export interface Marks {
   readonly arrows: ((x: number, y: number) => number | null) | null;
 }
 
-/** Everything that is drawn over the field: lines, track, marks, labels, scale. */
+/** Graticule and shore: what stays as long as the view does. */
+export function paintLines(
+  c: CanvasRenderingContext2D,
+  view: View,
+  { coast, palette }: { readonly coast: Coast | null; readonly palette: Palette },
+): void {
+  c.beginPath();
+  for (const line of graticule(view.frame, { size: 13 }).lines) trace(c, line);
+  c.strokeStyle = palette.grid;
+  c.lineWidth = 0.8;
+  c.stroke();
+  if (!coast) return;
+  c.beginPath();
+  geoPath(view.frame.projection, c)(coast);
+  c.strokeStyle = palette.shore;
+  c.lineWidth = 1;
+  c.stroke();
+}
+
+/** Everything that is drawn over the field and the shore: isotachs, track, marks, labels, scale. */
 export function paintMarks(c: CanvasRenderingContext2D, view: View, marks: Marks): void {
   const { palette, facts } = marks;
   const path = geoPath(view.frame.projection, c);
@@ -50,14 +68,6 @@ export function paintMarks(c: CanvasRenderingContext2D, view: View, marks: Marks
     c.stroke();
   };
   const grid = graticule(view.frame, { size: 13 });
-  c.beginPath();
-  for (const line of grid.lines) trace(c, line);
-  stroke(palette.grid, 0.8);
-  if (marks.coast) {
-    c.beginPath();
-    path(marks.coast);
-    stroke(palette.shore, 1);
-  }
   c.lineJoin = 'round';
   for (const i of marks.isotachs) {
     c.beginPath();

@@ -2,7 +2,7 @@ import type { LonLat } from '../extent.js';
 import { momentText } from '../words.js';
 import { pageContent } from './decode.js';
 import { layersOf } from './layers.js';
-import { paintMarks } from './marks.js';
+import { paintLines, paintMarks } from './marks.js';
 import { directionAt, type Lattice, latticeOf, layField, paintField, paintGround } from './paint.js';
 import { LIGHT, type Palette } from './palette.js';
 import { compass, paintCut, paintRuler, sharpCanvas } from './small-charts.js';
@@ -47,6 +47,7 @@ export const stage: {
 };
 let lattice: Lattice | null = null;
 let ground: HTMLCanvasElement | null = null;
+let lines: HTMLCanvasElement | null = null;
 
 function placesToShow(): LonLat[] {
   const all: LonLat[] = facts.track.fixes.map((fix) => [fix.lonDeg, fix.latDeg]);
@@ -80,12 +81,9 @@ function paint(block: number): void {
   const { c, width, height } = sharpCanvas(map);
   if (!ground) {
     stage.view = makeView(places, { width, height }, stage.viewState);
-    ground = document.createElement('canvas');
-    ground.width = map.width;
-    ground.height = map.height;
-    const g = ground.getContext('2d')!;
-    g.setTransform(map.width / width, 0, 0, map.height / height, 0, 0);
-    paintGround(g, stage.view, { coast, palette: stage.palette });
+    const { view, palette } = stage;
+    ground = sheetOf(width, height, (g) => paintGround(g, view, { coast, palette }));
+    lines = sheetOf(width, height, (g) => paintLines(g, view, { coast, palette }));
   }
   if (!lattice || lattice.block !== block) lattice = latticeOf(stage.view, block);
   c.drawImage(ground, 0, 0, width, height);
@@ -94,10 +92,10 @@ function paint(block: number): void {
   const now = field && stage.layerId === 'now' ? field : null;
   if (now) layField(c, paintField(lattice, { field: now }, stage.palette), block);
   else if (layer) layField(c, paintField(lattice, { layer }, stage.palette), block);
+  if (lines) c.drawImage(lines, 0, 0, width, height);
   const arrows = now || stage.layerId === 'direction' ? directionAt(stage.view, { facts, fields, field: now }) : null;
   paintMarks(c, stage.view, {
     facts,
-    coast,
     palette: stage.palette,
     isotachs: stage.shownIsotachs,
     zones: stage.ownPlaces ? facts.zones : [],
@@ -106,6 +104,17 @@ function paint(block: number): void {
     arrows,
   });
   paintCross();
+}
+
+/** A sheet as large as the map, drawn once and kept. */
+function sheetOf(width: number, height: number, paintOn: (c: CanvasRenderingContext2D) => void): HTMLCanvasElement {
+  const sheet = document.createElement('canvas');
+  sheet.width = map.width;
+  sheet.height = map.height;
+  const c = sheet.getContext('2d')!;
+  c.setTransform(map.width / width, 0, 0, map.height / height, 0, 0);
+  paintOn(c);
+  return sheet;
 }
 
 export function paintCross(): void {

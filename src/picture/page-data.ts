@@ -53,7 +53,7 @@ export interface PageFields {
 }
 
 /** Steps of the quantised fields: m/s, m/s, degrees, s, h. */
-const STEP = { wind: 0.05, gust: 0.05, from: 0.5, time: 60, hours: 0.05 } as const;
+const STEP = { wind: 0.01, gust: 0.01, from: 0.5, time: 60, hours: 0.05 } as const;
 const NONE = 65535;
 
 /** A swath on cells of longitude and latitude, at most `mostCells`: the strongest cell of each block where it is coarser. */

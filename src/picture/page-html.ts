@@ -24,10 +24,13 @@ export interface PageInput
   readonly coastTopology: string | null;
 }
 
-/** Bytes that the fields of a page may take in it; with script, coast and map it stays below 2 MB. */
-const MOST_FIELD_BYTES = 700_000;
+/** Characters of a whole page at most. */
+const MOST_CHARACTERS = 1_950_000;
+/** Bytes that the isotachs may take, packed. */
 const MOST_ISOTACH_BYTES = 250_000;
-const FIRST_CELLS = 150_000;
+/** Bytes that the fields may always take: what else is in a page leaves room for them. */
+const LEAST_FIELD_BYTES = 100_000;
+const FIRST_CELLS = 250_000;
 
 /**
  * The whole result as one file that opens from disk: no request leaves it, and its policy forbids any. The wind at a
@@ -39,33 +42,40 @@ export async function mapPage(
 ): Promise<string> {
   const { swath, mapSvg, coastTopology, ...rest } = input;
   const own = { ...rest, peak: knownPeak(rest.peak) };
+  const encoder = new TextEncoder();
   const packed = async (cells: number) => {
     const { grid, fields } = pageFields(swath, cells);
     return { grid, bytes: await deflate(packFields(fields, grid.nx)) };
   };
+  const factsWith = (grid: PageFacts['grid'], leastDeg: number): Promise<Uint8Array> | Uint8Array => {
+    const facts: PageFacts = {
+      ...own,
+      isotachs: own.isotachs.map((isotach) => ({ ...isotach, polygons: lighterPolygons(isotach.polygons, leastDeg) })),
+      averagingS: swath.averagingS,
+      gustDurationS: swath.gustDurationS,
+      grid,
+      hoursThresholdsMps: swath.hoursAbove.map(({ thresholdMps }) => thresholdMps),
+      originMs: swath.originMs,
+    };
+    return deflate(encoder.encode(JSON.stringify(facts)));
+  };
+  const coast = coastTopology === null ? '' : toBase64(await deflate(encoder.encode(coastTopology)));
   let cells = FIRST_CELLS;
   let small = await packed(cells);
-  while (small.bytes.length > MOST_FIELD_BYTES) {
-    cells *= Math.min(0.8, MOST_FIELD_BYTES / small.bytes.length);
-    small = await packed(cells);
-  }
-  const encoder = new TextEncoder();
-  const factsWith = (leastDeg: number): PageFacts => ({
-    ...own,
-    isotachs: own.isotachs.map((isotach) => ({ ...isotach, polygons: lighterPolygons(isotach.polygons, leastDeg) })),
-    averagingS: swath.averagingS,
-    gustDurationS: swath.gustDurationS,
-    grid: small.grid,
-    hoursThresholdsMps: swath.hoursAbove.map(({ thresholdMps }) => thresholdMps),
-    originMs: swath.originMs,
-  });
   let least = small.grid.cell * 0.2;
-  let facts = await deflate(encoder.encode(JSON.stringify(factsWith(least))));
+  let facts = await factsWith(small.grid, least);
   while (facts.length > MOST_ISOTACH_BYTES && least < 2) {
     least *= 2;
-    facts = await deflate(encoder.encode(JSON.stringify(factsWith(least))));
+    facts = await factsWith(small.grid, least);
   }
-  const coast = coastTopology === null ? '' : toBase64(await deflate(encoder.encode(coastTopology)));
+  // what the rest leaves, four characters for three bytes
+  const others = assets.script.length + assets.style.length + coast.length + mapSvg.length + (4 / 3) * facts.length;
+  const room = Math.max(LEAST_FIELD_BYTES, 0.75 * (MOST_CHARACTERS - others - 12_000));
+  while (small.bytes.length > room && cells > 1000) {
+    cells = Math.min(cells, small.grid.nx * small.grid.ny) * Math.min(0.8, room / small.bytes.length);
+    small = await packed(cells);
+  }
+  facts = await factsWith(small.grid, least);
   return htmlOf({ ...input, peak: own.peak }, assets, {
     facts: toBase64(facts),
     fields: toBase64(small.bytes),

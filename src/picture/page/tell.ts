@@ -23,6 +23,9 @@ function say(list: HTMLElement, rows: readonly (readonly [string, string])[]): v
 const speed = (mps: number): string => `${mps.toFixed(1)} m/s, ${toKnots(mps).toFixed(0)} kt`;
 const fromText = (deg: number): string => (Number.isNaN(deg) ? '–' : `${deg.toFixed(0)}° (${compass(deg)})`);
 
+/** The cell of the peak is told as the summary states it, not as the cells are rounded. */
+const peakCell = facts.peak ? cellUnder(facts, facts.peak.lonDeg, facts.peak.latDeg) : -1;
+
 export function tellReading(): void {
   const [lon, lat] = stage.hovered ?? stage.pinned;
   const place = { lonDeg: wrapLongitude(lon), latDeg: lat };
@@ -35,7 +38,10 @@ export function tellReading(): void {
   }
   if (k < 0) rows.push(['Peak', 'outside the cells']);
   else {
-    rows.push(['Peak wind', speed(fields.wind[k]!)], ['Peak gust', speed(fields.gust[k]!)]);
+    rows.push(
+      ['Peak wind', speed(k === peakCell ? facts.peak!.windMps : fields.wind[k]!)],
+      ['Peak gust', speed(fields.gust[k]!)],
+    );
     if (stage.timeMs === null) rows.push(['Blew from', fromText(fields.from[k]!)]);
     const seconds = fields.time[k]!;
     rows.push(['Time', Number.isNaN(seconds) ? '–' : `${momentText(facts.originMs + 1000 * seconds)} UTC`]);

@@ -1,12 +1,12 @@
 import { readFileSync } from 'node:fs';
 import { createRequire } from 'node:module';
 import { feature } from 'topojson-client';
+import type { CoastDetail } from '../picture/coast-near.js';
 import type { Coast } from '../picture/map-svg.js';
 
-const require = createRequire(import.meta.url);
+export { coastDetailFor } from '../picture/coast-near.js';
 
-/** Scales of the Natural Earth coast for pictures. */
-export type CoastDetail = '10m' | '50m' | '110m';
+const require = createRequire(import.meta.url);
 
 /** The land of Natural Earth as pictures want it [NaturalEarth]. */
 export function pictureCoast(detail: CoastDetail): Coast {

@@ -141,7 +141,7 @@ export function mapFrame(
     [box.x + box.width + 4, box.y + box.height + 4],
   ]);
   const project = (place: LonLat) => projection(place as [number, number]);
-  return { kind, projection, box, project, seen: seenThrough(projection, box, extent) };
+  return { kind, projection, box, project, seen: seenThrough(projection, box, extent.middle[0]) };
 }
 
 /** The projection with its middle at the origin and one radian about one unit long. */
@@ -160,8 +160,7 @@ function unitProjection(kind: ProjectionKind, { middle, south, north }: Extent):
 }
 
 /** Longitudes and latitudes inside a frame, from its edges and the poles. */
-function seenThrough(projection: GeoProjection, box: Box, extent: Extent): MapFrame['seen'] {
-  const middleLon = extent.middle[0];
+export function seenThrough(projection: GeoProjection, box: Box, middleLon: number): MapFrame['seen'] {
   let [west, east, south, north] = [180, -180, 90, -90];
   const STEPS = 24;
   for (let i = 0; i <= STEPS; i++) {

@@ -56,7 +56,7 @@ export function graticule(frame: MapFrame, { size }: { readonly size: number }):
   const first = Math.ceil((seen.middleLon + seen.west - reach) / lonStep);
   const last = Math.floor((seen.middleLon + seen.east + reach) / lonStep);
   for (let i = first; i <= last && i - first < 360 / lonStep; i++) meridians.push(i * lonStep);
-  const [south, north] = [Math.max(-89.5, seen.south - latStep), Math.min(89.5, seen.north + latStep)];
+  const [south, north] = [Math.max(-89.99, seen.south - latStep), Math.min(89.99, seen.north + latStep)];
   for (const lon of meridians) {
     const points = sampled(south, north, (lat) => frame.project([lon, lat]));
     lines.push(...points);

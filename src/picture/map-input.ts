@@ -1,4 +1,4 @@
-import type { GeoPermissibleObjects } from 'd3-geo';
+import type { GeoJSON } from 'geojson';
 import type { PictureIsotach } from './isotach-paths.js';
 
 /** One moment of the track. */
@@ -19,7 +19,7 @@ export interface MapPeak {
 }
 
 /** Polygons of land as a sphere wants them: as `topojson-client` gives the land of world-atlas. */
-export type Coast = GeoPermissibleObjects;
+export type Coast = GeoJSON;
 
 /** An area of the user's own, as RFC 7946 has it [RFC7946]. */
 export interface MapZone {

@@ -1,5 +1,6 @@
 import { type GeoProjection, geoPath } from 'd3-geo';
 import { HOUR_MS } from '../units.js';
+import { coastNear } from './coast-near.js';
 import { PAPER } from './colours.js';
 import type { MapFrame } from './extent.js';
 import type { Graticule } from './graticule.js';
@@ -54,7 +55,7 @@ export function graticuleOf(grid: Graticule): string {
 /** Sea and land, and the shore that is drawn above the wind. */
 export function groundOf(frame: MapFrame, coast: Coast | null): { land: string; shore: string } {
   const sea = element('rect', { ...rectOf(frame.box), fill: PAPER.sea });
-  const d = coast ? geoPath(frame.projection).digits(1)(coast) : null;
+  const d = coast ? geoPath(frame.projection).digits(1)(coastNear(coast, frame)) : null;
   if (!d) return { land: sea, shore: '' };
   return {
     land: sea + element('path', { class: 'land', d, fill: PAPER.land }),

@@ -1,6 +1,7 @@
 import { geoPath } from 'd3-geo';
 import type { Track } from '../track/track.js';
 import { knots, toKnots } from '../units.js';
+import { coastNear } from './coast-near.js';
 import { hexOf, PAPER, windColour } from './colours.js';
 import { type LonLat, mapFrame } from './extent.js';
 import { graticule } from './graticule.js';
@@ -53,7 +54,7 @@ function mapOf(tracks: readonly Track[], at: { readonly top: number; readonly co
   const { box } = frame;
   const path = geoPath(frame.projection).digits(1);
   const grid = graticule(frame, { size: SIZE });
-  const land = at.coast ? (path(at.coast) ?? '') : '';
+  const land = at.coast ? (path(coastNear(at.coast, frame)) ?? '') : '';
   const thin = places.length > 400;
   const courses: string[] = [];
   const lines: (readonly (readonly [number, number])[])[] = [];

@@ -1,3 +1,4 @@
+import { coastNear } from '../coast-near.js';
 import type { LonLat } from '../extent.js';
 import { momentText } from '../words.js';
 import { pageContent } from './decode.js';
@@ -82,8 +83,9 @@ function paint(block: number): void {
   if (!ground) {
     stage.view = makeView(places, { width, height }, stage.viewState);
     const { view, palette } = stage;
-    ground = sheetOf(width, height, (g) => paintGround(g, view, { coast, palette }));
-    lines = sheetOf(width, height, (g) => paintLines(g, view, { coast, palette }));
+    const near = coast && coastNear(coast, view.frame);
+    ground = sheetOf(width, height, (g) => paintGround(g, view, { coast: near, palette }));
+    lines = sheetOf(width, height, (g) => paintLines(g, view, { coast: near, palette }));
   }
   if (!lattice || lattice.block !== block) lattice = latticeOf(stage.view, block);
   c.drawImage(ground, 0, 0, width, height);

@@ -1,5 +1,5 @@
 import type { LonLat, MapFrame } from '../extent.js';
-import { mapFrame } from '../extent.js';
+import { mapFrame, seenThrough } from '../extent.js';
 
 /** The map's window: a projection that suits the storm, made larger and moved. */
 export interface View {
@@ -36,5 +36,6 @@ export function makeView(places: readonly LonLat[], size: { width: number; heigh
     const place = projection.invert?.([x, y]);
     return place && Number.isFinite(place[0]) && Number.isFinite(place[1]) && Math.abs(place[1]) <= 90 ? place : null;
   };
-  return { frame, width, height, zoom: state.zoom, project: frame.project, invert };
+  const seen = seenThrough(projection, frame.box, frame.seen.middleLon);
+  return { frame: { ...frame, seen }, width, height, zoom: state.zoom, project: frame.project, invert };
 }

@@ -160,7 +160,7 @@ ${radio('wind', 'Peak wind', true)}${radio('gust', 'Peak gust')}${radio('directi
 </fieldset>
 </aside>
 <div class="bench">
-<section><h2>Cut through the centre</h2>
+<section><h2>Cut through the centre, <span id="cut-time"></span></h2>
 <canvas id="cut" role="img" aria-label="Wind along a line through the centre"></canvas>
 <label class="range">Bearing <input type="range" id="bearing" min="0" max="175" step="5" value="90"> <output id="bearing-text" for="bearing"></output></label>
 </section>

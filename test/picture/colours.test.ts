@@ -15,6 +15,7 @@ import {
   windColour,
 } from '../../src/picture/colours.js';
 import { DARK, LIGHT, strengthColour } from '../../src/picture/page/palette.js';
+import { PAGE_STYLE } from '../../src/picture/page/style.js';
 import { knots } from '../../src/units.js';
 
 const LEVELS = [34, 50, 64, 83, 96, 113, 137].map(knots);
@@ -77,6 +78,22 @@ describe('contrast', () => {
         expect(contrast(rgbOf(palette.ink), rgbOf(ground))).toBeGreaterThan(7);
       expect(contrast(rgbOf(palette.quiet), rgbOf(palette.halo))).toBeGreaterThan(4.5);
     }
+  });
+});
+
+describe('style of the page', () => {
+  it.each(['light', 'dark'])('has enough contrast when %s', (name) => {
+    const [light, dark] = [...PAGE_STYLE.matchAll(/:root[^{]*\{([^}]*)\}/g)].map(([, body]) =>
+      Object.fromEntries([...body!.matchAll(/--([\w-]+):(#\w+)/g)].map(([, key, value]) => [key!, value!])),
+    );
+    const colour = (key: string): Rgb => {
+      const hex = (name === 'light' ? light : dark)![key]!.slice(1);
+      return rgbOf(hex.length === 3 ? [...hex].map((digit) => digit + digit).join('') : hex);
+    };
+    for (const ink of ['ink', 'quiet', 'accent', 'error'])
+      for (const ground of ['ground', 'sheet'])
+        expect(contrast(colour(ink), colour(ground)), `${ink} on ${ground}`).toBeGreaterThan(4.5);
+    expect(contrast(colour('on-accent'), colour('accent'))).toBeGreaterThan(4.5);
   });
 });
 

@@ -83,10 +83,15 @@ export function pin(place: LonLat, { bring = false }: { bring?: boolean } = {}):
   paintCross();
 }
 
-export function zoomBy(
-  factor: number,
-  [px, py]: readonly [number, number] = [stage.view.width / 2, stage.view.height / 2],
-): void {
+/** The point that stays where it is when the scale changes: the cross where it is in view, else the middle. */
+function zoomMiddle(): readonly [number, number] {
+  const { view } = stage;
+  const at = view.project(stage.pinned);
+  const inside = at && at[0] > 0 && at[1] > 0 && at[0] < view.width && at[1] < view.height;
+  return inside ? at : [view.width / 2, view.height / 2];
+}
+
+export function zoomBy(factor: number, [px, py]: readonly [number, number] = zoomMiddle()): void {
   const zoom = Math.min(ZOOMS[1], Math.max(ZOOMS[0], stage.viewState.zoom * factor));
   stage.viewState.x += ((px - stage.view.width / 2) / stage.view.width) * (1 / stage.viewState.zoom - 1 / zoom);
   stage.viewState.y += ((py - stage.view.height / 2) / stage.view.height) * (1 / stage.viewState.zoom - 1 / zoom);

@@ -140,5 +140,6 @@ export function drawCharts(): void {
   const bearing = Number(byId<HTMLInputElement>('bearing').value);
   const said = paintCut(byId('cut'), { field: storm.fieldAt(at), bearingDeg: bearing, palette: stage.palette });
   byId('cut').setAttribute('aria-label', `Wind on a line through the centre, ${momentText(at)} UTC: ${said}`);
+  byId('cut-time').textContent = momentText(at);
   byId('bearing-text').textContent = `${compass(bearing + 180)}–${compass(bearing)}`;
 }

@@ -60,6 +60,7 @@ dd{margin:0;font-variant-numeric:tabular-nums}
 .place button{padding:7px 10px}
 .error{color:var(--error);margin:6px 0 0;min-height:0}
 #cut{width:100%;height:190px;display:block}
+#cut-time{font-weight:400;color:var(--quiet)}
 .range{display:flex;align-items:center;gap:10px}
 .own-list{display:flex;flex-wrap:wrap;gap:6px}
 .own-list button{padding:4px 10px;min-height:36px;overflow-wrap:anywhere}

@@ -33,6 +33,8 @@ export const BIBLIOGRAPHY: Readonly<Record<string, string>> = {
     'Harper, B. A., J. D. Kepert, and J. D. Ginger, 2010: Guidelines for converting between various wind averaging periods in tropical cyclone conditions. World Meteorological Organization, WMO/TD-No. 1555',
   Harrtell2020:
     'Harrtell, B., 2020: FlatGeobuf, a performant binary encoding for geographic data: specification, version 3',
+  Hilbert1891:
+    'Hilbert, D., 1891: Ueber die stetige Abbildung einer Linie auf ein Flächenstück. Mathematische Annalen 38, 459–460. doi:10.1007/BF01199431',
   Holland1980:
     'Holland, G. J., 1980: An analytic model of the wind and pressure profiles in hurricanes. Monthly Weather Review 108, 1212–1218. doi:10.1175/1520-0493(1980)108<1212:AAMOTW>2.0.CO;2',
   Holton2004: 'Holton, J. R., 2004: An Introduction to Dynamic Meteorology, 4th ed. Elsevier Academic Press',

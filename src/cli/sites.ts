@@ -55,7 +55,8 @@ export async function sites(file: string, placesFile: string, options: SitesOpti
   });
 
   const cautions = [...model.cautions];
-  const twice = places.map((place) => place.name).filter((name, i, all) => all.indexOf(name) !== i);
+  const seen = new Set<string>();
+  const twice = places.map((place) => place.name).filter((name) => seen.size === seen.add(name).size);
   if (twice.length > 0)
     cautions.push(`${twice.length} names stand more than once, such as '${twice[0]}'; each row is kept`);
   if (read.skippedCount > 0)

@@ -1,72 +1,76 @@
 import { InputError } from '../errors.js';
+import { nearest } from '../nearest.js';
 import { cleanText, shown } from '../track/read/checks.js';
-import { type PointRow, placeProblem, type SkippedRow } from './point-table.js';
+import { type Feature, featureReader } from './geojson-features.js';
+import { type PointTableOptions, placeProblem, valueProblem } from './point-table.js';
 
-interface Feature {
-  readonly type?: unknown;
-  readonly id?: unknown;
-  readonly geometry?: { readonly type?: unknown; readonly coordinates?: unknown } | null;
-  readonly properties?: Readonly<Record<string, unknown>> | null;
+/** Reads GeoJSON points: pieces of text are pushed in, points are handed out; a feature's number stands for the line. */
+export interface PointFeatureReader {
+  readonly push: (piece: string) => void;
+  readonly end: () => void;
+  readonly valueNames: () => readonly string[];
+  readonly unusedNames: () => readonly string[];
 }
+
+const NAMES = ['name', 'id', 'place', 'asset', 'site', 'label'];
 
 /**
- * Parses GeoJSON text to its features.
- * @throws InputError `geojson.syntax`, `geojson.collection`
+ * Points of a GeoJSON file. Values are the named properties, or every property of the first point that is a number.
+ * @throws InputError `geojson.*`, `points.row` (strict), `points.values`
  */
-export function featuresOf(text: string, source: string): readonly Feature[] {
-  let document: unknown;
-  try {
-    document = JSON.parse(text);
-  } catch (cause) {
-    throw new InputError('geojson.syntax', `${source}: is not valid JSON (${(cause as Error).message})`, { cause });
-  }
-  const { type, features } = (document ?? {}) as { type?: unknown; features?: unknown };
-  if (type === 'Feature') return [document as Feature];
-  if (type !== 'FeatureCollection' || !Array.isArray(features)) {
-    throw new InputError('geojson.collection', `${source}: is no GeoJSON FeatureCollection`);
-  }
-  return features as Feature[];
-}
+export function pointFeatures(options: PointTableOptions): PointFeatureReader {
+  let valueNames = options.values;
+  let firstNames: readonly string[] | null = null;
 
-/** Points of a GeoJSON text; the number of a feature stands for the line. */
-export function pointsOfGeojson(
-  text: string,
-  options: { source: string; values?: readonly string[]; strict?: boolean },
-): { points: PointRow[]; skipped: SkippedRow[]; valueNames: readonly string[] } {
-  const features = featuresOf(text, options.source);
-  const points: PointRow[] = [];
-  const skipped: SkippedRow[] = [];
-  const first = features.find((feature) => feature.geometry?.type === 'Point')?.properties ?? {};
-  const valueNames = options.values ?? Object.keys(first).filter((key) => typeof first[key] === 'number');
-  for (const [i, feature] of features.entries()) {
-    const reason = ((): string | null => {
-      if (feature.geometry?.type !== 'Point')
-        return `the geometry is ${shown(String(feature.geometry?.type ?? 'missing'))}, not a Point`;
-      const [lonDeg, latDeg] = (feature.geometry.coordinates ?? []) as [number, number];
-      const problem = placeProblem(
-        typeof latDeg === 'number' ? latDeg : Number.NaN,
-        typeof lonDeg === 'number' ? lonDeg : Number.NaN,
-      );
-      if (problem) return problem;
-      const properties = feature.properties ?? {};
-      const values = valueNames.map((name) => properties[name]);
-      const wrong = values.findIndex((value) => typeof value !== 'number' || !(value >= 0));
-      if (wrong !== -1) return `${shown(valueNames[wrong]!)} is not a number of at least 0`;
-      const name =
-        ['name', 'id', 'place', 'asset'].map((key) => properties[key]).find((value) => value !== undefined) ??
-        feature.id ??
-        `feature ${i + 1}`;
-      points.push({ name: cleanText(String(name)), latDeg, lonDeg, values: values as number[], line: i + 1 });
-      return null;
-    })();
-    if (reason === null) continue;
+  const reasonAgainst = (feature: Feature, number: number): string | null => {
+    if (feature === null || typeof feature !== 'object') return 'it is no feature';
+    const { geometry } = feature;
+    if (geometry?.type !== 'Point') return `the geometry is ${shown(String(geometry?.type ?? 'missing'))}, not a Point`;
+    const [lonDeg, latDeg] = (Array.isArray(geometry.coordinates) ? geometry.coordinates : []) as unknown[];
+    const place = {
+      latDeg: typeof latDeg === 'number' ? latDeg : Number.NaN,
+      lonDeg: typeof lonDeg === 'number' ? lonDeg : Number.NaN,
+    };
+    const problem = placeProblem(place.latDeg, place.lonDeg);
+    if (problem) return problem;
+    const properties = feature.properties ?? {};
+    firstNames ??= Object.keys(properties);
+    valueNames ??= firstNames.filter(
+      (key) => typeof properties[key] === 'number' && !NAMES.includes(key.toLowerCase()),
+    );
+    const values: number[] = [];
+    for (const name of valueNames) {
+      const value = properties[name];
+      const wrong = typeof value === 'number' ? valueProblem(value) : 'is not a number of at least 0';
+      if (wrong) {
+        const near = value === undefined ? nearest(name, Object.keys(properties)) : undefined;
+        return `${shown(name)} ${value === undefined ? 'is missing' : wrong}${near ? `; did you mean ${shown(near)}?` : ''}`;
+      }
+      values.push(value as number);
+    }
+    const name =
+      NAMES.map((key) => properties[key]).find((value) => value !== undefined && value !== null && value !== '') ??
+      feature.id ??
+      `feature ${number}`;
+    options.onPoint({ name: cleanText(String(name)), ...place, values, line: number });
+    return null;
+  };
+
+  const reader = featureReader(options.source, (feature, number) => {
+    const reason = reasonAgainst(feature, number);
+    if (reason === null) return;
     if (options.strict)
       throw new InputError(
         'points.row',
-        `${options.source}: feature ${i + 1}: ${reason}; mend it, or leave out --strict to skip it`,
-        { fields: { feature: i + 1 } },
+        `${options.source}: feature ${number}: ${reason}; mend it, or leave out --strict to skip it`,
+        { fields: { feature: number } },
       );
-    skipped.push({ line: i + 1, reason });
-  }
-  return { points, skipped, valueNames };
+    options.onSkip({ line: number, reason });
+  });
+  return {
+    ...reader,
+    valueNames: () => valueNames ?? [],
+    unusedNames: () =>
+      (firstNames ?? []).filter((name) => !NAMES.includes(name.toLowerCase()) && !(valueNames ?? []).includes(name)),
+  };
 }

@@ -30,17 +30,26 @@ export interface PointTableOptions {
   readonly onSkip: (row: SkippedRow) => void;
 }
 
+/** Decimals of a value that are kept. */
+export const VALUE_DECIMALS = 6;
+/** Largest value of a cell: sums stay exact to the last decimal. */
+export const LARGEST_VALUE = 1e15;
+
 /** Reads a table of points: lines are pushed in, points are handed out. */
 export interface PointTableReader {
   readonly line: (text: string, line: number) => void;
   readonly end: () => void;
   /** headings of the values, known after the first row */
   readonly valueNames: () => readonly string[];
+  /** headings that are neither name, place nor value */
+  readonly unusedNames: () => readonly string[];
 }
 
 const NAMES = ['name', 'id', 'place', 'asset', 'site', 'label'];
 const LATITUDES = ['lat_deg', 'lat', 'latitude', 'y'];
 const LONGITUDES = ['lon_deg', 'lon', 'lng', 'long', 'longitude', 'x'];
+
+const DECIMAL_COMMA = /^[+-]?\d+,\d+$/;
 
 /** Says why a pair of numbers is no place, or null. */
 export function placeProblem(latDeg: number, lonDeg: number): string | null {
@@ -50,6 +59,12 @@ export function placeProblem(latDeg: number, lonDeg: number): string | null {
     return `latitude ${latDeg} is beyond the poles${swapped}`;
   }
   return Math.abs(lonDeg) > 360 ? `longitude ${lonDeg} is beyond ±360` : null;
+}
+
+/** Says why a number is no value of an asset, or null. */
+export function valueProblem(value: number): string | null {
+  if (!(value >= 0)) return 'is not a number of at least 0';
+  return value <= LARGEST_VALUE ? null : `is above ${LARGEST_VALUE}; check the unit`;
 }
 
 /**
@@ -82,7 +97,15 @@ export function pointTable(options: PointTableOptions): PointTableReader {
       throw new InputError('points.quote', `${options.source}:${line}: a quoted heading is never closed`);
     headings = cells.map((cell) => cleanText(unguardCell(cell.trim())));
     const lower = headings.map((heading) => heading.toLowerCase());
-    const find = (aliases: readonly string[]): number => lower.findIndex((heading) => aliases.includes(heading));
+    const twice = lower.find((heading, i) => heading !== '' && lower.indexOf(heading) !== i);
+    if (twice !== undefined)
+      throw new InputError(
+        'points.heading',
+        `${options.source}:${line}: two columns have the heading ${shown(twice)}; give each its own`,
+      );
+    // the first alias that stands there, so that a name goes before an id
+    const find = (aliases: readonly string[]): number =>
+      aliases.map((alias) => lower.indexOf(alias)).find((column) => column !== -1) ?? -1;
     columns = { name: find(NAMES), lat: find(LATITUDES), lon: find(LONGITUDES) };
     if (columns.lat === -1 || columns.lon === -1) {
       throw new InputError(
@@ -107,11 +130,18 @@ export function pointTable(options: PointTableOptions): PointTableReader {
   const number = (text: string): number => {
     const written = text.trim();
     if (written === '') return Number.NaN;
-    return Number(delimiter !== ',' && /^[+-]?\d+,\d+$/.test(written) ? written.replace(',', '.') : written);
+    if (/[xob]/i.test(written)) return Number.NaN;
+    return Number(delimiter !== ',' && DECIMAL_COMMA.test(written) ? written.replace(',', '.') : written);
+  };
+  const mayHoldValues = (column: number): boolean => {
+    const heading = headings![column]!.toLowerCase();
+    return heading !== '' && ![NAMES, LATITUDES, LONGITUDES].some((aliases) => aliases.includes(heading));
   };
 
   return {
     valueNames: () => (valueColumns ?? []).map((column) => headings![column]!),
+    unusedNames: () =>
+      (headings ?? []).filter((heading, i) => heading !== '' && mayHoldValues(i) && !valueColumns?.includes(i)),
     line(raw, line) {
       const text = open ? `${open.text}\n${raw}` : raw;
       const start = open?.line ?? line;
@@ -139,9 +169,7 @@ export function pointTable(options: PointTableOptions): PointTableReader {
         );
         return;
       }
-      valueColumns ??= headings.flatMap((_, i) =>
-        i !== columns.name && i !== columns.lat && i !== columns.lon && Number.isFinite(number(cells[i]!)) ? [i] : [],
-      );
+      valueColumns ??= headings.flatMap((_, i) => (mayHoldValues(i) && Number.isFinite(number(cells[i]!)) ? [i] : []));
       const latDeg = number(cells[columns.lat]!);
       const lonDeg = number(cells[columns.lon]!);
       const problem = placeProblem(latDeg, lonDeg);
@@ -152,10 +180,11 @@ export function pointTable(options: PointTableOptions): PointTableReader {
       const values: number[] = [];
       for (const column of valueColumns) {
         const value = number(cells[column]!);
-        if (!(value >= 0) || !Number.isFinite(value)) {
+        const problem = valueProblem(value);
+        if (problem !== null) {
           skip(
             start,
-            `${shown(headings[column]!)} '${shown(cells[column]!)}' is not a number of at least 0 (units and thousands separators do not belong in a cell)`,
+            `${shown(headings[column]!)} '${shown(cells[column]!)}' ${problem}${Number.isNaN(value) ? ' (units, thousands separators and words do not belong in a cell)' : ''}`,
           );
           return;
         }

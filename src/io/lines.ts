@@ -19,19 +19,17 @@ const SIGNATURES: readonly (readonly [bytes: readonly number[], what: string, re
 ];
 
 /**
- * The lines of a text file, or of standard input for `-`, many at a time. A byte-order mark and carriage returns are
- * taken off.
+ * The text of a file, or of standard input for `-`, as it comes; a byte-order mark is left in.
  * @param options.onBytes sees the bytes as they are read: for a checksum
- * @throws InputError `io.missing`, `io.read`, `io.binary`, `io.encoding`, `track.line-length`
+ * @throws InputError `io.missing`, `io.read`, `io.binary`, `io.encoding`
  */
-export async function* readLineBatches(
+export async function* readTextPieces(
   path: string,
   options: { readonly onBytes?: (bytes: Uint8Array) => void } = {},
-): AsyncGenerator<readonly string[], void, undefined> {
+): AsyncGenerator<string, void, undefined> {
   const source = sourceName(path);
   const stream = path === '-' ? process.stdin : createReadStream(path, { highWaterMark: 1 << 18 });
-  const splitter = lineSplitter(source);
-  const decoder = new TextDecoder('utf-8', { fatal: true });
+  const decoder = new TextDecoder('utf-8', { fatal: true, ignoreBOM: true });
   let line = 1;
   let first = true;
   const decode = (bytes: Uint8Array | undefined): string => {
@@ -39,7 +37,7 @@ export async function* readLineBatches(
       return bytes ? decoder.decode(bytes, { stream: true }) : decoder.decode();
     } catch (cause) {
       const before = bytes ? new TextDecoder().decode(bytes).split('\uFFFD')[0]! : '';
-      const at = line + before.split('\n').length - 1;
+      const at = line + lineEnds(before);
       throw new InputError(
         'io.encoding',
         `${source}:${at}: is not UTF-8 (an accented letter in an older encoding?); save the file as UTF-8`,
@@ -60,17 +58,40 @@ export async function* readLineBatches(
           fields: { source, line },
         });
       }
-      const lines = splitter.push(decode(chunk));
-      line += lines.length;
-      if (lines.length > 0) yield lines;
+      const piece = decode(chunk);
+      line += lineEnds(piece);
+      if (piece !== '') yield piece;
     }
   } catch (cause) {
     const ours = cause instanceof GalewakeError || typeof (cause as NodeJS.ErrnoException | null)?.code !== 'string';
     throw ours ? cause : unreadable(source, cause);
   }
   const rest = decode(undefined);
-  const lines = rest === '' ? [] : splitter.push(rest);
-  yield [...lines, ...splitter.end()];
+  if (rest !== '') yield rest;
+}
+
+function lineEnds(text: string): number {
+  let count = 0;
+  for (let at = text.indexOf('\n'); at !== -1; at = text.indexOf('\n', at + 1)) count++;
+  return count;
+}
+
+/**
+ * The lines of a text file, or of standard input for `-`, many at a time. A byte-order mark and carriage returns are
+ * taken off.
+ * @param options.onBytes sees the bytes as they are read: for a checksum
+ * @throws InputError as {@link readTextPieces}; `track.line-length`
+ */
+export async function* readLineBatches(
+  path: string,
+  options: { readonly onBytes?: (bytes: Uint8Array) => void } = {},
+): AsyncGenerator<readonly string[], void, undefined> {
+  const splitter = lineSplitter(sourceName(path));
+  for await (const piece of readTextPieces(path, options)) {
+    const lines = splitter.push(piece);
+    if (lines.length > 0) yield lines;
+  }
+  yield splitter.end();
 }
 
 /** The lines of a text file one by one; see {@link readLineBatches}. */

@@ -1,4 +1,4 @@
-import { EARTH_RADIUS_M, RADIANS, wrapBearing } from '../earth.js';
+import { RADIANS } from '../earth.js';
 import type { WindModel } from '../model/wind.js';
 import { gustFactorOf, HOURS_THRESHOLDS_MPS, type SwathOptions } from './exact.js';
 import type { Grid } from './grid.js';
@@ -116,11 +116,13 @@ export function swathWork(
           if (!(wind > 0)) continue;
           fields.windMps[k] = wind;
           fields.peakTimeS[k] = offsetS + tile.peakS[i]!;
-          const frame = timeline.frame(tile.peakIndex[i]!);
-          fields.windFromDeg[k] = wrapBearing(
-            (Math.atan2(-tile.eastMps[i]!, -tile.northMps[i]!) +
-              turn(arrays.x[i]!, arrays.y[i]!, arrays.z[i]!, frame)) /
-              RADIANS,
+          fields.windFromDeg[k] = directionAt(
+            arrays.x[i]!,
+            arrays.y[i]!,
+            arrays.z[i]!,
+            timeline.frame(tile.peakIndex[i]!),
+            tile.eastMps[i]!,
+            tile.northMps[i]!,
           );
         }
       }
@@ -128,17 +130,30 @@ export function swathWork(
   };
 }
 
-/** By how much north turns on the way from the centre to a cell, radians. */
-function turn(x: number, y: number, z: number, frame: Float64Array): number {
-  const cosLat = Math.hypot(x, y);
+/**
+ * Direction that a wind blows from at a cell, degrees, its parts given in the frame at the centre: north turns on the way
+ * there by as much as the outward direction does.
+ */
+function directionAt(x: number, y: number, z: number, frame: Float64Array, eastMps: number, northMps: number): number {
   const east = x * frame[3]! + y * frame[4]!;
   const north = x * frame[5]! + y * frame[6]! + z * frame[7]!;
-  if (cosLat < 1e-7 || (east === 0 && north === 0)) return 0;
-  const [p0, p1, p2] = [frame[0]!, frame[1]!, frame[2]!];
-  const [slo, clo] = [y / cosLat, x / cosLat];
-  const backEast = -p0 * slo + p1 * clo;
-  const backNorth = -p0 * z * clo - p1 * z * slo + p2 * cosLat;
-  // so near that the direction back drowns in rounding
-  if (Math.hypot(backEast, backNorth) * EARTH_RADIUS_M < 2000) return 0;
-  return Math.atan2(-backEast, -backNorth) - Math.atan2(east, north);
+  const cosLat = Math.sqrt(x * x + y * y);
+  let u = eastMps;
+  let v = northMps;
+  if (cosLat > 1e-7) {
+    const slo = y / cosLat;
+    const clo = x / cosLat;
+    const outEast = frame[0]! * slo - frame[1]! * clo;
+    const outNorth = frame[0]! * z * clo + frame[1]! * z * slo - frame[2]! * cosLat;
+    // the cosine and sine of the turn, times the lengths of both vectors
+    const cosine = east * outEast + north * outNorth;
+    const sine = east * outNorth - north * outEast;
+    // so near that the direction back drowns in rounding, nothing has turned yet
+    if (outEast * outEast + outNorth * outNorth > 1e-7) {
+      u = cosine * eastMps - sine * northMps;
+      v = sine * eastMps + cosine * northMps;
+    }
+  }
+  const degrees = Math.atan2(-u, -v) / RADIANS;
+  return degrees < 0 ? degrees + 360 : degrees;
 }

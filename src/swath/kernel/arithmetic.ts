@@ -8,11 +8,14 @@ export interface KernelArrays {
   /** first estimate, its moment, second estimate, its moment */
   readonly state: readonly [Float32Array, Float32Array, Float32Array, Float32Array];
   readonly hours: readonly Float32Array[];
-}
-
-/** A table in the kernel's memory. */
-export interface KernelTable {
-  readonly values: Float32Array;
+  /** eight places where the walk wants to know the wind: x, y, z; and the wind there */
+  readonly probe: readonly [Float32Array, Float32Array, Float32Array, Float32Array];
+  /** per cell, where its frame and its tables stand in the kernel's memory, bytes */
+  readonly frameAt: Int32Array;
+  readonly speedAt: Int32Array;
+  readonly windAt: Int32Array;
+  /** what `settle` gives: speed, east and north part, m/s */
+  readonly settled: readonly [Float32Array, Float32Array, Float32Array];
 }
 
 /** The hot loops: WebAssembly, or its twin in plain JavaScript with the same bits. */
@@ -34,6 +37,10 @@ export interface Arithmetic {
     to: number,
   ) => void;
   /** see `maxima` in assembly/kernel.ts; first, middle and last are indices of `winds`, −1 where there is none */
+  /** the same for the eight places of `probe` */
+  readonly probe: (table: Float32Array, groups: number, lastRow: number, frame: Float64Array) => void;
+  /** wind of each cell at the moment that `frameAt`, `speedAt` and `windAt` point to */
+  readonly settle: (count: number, groups: number, lastRow: number, windHarmonics: number) => void;
   readonly maxima: (
     quads: number,
     first: number,

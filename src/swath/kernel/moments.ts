@@ -5,8 +5,8 @@ import {
   type Layout,
   layoutOf,
   type MomentTable,
+  rowRatios,
   rowsBeyond,
-  rowX,
   type Sampling,
   samplingOf,
   tableOf,
@@ -16,10 +16,12 @@ import type { Leg, Timeline } from './timeline.js';
 /** Tables are this far apart in time at most, s: between two of them the nearer one serves, with R and V of the moment. */
 const SLOT_S = 340;
 /** A table is interpolated between two neighbours that explain the one in their middle within this, m/s. */
-const TOLERANCE_MPS = 0.03;
+const TOLERANCE_MPS = 0.05;
 /** Truncation of the harmonics that is left out, m/s. */
 const TRUNCATION_MPS = 0.01;
 const MOST_HARMONICS = 10;
+/** A frame in the kernel's memory, padded. */
+const FRAME_FLOATS = 8;
 /** Splits of a leg at most: 2⁵ tables of a leg are built, the others interpolated. */
 const MOST_SPLITS = 5;
 
@@ -29,19 +31,39 @@ export interface Moments {
   /** whether the harmonics that were kept explain the field */
   readonly complete: boolean;
   /** the table that serves a moment of the timeline */
-  readonly tableAt: (index: number) => MomentTable;
+  readonly tableAt: (index: number) => Placed;
+  /** points a cell of the kernel to a moment's frame and tables */
+  readonly place: (cell: number, index: number) => void;
 }
 
 /** Builds the tables of a storm as they are needed. */
 export function momentsOf(model: WindModel, timeline: Timeline, arithmetic: Arithmetic): Moments {
   const { layout, sampling, complete } = planTables(model, timeline);
+  const shifts = timeline.legs.map(shiftOf);
+  const firstSlots: number[] = [];
+  const slots = new Int32Array(timeline.count);
+  let count = 0;
+  for (const [number, leg] of timeline.legs.entries()) {
+    firstSlots.push(count);
+    const shift = shifts[number]!;
+    for (let j = 0; j <= 1 << leg.depth && leg.first + j < timeline.count; j++)
+      slots[leg.first + j] = count + Math.round(j / (1 << shift));
+    count += (1 << (leg.depth - shift)) + 1;
+  }
+  const mixed = (p: Float32Array, q: Float32Array, t: number): Float32Array => {
+    const out = arithmetic.allocate(p.length);
+    if (t === 0) out.set(p);
+    else for (let k = 0; k < out.length; k++) out[k] = p[k]! + t * (q[k]! - p[k]!);
+    return out;
+  };
+  const tables: (Placed | undefined)[] = new Array(count);
   arithmetic.reserve(
-    timeline.legs.reduce((sum, leg) => sum + (1 << (leg.depth - shiftOf(leg))) + 1, 0) *
-      (layout.rows * layout.speedStride + 4),
+    count * (layout.rows * (layout.speedStride + layout.windStride) + 8) + FRAME_FLOATS * timeline.count + 8,
   );
+  const frames = arithmetic.allocate(FRAME_FLOATS * timeline.count).fill(0);
+  const windAt = new Int32Array(count);
   const build = (timeMs: number): MomentTable => tableOf(model.fieldAt(timeMs), layout, sampling);
-  const legTables: (readonly (readonly [number, MomentTable])[] | undefined)[] = new Array(timeline.legs.length);
-  const slots = new Map<number, MomentTable>();
+  const legTables: (readonly Built[] | undefined)[] = new Array(timeline.legs.length);
   // where the model is continuous a fix serves the legs on both sides
   const continuous = model.recipe['path.interpolation'] !== 'linear';
   const atFix = new Map<number, MomentTable>();
@@ -56,11 +78,11 @@ export function momentsOf(model: WindModel, timeline: Timeline, arithmetic: Arit
     return made;
   };
 
-  const tablesOfLeg = (number: number): readonly (readonly [number, MomentTable])[] => {
+  const tablesOfLeg = (number: number): readonly Built[] => {
     const known = legTables[number];
     if (known) return known;
     const leg = timeline.legs[number]!;
-    const list: [number, MomentTable][] = [[0, endTable(leg, 0)]];
+    const list: Built[] = [{ at: 0, table: endTable(leg, 0) }];
     if (leg.endMs > leg.startMs) {
       const split = (from: number, a: MomentTable, to: number, b: MomentTable, depth: number): void => {
         const at = 0.5 * (from + to);
@@ -69,33 +91,48 @@ export function momentsOf(model: WindModel, timeline: Timeline, arithmetic: Arit
           depth >= MOST_SPLITS ||
           explains(a, b, middle, layout, timeline.frame(leg.first + Math.round(at * (1 << leg.depth)))[9]!);
         if (!fine) split(from, a, at, middle, depth + 1);
-        list.push([at, middle]);
+        list.push({ at, table: middle });
         if (!fine) split(at, middle, to, b, depth + 1);
       };
       const last = endTable(leg, 1);
-      split(0, list[0]![1], 1, last, 1);
-      list.push([1, last]);
+      split(0, list[0]!.table, 1, last, 1);
+      list.push({ at: 1, table: last });
     }
     legTables[number] = list;
     return list;
   };
 
-  const tableAt = (index: number): MomentTable => {
-    const leg = timeline.legOf(index);
-    const number = timeline.legs.indexOf(leg);
-    const shift = shiftOf(leg);
-    const slot = Math.round((index - leg.first) / (1 << shift));
-    // slots of one leg have one spacing: its first index plus the slot's is unlike any other leg's
-    const id = leg.first + number + slot;
-    const known = slots.get(id);
+  const tableAt = (index: number): Placed => {
+    const slot = slots[index]!;
+    const known = tables[slot];
     if (known) return known;
-    const made = interpolated(tablesOfLeg(number), (slot * (1 << shift)) / (1 << leg.depth));
-    const placed = { ...made, speed: arithmetic.allocate(made.speed.length) };
-    placed.speed.set(made.speed);
-    slots.set(id, placed);
+    const number = timeline.legNumber[index]!;
+    const leg = timeline.legs[number]!;
+    const at = ((slot - firstSlots[number]!) * (1 << shifts[number]!)) / (1 << leg.depth);
+    const { a, b, t, bounds } = around(tablesOfLeg(number), at);
+    const placed: Placed = { ...bounds, speed: mixed(a.speed, b.speed, t), windFrom: { a, b, t } };
+    tables[slot] = placed;
     return placed;
   };
-  return { layout, complete, tableAt };
+
+  const place = (cell: number, index: number): void => {
+    const { arrays } = arithmetic;
+    const table = tableAt(index);
+    const slot = slots[index]!;
+    if (windAt[slot] === 0) {
+      const { a, b, t } = table.windFrom;
+      windAt[slot] = mixed(a.wind, b.wind, t).byteOffset + 1;
+    }
+    const at = FRAME_FLOATS * index;
+    if (frames[at + 5] === 0) {
+      const frame = timeline.frame(index);
+      frames.set([frame[3]!, frame[4]!, frame[5]!, frame[6]!, frame[7]!, frame[9]!], at);
+    }
+    arrays.frameAt[cell] = frames.byteOffset + 4 * at;
+    arrays.speedAt[cell] = table.speed.byteOffset;
+    arrays.windAt[cell] = windAt[slot]! - 1;
+  };
+  return { layout, complete, tableAt, place };
 }
 
 /** Fine steps of a leg between two tables, as a power of two. */
@@ -174,8 +211,9 @@ function harmonicsNeeded(values: readonly number[], bound: number): number {
 /** Whether the mean of two tables gives the one in their middle. */
 function explains(a: MomentTable, b: MomentTable, middle: MomentTable, layout: Layout, maxWindMps: number): boolean {
   const { rows, speedStride } = layout;
+  const ratio = rowRatios(rows);
   for (let row = 1; row < rows; row++) {
-    const s = Math.sqrt(rowX(row));
+    const s = ratio[row]!;
     const at = row * speedStride;
     let off = Math.abs(middle.speed[at]! - 0.5 * (a.speed[at]! + b.speed[at]!));
     for (let c = 1; c < speedStride; c++)
@@ -186,33 +224,35 @@ function explains(a: MomentTable, b: MomentTable, middle: MomentTable, layout: L
   return true;
 }
 
-/** The table at a share of a leg, straight between the two that surround it. */
-function interpolated(tables: readonly (readonly [number, MomentTable])[], at: number): MomentTable {
+/** A moment's table in the kernel's memory; its wind part is made when it is asked for. */
+export interface Placed extends Bounds {
+  readonly speed: Float32Array;
+  readonly windFrom: { readonly a: MomentTable; readonly b: MomentTable; readonly t: number };
+}
+
+/** Bounds that hold between two tables. */
+type Bounds = Pick<MomentTable, 'steepest' | 'steepestWithTaper' | 'bent' | 'bentWithTaper'>;
+
+/** A table at a share of its leg, and the bounds from there to the next one. */
+interface Built {
+  readonly at: number;
+  readonly table: MomentTable;
+  bounds?: Bounds;
+}
+
+/** The two tables around a share of a leg, how far it is between them, and bounds for both. */
+function around(list: readonly Built[], at: number): { a: MomentTable; b: MomentTable; t: number; bounds: Bounds } {
   let i = 0;
-  while (i + 2 < tables.length && tables[i + 1]![0] <= at) i++;
-  const [from, a] = tables[i]!;
-  const next = tables[i + 1];
-  if (!next || at <= from) return a;
-  const [to, b] = next;
-  const t = Math.min(1, (at - from) / (to - from));
-  if (t === 0) return a;
-  if (t === 1) return b;
-  const mix = (p: Float32Array, q: Float32Array): Float32Array => {
-    const out = new Float32Array(p.length);
-    for (let k = 0; k < out.length; k++) out[k] = p[k]! + t * (q[k]! - p[k]!);
-    return out;
+  while (i + 2 < list.length && list[i + 1]!.at <= at) i++;
+  const from = list[i]!;
+  const to = list[i + 1] ?? from;
+  const t = to.at > from.at ? Math.min(1, Math.max(0, (at - from.at) / (to.at - from.at))) : 0;
+  const most = (p: Float32Array, q: Float32Array): Float32Array => p.map((value, k) => Math.max(value, q[k]!));
+  from.bounds ??= {
+    steepest: most(from.table.steepest, to.table.steepest),
+    steepestWithTaper: most(from.table.steepestWithTaper, to.table.steepestWithTaper),
+    bent: most(from.table.bent, to.table.bent),
+    bentWithTaper: most(from.table.bentWithTaper, to.table.bentWithTaper),
   };
-  const most = (p: Float32Array, q: Float32Array): Float32Array => {
-    const out = new Float32Array(p.length);
-    for (let k = 0; k < out.length; k++) out[k] = Math.max(p[k]!, q[k]!);
-    return out;
-  };
-  return {
-    speed: mix(a.speed, b.speed),
-    wind: mix(a.wind, b.wind),
-    steepest: most(a.steepest, b.steepest),
-    steepestWithTaper: most(a.steepestWithTaper, b.steepestWithTaper),
-    bent: most(a.bent, b.bent),
-    bentWithTaper: most(a.bentWithTaper, b.bentWithTaper),
-  };
+  return { a: from.table, b: to.table, t, bounds: from.bounds };
 }

@@ -47,6 +47,14 @@ export function rowX(row: number): number {
   return 2 ** (FIRST_EXPONENT + octave) * (1 + step / ROWS_PER_OCTAVE);
 }
 
+/** √x of the first rows, kept as far as they were asked for; the centre stands for a place next to it. */
+let ratios = new Float64Array(0);
+export function rowRatios(rows: number): Float64Array {
+  if (ratios.length < rows)
+    ratios = Float64Array.from({ length: rows }, (_, row) => (row === 0 ? 1e-3 : Math.sqrt(rowX(row))));
+  return ratios;
+}
+
 /** Rows that reach beyond x. */
 export function rowsBeyond(x: number): number {
   const octaves = Math.max(1, Math.ceil(Math.log2(x) - FIRST_EXPONENT));
@@ -94,8 +102,9 @@ export function tableOf(field: WindField, layout: Layout, sampling: Sampling): M
   const lastSpeeds = new Float64Array(count);
   let lastRadius = 0;
   const inverse = 1 / (maxWindMps * maxWindMps);
+  const ratio = rowRatios(rows);
   for (let row = 0; row < rows; row++) {
-    const s = row === 0 ? 1e-3 : Math.sqrt(rowX(row));
+    const s = ratio[row]!;
     const radiusM = EARTH_RADIUS_M * Math.asin(Math.min(1, (s * radiusOfMaxWindM) / EARTH_RADIUS_M));
     if (radiusM >= field.outerRadiusM) winds.fill(0);
     else field.onCircle(winds, radiusM, directions);
@@ -153,7 +162,7 @@ export function tableOf(field: WindField, layout: Layout, sampling: Sampling): M
   for (let row = rows - 1; row >= 0; row--) {
     all = Math.max(all, gradient[row]!);
     allBend = Math.max(allBend, curvature[row]!);
-    if (Math.sqrt(rowX(row)) < taperX) {
+    if (ratio[row]! < taperX) {
       inner = Math.max(inner, gradient[row]!);
       innerBend = Math.max(innerBend, curvature[row]!);
     }
@@ -178,6 +187,15 @@ function fourier(
   at: number,
   offset: number,
 ): void {
+  if (count === 4 && harmonics === 1) {
+    // north, east, south, west
+    const [n, e, w] = [values[offset]!, values[step + offset]!, values[3 * step + offset]!];
+    const south = values[2 * step + offset]!;
+    out[at] = 0.25 * factor * (n + e + south + w);
+    out[at + 1] = (0.5 * factor * (e - w)) / s;
+    out[at + 2] = (0.5 * factor * (n - south)) / s;
+    return;
+  }
   let mean = 0;
   for (let i = 0; i < count; i++) mean += values[step * i + offset]!;
   out[at] = (mean * factor) / count;

@@ -6,18 +6,22 @@ import { MOST_CELLS_OF_TILE } from './tile-size.js';
 import type { Timeline } from './timeline.js';
 
 /** A step moves the storm by at most this share of the distance from it (or of its radius of maximum wind). */
-const STEP_SHARE = 0.12;
-/** A step changes the maximum wind by at most this, m/s, and R by at most this share. */
-const STEP_CHANGE_MPS = 2;
-const STEP_GROWTH = 0.06;
+const STEP_SHARE = 0.15;
+/** Steps are longer by this factor while the wind is weak against what the tile has had. */
+const IDLE_FACTOR = 2.5;
+const IDLE_SHARE = 0.6;
+/** Below this wind, m/s, nothing is promised: there margins are not kept. */
+const CALM_MPS = 7;
+/** Next to the centre steps follow this share of the radius of maximum wind. */
+const CORE_SHARE = 0.8;
 /** What the tables' rounding may hide, m/s. */
 const ROUNDING_MPS = 0.02;
 /** A parabola is trusted when the wind at its vertex is this near to it, m/s. */
 const PARABOLA_MPS = 0.01;
+/** Farther off than this, the peak is searched for, m/s. */
+const SEARCH_MPS = 0.04;
 /** A second maximum in time within this share of the first is looked at too. */
 const RIVAL_SHARE = 0.95;
-/** Longest step, s. */
-const LONGEST_STEP_S = 3600;
 
 /** The cells of a tile, and what was found for each. The arrays of cells and hours are the kernel's. */
 export interface Tile {
@@ -73,7 +77,7 @@ function rowOf(x: number, last: number): number {
 }
 
 /** Squared speed over V² at scaled coordinates. */
-function squaredAt(table: MomentTable, layout: Layout, east: number, north: number): number {
+function squaredAt(table: Pick<MomentTable, 'speed'>, layout: Layout, east: number, north: number): number {
   const { speed } = table;
   const { speedStride: stride, harmonics } = layout;
   const x = east * east + north * north;
@@ -137,25 +141,28 @@ export function tileRunner(
   const { layout } = moments;
   const { outerRadiusM, thresholdsMps } = options;
   const taperM = 0.9 * outerRadiusM;
-  const cosFar = Math.cos(Math.min(Math.PI, (outerRadiusM * 1.001) / EARTH_RADIUS_M));
-  // the walk: moments, wind at the centre, gradient bound, spread of the wind over the tile until the next moment
-  const walkIndex: number[] = [];
-  const walkMs: number[] = [];
-  const centreMps: number[] = [];
-  const slack: number[] = [];
-  const margin: number[] = [];
-  const cornerMps: number[] = [];
-  const broken: boolean[] = [];
-  const wanted: number[] = [];
+  const groups = layout.speedStride / 4;
+  const lastRow = layout.rows - 2;
+  // the walk: moments, winds at the four corners and the centre, what the tile's winds may differ by until the next moment
+  let capacity = 512;
+  let count = 0;
+  let calm = false;
+  let walkIndex = new Int32Array(capacity);
+  let walkMs = new Float64Array(capacity);
+  let winds = new Float64Array(5 * capacity);
+  let slack = new Float64Array(capacity);
+  let margin = new Float64Array(capacity);
+  let broken = new Uint8Array(capacity);
+  let wanted = new Uint8Array(capacity);
   const rivals = new Int32Array(5);
   const found = { peak: 0, index: 0 };
   const startMs = timeline.timeMs(0);
 
   return { run };
 
-  function run(tile: Tile, { centre, radiusM, corners }: TileBounds): boolean {
-    walk(centre, radiusM, corners);
-    if (walkIndex.length === 0) return false;
+  function run(tile: Tile, bounds: TileBounds): boolean {
+    walk(bounds);
+    if (count === 0) return false;
     const { arrays } = arithmetic;
     const quads = (tile.count + 3) >> 2;
     // cells beyond the last of a group are copies of none: the earth's centre, where there is no wind
@@ -173,79 +180,98 @@ export function tileRunner(
   }
 
   /** Walks the storm's way with steps that follow its distance. */
-  function walk(centre: readonly [number, number, number], tileM: number, corners: Float64Array): void {
-    walkIndex.length = 0;
+  function walk({ centre, radiusM: tileM, corners }: TileBounds): void {
+    count = 0;
+    const [px, py, pz, wind] = arithmetic.arrays.probe;
+    const c0 = centre[0];
+    const c1 = centre[1];
+    const c2 = centre[2];
+    for (let q = 0; q < 8; q++) {
+      px[q] = q < 4 ? corners[3 * q]! : c0;
+      py[q] = q < 4 ? corners[3 * q + 1]! : c1;
+      pz[q] = q < 4 ? corners[3 * q + 2]! : c2;
+    }
     let index = 0;
     let gap = true;
-    let number = 0;
+    let strongest = 0;
+    calm = true;
     const end = timeline.count - 1;
     for (;;) {
-      while (number + 1 < timeline.legs.length && timeline.legs[number + 1]!.first <= index) number++;
-      const leg = timeline.legs[number]!;
+      const leg = timeline.legs[timeline.legNumber[index]!]!;
       const frame = timeline.frame(index);
-      const up = centre[0] * frame[0]! + centre[1] * frame[1]! + centre[2] * frame[2]!;
-      const east = centre[0] * frame[3]! + centre[1] * frame[4]!;
-      const north = centre[0] * frame[5]! + centre[1] * frame[6]! + centre[2] * frame[7]!;
       const rmaxM = frame[8]!;
-      const flat = Math.sqrt(east * east + north * north);
+      const up = c0 * frame[0]! + c1 * frame[1]! + c2 * frame[2]!;
+      const east = c0 * frame[3]! + c1 * frame[4]!;
+      const north = c0 * frame[5]! + c1 * frame[6]! + c2 * frame[7]!;
+      const flatM = Math.sqrt(east * east + north * north) * rmaxM;
       const distanceM =
         up > 0.95
-          ? flat * rmaxM * (1 + (flat * rmaxM * flat * rmaxM) / (6 * EARTH_RADIUS_M ** 2))
-          : EARTH_RADIUS_M * Math.atan2((flat * rmaxM) / EARTH_RADIUS_M, up);
-      const fineS = (leg.endMs - leg.startMs) / 1000 / (1 << leg.depth);
+          ? flatM * (1 + (flatM * flatM) / (6 * EARTH_RADIUS_M ** 2))
+          : EARTH_RADIUS_M * Math.atan2(flatM / EARTH_RADIUS_M, up);
       const outside = distanceM - tileM - outerRadiusM;
       let stepS: number;
       if (outside > 0) {
         stepS = leg.speedMps > 0 ? outside / leg.speedMps : Number.POSITIVE_INFINITY;
         gap = true;
       } else {
-        const near = Math.max(distanceM - tileM, 0.8 * rmaxM);
-        stepS = Math.min(
-          LONGEST_STEP_S,
-          leg.speedMps > 0 ? (STEP_SHARE * near) / leg.speedMps : LONGEST_STEP_S,
-          STEP_CHANGE_MPS / leg.changeMps2,
-          STEP_GROWTH / leg.growthPerS,
-        );
+        if (count === capacity) grow();
+        const near = Math.max(distanceM - tileM, CORE_SHARE * rmaxM);
         const table = moments.tableAt(index);
-        const wind =
-          distanceM < outerRadiusM && up > cosFar
-            ? Math.sqrt(Math.max(0, squaredAt(table, layout, east, north))) * frame[9]!
-            : 0;
-        const moveM = Math.min(stepS, fineS * (1 << leg.depth)) * leg.speedMps;
+        arithmetic.probe(table.speed, groups, lastRow, frame);
+        strongest = Math.max(strongest, wind[4]!);
+        const share = wind[4]! < IDLE_SHARE * strongest ? STEP_SHARE * IDLE_FACTOR : STEP_SHARE;
+        stepS = Math.min(leg.longestS, (share * near) / leg.speedMps);
+        const moveM = stepS * leg.speedMps;
         const reachM = tileM + moveM;
-        const s = Math.max(0, distanceM - reachM) / rmaxM;
-        const row = rowOf(s * s, layout.rows - 2);
-        const bounds = distanceM + reachM < taperM ? table.steepest : table.steepestWithTaper;
-        const gradient = 1.1 * bounds[row]!;
-        const change = stepS * (leg.changeMps2 * (wind / frame[9]!) + gradient * distanceM * leg.growthPerS);
-        walkIndex.push(index);
-        const k = walkIndex.length - 1;
-        walkMs[k] = leg.startMs + ((leg.endMs - leg.startMs) * (index - leg.first)) / (1 << leg.depth);
-        centreMps[k] = wind;
-        slack[k] = gradient * (tileM + moveM) + change;
-        broken[k] = gap;
+        const s = distanceM > reachM ? (distanceM - reachM) / rmaxM : 0;
+        const row = rowOf(s * s, lastRow);
+        const inside = distanceM + reachM < taperM;
+        const gradient = 1.1 * (inside ? table.steepest : table.steepestWithTaper)[row]!;
+        const bend = 1.1 * (inside ? table.bent : table.bentWithTaper)[row]!;
+        const change = stepS * (leg.changeMps2 * (wind[4]! / frame[9]!) + gradient * distanceM * leg.growthPerS);
+        const spread = gradient * reachM + change;
+        const k = count++;
+        walkIndex[k] = index;
+        walkMs[k] = leg.startMs + (index - leg.first) * leg.fineMs;
+        winds[5 * k] = wind[0]!;
+        winds[5 * k + 1] = wind[1]!;
+        winds[5 * k + 2] = wind[2]!;
+        winds[5 * k + 3] = wind[3]!;
+        winds[5 * k + 4] = wind[4]!;
+        slack[k] = spread;
+        margin[k] = Math.min(bend * (0.5 * tileM * tileM + 0.125 * moveM * moveM), spread) + ROUNDING_MPS;
+        calm &&= wind[4]! + spread < CALM_MPS;
+        broken[k] = gap ? 1 : 0;
         gap = false;
-        const bend = 1.1 * (distanceM + reachM < taperM ? table.bent : table.bentWithTaper)[row]!;
-        margin[k] = Math.min(bend * (0.5 * tileM * tileM + 0.125 * moveM * moveM), slack[k]!) + ROUNDING_MPS;
-        for (let q = 0; q < 4; q++) {
-          const [cx, cy, cz] = [corners[3 * q]!, corners[3 * q + 1]!, corners[3 * q + 2]!];
-          const squared = squaredAt(
-            table,
-            layout,
-            cx * frame[3]! + cy * frame[4]!,
-            cx * frame[5]! + cy * frame[6]! + cz * frame[7]!,
-          );
-          cornerMps[4 * k + q] = Math.sqrt(Math.max(0, squared)) * frame[9]!;
-        }
       }
       if (index === end) return;
-      const local = index - leg.first;
-      const full = 1 << leg.depth;
       // the longest dyadic step that fits, starts on its own grid and ends within the leg
-      let step = 1;
-      while (step * 2 * fineS <= stepS && (local & (step * 2 - 1)) === 0 && local + step * 2 <= full) step *= 2;
-      index += step;
+      const local = index - leg.first;
+      const room = local === 0 ? 1 << leg.depth : local & -local;
+      const fine = (stepS * 1000) / leg.fineMs;
+      index += fine >= room ? room : fine < 2 ? 1 : 1 << (31 - Math.clz32(fine));
     }
+  }
+
+  function grow(): void {
+    capacity *= 2;
+    walkIndex = longer(walkIndex, Int32Array, 1);
+    walkMs = longer(walkMs, Float64Array, 1);
+    winds = longer(winds, Float64Array, 5);
+    slack = longer(slack, Float64Array, 1);
+    margin = longer(margin, Float64Array, 1);
+    broken = longer(broken, Uint8Array, 1);
+    wanted = longer(wanted, Uint8Array, 1);
+  }
+
+  function longer<T extends Int32Array | Float64Array | Uint8Array>(
+    old: T,
+    kind: new (length: number) => T,
+    each: number,
+  ): T {
+    const made = new kind(capacity * each);
+    made.set(old);
+    return made;
   }
 
   /**
@@ -254,42 +280,42 @@ export function tileRunner(
    * what a cell between the corners may differ from their interpolation, and what may rise between two steps.
    */
   function choose(): void {
-    const count = walkIndex.length;
     rivals.fill(0);
     for (let k = 0; k < count; k++) {
       wanted[k] = 0;
-      if (centreMps[k]! > centreMps[rivals[4]!]!) rivals[4] = k;
-      for (let q = 0; q < 4; q++) if (cornerMps[4 * k + q]! > cornerMps[4 * rivals[q]! + q]!) rivals[q] = k;
+      for (let q = 0; q < 5; q++) if (winds[5 * k + q]! > winds[5 * rivals[q]! + q]!) rivals[q] = k;
     }
     for (let k = 0; k < count; k++) {
-      const joined = k + 1 < count && !broken[k + 1];
       if (!beaten(k)) {
-        for (let j = Math.max(0, k - 1); j <= Math.min(count - 1, k + 1); j++) wanted[j]! |= 1;
+        if (k > 0) wanted[k - 1]! |= 1;
+        wanted[k]! |= 1;
+        if (k + 1 < count) wanted[k + 1]! |= 1;
       }
-      const strongest = joined ? Math.max(centreMps[k]!, centreMps[k + 1]!) : centreMps[k]!;
-      const upper = strongest + (joined ? Math.max(slack[k]!, slack[k + 1]!) : slack[k]!);
-      if (options.hours && joined) {
-        const lower = Math.min(centreMps[k]! - slack[k]!, centreMps[k + 1]! - slack[k + 1]!);
-        for (const threshold of thresholdsMps) {
-          if (upper >= threshold && lower < threshold) {
-            wanted[k]! |= 2;
-            wanted[k + 1]! |= 2;
-            break;
-          }
+      if (!options.hours || k + 1 === count || broken[k + 1] === 1) continue;
+      const [a, b] = [winds[5 * k + 4]!, winds[5 * k + 9]!];
+      const upper = Math.max(a, b) + Math.max(slack[k]!, slack[k + 1]!);
+      const lower = Math.min(a - slack[k]!, b - slack[k + 1]!);
+      for (let h = 0; h < thresholdsMps.length; h++) {
+        if (upper >= thresholdsMps[h]! && lower < thresholdsMps[h]!) {
+          wanted[k]! |= 2;
+          wanted[k + 1]! |= 2;
+          break;
         }
       }
     }
   }
 
   function beaten(k: number): boolean {
-    for (const rival of rivals) {
-      const m = margin[k]! + margin[rival]!;
-      const [i, j] = [4 * k, 4 * rival];
+    const i = 5 * k;
+    for (let r = 0; r < 5; r++) {
+      const rival = rivals[r]!;
+      const m = calm ? ROUNDING_MPS : margin[k]! + margin[rival]!;
+      const j = 5 * rival;
       if (
-        cornerMps[i]! + m < cornerMps[j]! &&
-        cornerMps[i + 1]! + m < cornerMps[j + 1]! &&
-        cornerMps[i + 2]! + m < cornerMps[j + 2]! &&
-        cornerMps[i + 3]! + m < cornerMps[j + 3]!
+        winds[i]! + m < winds[j]! &&
+        winds[i + 1]! + m < winds[j + 1]! &&
+        winds[i + 2]! + m < winds[j + 2]! &&
+        winds[i + 3]! + m < winds[j + 3]!
       )
         return true;
     }
@@ -297,12 +323,10 @@ export function tileRunner(
   }
 
   function evaluate(tile: Tile, quads: number): void {
-    const groups = layout.speedStride / 4;
-    const lastRow = layout.rows - 2;
     // buffers of the two moments before; −1 for none
     let [first, middle, middleK] = [-1, -1, -1];
-    for (let k = 0; k < walkIndex.length; k++) {
-      const joined = k > 0 && !broken[k];
+    for (let k = 0; k < count; k++) {
+      const joined = k > 0 && broken[k] === 0;
       const stepHours = joined ? (walkMs[k]! - walkMs[k - 1]!) / 3_600_000 : 0;
       if (wanted[k] === 0) {
         if (options.hours && joined) wholeHours(tile, k, stepHours);
@@ -336,7 +360,7 @@ export function tileRunner(
 
   /** A step in which no threshold lies between the bounds: all cells are above it or none is. */
   function wholeHours(tile: Tile, k: number, stepHours: number): void {
-    const lower = Math.min(centreMps[k - 1]! - slack[k - 1]!, centreMps[k]! - slack[k]!);
+    const lower = Math.min(winds[5 * k - 1]! - slack[k - 1]!, winds[5 * k + 4]! - slack[k]!);
     for (let h = 0; h < thresholdsMps.length; h++) {
       if (lower < thresholdsMps[h]!) continue;
       const hours = arithmetic.arrays.hours[h]!;
@@ -353,50 +377,66 @@ export function tileRunner(
     return Math.sqrt(Math.max(0, squaredAt(moments.tableAt(index), layout, east, north))) * frame[9]!;
   }
 
-  /** The peak between the moments that were evaluated, and the wind's direction then. */
+  /** The peak between the moments that were evaluated, checked where its parabola put it, and the wind's direction then. */
   function finish(tile: Tile): void {
-    const [best, bestMoment, second, secondMoment] = arithmetic.arrays.state;
+    const { arrays } = arithmetic;
+    const [best, bestMoment, second, secondMoment] = arrays.state;
     for (let i = 0; i < tile.count; i++) {
-      if (!(best[i]! > 0)) {
-        tile.windMps[i] = 0;
-        continue;
-      }
-      settle(i, best[i]!, bestMoment[i]!);
-      const { peak, index } = found;
+      const nearest = best[i]! > 0 ? Math.round(bestMoment[i]!) : 0;
+      tile.peakIndex[i] = nearest;
+      moments.place(i, nearest);
+    }
+    arithmetic.settle(tile.count, groups, lastRow, layout.windHarmonics);
+    const [real] = arrays.settled;
+    let moved = false;
+    for (let i = 0; i < tile.count; i++) {
+      tile.windMps[i] = 0;
+      if (!(best[i]! > 0)) continue;
+      const off = Math.abs(real[i]! - best[i]!);
+      const rival = second[i]! > RIVAL_SHARE * best[i]!;
+      found.peak = off <= PARABOLA_MPS ? best[i]! : real[i]!;
+      found.index = bestMoment[i]!;
+      if (off > SEARCH_MPS) search(i, bestMoment[i]!);
       // the estimates may be off where the wind has a corner: then the second may be the first
-      if (second[i]! > RIVAL_SHARE * best[i]!) {
-        settle(i, second[i]!, secondMoment[i]!);
+      if (rival && (off > PARABOLA_MPS || second[i]! > found.peak - SEARCH_MPS)) {
+        const { peak, index } = found;
+        search(i, secondMoment[i]!);
         if (found.peak <= peak) {
           found.peak = peak;
           found.index = index;
         }
       }
-      const nearest = Math.round(found.index);
       tile.windMps[i] = found.peak;
       tile.peakS[i] = (timeline.timeMs(found.index) - startMs) / 1000;
+      const nearest = Math.round(found.index);
+      if (nearest === tile.peakIndex[i]) continue;
       tile.peakIndex[i] = nearest;
-      direction(tile, i, nearest);
+      moments.place(i, nearest);
+      moved = true;
     }
+    if (moved) arithmetic.settle(tile.count, groups, lastRow, layout.windHarmonics);
+    const [, east, north] = arrays.settled;
+    tile.eastMps.set(east.subarray(0, tile.count));
+    tile.northMps.set(north.subarray(0, tile.count));
   }
 
-  /** A peak that was estimated by a parabola, checked where it was put, and searched for where it does not hold. */
-  function settle(i: number, estimate: number, moment: number): void {
+  /** The highest moment around an estimate, between the neighbours that the walk has. */
+  function search(i: number, moment: number): void {
     const near = Math.round(moment);
-    if (Math.abs(speedAt(i, near) - estimate) <= PARABOLA_MPS) {
-      found.peak = estimate;
-      found.index = moment;
-      return;
+    let [k, above] = [0, count];
+    while (above - k > 1) {
+      const middle = (k + above) >> 1;
+      if (walkIndex[middle]! <= near) k = middle;
+      else above = middle;
     }
-    let k = 0;
-    while (k + 1 < walkIndex.length && walkIndex[k + 1]! <= near) k++;
-    const low = broken[k] ? walkIndex[k]! : walkIndex[k - 1]!;
-    const next = k + 1 < walkIndex.length && !broken[k + 1] ? k + 1 : k;
-    const high = next + 1 < walkIndex.length && !broken[next + 1] ? walkIndex[next + 1]! : walkIndex[next]!;
-    search(i, low, near, high);
+    const low = k === 0 || broken[k] === 1 ? walkIndex[k]! : walkIndex[k - 1]!;
+    const next = k + 1 < count && broken[k + 1] === 0 ? k + 1 : k;
+    const high = next + 1 < count && broken[next + 1] === 0 ? walkIndex[next + 1]! : walkIndex[next]!;
+    halve(i, low, near, high);
   }
 
   /** Halves the wider side around the best moment until neighbours are left; a parabola through the last three. */
-  function search(i: number, from: number, at: number, to: number): void {
+  function halve(i: number, from: number, at: number, to: number): void {
     let [low, middle, high] = [from, at, to];
     let [before, peak, after] = [speedAt(i, low), speedAt(i, middle), speedAt(i, high)];
     while (high - middle > 1 || middle - low > 1) {
@@ -425,35 +465,5 @@ export function tileRunner(
     if (rise > 0.25 * Math.min(peak - before, peak - after) + 0.02) return;
     found.peak = peak + rise;
     found.index = middle - (0.5 * slope) / bend;
-  }
-
-  function direction(tile: Tile, i: number, index: number): void {
-    const frame = timeline.frame(index);
-    const { wind } = moments.tableAt(index);
-    const [x, y, z] = [arithmetic.arrays.x[i]!, arithmetic.arrays.y[i]!, arithmetic.arrays.z[i]!];
-    const east = x * frame[3]! + y * frame[4]!;
-    const north = x * frame[5]! + y * frame[6]! + z * frame[7]!;
-    const s2 = east * east + north * north;
-    const row = rowOf(s2, layout.rows - 2);
-    const t = share;
-    const { windStride, windHarmonics } = layout;
-    const parts = windStride / 2;
-    const inverse = s2 > 0 ? 1 / Math.sqrt(s2) : 0;
-    const [c, s] = [north * inverse, east * inverse];
-    for (let part = 0; part < 2; part++) {
-      const a = row * windStride + part * parts;
-      const b = a + windStride;
-      let value = wind[a]! + t * (wind[b]! - wind[a]!);
-      let [e, n] = [east, north];
-      for (let k = 1; k <= windHarmonics; k++) {
-        const p = a + 2 * k - 1;
-        const q = b + 2 * k - 1;
-        value += e * (wind[p]! + t * (wind[q]! - wind[p]!)) + n * (wind[p + 1]! + t * (wind[q + 1]! - wind[p + 1]!));
-        const nextE = e * c + n * s;
-        n = n * c - e * s;
-        e = nextE;
-      }
-      (part === 0 ? tile.eastMps : tile.northMps)[i] = value * frame[9]!;
-    }
   }
 }

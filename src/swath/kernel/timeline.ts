@@ -3,6 +3,11 @@ import type { WindModel } from '../../model/wind.js';
 
 /** Shortest step that the timeline can take, about, s. */
 const FINEST_S = 40;
+/** A step changes the maximum wind by at most this, m/s, and the radius of maximum wind by at most this share. */
+const STEP_CHANGE_MPS = 2;
+const STEP_GROWTH = 0.06;
+/** Longest step, s. */
+const LONGEST_STEP_S = 3600;
 /** Numbers in a frame: see {@link Timeline.frame}. */
 export const FRAME = 10;
 
@@ -17,6 +22,10 @@ export interface Leg {
   readonly speedMps: number;
   readonly growthPerS: number;
   readonly changeMps2: number;
+  /** between two moments */
+  readonly fineMs: number;
+  /** longest step within which intensity and size change little, s */
+  readonly longestS: number;
 }
 
 /** Moments of a storm on a dyadic grid between its fixes, each fix being one of them. */
@@ -24,7 +33,8 @@ export interface Timeline {
   readonly legs: readonly Leg[];
   /** moments in all */
   readonly count: number;
-  readonly legOf: (index: number) => Leg;
+  /** number of the leg that a moment belongs to; a fix belongs to the leg that it starts */
+  readonly legNumber: Uint16Array;
   readonly timeMs: (index: number) => number;
   /**
    * The frame of a moment at `index * FRAME`: the centre as a unit vector (3), then its local east (2) and north (3)
@@ -46,24 +56,35 @@ export function timelineOf(model: WindModel, fromMs: number, toMs: number): Time
   for (let i = 0; i + 1 < knots.length; i++) {
     const [startMs, endMs] = [knots[i]!, knots[i + 1]!];
     const depth = Math.max(2, Math.ceil(Math.log2((endMs - startMs) / 1000 / FINEST_S)));
-    legs.push({ startMs, endMs, first, depth, ...boundsOf(model, startMs, endMs) });
+    const bounds = boundsOf(model, startMs, endMs);
+    const longestS = Math.min(
+      LONGEST_STEP_S,
+      (endMs - startMs) / 1000,
+      STEP_CHANGE_MPS / bounds.changeMps2,
+      STEP_GROWTH / bounds.growthPerS,
+    );
+    legs.push({ startMs, endMs, first, depth, ...bounds, fineMs: (endMs - startMs) / (1 << depth), longestS });
     first += 1 << depth;
   }
   if (legs.length === 0)
-    legs.push({ startMs: fromMs, endMs: fromMs, first: 0, depth: 0, speedMps: 0, growthPerS: 0, changeMps2: 0 });
+    legs.push({
+      startMs: fromMs,
+      endMs: fromMs,
+      first: 0,
+      depth: 0,
+      speedMps: 0,
+      growthPerS: 0,
+      changeMps2: 0,
+      fineMs: 0,
+      longestS: 0,
+    });
   const count = legs.length === 1 && legs[0]!.depth === 0 ? 1 : first + 1;
   const frames: (Float64Array | undefined)[] = new Array(count);
 
-  const legOf = (index: number): Leg => {
-    let low = 0;
-    let high = legs.length - 1;
-    while (low < high) {
-      const middle = (low + high + 1) >> 1;
-      if (legs[middle]!.first <= index) low = middle;
-      else high = middle - 1;
-    }
-    return legs[low]!;
-  };
+  const legNumber = new Uint16Array(count);
+  for (const [number, leg] of legs.entries())
+    legNumber.fill(number, leg.first, Math.min(count, leg.first + (1 << leg.depth) + 1));
+  const legOf = (index: number): Leg => legs[legNumber[Math.min(count - 1, Math.max(0, Math.floor(index)))]!]!;
   const timeMs = (index: number): number => {
     const leg = legOf(index);
     return leg.startMs + ((leg.endMs - leg.startMs) * (index - leg.first)) / (1 << leg.depth);
@@ -76,7 +97,7 @@ export function timelineOf(model: WindModel, fromMs: number, toMs: number): Time
     frames[index] = made;
     return made;
   };
-  return { legs, count, legOf, timeMs, frame };
+  return { legs, count, legNumber, timeMs, frame };
 }
 
 function frameOf(state: {

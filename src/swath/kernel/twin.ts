@@ -22,58 +22,38 @@ export function twinArithmetic(): Arithmetic {
     winds: [floats(), floats(), floats()],
     state: [floats(), floats(), floats(), floats()],
     hours: Array.from({ length: THRESHOLD_SLOTS }, floats),
+    probe: [floats(), floats(), floats(), floats()],
+    frameAt: new Int32Array(MOST_CELLS_OF_TILE),
+    speedAt: new Int32Array(MOST_CELLS_OF_TILE),
+    windAt: new Int32Array(MOST_CELLS_OF_TILE),
+    settled: [floats(), floats(), floats()],
   };
   const products = new Float32Array(24);
+  let heap = new Float32Array(0);
+  let top = 0;
   return {
     name: 'javascript',
     arrays,
-    allocate: (length) => new Float32Array(length),
-    release: () => undefined,
-    reserve: () => undefined,
-    sample(quads, table, groups, lastRow, frame, to) {
-      const { x, y, z } = arrays;
-      const out = arrays.winds[to]!;
-      const [e0, e1] = [f(frame[3]!), f(frame[4]!)];
-      const [n0, n1, n2] = [f(frame[5]!), f(frame[6]!), f(frame[7]!)];
-      const maxWind = f(frame[9]!);
-      const stride = groups * 4;
-      for (let i = 0; i < quads * 4; i++) {
-        const cx = x[i]!;
-        const cy = y[i]!;
-        const east = f(f(cx * e0) + f(cy * e1));
-        const north = f(f(f(cx * n0) + f(cy * n1)) + f(z[i]! * n2));
-        const s2 = f(f(east * east) + f(north * north));
-        let row = 0;
-        let t: number;
-        if (s2 < FIRST_X) t = f(s2 * PER_FIRST_X);
-        else {
-          bits[0] = s2;
-          const w = word[0]!;
-          row = (w >> SHIFT) - FIRST_WORD;
-          t = f(f(w & FRACTION) * FRACTION_SCALE);
-          if (row >= lastRow) {
-            row = lastRow;
-            t = 0;
-          }
-        }
-        const a = row * stride;
-        const b = a + stride;
-        const mean = f(table[a]! + f(t * f(table[b]! - table[a]!)));
-        const sine = f(table[a + 1]! + f(t * f(table[b + 1]! - table[a + 1]!)));
-        const cosine = f(table[a + 2]! + f(t * f(table[b + 2]! - table[a + 2]!)));
-        let value: number;
-        if (groups === 1) value = f(f(mean + f(east * sine)) + f(north * cosine));
-        else {
-          basis(east, north, s2, stride);
-          value = 0;
-          for (let c = 0; c < stride; c++) {
-            const column = f(table[a + c]! + f(t * f(table[b + c]! - table[a + c]!)));
-            value = f(value + f(column * products[c]!));
-          }
-        }
-        out[i] = f(f(Math.sqrt(Math.max(value, 0))) * maxWind);
-      }
+    reserve(floats) {
+      if (heap.length < floats) heap = new Float32Array(floats);
     },
+    allocate(length) {
+      const padded = (length + 3) & ~3;
+      if (top + padded > heap.length) throw new RangeError('the kernel’s memory was reserved too small');
+      const view = new Float32Array(heap.buffer, 4 * top, length);
+      top += padded;
+      return view;
+    },
+    release() {
+      top = 0;
+    },
+    sample(quads, table, groups, lastRow, frame, to) {
+      sampleInto([arrays.x, arrays.y, arrays.z, arrays.winds[to]!], quads, table, groups, lastRow, frame);
+    },
+    probe(table, groups, lastRow, frame) {
+      sampleInto(arrays.probe, 2, table, groups, lastRow, frame);
+    },
+    settle,
     maxima(quads, first, middle, last, moment, t0, t2) {
       const [best, bestMoment, second, secondMoment] = arrays.state;
       const [w0, w2] = [f(t0), f(t2)];
@@ -126,6 +106,116 @@ export function twinArithmetic(): Arithmetic {
       }
     },
   };
+
+  function sampleInto(
+    [x, y, z, out]: readonly [Float32Array, Float32Array, Float32Array, Float32Array],
+    quads: number,
+    table: Float32Array,
+    groups: number,
+    lastRow: number,
+    frame: Float64Array,
+  ): void {
+    const [e0, e1] = [f(frame[3]!), f(frame[4]!)];
+    const [n0, n1, n2] = [f(frame[5]!), f(frame[6]!), f(frame[7]!)];
+    const maxWind = f(frame[9]!);
+    const stride = groups * 4;
+    for (let i = 0; i < quads * 4; i++) {
+      const cx = x[i]!;
+      const cy = y[i]!;
+      const east = f(f(cx * e0) + f(cy * e1));
+      const north = f(f(f(cx * n0) + f(cy * n1)) + f(z[i]! * n2));
+      const s2 = f(f(east * east) + f(north * north));
+      let row = 0;
+      let t: number;
+      if (s2 < FIRST_X) t = f(s2 * PER_FIRST_X);
+      else {
+        bits[0] = s2;
+        const w = word[0]!;
+        row = (w >> SHIFT) - FIRST_WORD;
+        t = f(f(w & FRACTION) * FRACTION_SCALE);
+        if (row >= lastRow) {
+          row = lastRow;
+          t = 0;
+        }
+      }
+      const a = row * stride;
+      const b = a + stride;
+      const mean = f(table[a]! + f(t * f(table[b]! - table[a]!)));
+      const sine = f(table[a + 1]! + f(t * f(table[b + 1]! - table[a + 1]!)));
+      const cosine = f(table[a + 2]! + f(t * f(table[b + 2]! - table[a + 2]!)));
+      let value: number;
+      if (groups === 1) value = f(f(mean + f(east * sine)) + f(north * cosine));
+      else {
+        basis(east, north, s2, stride);
+        value = 0;
+        for (let c = 0; c < stride; c++) {
+          const column = f(table[a + c]! + f(t * f(table[b + c]! - table[a + c]!)));
+          value = f(value + f(column * products[c]!));
+        }
+      }
+      out[i] = f(f(Math.sqrt(Math.max(value, 0))) * maxWind);
+    }
+  }
+
+  function settle(count: number, groups: number, lastRow: number, windHarmonics: number): void {
+    const [speeds, easts, norths] = arrays.settled;
+    const stride = groups * 4;
+    const part = 1 + 2 * windHarmonics;
+    const column = (at: number, step: number, t: number): number =>
+      f(heap[at]! + f(t * f(heap[at + step]! - heap[at]!)));
+    for (let i = 0; i < count; i++) {
+      const frame = arrays.frameAt[i]! >> 2;
+      const [x, y, z] = [arrays.x[i]!, arrays.y[i]!, arrays.z[i]!];
+      const east = f(f(x * heap[frame]!) + f(y * heap[frame + 1]!));
+      const north = f(f(f(x * heap[frame + 2]!) + f(y * heap[frame + 3]!)) + f(z * heap[frame + 4]!));
+      const maxWind = heap[frame + 5]!;
+      const s2 = f(f(east * east) + f(north * north));
+      let row = 0;
+      let t: number;
+      if (s2 < FIRST_X) t = f(s2 * PER_FIRST_X);
+      else {
+        bits[0] = s2;
+        const w = word[0]!;
+        row = (w >> SHIFT) - FIRST_WORD;
+        t = f(f(w & FRACTION) * FRACTION_SCALE);
+        if (row >= lastRow) {
+          row = lastRow;
+          t = 0;
+        }
+      }
+      const inverse = s2 > 0 ? f(1 / f(Math.sqrt(s2))) : 0;
+      const c = f(north * inverse);
+      const s = f(east * inverse);
+      let p = (arrays.speedAt[i]! >> 2) + row * stride;
+      let value = column(p, stride, t);
+      let e = east;
+      let n = north;
+      for (let k = 1; k < stride; k += 2) {
+        value = f(value + f(e * column(p + k, stride, t)));
+        if (k + 1 < stride) value = f(value + f(n * column(p + k + 1, stride, t)));
+        const nextE = f(f(e * c) + f(n * s));
+        n = f(f(n * c) - f(e * s));
+        e = nextE;
+      }
+      speeds[i] = f(f(Math.sqrt(Math.max(value, 0))) * maxWind);
+      p = (arrays.windAt[i]! >> 2) + row * 2 * part;
+      const q = p + part;
+      let u = column(p, 2 * part, t);
+      let v = column(q, 2 * part, t);
+      e = east;
+      n = north;
+      for (let k = 1; k <= windHarmonics; k++) {
+        const o = 2 * k - 1;
+        u = f(u + f(f(e * column(p + o, 2 * part, t)) + f(n * column(p + o + 1, 2 * part, t))));
+        v = f(v + f(f(e * column(q + o, 2 * part, t)) + f(n * column(q + o + 1, 2 * part, t))));
+        const nextE = f(f(e * c) + f(n * s));
+        n = f(f(n * c) - f(e * s));
+        e = nextE;
+      }
+      easts[i] = f(u * maxWind);
+      norths[i] = f(v * maxWind);
+    }
+  }
 
   function basis(east: number, north: number, s2: number, columns: number): void {
     const inverse = s2 > 0 ? f(1 / f(Math.sqrt(s2))) : 0;

@@ -31,6 +31,20 @@ interface Exports {
     has0: number,
     has2: number,
   ) => void;
+  readonly settle: (
+    cells: number,
+    pitch: number,
+    count: number,
+    frames: number,
+    speeds: number,
+    winds: number,
+    groups: number,
+    lastRow: number,
+    windHarmonics: number,
+    outSpeed: number,
+    outEast: number,
+    outNorth: number,
+  ) => void;
   readonly addHours: (a: number, b: number, hours: number, quads: number, threshold: number, stepHours: number) => void;
 }
 
@@ -43,7 +57,10 @@ const CELLS = START;
 const WINDS = CELLS + 3 * PITCH;
 const STATE = WINDS + 3 * PITCH;
 const HOURS = STATE + 4 * PITCH;
-const HEAP = HOURS + THRESHOLD_SLOTS * PITCH;
+const PROBE = HOURS + THRESHOLD_SLOTS * PITCH;
+const POINTERS = PROBE + 4 * PITCH;
+const SETTLED = POINTERS + 3 * PITCH;
+const HEAP = SETTLED + 3 * PITCH;
 
 let compiled: WebAssembly.Module | null | undefined;
 
@@ -64,7 +81,7 @@ export function wasmArithmetic(): Arithmetic | null {
   const module = kernelModule();
   if (!module) return null;
   const memory = new WebAssembly.Memory({ initial: Math.ceil(HEAP / PAGE) + 1, maximum: 65_536 });
-  const { sample, maxima, addHours } = new WebAssembly.Instance(module, { env: { memory } })
+  const { sample, maxima, addHours, settle } = new WebAssembly.Instance(module, { env: { memory } })
     .exports as unknown as Exports;
   let top = HEAP;
   let arrays = viewsOf(memory.buffer);
@@ -107,6 +124,39 @@ export function wasmArithmetic(): Arithmetic | null {
         windAt(to),
       );
     },
+    probe(table, groups, lastRow, frame) {
+      sample(
+        PROBE,
+        PITCH,
+        2,
+        table.byteOffset,
+        groups,
+        lastRow,
+        frame[3]!,
+        frame[4]!,
+        frame[5]!,
+        frame[6]!,
+        frame[7]!,
+        frame[9]!,
+        PROBE + 3 * PITCH,
+      );
+    },
+    settle(count, groups, lastRow, windHarmonics) {
+      settle(
+        CELLS,
+        PITCH,
+        count,
+        POINTERS,
+        POINTERS + PITCH,
+        POINTERS + 2 * PITCH,
+        groups,
+        lastRow,
+        windHarmonics,
+        SETTLED,
+        SETTLED + PITCH,
+        SETTLED + 2 * PITCH,
+      );
+    },
     maxima(quads, first, middle, last, moment, t0, t2) {
       maxima(
         windAt(first),
@@ -137,5 +187,10 @@ function viewsOf(buffer: ArrayBuffer): KernelArrays {
     winds: [at(WINDS), at(WINDS + PITCH), at(WINDS + 2 * PITCH)],
     state: [at(STATE), at(STATE + PITCH), at(STATE + 2 * PITCH), at(STATE + 3 * PITCH)],
     hours: Array.from({ length: THRESHOLD_SLOTS }, (_, i) => at(HOURS + i * PITCH)),
+    probe: [at(PROBE), at(PROBE + PITCH), at(PROBE + 2 * PITCH), at(PROBE + 3 * PITCH)],
+    frameAt: new Int32Array(buffer, POINTERS, MOST_CELLS_OF_TILE),
+    speedAt: new Int32Array(buffer, POINTERS + PITCH, MOST_CELLS_OF_TILE),
+    windAt: new Int32Array(buffer, POINTERS + 2 * PITCH, MOST_CELLS_OF_TILE),
+    settled: [at(SETTLED), at(SETTLED + PITCH), at(SETTLED + 2 * PITCH)],
   };
 }

@@ -194,3 +194,79 @@ export function addHours(a: usize, b: usize, hours: usize, quads: i32, threshold
     v128.store(hours + at, f32x4.add(v128.load(hours + at), f32x4.mul(vstep, part)));
   }
 }
+
+/**
+ * Wind of single cells, each at a moment of its own: speed (to check an estimate) and parts east and north.
+ * @param frames, speeds, winds per cell: where its frame (e0, e1, n0, n1, n2, V) and its two tables stand
+ */
+export function settle(
+  cells: usize, pitch: usize, count: i32, frames: usize, speeds: usize, winds: usize,
+  groups: i32, lastRow: i32, windHarmonics: i32, outSpeed: usize, outEast: usize, outNorth: usize,
+): void {
+  const stride: i32 = groups << 4;
+  const part: i32 = (1 + 2 * windHarmonics) << 2;
+  for (let i = 0; i < count; i++) {
+    const at = <usize>i << 2;
+    const frame = <usize>load<i32>(frames + at);
+    const x = load<f32>(cells + at);
+    const y = load<f32>(cells + pitch + at);
+    const z = load<f32>(cells + 2 * pitch + at);
+    const east: f32 = x * load<f32>(frame) + y * load<f32>(frame, 4);
+    const north: f32 = x * load<f32>(frame, 8) + y * load<f32>(frame, 12) + z * load<f32>(frame, 16);
+    const maxWind = load<f32>(frame, 20);
+    const s2: f32 = east * east + north * north;
+    let row: i32 = 0;
+    let t: f32;
+    if (s2 < FIRST_X) t = s2 * PER_FIRST_X;
+    else {
+      const w = reinterpret<i32>(s2);
+      row = (w >> SHIFT) - FIRST_WORD;
+      t = <f32>(w & FRACTION) * FRACTION_SCALE;
+      if (row >= lastRow) {
+        row = lastRow;
+        t = 0;
+      }
+    }
+    let inverse: f32 = 0;
+    if (s2 > 0) inverse = <f32>1 / sqrt<f32>(s2);
+    const c: f32 = north * inverse;
+    const s: f32 = east * inverse;
+    // squared speed
+    let p = <usize>load<i32>(speeds + at) + <usize>(row * stride);
+    let value = column(p, stride, t);
+    let e = east;
+    let n = north;
+    for (let k = 1; k < groups << 2; k += 2) {
+      value += e * column(p + (<usize>k << 2), stride, t);
+      if (k + 1 < groups << 2) value += n * column(p + (<usize>(k + 1) << 2), stride, t);
+      const nextE: f32 = e * c + n * s;
+      n = n * c - e * s;
+      e = nextE;
+    }
+    store<f32>(outSpeed + at, sqrt<f32>(max<f32>(value, 0)) * maxWind);
+    // parts of the wind
+    p = <usize>load<i32>(winds + at) + <usize>(row * 2 * part);
+    const q = p + <usize>part;
+    let u = column(p, 2 * part, t);
+    let v = column(q, 2 * part, t);
+    e = east;
+    n = north;
+    for (let k = 1; k <= windHarmonics; k++) {
+      const o = (<usize>k << 3) - 4;
+      u += e * column(p + o, 2 * part, t) + n * column(p + o + 4, 2 * part, t);
+      v += e * column(q + o, 2 * part, t) + n * column(q + o + 4, 2 * part, t);
+      const nextE: f32 = e * c + n * s;
+      n = n * c - e * s;
+      e = nextE;
+    }
+    store<f32>(outEast + at, u * maxWind);
+    store<f32>(outNorth + at, v * maxWind);
+  }
+}
+
+// @ts-ignore: decorator
+@inline
+function column(at: usize, stride: i32, t: f32): f32 {
+  const a = load<f32>(at);
+  return a + t * (load<f32>(at + <usize>stride) - a);
+}

@@ -59,7 +59,7 @@ describe.skipIf(!BROWSER)('page in a browser', () => {
     });
     await page.goto(pathToFileURL(join(folder, 'map.html')).href);
     await page.waitForFunction(() => document.documentElement.dataset['ready'] === 'yes');
-  });
+  }, 120_000);
 
   afterAll(async () => {
     await context?.close();

@@ -58,7 +58,11 @@ describe.skipIf(!BROWSER)('page in a browser', () => {
       void dialog.dismiss();
     });
     await page.goto(pathToFileURL(join(folder, 'map.html')).href);
-    await page.waitForFunction(() => document.documentElement.dataset['ready'] === 'yes');
+    await page
+      .waitForFunction(() => document.documentElement.dataset['ready'] === 'yes')
+      .catch((cause) => {
+        throw new Error(`the page did not get ready: ${troubles.join('; ')}`, { cause });
+      });
   }, 120_000);
 
   afterAll(async () => {

@@ -36,13 +36,17 @@ export interface SwathFields {
 export async function peakSwath(model: WindModel, grid: Grid, options: PeakOptions = {}): Promise<Swath> {
   const fields = newFields(grid.nx * grid.ny);
   const work = swathWork(model, grid, options);
-  for (let row = 0; row < work.tiling.rows; row++) {
-    options.signal?.throwIfAborted();
-    work.runRow(row, fields);
-    if ((row & 15) === 15) {
-      options.onProgress?.(row / work.tiling.rows);
-      await new Promise((resolve) => setTimeout(resolve, 0));
+  try {
+    for (let row = 0; row < work.tiling.rows; row++) {
+      options.signal?.throwIfAborted();
+      work.runRow(row, fields);
+      if ((row & 15) === 15) {
+        options.onProgress?.(row / work.tiling.rows);
+        await new Promise((resolve) => setTimeout(resolve, 0));
+      }
     }
+  } finally {
+    work.done();
   }
   return swathFrom(model, grid, fields, work.cautions);
 }
@@ -77,7 +81,12 @@ export interface SwathWork {
   readonly tiling: Tiling;
   readonly cautions: readonly string[];
   readonly runRow: (row: number, fields: SwathFields) => void;
+  /** gives the kernel's memory back for the next swath */
+  readonly done: () => void;
 }
+
+/** Kernels that no swath is using: their memory is kept. */
+const idle: Arithmetic[] = [];
 
 export function swathWork(
   model: WindModel,
@@ -86,7 +95,7 @@ export function swathWork(
 ): SwathWork {
   const fromMs = options.fromMs ?? model.path.startMs;
   const timeline = timelineOf(model, fromMs, options.toMs ?? model.path.endMs);
-  const arithmetic = options.arithmetic ?? wasmArithmetic() ?? twinArithmetic();
+  const arithmetic = options.arithmetic ?? idle.pop() ?? wasmArithmetic() ?? twinArithmetic();
   arithmetic.release();
   const moments = momentsOf(model, timeline, arithmetic);
   const tiling = tilingOf(grid);
@@ -103,6 +112,9 @@ export function swathWork(
   return {
     tiling,
     cautions,
+    done: () => {
+      if (!options.arithmetic) idle.push(arithmetic);
+    },
     runRow(row, fields) {
       for (let column = 0; column < tiling.columns; column++) {
         const bounds = tiling.load(tile, arithmetic.arrays, { column, row });

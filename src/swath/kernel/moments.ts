@@ -17,9 +17,13 @@ import type { Leg, Timeline } from './timeline.js';
 const SLOT_S = 340;
 /** A table is interpolated between two neighbours that explain the one in their middle within this, m/s. */
 const TOLERANCE_MPS = 0.05;
+/** Winds below this need not be explained, m/s: nothing is promised of them. */
+const LEAST_MPS = 7.5;
 /** Truncation of the harmonics that is left out, m/s. */
 const TRUNCATION_MPS = 0.01;
 const MOST_HARMONICS = 10;
+/** Directions in which a field is probed for its harmonics. */
+const PROBES = 32;
 /** A frame in the kernel's memory, padded. */
 const FRAME_FLOATS = 8;
 /** Splits of a leg at most: 2⁵ tables of a leg are built, the others interpolated. */
@@ -154,12 +158,12 @@ function planTables(model: WindModel, timeline: Timeline): { layout: Layout; sam
   const farthest = (EARTH_RADIUS_M * Math.sin(Math.min(Math.PI / 2, model.outerRadiusM / EARTH_RADIUS_M))) / smallest;
   const rows = rowsBeyond(farthest * farthest * 1.02);
   // probe a few moments with many directions
-  const probe = samplingOf(48);
-  const winds = new Float64Array(96);
+  const probe = samplingOf(PROBES);
+  const winds = new Float64Array(2 * PROBES);
   let [harmonics, windHarmonics] = [1, 1];
   let complete = true;
   const { legs } = timeline;
-  const probed = [...new Set([0, 1, 2, 3, 4, 5, 6, 7].map((i) => Math.floor((i * (legs.length - 1)) / 7)))];
+  const probed = [...new Set([0, 1, 2, 3, 4].map((i) => Math.floor((i * (legs.length - 1)) / 4)))];
   for (const number of probed) {
     const leg = legs[number]!;
     for (const share of [0, 0.4]) {
@@ -168,17 +172,17 @@ function planTables(model: WindModel, timeline: Timeline): { layout: Layout; sam
         const radiusM = ratio * field.state.radiusOfMaxWindM;
         if (radiusM > 0.95 * field.outerRadiusM) continue;
         field.onCircle(winds, radiusM, probe.directions);
-        const squared = Array.from({ length: 48 }, (_, i) => winds[2 * i]! ** 2 + winds[2 * i + 1]! ** 2);
-        const mean = Math.sqrt(squared.reduce((a, b) => a + b, 0) / 48);
-        const needed = harmonicsNeeded(squared, 2 * Math.max(mean, 8) * TRUNCATION_MPS);
+        const squared = Array.from({ length: PROBES }, (_, i) => winds[2 * i]! ** 2 + winds[2 * i + 1]! ** 2);
+        const mean = Math.sqrt(squared.reduce((a, b) => a + b, 0) / PROBES);
+        const needed = harmonicsNeeded(squared, 2 * Math.max(mean, 8) * TRUNCATION_MPS, probe);
         complete &&= needed <= MOST_HARMONICS;
         harmonics = Math.max(harmonics, Math.min(MOST_HARMONICS, needed));
         for (const part of [0, 1]) {
-          const component = Array.from({ length: 48 }, (_, i) => winds[2 * i + part]!);
+          const component = Array.from({ length: PROBES }, (_, i) => winds[2 * i + part]!);
           // half a degree of the local wind
           windHarmonics = Math.max(
             windHarmonics,
-            Math.min(MOST_HARMONICS, harmonicsNeeded(component, 0.008 * Math.max(mean, 4))),
+            Math.min(MOST_HARMONICS, harmonicsNeeded(component, 0.008 * Math.max(mean, 4), probe)),
           );
         }
       }
@@ -193,14 +197,16 @@ function planTables(model: WindModel, timeline: Timeline): { layout: Layout; sam
 }
 
 /** The harmonic beyond which the sum of amplitudes falls below a bound. */
-function harmonicsNeeded(values: readonly number[], bound: number): number {
+function harmonicsNeeded(values: readonly number[], bound: number, probe: Sampling): number {
   const n = values.length;
   let rest = 0;
   for (let k = n / 2 - 1; k >= 1; k--) {
-    let [sine, cosine] = [0, 0];
+    let sine = 0;
+    let cosine = 0;
     for (let i = 0; i < n; i++) {
-      sine += values[i]! * Math.sin((2 * Math.PI * i * k) / n);
-      cosine += values[i]! * Math.cos((2 * Math.PI * i * k) / n);
+      const j = 2 * ((i * k) % n);
+      sine += values[i]! * probe.directions[j]!;
+      cosine += values[i]! * probe.directions[j + 1]!;
     }
     rest += (2 / n) * Math.hypot(sine, cosine);
     if (rest > bound) return k;
@@ -219,7 +225,7 @@ function explains(a: MomentTable, b: MomentTable, middle: MomentTable, layout: L
     for (let c = 1; c < speedStride; c++)
       off += s * Math.abs(middle.speed[at + c]! - 0.5 * (a.speed[at + c]! + b.speed[at + c]!));
     const speed = Math.max(0.1, Math.sqrt(Math.max(0, middle.speed[at]!)));
-    if ((off / (2 * speed)) * maxWindMps > TOLERANCE_MPS && speed * maxWindMps > 4) return false;
+    if ((off / (2 * speed)) * maxWindMps > TOLERANCE_MPS && speed * maxWindMps > LEAST_MPS) return false;
   }
   return true;
 }

@@ -141,6 +141,7 @@ export function tileRunner(
   const { layout } = moments;
   const { outerRadiusM, thresholdsMps } = options;
   const taperM = 0.9 * outerRadiusM;
+  const lowestThreshold = 0.7 * Math.min(...thresholdsMps, Number.POSITIVE_INFINITY);
   const groups = layout.speedStride / 4;
   const lastRow = layout.rows - 2;
   // the walk: moments, winds at the four corners and the centre, what the tile's winds may differ by until the next moment
@@ -219,7 +220,8 @@ export function tileRunner(
         const table = moments.tableAt(index);
         arithmetic.probe(table.speed, groups, lastRow, frame);
         strongest = Math.max(strongest, wind[4]!);
-        const share = wind[4]! < IDLE_SHARE * strongest ? STEP_SHARE * IDLE_FACTOR : STEP_SHARE;
+        const idle = wind[4]! < IDLE_SHARE * strongest && (!options.hours || wind[4]! < lowestThreshold);
+        const share = idle ? STEP_SHARE * IDLE_FACTOR : STEP_SHARE;
         stepS = Math.min(leg.longestS, (share * near) / leg.speedMps);
         const moveM = stepS * leg.speedMps;
         const reachM = tileM + moveM;
@@ -398,7 +400,7 @@ export function tileRunner(
       found.index = bestMoment[i]!;
       if (off > SEARCH_MPS) search(i, bestMoment[i]!);
       // the estimates may be off where the wind has a corner: then the second may be the first
-      if (rival && (off > PARABOLA_MPS || second[i]! > found.peak - SEARCH_MPS)) {
+      if (rival && second[i]! > found.peak - SEARCH_MPS - 3 * off) {
         const { peak, index } = found;
         search(i, secondMoment[i]!);
         if (found.peak <= peak) {

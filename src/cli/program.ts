@@ -116,6 +116,8 @@ export async function runProgram(argv: readonly string[]): Promise<void> {
     .option('--formats <LIST>', 'geojson, cog, csv, netcdf, kml, flatgeobuf, svg, png, html', 'geojson,cog')
     .option('--force', 'replace existing files')
     .option('--jobs <N>', 'workers (all cores)')
+    .option('--places <FILE>', 'places to show on the map (CSV or GeoJSON)')
+    .option('--zones <FILE>', 'zones to show on the map (GeoJSON polygons)')
     .action(async (file, options) => (await import('./swath.js')).swath(file, options));
 
   readsTracks(
@@ -143,6 +145,40 @@ export async function runProgram(argv: readonly string[]): Promise<void> {
     .option('--out <FILE>', 'where the table or drawing goes')
     .option('--force', 'replace an existing file')
     .action(async (file, places, options) => (await import('./sites.js')).sites(file, places, options));
+
+  readsTracks(
+    models(
+      common(
+        program
+          .command('exposure <FILE> <ASSETS>')
+          .description('What stands in the wind: assets and zones by level and class, damage by a curve of yours.'),
+      ),
+    ),
+  )
+    .option('--values <LIST>', 'columns of values (every column whose first cell is a number)')
+    .option('--zones <FILE>', 'zones as GeoJSON polygons, with values or without')
+    .option('--zone-values <LIST>', 'properties of the zones that are values (every number)')
+    .option('--levels <LIST>', 'winds that are counted', '34kt,50kt,64kt,83kt,96kt,113kt,137kt')
+    .addOption(new Option('--of <QUANTITY>', 'what the levels are for').choices(['wind', 'gust']).default('wind'))
+    .option('--scale <NAME>', 'wind scale of the classes, or none (saffir-simpson for 1-min winds)')
+    .option('--curve <FILE>', 'damage curve as CSV: wind_mps, wind_kt, wind_kmh or wind_mph (or gust_…), and ratio')
+    .addOption(new Option('--curve-of <QUANTITY>', 'which wind the curve takes').choices(['wind', 'gust']))
+    .option('--curve-averaging <PERIOD>', 'averaging period of the curve’s wind')
+    .option('--cubic <THRESHOLD,HALF>', 'cubic curve of Emanuel 2011 (m/s); no built-in speeds')
+    .option('--power <THRESHOLD,TOTAL,EXPONENT>', 'power of the wind above a threshold (m/s)')
+    .option('--loss-of <LIST>', 'columns of values that the curve is applied to (all)')
+    .option('--currency <WORDS>', 'what the values are in, in your words')
+    .option('--from <TIME>', 'first time of the track to take')
+    .option('--to <TIME>', 'last time of the track to take')
+    .option('--strict', 'refuse rows and zones that would otherwise be skipped or taken with a caution')
+    .option('--out <DIR>', 'folder of the results; without it they are only shown')
+    .option('--formats <LIST>', 'csv, geojson, json (csv,json)')
+    .option('--force', 'replace existing files')
+    .addHelpText(
+      'after',
+      '\nDamage figures are indicative: they defer to licensed engineers and local codes.\nThe wind at an asset is the model’s over open sea at that point, not read off a grid: a grid of 0.02° differs\nfrom it by up to about 1 m/s where the wind is steepest, at the eyewall.\n',
+    )
+    .action(async (file, assets, options) => (await import('./exposure.js')).exposure(file, assets, options));
 
   common(program.command('recipe').description('The recipe in force with its sources; check one.'))
     .option('--recipe <FILE>', 'read and check this recipe')

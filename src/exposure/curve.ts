@@ -10,7 +10,8 @@ export interface DamageCurve {
   readonly averagingS: number;
   /** 0 … 1, never falling */
   readonly ratio: (windMps: number) => number;
-  /** highest wind that the curve was given for, m/s; above it the last ratio is held */
+  /** lowest and highest wind that the curve was given for, m/s; below it there is no loss, above it the last ratio is held */
+  readonly knownFromMps: number;
   readonly knownToMps: number;
 }
 
@@ -36,7 +37,7 @@ export function tableCurve(
   for (const [i, point] of points.entries()) {
     const where = `${source}:${point.line}`;
     if (!(point.windMps >= 0))
-      throw new InputError('curve.order', `${where}: the wind ${point.windMps} is not a number of at least 0`);
+      throw new InputError('curve.order', `${where}: the wind ${point.windMps.toFixed(2)} m/s is not at least 0`);
     if (!(point.ratio >= 0 && point.ratio <= 1))
       throw new InputError(
         'curve.ratio',
@@ -60,7 +61,10 @@ export function tableCurve(
     title: `table of ${points.length} rows from ${source}`,
     of: options.of,
     averagingS: options.averagingS,
-    knownToMps: last.windMps,
+    // a first ratio of 0 says what is below it
+    knownFromMps: points[0]!.ratio > 0 ? points[0]!.windMps : 0,
+    // everything is lost already: nothing to extrapolate
+    knownToMps: last.ratio === 1 ? Number.POSITIVE_INFINITY : last.windMps,
     ratio: (windMps) => {
       if (!(windMps >= points[0]!.windMps)) return 0;
       if (windMps >= last.windMps) return last.ratio;
@@ -94,6 +98,7 @@ export function cubicCurve({ thresholdMps, halfMps }: { thresholdMps: number; ha
     title: `cubic form of Emanuel 2011, threshold ${thresholdMps} m/s, half loss at ${halfMps} m/s`,
     of: 'wind',
     averagingS: 60,
+    knownFromMps: 0,
     knownToMps: Number.POSITIVE_INFINITY,
     ratio: (windMps) => {
       const v = Math.max(windMps - thresholdMps, 0) / (halfMps - thresholdMps);
@@ -123,6 +128,7 @@ export function powerCurve(p: {
     title: `power ${p.exponent} above ${p.thresholdMps} m/s, total loss at ${p.totalMps} m/s`,
     of: p.of,
     averagingS: p.averagingS,
+    knownFromMps: 0,
     knownToMps: Number.POSITIVE_INFINITY,
     ratio: (windMps) =>
       Math.min(1, (Math.max(windMps - p.thresholdMps, 0) / (p.totalMps - p.thresholdMps)) ** p.exponent),

@@ -3,6 +3,7 @@ import type { CompletedTrack } from '../track/complete.js';
 import { type Curve, monotoneCubic, piecewiseLinear } from '../track/interpolate.js';
 import type { Path } from '../track/path.js';
 import type { Quadrants, WindRadii } from '../track/track.js';
+import { knots } from '../units.js';
 import type { RadiiState } from '../vortex/radii.js';
 import { type ObservedLevel, type RadiiConflict, radiiState } from '../vortex/radii-state.js';
 import type { WindField } from './field.js';
@@ -21,10 +22,9 @@ const CONFLICTS: Readonly<Record<RadiiConflict, string>> = {
     'a wind below the maximum that is said to blow nowhere: it blows about the radius of maximum wind',
 };
 const QUADRANTS = [0, 1, 2, 3] as const;
-const AZIMUTHS = 24;
-const CIRCLE = Float64Array.from({ length: 2 * AZIMUTHS }, (_, i) =>
-  (i % 2 === 0 ? Math.sin : Math.cos)(((i >> 1) * 2 * Math.PI) / AZIMUTHS),
-);
+/** Winds (1-min means) that carry the shape of the base vortex where nobody observed them, and how near to another they are left out. */
+const SHAPE_WINDS_KT = [34, 50, 64, 96];
+const LEAST_SPACING = 0.12;
 /** Fall of ln V with ln r by which a wind above the vortex's own is put inside R. */
 const INWARD_EXPONENT = 0.5;
 
@@ -49,6 +49,10 @@ export function fitRadii(
   for (const rows of observed)
     for (const { windMps } of rows) if (!winds.some((known) => Math.abs(known - windMps) < 0.2)) winds.push(windMps);
   if (winds.length === 0) return null;
+  for (const wind of SHAPE_WINDS_KT.map(
+    (kt) => knots(kt) / averagingFactor('at-sea', { fromS: completed.averagingS, toS: 60 }),
+  ))
+    if (!winds.some((known) => Math.abs(Math.log(known / wind)) < LEAST_SPACING)) winds.push(wind);
   winds.sort((a, b) => b - a);
 
   const counts = new Map<RadiiConflict, { count: number; line: number }>();
@@ -135,23 +139,16 @@ function observedOf(
     .map(({ thresholdMps, radiiM }) => ({ windMps: thresholdMps * factor, radiiM }));
 }
 
-/** ln(r/R) where the mean speed around the circle falls to a wind; negative where it does not reach it. */
+/** ln(r/R) where the strongest azimuth falls to a wind; negative where it does not reach it. */
 function baseLogRatio(field: WindField, windMps: number): number {
   const { radiusOfMaxWindM } = field.state;
-  const out = new Float64Array(CIRCLE.length);
-  const mean = (logRatio: number): number => {
-    field.onCircle(out, radiusOfMaxWindM * Math.exp(logRatio), CIRCLE);
-    let sum = 0;
-    for (let i = 0; i < out.length; i += 2) sum += Math.hypot(out[i]!, out[i + 1]!);
-    return sum / AZIMUTHS;
-  };
-  const most = mean(0);
+  const most = field.strongestOnCircle(radiusOfMaxWindM);
   if (most <= windMps) return Math.max(-1, -Math.log(windMps / most) / INWARD_EXPONENT);
   let low = 0;
   let high = Math.log(3_000_000 / radiusOfMaxWindM);
   for (let i = 0; i < 24; i++) {
     const middle = 0.5 * (low + high);
-    if (mean(middle) > windMps) low = middle;
+    if (field.strongestOnCircle(radiusOfMaxWindM * Math.exp(middle)) > windMps) low = middle;
     else high = middle;
   }
   return 0.5 * (low + high);

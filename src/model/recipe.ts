@@ -60,7 +60,7 @@ export const RECIPE_ENTRIES: readonly RecipeEntry[] = [
   },
   {
     key: 'completion.rmax',
-    standard: 'chavas-knaff-2022',
+    standard: 'galewake-rmax-2016',
     words: ids(RADIUS_RELATIONS),
     help: 'relation that gives a missing radius of maximum wind',
     source: 'ChavasKnaff2022',

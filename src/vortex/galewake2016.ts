@@ -3,13 +3,13 @@ import type { ProfileMethod } from './profile.js';
 /** Coefficients of the profile, from `scripts/calibrate.js` (own calibration). */
 export const PROFILE_2016 = {
   /** p = outer + outerWind · ln(V/35 m/s), within `outerBounds` */
-  outer: 0.778,
-  outerWind: 0.359,
+  outer: 0.8107,
+  outerWind: 0.4148,
   outerBounds: [0.2, 4],
   /** k */
-  stretch: 0.849,
-  /** m */
-  ridge: 8,
+  stretch: 0.8085,
+  /** δ: set by hand, as narrow as a ridge may be that grids of some kilometres can show */
+  ridge: 0.25,
 } as const;
 
 /** Size that is taken where no size is known, m: about the median of the calibration data. */
@@ -23,6 +23,8 @@ export interface StretchedExponential {
   readonly sizeRadiusM: number;
   /** p */
   readonly outer: number;
+  /** k */
+  readonly stretch: number;
 }
 
 /** p of a storm: stronger storms fall off more steeply about r₁₇. */
@@ -31,26 +33,31 @@ export function outerParameter(fieldMaxMps: number): number {
   return Math.min(outerBounds[1], Math.max(outerBounds[0], outer + outerWind * Math.log(fieldMaxMps / 35)));
 }
 
+/** m of the gentle ridge. */
+const GENTLE = 4;
+
 /**
  * Wind over maximum wind, as a function of radius: an outer vortex that knows only the size, and a ridge that leads from
  * it to the maximum:
- * ln S = ln 17.5 + p(1 − (r/r₁₇)ᵏ) + D s⁻ᵐ for s = r/R ≥ 1, D such that S(R) is the maximum; 2s/(1 + s²) of it inside.
- * The outer vortex is a stretched exponential as in DeMaria et al.'s profile. Where it is stronger at R than the maximum
- * (D < 0: a weak, large storm) the ridge is made gentler, so that the wind falls everywhere outside R:
- * m ≤ 0.9 pk(R/r₁₇)ᵏ/|D|.
+ * ln S = ln 17.5 + p(1 − (r/r₁₇)ᵏ) + D w(s) for s = r/R ≥ 1, w = 1/(1 + ((s − 1)/δ)²), D such that S(R) is the maximum;
+ * 2s/(1 + s²) of it inside, as in Jelesnianski's profile   [Jelesnianski1966, from memory].
+ * The outer vortex is a stretched exponential as in DeMaria et al.'s profile   [DeMariaEtAl1992, from memory]. Where it is
+ * stronger at R than the maximum (D < 0: a weak, large storm) w = s⁻ᵐ, m = min(4, 0.9 pk(R/r₁₇)ᵏ/|D|), so that the wind falls
+ * everywhere outside R.
  */
 export function stretchedExponential(p: StretchedExponential): (radiusM: number) => number {
-  const { stretch: k, ridge } = PROFILE_2016;
-  const { radiusOfMaxWindM: r0, sizeRadiusM, outer } = p;
+  const { ridge } = PROFILE_2016;
+  const { radiusOfMaxWindM: r0, sizeRadiusM, outer, stretch: k } = p;
   const atRidge = Math.log(17.5) + outer * (1 - (r0 / sizeRadiusM) ** k);
   const lift = Math.log(p.maxWindMps) - atRidge;
   const fall = outer * k * (r0 / sizeRadiusM) ** k;
-  const m = lift >= 0 ? ridge : Math.min(ridge, (0.9 * fall) / -lift);
-  const inverse = 1 / p.maxWindMps;
+  const m = Math.min(GENTLE, (0.9 * fall) / Math.max(1e-9, -lift));
+  const inverse = 17.5 / p.maxWindMps;
   return (radiusM) => {
     const s = radiusM / r0;
     if (s <= 1) return (2 * s) / (1 + s * s);
-    return inverse * 17.5 * Math.exp(outer * (1 - (radiusM / sizeRadiusM) ** k) + lift * s ** -m);
+    const weight = lift >= 0 ? 1 / (1 + ((s - 1) / ridge) ** 2) : s ** -m;
+    return inverse * Math.exp(outer * (1 - (radiusM / sizeRadiusM) ** k) + lift * weight);
   };
 }
 
@@ -71,6 +78,7 @@ export const galewake2016: ProfileMethod = {
       radiusOfMaxWindM,
       sizeRadiusM: Math.max(1.05 * radiusOfMaxWindM, size?.radiusM ?? MIDDLING_SIZE_M),
       outer: outerParameter(size?.fieldMaxMps ?? ownMaxMps),
+      stretch: PROFILE_2016.stretch,
     });
     return { windMps: (radiusM) => (radiusM <= 0 ? 0 : maxWindMps * shape(radiusM)) };
   },

@@ -1,25 +1,27 @@
-import type { Quadrants } from '../track/track.js';
-import { LEAST_FROM_RIDGE, LEAST_GAP, type RadiiState } from './radii.js';
+import { outerFall } from './outer-fall.js';
+import { LEAST_FROM_RIDGE, LEAST_GAP, type Quadrants, type RadiiState } from './radii.js';
 
 /** One wind of a fix: what was observed of it and what the base vortex would have. */
 export interface ObservedLevel {
   readonly windMps: number;
   /** observed radii, m; 0 = no such wind in the quadrant, null = not observed */
   readonly radiiM: Quadrants<number | null>;
-  /** ln(r/R) of the base vortex, mean around the circle; negative where it does not reach this wind */
+  /** ln(r/R) of the base vortex on its strongest azimuth; negative where it does not reach this wind */
   readonly baseLogRatio: number;
 }
 
 /** How an observation had to give way. */
 export type RadiiConflict = 'above-maximum' | 'inside-maximum' | 'crossing' | 'absent-below-maximum';
 
-/** How far a stretch known at one wind holds at another: it fades as exp(−0.38 |Δ ln V|) (own calibration, 2004–2016). */
-const STRETCH_FADING = 0.38;
 /** ln(r/R) that stands for `no such wind here`. */
 const ABSENT = -0.1;
 const LOWEST = -1;
 /** A wind up to this share of the maximum counts as reached: knots were rounded. */
 const REACHED = 1.0005;
+/** Power of the share of ln V between two observed winds (own calibration, 2004–2016). */
+const BETWEEN_POWER = 1.34;
+/** Share of the stretch against the base vortex that is taken back for each unit of |Δ ln V| (own calibration, 2004–2016). */
+const RETURN_TO_BASE = 0.45;
 const QUADRANTS = [0, 1, 2, 3] as const;
 
 /**
@@ -59,17 +61,15 @@ export function radiiState(
     }
   }
   const known = seen.map((row) => [...row]);
-  const stretch = known.map((row, k) =>
-    row.map((value) => (value === null || value <= ABSENT ? null : value - rising[k]!.baseLogRatio)),
-  );
   const filled = rising.map((level, k) =>
     QUADRANTS.map((j) => {
       const value = known[k]![j] ?? null;
       if (value !== null) return value;
-      const own =
-        fadedStretch(rising, stretch, k, j) ??
-        meanOf(QUADRANTS.map((other) => fadedStretch(rising, stretch, k, other)));
-      return level.baseLogRatio + Math.max(-2, Math.min(2, own ?? 0));
+      return (
+        estimated(rising, known, { k, j, maxWindMps: storm.maxWindMps }) ??
+        meanOf(QUADRANTS.map((other) => estimated(rising, known, { k, j: other, maxWindMps: storm.maxWindMps }))) ??
+        level.baseLogRatio
+      );
     }),
   );
   // what was filled in keeps between its neighbours
@@ -92,7 +92,11 @@ export function radiiState(
       for (const j of QUADRANTS) filled[k]![j] = Math.min(filled[k]![j]!, ABSENT);
 
   const ridge = [0, 0, 0, 0];
-  const top = filled.reduce((last, _, k) => (rising[k]!.windMps <= REACHED * storm.maxWindMps ? k : last), -1);
+  const top = known.reduce(
+    (last, row, k) =>
+      rising[k]!.windMps <= REACHED * storm.maxWindMps && row.some((value) => value !== null) ? k : last,
+    -1,
+  );
   if (top >= 0) {
     const innermost = filled[top]!;
     const farthest = Math.max(...innermost);
@@ -122,28 +126,38 @@ export function radiiState(
   };
 }
 
-/** The stretch of one wind in one quadrant from the others there: linear in ln V between them, fading beyond; null for none. */
-function fadedStretch(
+/**
+ * ln(r/R) of one wind in one quadrant from the observed ones there; null for none. Between two observed winds V₁ < V < V₂:
+ * ln r = ln r₁ + (ln r₂ − ln r₁) t^1.34, t = ln(V/V₁)/ln(V₂/V₁). Beyond the last one, with Δ = Δ ln V from it and λ its stretch
+ * against the base vortex: ln r = ln r₁ − Δ · `outerFall` − 0.45 λ|Δ|, but not inside the ridge. Above the maximum: the base
+ * vortex, stretched as there.
+ */
+function estimated(
   rising: readonly ObservedLevel[],
-  stretch: readonly (readonly (number | null)[])[],
-  k: number,
-  j: number,
+  known: readonly (readonly (number | null)[])[],
+  { k, j, maxWindMps }: { k: number; j: number; maxWindMps: number },
 ): number | null {
-  const own = stretch[k]![j] ?? null;
-  if (own !== null) return own;
-  const at = Math.log(rising[k]!.windMps);
-  let below: { at: number; value: number } | null = null;
-  let above: { at: number; value: number } | null = null;
+  const { windMps, baseLogRatio } = rising[k]!;
+  let below: number | null = null;
+  let above: number | null = null;
   for (let i = 0; i < rising.length; i++) {
-    const value = stretch[i]![j] ?? null;
-    if (value === null) continue;
-    const point = { at: Math.log(rising[i]!.windMps), value };
-    if (i < k) below = point;
-    else if (above === null) above = point;
+    const value = known[i]![j] ?? null;
+    if (value === null || value <= ABSENT) continue;
+    if (i < k) below = i;
+    else if (i > k && above === null) above = i;
   }
-  if (below && above) return below.value + ((above.value - below.value) * (at - below.at)) / (above.at - below.at);
+  if (below !== null && above !== null) {
+    const t = Math.log(windMps / rising[below]!.windMps) / Math.log(rising[above]!.windMps / rising[below]!.windMps);
+    return known[below]![j]! + (known[above]![j]! - known[below]![j]!) * t ** BETWEEN_POWER;
+  }
   const near = below ?? above;
-  return near ? near.value * Math.exp(-STRETCH_FADING * Math.abs(at - near.at)) : null;
+  if (near === null) return null;
+  const steps = Math.log(windMps / rising[near]!.windMps);
+  const stretch = Math.max(-2, Math.min(2, known[near]![j]! - rising[near]!.baseLogRatio));
+  if (windMps > REACHED * maxWindMps) return baseLogRatio + stretch;
+  const size = Math.abs(steps);
+  const estimate = known[near]![j]! - steps * outerFall(maxWindMps, size) - RETURN_TO_BASE * stretch * size;
+  return Math.max(LEAST_FROM_RIDGE, estimate);
 }
 
 function meanOf(values: readonly (number | null)[]): number | null {

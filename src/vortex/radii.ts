@@ -1,4 +1,5 @@
-import type { Quadrants } from '../track/track.js';
+/** North-east, south-east, south-west, north-west. */
+export type Quadrants<T> = readonly [T, T, T, T];
 
 /**
  * A field's radii at one moment. Everything is a natural logarithm of a radius over the radius of maximum wind, by quadrant

@@ -1,5 +1,5 @@
 import { coriolisPerS } from '../../earth.js';
-import type { RadiusRelation } from './radius-of-max-wind.js';
+import type { RadiusInput, RadiusRelation } from './radius-of-max-wind.js';
 
 /** A mean of quadrant maxima is a maximum of azimuths: the mean radius is taken as this share of it [ChavasKnaff2022, from memory]. */
 const SHARE_OF_QUADRANT_MEAN = 0.85;
@@ -27,13 +27,22 @@ export function chavasKnaffRadiusM(p: { windMps: number; radiusOf34KtM: number; 
 /** Bounds within which R is kept, m: own choice. */
 const BOUNDS_M = [5_000, 250_000] as const;
 
+/** The same for what a recipe's relation is given: observed radius of 34 kt, else the size. */
+export function chavasKnaffEstimateM({
+  maxWindMps,
+  latDeg,
+  translationMps,
+  radiusOf34KtM,
+  sizeRadiusM,
+}: RadiusInput): number {
+  const windMps = Math.max(maxWindMps - 0.55 * translationMps, 0.5 * maxWindMps);
+  const radius = chavasKnaffRadiusM({ windMps, radiusOf34KtM: radiusOf34KtM ?? sizeRadiusM, latDeg });
+  return Math.min(BOUNDS_M[1], Math.max(BOUNDS_M[0], radius));
+}
+
 export const chavasKnaff2022: RadiusRelation = {
   id: 'chavas-knaff-2022',
   title: 'Chavas & Knaff 2022: radius of 34 kt (observed, or of the size relation), wind, latitude',
   source: 'ChavasKnaff2022',
-  radiusM: ({ maxWindMps, latDeg, translationMps, radiusOf34KtM, sizeRadiusM }) => {
-    const windMps = Math.max(maxWindMps - 0.55 * translationMps, 0.5 * maxWindMps);
-    const radius = chavasKnaffRadiusM({ windMps, radiusOf34KtM: radiusOf34KtM ?? sizeRadiusM, latDeg });
-    return Math.min(BOUNDS_M[1], Math.max(BOUNDS_M[0], radius));
-  },
+  radiusM: chavasKnaffEstimateM,
 };

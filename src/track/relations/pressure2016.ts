@@ -2,8 +2,8 @@ import type { PressureWindInput } from './pressure-wind.js';
 
 /** Coefficients of ln Δp (hPa), from `scripts/calibrate.js` (own calibration): without and with the radius of 34 kt. */
 export const PRESSURE_2016 = {
-  withoutSize: { constant: 3.2465, wind: 1.8153, latitude: 0.0111, translation: -0.0019, size: 0 },
-  withSize: { constant: 3.2854, wind: 1.7294, latitude: 0.0068, translation: -0.0039, size: 0.1864 },
+  withoutSize: { constant: 3.245, wind: 1.82, latitude: 0.011, translation: -0.002, size: 0 },
+  withSize: { constant: 3.265, wind: 1.686, latitude: 0.0073, translation: -0.0045, size: 0.189 },
 } as const;
 
 /**

@@ -1,4 +1,5 @@
 import { chavasKnaff2022 } from './chavas-knaff2022.js';
+import { radius2016 } from './radius2016.js';
 
 /** What a relation for the radius of maximum wind may use. */
 export interface RadiusInput {
@@ -36,4 +37,4 @@ const willoughby2006: RadiusRelation = {
 };
 
 /** Every relation for the radius of maximum wind that a recipe may name. */
-export const RADIUS_RELATIONS: readonly RadiusRelation[] = [willoughby2006, chavasKnaff2022];
+export const RADIUS_RELATIONS: readonly RadiusRelation[] = [radius2016, willoughby2006, chavasKnaff2022];

@@ -1,0 +1,143 @@
+#!/usr/bin/env node
+// Reruns the calibration of the default recipe from a HURDAT2 file:
+//   npm run build && node scripts/calibrate.js FILE
+// Prints the coefficients of the size relation with the outer profile, of the pressure relation, and their skill in the
+// sample and by storm-wise cross-validation (every storm is judged by coefficients that have not seen it).
+import { readFileSync } from 'node:fs';
+import { averagesOf, offshoreFixes } from './skill/fixes.js';
+import { fitAbsolute, score } from './skill/least-absolute.js';
+import { meanRadii, profileStorm } from './skill/vortex.js';
+
+const [file] = process.argv.slice(2);
+if (!file) {
+  console.error('usage: node scripts/calibrate.js HURDAT2-FILE');
+  process.exit(2);
+}
+const FOLDS = 5;
+const fixes = offshoreFixes(readFileSync(file, 'utf8'), file);
+const storms = [...new Set(fixes.map((fix) => fix.storm))];
+// a fixed, arbitrary deal of the storms
+const foldOf = new Map(storms.map((storm, i) => [storm, (i * 7919) % FOLDS]));
+console.log(`${fixes.length} fixes of ${storms.length} storms, at least 100 km off land, HU or TS, below 25 m/s`);
+
+// 1. pressure: ln Δp = c0 + c1 ln(V/35) + c2(|φ| − 20) + c3(c − 5) [+ c4 ln(r34/160)]
+for (const withSize of [false, true]) {
+  const rows = fixes
+    .filter((fix) => fix.deficitHpa !== null && (!withSize || fix.meanOf34Km !== null))
+    .map((fix) => ({
+      fold: foldOf.get(fix.storm),
+      y: fix.deficitHpa,
+      x: [
+        1,
+        Math.log(fix.windMps / 35),
+        fix.latDeg - 20,
+        fix.translationMps - 5,
+        ...(withSize ? [Math.log(fix.meanOf34Km / 160)] : []),
+      ],
+    }));
+  const fit = (part) =>
+    fitAbsolute({
+      start: [3.2, 1.8, 0, 0, ...(withSize ? [0] : [])],
+      residuals: (c) => part.map(({ x, y }) => Math.exp(x.reduce((sum, v, i) => sum + v * c[i], 0)) - y),
+      steps: Array(5).fill(1e-3),
+      floor: 0.3,
+    });
+  const errors = (part, c) => part.map(({ x, y }) => Math.exp(x.reduce((sum, v, i) => sum + v * c[i], 0)) - y);
+  const all = fit(rows);
+  const crossed = Array.from({ length: FOLDS }, (_, k) =>
+    errors(
+      rows.filter(({ fold }) => fold === k),
+      fit(rows.filter(({ fold }) => fold !== k)),
+    ),
+  ).flat();
+  console.log(
+    `\npressure ${withSize ? 'with' : 'without'} the radius of 34 kt: ${all.map((c) => c.toFixed(4)).join(' ')}`,
+  );
+  console.log(`  in the sample ${score(errors(rows, all))}; cross-validated ${score(crossed)} hPa`);
+}
+
+// 2. size and outer profile together, from the three radii
+const sized = fixes.filter((fix) => fix.deficitHpa !== null && fix.means.some((mean) => mean !== null));
+const storm = profileStorm(averagesOf(sized));
+const SCALE = [38, 20, 14];
+const NAMES = [
+  'constant',
+  'wind',
+  'dayMeanWind',
+  'dayMeanDeficit',
+  'latitude',
+  'translation',
+  'pastPeak',
+  'outer',
+  'outerWind',
+  'stretch',
+];
+const START = [4.8, 0, -1.5, 1.35, 0.0077, -0.0185, 0.31, 0.6, 0.38, 1.06];
+const STEPS = [0.01, 0.01, 0.01, 0.01, 0.001, 0.002, 0.01, 0.01, 0.01, 0.02];
+const counts = (part) => SCALE.map((_, t) => part.filter((fix) => fix.means[t] !== null).length);
+const differences = (part, c) => {
+  const out = [[], [], []];
+  for (const fix of part) {
+    const modelled = meanRadii(storm(fix, c), fix);
+    for (let t = 0; t < 3; t++) if (fix.means[t] !== null) out[t].push(modelled[t] - fix.means[t]);
+  }
+  return out;
+};
+const fitProfile = (part, start) => {
+  const n = counts(part);
+  return fitAbsolute({
+    start,
+    steps: STEPS,
+    floor: 0.03,
+    // every wind counts the same, whatever its number of fixes; its bias counts, too
+    residuals: (c) =>
+      differences(part, c).flatMap((errors, t) => [
+        ...errors.map((e) => e / SCALE[t]),
+        errors.reduce((sum, e) => sum + e, 0) / errors.length / SCALE[t],
+      ]),
+    weights: n.flatMap((count) => [...Array(count).fill(1 / count), 0.6]),
+  });
+};
+const all = fitProfile(sized, START);
+console.log(`\nsize and profile:`);
+for (const [i, name] of NAMES.entries()) console.log(`  ${name.padEnd(15)} ${all[i].toFixed(4)}`);
+const inSample = differences(sized, all);
+const crossed = [[], [], []];
+for (let k = 0; k < FOLDS; k++) {
+  const c = fitProfile(
+    sized.filter((fix) => foldOf.get(fix.storm) !== k),
+    all,
+  );
+  for (const [t, errors] of differences(
+    sized.filter((fix) => foldOf.get(fix.storm) === k),
+    c,
+  ).entries())
+    crossed[t].push(...errors);
+}
+for (const [t, kt] of [34, 50, 64].entries())
+  console.log(`  ${kt} kt: in the sample ${score(inSample[t])}; cross-validated ${score(crossed[t])} km`);
+
+// 3. the outer wind from the radius of 34 kt: −Δ ln r/Δ ln V = a + b s − c ln(V/35)
+const outer = fixes
+  .filter((fix) => fix.means[0] !== null)
+  .flatMap((fix) =>
+    [50, 64].flatMap((kt, i) =>
+      fix.means[i + 1] === null ? [] : [{ fold: foldOf.get(fix.storm), fix, s: Math.log(kt / 34), t: i + 1 }],
+    ),
+  );
+const outerErrors = (part, c) =>
+  part.map(
+    ({ fix, s, t }) =>
+      fix.means[0] * Math.exp(-s * (c[0] + c[1] * s - c[2] * Math.log(fix.windMps / 35))) - fix.means[t],
+  );
+const fitOuter = (part) =>
+  fitAbsolute({ start: [1.7, 0.9, 0.75], steps: [0.01, 0.01, 0.01], floor: 1, residuals: (c) => outerErrors(part, c) });
+const outerAll = fitOuter(outer);
+const outerCrossed = Array.from({ length: FOLDS }, (_, k) =>
+  outerErrors(
+    outer.filter(({ fold }) => fold === k),
+    fitOuter(outer.filter(({ fold }) => fold !== k)),
+  ),
+).flat();
+console.log(`\nouter fall (50 and 64 kt from 34 kt): ${outerAll.map((c) => c.toFixed(3)).join(' ')}`);
+console.log(`  in the sample ${score(outerErrors(outer, outerAll))}; cross-validated ${score(outerCrossed)} km`);

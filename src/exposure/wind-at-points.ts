@@ -1,4 +1,4 @@
-import { bearingDeg, EARTH_RADIUS_M, type Place, RADIANS, wrapBearing } from '../earth.js';
+import { EARTH_RADIUS_M, RADIANS, wrapBearing } from '../earth.js';
 import type { WindModel } from '../model/wind.js';
 import type { Arithmetic } from '../swath/kernel/arithmetic.js';
 import { momentsOf } from '../swath/kernel/moments.js';
@@ -94,8 +94,7 @@ export async function windAtPoints(
         if (pass > 0 || !(wind > 0)) continue;
         windMps[k] = wind;
         peakTimeS[k] = offsetS + tile.peakS[i]!;
-        const place = { lonDeg: lonDeg[k]!, latDeg: latDeg[k]! };
-        windFromDeg[k] = fromDirection(tile, i, place, centreOf(timeline.frame(tile.peakIndex[i]!)));
+        windFromDeg[k] = fromDirection(tile, i, arithmetic, timeline.frame(tile.peakIndex[i]!));
       }
     }
     from += tile.count;
@@ -135,7 +134,10 @@ function gather(tile: Tile, arithmetic: Arithmetic, points: PointColumns, order:
   let [west, right, south, top] = [0, 0, 0, 0];
   let count = 0;
   for (const k of order) {
-    const [px, py, pz] = unitOf(points, k);
+    const la = points.latDeg[k]! * RADIANS;
+    const lo = points.lonDeg[k]! * RADIANS;
+    const flat = Math.cos(la);
+    const [px, py, pz] = [flat * Math.cos(lo), flat * Math.sin(lo), Math.sin(la)];
     const e = px * east[0] + py * east[1] + pz * east[2];
     const n = px * north[0] + py * north[1] + pz * north[2];
     const up = px * origin[0] + py * origin[1] + pz * origin[2];
@@ -179,18 +181,23 @@ function unitOf({ lonDeg, latDeg }: PointColumns, i: number): readonly [number, 
   return [c * Math.cos(lo), c * Math.sin(lo), Math.sin(la)];
 }
 
-function centreOf(frame: Float64Array): Place {
-  return {
-    latDeg: Math.atan2(frame[2]!, Math.hypot(frame[0]!, frame[1]!)) / RADIANS,
-    lonDeg: Math.atan2(frame[1]!, frame[0]!) / RADIANS,
-  };
-}
+/** Nearer to the centre than this the direction back to it drowns in the rounding of the kernel's floats, m. */
+const NEAR_M = 2000;
 
-/** The wind of the frame at the centre, turned as the great circle turns on the way to the place. */
-function fromDirection(tile: Tile, i: number, place: Place, centre: Place): number {
-  const outward = bearingDeg(centre, place);
-  // nearer than the rounding of the frame the bearing means nothing
-  const near = Math.abs(place.latDeg - centre.latDeg) < 0.01 && Math.abs(place.lonDeg - centre.lonDeg) < 0.01;
-  const turn = near ? 0 : bearingDeg(place, centre) + 180 - outward;
-  return wrapBearing(Math.atan2(-tile.eastMps[i]!, -tile.northMps[i]!) / RADIANS + turn);
+/** Where the wind blows from at a place: the wind of the frame at the centre, turned as the great circle turns on the way. */
+function fromDirection(tile: Tile, i: number, { arrays }: Arithmetic, frame: Float64Array): number {
+  const [x, y, z] = [arrays.x[i]!, arrays.y[i]!, arrays.z[i]!];
+  const [cx, cy, cz] = [frame[0]!, frame[1]!, frame[2]!];
+  const flat = Math.hypot(x, y);
+  const centreFlat = Math.hypot(cx, cy);
+  // sides of the triangle of the two places and the pole, as far as their bearings need them
+  const across = cx * y - cy * x;
+  const along = cx * x + cy * y;
+  const outEast = across / centreFlat;
+  const outNorth = z * centreFlat - (cz * along) / centreFlat;
+  const backEast = -across / flat;
+  const backNorth = cz * flat - (z * along) / flat;
+  const far = flat > 1e-7 && centreFlat > 1e-7 && Math.hypot(outEast, outNorth) * EARTH_RADIUS_M > NEAR_M;
+  const turn = far ? Math.atan2(-backEast, -backNorth) - Math.atan2(outEast, outNorth) : 0;
+  return wrapBearing((Math.atan2(-tile.eastMps[i]!, -tile.northMps[i]!) + turn) / RADIANS);
 }

@@ -18,10 +18,11 @@ export interface ExposedAssets {
 /** Rows that make one piece of text. */
 const ROWS_PER_PIECE = 2000;
 
-type Cell = string | number | null;
+/** A column: its texts are '' where there is nothing. */
 interface Column {
   readonly heading: string;
-  readonly cell: (i: number) => Cell;
+  readonly kind: 'number' | 'text';
+  readonly text: (i: number) => string;
 }
 
 /** The columns of a table of assets, in the order of writing. Values and losses keep the headings of the input. */
@@ -29,41 +30,71 @@ function columnsOf(exposed: ExposedAssets): Column[] {
   const { assets, outcomes, levelsMps } = exposed;
   const gust = exposed.of === 'gust' ? 'gust_' : '';
   const levelNames = levelsMps.map(thresholdName);
-  const own: Column[] = [
-    { heading: 'peak_wind_mps', cell: (i) => outcomes.windMps[i]! },
-    { heading: 'peak_gust_mps', cell: (i) => outcomes.gustMps[i]! },
-    { heading: 'wind_from_deg', cell: (i) => tenths(outcomes.windFromDeg[i]!) },
-    { heading: 'peak_time', cell: (i) => timeText(outcomes.originMs + 1000 * outcomes.peakTimeS[i]!) },
-    ...levelNames.map((name, h) => ({
-      heading: `hours_${gust}${name}_h`,
-      cell: (i: number) => Math.round(outcomes.hours[h]![i]! * 1000) / 1000,
-    })),
-    { heading: 'level', cell: (i) => levelNames[outcomes.level[i]!] ?? null },
-  ];
-  if (exposed.classCodes.length > 0)
-    own.push({ heading: 'class', cell: (i) => exposed.classCodes[outcomes.classIndex[i]!] ?? null });
-  if (outcomes.ratio.length > 0) own.push({ heading: 'damage_ratio', cell: (i) => outcomes.ratio[i]! });
+  const time = timeTexts();
+  const own: Column[] = [];
+  const number = (heading: string, values: ArrayLike<number>, text: (value: number) => string): void => {
+    own.push({ heading, kind: 'number', text: (i) => text(values[i]!) });
+  };
+  const words = (heading: string, text: (i: number) => string): void => {
+    own.push({ heading, kind: 'text', text });
+  };
+  number('peak_wind_mps', outcomes.windMps, thousandths);
+  number('peak_gust_mps', outcomes.gustMps, thousandths);
+  number('wind_from_deg', outcomes.windFromDeg, bearing);
+  words('peak_time', (i) => time(outcomes.originMs + 1000 * outcomes.peakTimeS[i]!));
+  for (const [h, name] of levelNames.entries()) number(`hours_${gust}${name}_h`, outcomes.hours[h]!, thousandths);
+  words('level', (i) => levelNames[outcomes.level[i]!] ?? '');
+  if (exposed.classCodes.length > 0) words('class', (i) => exposed.classCodes[outcomes.classIndex[i]!] ?? '');
+  if (outcomes.ratio.length > 0) number('damage_ratio', outcomes.ratio, shortest);
   for (const [c, losses] of outcomes.losses.entries())
-    if (losses) own.push({ heading: `loss_${exposed.valueNames[c]}`, cell: (i) => losses[i]! });
-  if (exposed.zoneNames.length > 0)
-    own.push({
-      heading: 'zone',
-      cell: (i) =>
-        outcomes.zone[i]! < 0
-          ? null
-          : [outcomes.zone[i]!, ...(outcomes.furtherZones.get(i) ?? [])].map((k) => exposed.zoneNames[k]).join('; '),
-    });
+    if (losses) number(`loss_${exposed.valueNames[c]}`, losses, shortest);
+  if (exposed.zoneNames.length > 0) {
+    words('zone', (i) =>
+      outcomes.zone[i]! < 0
+        ? ''
+        : [outcomes.zone[i]!, ...(outcomes.furtherZones.get(i) ?? [])].map((k) => exposed.zoneNames[k]).join('; '),
+    );
+  }
   const taken = new Set(['name', 'lat_deg', 'lon_deg', ...own.map((column) => column.heading)]);
-  const values = exposed.valueNames.map((name, c) => ({
-    heading: taken.has(name.toLowerCase()) ? `value_${name}` : name,
-    cell: (i: number) => assets.values[c]![i]!,
-  }));
+  const values = exposed.valueNames.map((name, c): Column => {
+    const column = assets.values[c]!;
+    const heading = taken.has(name.toLowerCase()) ? `value_${name}` : name;
+    return { heading, kind: 'number', text: (i) => String(column[i]) };
+  });
   return [...values, ...own];
 }
 
-const tenths = (value: number): number | null => (Number.isNaN(value) ? null : (Math.round(value * 10) % 3600) / 10);
-const timeText = (ms: number): string | null =>
-  Number.isNaN(ms) ? null : `${new Date(ms).toISOString().slice(0, 19)}Z`;
+const shortest = (value: number): string => String(value);
+
+/** `.001` … `.999`, without trailing zeros */
+const FRACTIONS = Array.from({ length: 1000 }, (_, i) => String(i / 1000).slice(1));
+
+/** A number of at least 0 with three decimals at most. */
+function thousandths(value: number): string {
+  const whole = Math.round(value * 1000);
+  const units = Math.floor(whole / 1000);
+  return units + FRACTIONS[whole - 1000 * units]!;
+}
+
+const bearing = (value: number): string =>
+  Number.isNaN(value) ? '' : thousandths((Math.round(value * 10) % 3600) / 10);
+
+/** Texts of times to the second; those of a minute share their beginning. */
+function timeTexts(): (ms: number) => string {
+  const minutes = new Map<number, string>();
+  const ends = Array.from({ length: 60 }, (_, second) => `:${String(second).padStart(2, '0')}Z`);
+  return (ms) => {
+    if (Number.isNaN(ms)) return '';
+    const seconds = Math.floor(ms / 1000);
+    const minute = Math.floor(seconds / 60);
+    let text = minutes.get(minute);
+    if (text === undefined) {
+      text = new Date(minute * 60_000).toISOString().slice(0, 16);
+      minutes.set(minute, text);
+    }
+    return text + ends[seconds - 60 * minute]!;
+  };
+}
 
 /** The assets as CSV, one row each: name, place, values, winds, hours, level, class, damage and zone. */
 export function* assetsCsv(exposed: ExposedAssets): Generator<string, void, undefined> {
@@ -73,9 +104,9 @@ export function* assetsCsv(exposed: ExposedAssets): Generator<string, void, unde
   let text = '';
   for (let i = 0; i < assets.count; i++) {
     text += `${csvCell(assets.nameOf(i))},${assets.latDeg[i]},${assets.lonDeg[i]}`;
-    for (const { cell } of columns) {
-      const value = cell(i);
-      text += value === null ? ',' : typeof value === 'number' ? `,${value}` : `,${csvCell(value)}`;
+    for (const { kind, text: textOf } of columns) {
+      text += ',';
+      text += kind === 'number' ? textOf(i) : csvCell(textOf(i));
     }
     text += '\n';
     if ((i + 1) % ROWS_PER_PIECE === 0) {
@@ -98,9 +129,10 @@ export function* assetsGeojson(
   let text = '';
   for (let i = 0; i < assets.count; i++) {
     text += `${i > 0 ? ',\n' : ''}{"type":"Feature","geometry":{"type":"Point","coordinates":[${assets.lonDeg[i]},${assets.latDeg[i]}]},"properties":{"name":${JSON.stringify(assets.nameOf(i))}`;
-    for (const [k, { cell }] of columns.entries()) {
-      const value = cell(i);
-      text += `${keys[k]}${typeof value === 'string' ? JSON.stringify(value) : value}`;
+    for (let k = 0; k < columns.length; k++) {
+      const value = columns[k]!.text(i);
+      text += keys[k];
+      text += value === '' ? 'null' : columns[k]!.kind === 'number' ? value : JSON.stringify(value);
     }
     text += '}}';
     if ((i + 1) % ROWS_PER_PIECE === 0) {

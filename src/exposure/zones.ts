@@ -29,10 +29,10 @@ export interface ZoneSamples {
 /** A ring's longitudes made continuous. A step of 360° exactly goes round the Earth on purpose, along a pole. */
 export function unwrapped(ring: Ring, near: number): [number, number][] {
   let last = near;
-  return ring.map(([lon, lat], i) => {
-    const turns = (last - lon) / 360;
-    if (i === 0 || Math.abs(Math.abs(turns) - 1) > 1e-12) last = lon + 360 * Math.round(turns);
-    else last = lon;
+  let before = Number.NaN;
+  return ring.map(([lon, lat]) => {
+    last = Math.abs(lon - before) === 360 ? last + lon - before : lon + 360 * Math.round((last - lon) / 360);
+    before = lon;
     return [last, lat];
   });
 }

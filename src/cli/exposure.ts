@@ -221,6 +221,8 @@ export async function exposure(file: string, assetsFile: string, options: Exposu
   }
 }
 
+const counted = (count: number, one: string, many: string): string => `${count} ${count === 1 ? one : many}`;
+
 function stopwatch(): { lap: (name: string) => void; times: () => Record<string, number> } {
   const started = performance.now();
   let last = started;
@@ -316,18 +318,20 @@ function cautionsOfAssets(
   const cautions: string[] = [];
   if (read.skippedCount > 0)
     cautions.push(
-      `${read.skippedCount} rows were skipped: ${read.skipped
+      `${counted(read.skippedCount, 'row was', 'rows were')} skipped: ${read.skipped
         .slice(0, 3)
         .map((row) => `${read.unit} ${row.line}, ${row.reason}`)
-        .join('; ')}${read.skippedCount > 3 ? ' … (all in summary.json, the first 1000 with their reasons)' : ''}`,
+        .join('; ')}${read.skippedCount > 3 ? ' … (the summary lists them)' : ''}`,
     );
   if (assets.count === 0) cautions.push('there is no asset in the file');
   if (assets.sameNames.count > 0)
     cautions.push(
-      `${assets.sameNames.count} assets have a name that came before, such as '${assets.sameNames.example}'; each row is kept and counted`,
+      `${counted(assets.sameNames.count, 'asset has', 'assets have')} a name that came before, such as '${assets.sameNames.example}'; each row is kept and counted`,
     );
   if (assets.atZero > 0)
-    cautions.push(`${assets.atZero} assets lie at 0° N, 0° E; does that stand for a missing place?`);
+    cautions.push(
+      `${counted(assets.atZero, 'asset lies', 'assets lie')} at 0° N, 0° E; does that stand for a missing place?`,
+    );
   if (assets.count > 0 && read.valueNames.length === 0 && !valuesGiven)
     cautions.push('no column of values was found: assets are only counted');
   else if (!valuesGiven && read.unusedNames.length > 0)
@@ -368,15 +372,17 @@ function cautionsOfZones(
   const cautions: string[] = [];
   if (file.skipped.length > 0)
     cautions.push(
-      `${file.skipped.length} features of the zones were skipped: ${file.skipped
+      `${counted(file.skipped.length, 'feature of the zones was', 'features of the zones were')} skipped: ${file.skipped
         .slice(0, 3)
         .map((row) => `feature ${row.line}, ${row.reason}`)
         .join('; ')}${file.skipped.length > 3 ? ' …' : ''}`,
     );
   if (outcomes.furtherZones.size > 0)
-    cautions.push(`${outcomes.furtherZones.size} assets lie in more than one zone and count in each`);
+    cautions.push(
+      `${counted(outcomes.furtherZones.size, 'asset lies', 'assets lie')} in more than one zone, each of which counts them`,
+    );
   const outside = outcomes.zone.reduce((sum, zone) => sum + (zone < 0 ? 1 : 0), 0);
-  if (outside > 0) cautions.push(`${outside} assets lie in no zone`);
+  if (outside > 0) cautions.push(`${counted(outside, 'asset lies', 'assets lie')} in no zone`);
   return cautions;
 }
 
@@ -387,11 +393,11 @@ function cautionsOfCurve(
   const cautions: string[] = [];
   if (curve && outcomes.aboveCurve > 0)
     cautions.push(
-      `${outcomes.aboveCurve} assets have more wind than the curve's last row, ${curve.knownToMps.toFixed(1)} m/s: its last ratio is held, which may be too low`,
+      `${counted(outcomes.aboveCurve, 'asset has', 'assets have')} more wind than the curve's last row, ${curve.knownToMps.toFixed(1)} m/s: its last ratio is held, which may be too low`,
     );
   if (curve && outcomes.belowCurve > 0)
     cautions.push(
-      `${outcomes.belowCurve} assets have less wind than the curve's first row, ${curve.knownFromMps.toFixed(1)} m/s, whose ratio is above 0: no loss is taken below it`,
+      `${counted(outcomes.belowCurve, 'asset has', 'assets have')} less wind than the curve's first row, ${curve.knownFromMps.toFixed(1)} m/s, whose ratio is above 0: no loss is taken below it`,
     );
   return cautions;
 }
@@ -408,7 +414,7 @@ function report(out: Console, summary: ExposureSummary, files: readonly string[]
     ...losses.map(({ c }) => plain(tally.losses[c]!.value())),
   ];
   const headings = ['assets', ...valueNames, ...losses.map(({ value }) => `loss of ${value}`)];
-  out.print(`${name}: ${totals.all.assets} assets${unit}\n\n`);
+  out.print(`${name}: ${counted(totals.all.assets, 'asset', 'assets')}${unit}\n\n`);
   out.print(
     table([
       [`${summary.of} kt`, 'm/s', ...headings],

@@ -1,3 +1,4 @@
+import { wrapLongitude } from '../earth.js';
 import { UsageError } from '../errors.js';
 import { type SiteRecord, siteRecords } from '../exposure/sites.js';
 import { writeWhole } from '../io/output.js';
@@ -9,6 +10,7 @@ import { gustFactorOf } from '../swath/exact.js';
 import { quantityOf, toKnots } from '../units.js';
 import { csvLine } from '../write/csv-cell.js';
 import { thresholdName } from '../write/peak-bands.js';
+import { placesBox } from '../write/places-box.js';
 import { CAUTION } from '../write/provenance.js';
 import { type CommonOptions, levelsOf, type ModelOptions, periodOf, recipeOf, type TrackOptions } from './choices.js';
 import { makeConsole, table } from './console.js';
@@ -169,8 +171,13 @@ function siteDocument(record: SiteRecord): Record<string, unknown> {
 }
 
 function siteFeatures(records: readonly SiteRecord[]): Record<string, unknown> {
+  const bbox = placesBox(
+    records.map((record) => wrapLongitude(record.site.lonDeg)),
+    records.map((record) => record.site.latDeg),
+  );
   return {
     type: 'FeatureCollection',
+    ...(bbox ? { bbox } : {}),
     features: records.map((record) => {
       const { lat_deg, lon_deg, levels, closest, series, ...properties } = siteDocument(record) as Record<
         string,
@@ -179,7 +186,7 @@ function siteFeatures(records: readonly SiteRecord[]): Record<string, unknown> {
       void [lat_deg, lon_deg, series];
       return {
         type: 'Feature',
-        geometry: { type: 'Point', coordinates: [record.site.lonDeg, record.site.latDeg] },
+        geometry: { type: 'Point', coordinates: [wrapLongitude(record.site.lonDeg), record.site.latDeg] },
         properties: { ...properties, levels, closest },
       };
     }),

@@ -70,8 +70,8 @@ export function zoneAreaM2(zone: Zone): number {
   return sum;
 }
 
-/** Signed area of a ring, m²: −R² ∮ sin φ dλ, exact for edges that are straight in longitude and latitude. */
-function ringAreaM2(ring: Ring): number {
+/** Signed area of a ring, m², positive anticlockwise: −R² ∮ sin φ dλ, exact for edges that are straight in longitude and latitude. */
+export function ringAreaM2(ring: Ring): number {
   const base = Math.sin((ring[0]?.[1] ?? 0) * RADIANS);
   let sum = 0;
   for (let i = 1; i < ring.length; i++) {

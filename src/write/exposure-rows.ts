@@ -2,6 +2,7 @@ import type { AssetColumns } from '../exposure/asset-columns.js';
 import type { AssetOutcomes } from '../exposure/exposure.js';
 import { csvCell } from './csv-cell.js';
 import { thresholdName } from './peak-bands.js';
+import { placesBox } from './places-box.js';
 
 /** Assets and what happened to them, with the words that rows are written with. */
 export interface ExposedAssets {
@@ -125,7 +126,8 @@ export function* assetsGeojson(
   const { assets } = exposed;
   const columns = columnsOf(exposed);
   const keys = columns.map((column) => `,${JSON.stringify(column.heading)}:`);
-  yield `${JSON.stringify({ type: 'FeatureCollection', ...members }).slice(0, -1)},"features":[\n`;
+  const bbox = placesBox(assets.lonDeg, assets.latDeg);
+  yield `${JSON.stringify({ type: 'FeatureCollection', ...(bbox ? { bbox } : {}), ...members }).slice(0, -1)},"features":[\n`;
   let text = '';
   for (let i = 0; i < assets.count; i++) {
     text += `${i > 0 ? ',\n' : ''}{"type":"Feature","geometry":{"type":"Point","coordinates":[${assets.lonDeg[i]},${assets.latDeg[i]}]},"properties":{"name":${JSON.stringify(assets.nameOf(i))}`;

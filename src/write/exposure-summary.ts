@@ -1,11 +1,12 @@
 import type { DamageCurve } from '../exposure/curve.js';
 import type { ExposureTotals, Tally } from '../exposure/exposure.js';
 import type { SkippedRow } from '../exposure/point-table.js';
-import type { Zone, ZoneShape } from '../exposure/zones.js';
+import { type Ring, ringAreaM2, unwrapped, type Zone, type ZoneShape } from '../exposure/zones.js';
 import type { WindScale } from '../surface/wind-scale.js';
 import { toKnots } from '../units.js';
 import { csvLine } from './csv-cell.js';
 import { thresholdName } from './peak-bands.js';
+import { boxOfBoxes } from './places-box.js';
 import { CAUTION, type Provenance } from './provenance.js';
 
 export const EXPOSURE_SCHEMA = 'galewake-exposure/1';
@@ -179,8 +180,17 @@ export function zonesGeojson(parts: ExposureSummary): string {
   const { zones } = exposureDocument(parts) as { zones: Record<string, unknown>[] };
   const features = parts.zones.map(({ zone }, k) => ({
     type: 'Feature',
-    geometry: { type: 'MultiPolygon', coordinates: zone.polygons },
+    geometry: {
+      type: 'MultiPolygon',
+      coordinates: zone.polygons.map((rings) => rings.map((ring, r) => turnedRight(ring, r === 0))),
+    },
     properties: zones[k],
   }));
-  return `${JSON.stringify({ type: 'FeatureCollection', caution: CAUTION, features })}\n`;
+  const bbox = boxOfBoxes(parts.zones.map(({ shape }) => shape.bounds));
+  return `${JSON.stringify({ type: 'FeatureCollection', bbox, caution: CAUTION, features })}\n`;
+}
+
+/** A shell anticlockwise, a hole clockwise   [RFC7946]. */
+function turnedRight(ring: Ring, shell: boolean): Ring {
+  return ringAreaM2(unwrapped(ring, ring[0]?.[0] ?? 0)) > 0 === shell ? ring : [...ring].reverse();
 }

@@ -103,10 +103,11 @@ export function completeTrack(track: Track, options: CompletionOptions): Complet
     const found = ambientPressurePa(fix, track.basin);
     return { value: found.valuePa, origin: 'estimated', by: found.by };
   });
+  const meanOf34Kt = (fix: Fix): number | null => (options.radii === 'fit' ? meanRadiusM(fix, knots(34)) : null);
   const relationInput = (i: number): PressureWindInput => ({
     latDeg: fixes[i]!.latDeg,
     translationMps: translation[i]!,
-    radiusOf34KtM: meanRadiusM(fixes[i]!, knots(34)),
+    radiusOf34KtM: meanOf34Kt(fixes[i]!),
     ambientPressurePa: ambient[i]!.value,
   });
   // relations are for 1-min winds
@@ -189,7 +190,7 @@ export function completeTrack(track: Track, options: CompletionOptions): Complet
               latDeg: fix.latDeg,
               pressureDeficitPa: deficit,
               translationMps: translation[i]!,
-              radiusOf34KtM: meanRadiusM(fix, knots(34)),
+              radiusOf34KtM: meanOf34Kt(fix),
               sizeRadiusM: size.value,
             }),
             origin: 'estimated',

@@ -65,11 +65,13 @@ export function radiiState(
     QUADRANTS.map((j) => {
       const value = known[k]![j] ?? null;
       if (value !== null) return value;
-      return (
-        estimated(rising, known, { k, j, maxWindMps: storm.maxWindMps }) ??
-        meanOf(QUADRANTS.map((other) => estimated(rising, known, { k, j: other, maxWindMps: storm.maxWindMps }))) ??
-        level.baseLogRatio
-      );
+      const estimate = (quadrant: number): number | null =>
+        estimated(rising, known, { k, j: quadrant, maxWindMps: storm.maxWindMps });
+      const elsewhere = (quadrant: number): number | null => {
+        const there = known[k]![quadrant] ?? null;
+        return there !== null && there > ABSENT ? there : estimate(quadrant);
+      };
+      return estimate(j) ?? meanOf(QUADRANTS.map(elsewhere)) ?? level.baseLogRatio;
     }),
   );
   // what was filled in keeps between its neighbours

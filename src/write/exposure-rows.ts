@@ -22,7 +22,8 @@ const ROWS_PER_PIECE = 2000;
 /** A column: its texts are '' where there is nothing. */
 interface Column {
   readonly heading: string;
-  readonly kind: 'number' | 'text';
+  /** plain: letters, digits, signs and colons, which no format needs to guard */
+  readonly kind: 'number' | 'plain' | 'text';
   readonly text: (i: number) => string;
 }
 
@@ -36,25 +37,25 @@ function columnsOf(exposed: ExposedAssets): Column[] {
   const number = (heading: string, values: ArrayLike<number>, text: (value: number) => string): void => {
     own.push({ heading, kind: 'number', text: (i) => text(values[i]!) });
   };
-  const words = (heading: string, text: (i: number) => string): void => {
-    own.push({ heading, kind: 'text', text });
+  const plain = (heading: string, text: (i: number) => string): void => {
+    own.push({ heading, kind: 'plain', text });
   };
   number('peak_wind_mps', outcomes.windMps, thousandths);
   number('peak_gust_mps', outcomes.gustMps, thousandths);
   number('wind_from_deg', outcomes.windFromDeg, bearing);
-  words('peak_time', (i) => time(outcomes.originMs + 1000 * outcomes.peakTimeS[i]!));
+  plain('peak_time', (i) => time(outcomes.originMs + 1000 * outcomes.peakTimeS[i]!));
   for (const [h, name] of levelNames.entries()) number(`hours_${gust}${name}_h`, outcomes.hours[h]!, thousandths);
-  words('level', (i) => levelNames[outcomes.level[i]!] ?? '');
-  if (exposed.classCodes.length > 0) words('class', (i) => exposed.classCodes[outcomes.classIndex[i]!] ?? '');
+  plain('level', (i) => levelNames[outcomes.level[i]!] ?? '');
+  if (exposed.classCodes.length > 0) plain('class', (i) => exposed.classCodes[outcomes.classIndex[i]!] ?? '');
   if (outcomes.ratio.length > 0) number('damage_ratio', outcomes.ratio, shortest);
   for (const [c, losses] of outcomes.losses.entries())
     if (losses) number(`loss_${exposed.valueNames[c]}`, losses, shortest);
   if (exposed.zoneNames.length > 0) {
-    words('zone', (i) =>
+    const zoneOf = (i: number): string =>
       outcomes.zone[i]! < 0
         ? ''
-        : [outcomes.zone[i]!, ...(outcomes.furtherZones.get(i) ?? [])].map((k) => exposed.zoneNames[k]).join('; '),
-    );
+        : [outcomes.zone[i]!, ...(outcomes.furtherZones.get(i) ?? [])].map((k) => exposed.zoneNames[k]).join('; ');
+    own.push({ heading: 'zone', kind: 'text', text: zoneOf });
   }
   const taken = new Set(['name', 'lat_deg', 'lon_deg', ...own.map((column) => column.heading)]);
   const values = exposed.valueNames.map((name, c): Column => {
@@ -72,6 +73,7 @@ const FRACTIONS = Array.from({ length: 1000 }, (_, i) => String(i / 1000).slice(
 
 /** A number of at least 0 with three decimals at most. */
 function thousandths(value: number): string {
+  if (value === 0) return '0';
   const whole = Math.round(value * 1000);
   const units = Math.floor(whole / 1000);
   return units + FRACTIONS[whole - 1000 * units]!;
@@ -107,7 +109,7 @@ export function* assetsCsv(exposed: ExposedAssets): Generator<string, void, unde
     text += `${csvCell(assets.nameOf(i))},${assets.latDeg[i]},${assets.lonDeg[i]}`;
     for (const { kind, text: textOf } of columns) {
       text += ',';
-      text += kind === 'number' ? textOf(i) : csvCell(textOf(i));
+      text += kind === 'text' ? csvCell(textOf(i)) : textOf(i);
     }
     text += '\n';
     if ((i + 1) % ROWS_PER_PIECE === 0) {
@@ -134,7 +136,9 @@ export function* assetsGeojson(
     for (let k = 0; k < columns.length; k++) {
       const value = columns[k]!.text(i);
       text += keys[k];
-      text += value === '' ? 'null' : columns[k]!.kind === 'number' ? value : JSON.stringify(value);
+      const { kind } = columns[k]!;
+      if (value === '') text += 'null';
+      else text += kind === 'number' ? value : kind === 'plain' ? `"${value}"` : JSON.stringify(value);
     }
     text += '}}';
     if ((i + 1) % ROWS_PER_PIECE === 0) {

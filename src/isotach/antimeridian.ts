@@ -5,7 +5,7 @@ import type { SphereRing } from './ring-on-sphere.js';
 const HALF_TURN = 180 * UNITS_PER_DEGREE;
 const TURN = 2 * HALF_TURN;
 const POLE = 90 * UNITS_PER_DEGREE;
-/** Vertices keep this far from the antimeridian and from the poles' parallels, units. */
+/** A vertex nearer than this to the antimeridian lies on it, units. */
 const KEEP_OFF = 2;
 
 /** A run of vertices within ±180°; an open one begins and ends on the antimeridian. */
@@ -45,7 +45,7 @@ export function cutAtAntimeridian(rings: readonly SphereRing[]): PolygonCoordina
 function cutRing(ring: SphereRing, closed: Part[], open: Part[]): void {
   const n = ring.lon.length;
   const turnOf = (lon: number): number => Math.round(lon / TURN);
-  const inside = (lon: number): boolean => Math.abs(lon - turnOf(lon) * TURN) <= HALF_TURN - KEEP_OFF;
+  const inside = (lon: number): boolean => Math.abs(lon - turnOf(lon) * TURN) < HALF_TURN - KEEP_OFF;
   const start = ring.lon.findIndex(inside);
   if (start < 0) return;
   const winding = Math.round((closingLon(ring) - ring.lon[0]!) / TURN) * TURN;
@@ -54,27 +54,39 @@ function cutRing(ring: SphereRing, closed: Part[], open: Part[]): void {
   const parts = [part];
   let lastLon = Number.NaN;
   let lastLat = Number.NaN;
+  /** vertices on the antimeridian since the last one beside it */
+  let on = 0;
   for (let k = 0; k <= n; k++) {
     const i = (start + k) % n;
     let lon = ring.lon[i]! + (start + k >= n ? winding : 0);
-    const lat = Math.max(KEEP_OFF - POLE, Math.min(POLE - KEEP_OFF, ring.lat[i]!));
-    if (!inside(lon)) {
-      // too near to tell: stay on the side where the ring came from
+    const lat = ring.lat[i]!;
+    if (inside(lon)) {
+      const next = turnOf(lon);
+      if (next !== turn) {
+        const cut = Math.max(turn, next) * TURN - HALF_TURN;
+        let leaveLat = Math.round(lastLat + ((cut - lastLon) / (lon - lastLon)) * (lat - lastLat));
+        let enterLat = leaveLat;
+        if (on > 0) {
+          // passes over by way of vertices on the line: what runs along it belongs to neither side
+          enterLat = lastLat;
+          leaveLat = part.lat[part.lat.length - on]!;
+          part.lon.length -= on;
+          part.lat.length -= on;
+        }
+        part.lon.push(cut - turn * TURN);
+        part.lat.push(leaveLat);
+        part = { lon: [cut - next * TURN], lat: [enterLat] };
+        parts.push(part);
+        turn = next;
+      }
+      on = 0;
+    } else {
+      // for now beside the line, on the side where the ring came from
       lon = Math.max(turn * TURN - HALF_TURN + KEEP_OFF, Math.min(turn * TURN + HALF_TURN - KEEP_OFF, lon));
+      on++;
     }
-    const next = turnOf(lon);
-    if (next !== turn) {
-      const cut = Math.max(turn, next) * TURN - HALF_TURN;
-      const cutLat = Math.round(lastLat + ((cut - lastLon) / (lon - lastLon)) * (lat - lastLat));
-      part.lon.push(cut - turn * TURN);
-      part.lat.push(cutLat);
-      part = { lon: [cut - next * TURN], lat: [cutLat] };
-      parts.push(part);
-      turn = next;
-    }
-    const x = lon - turn * TURN;
-    if (k < n && (x !== part.lon.at(-1) || lat !== part.lat.at(-1))) {
-      part.lon.push(x);
+    if (k < n) {
+      part.lon.push(lon - turn * TURN);
       part.lat.push(lat);
     }
     lastLon = lon;
@@ -85,10 +97,38 @@ function cutRing(ring: SphereRing, closed: Part[], open: Part[]): void {
     return;
   }
   // the ring began in the middle of a chain: its last part goes on in the first
-  const first = parts.shift()!;
-  part.lon.push(...first.lon);
-  part.lat.push(...first.lat);
-  open.push(...parts);
+  append(part, parts.shift()!);
+  withoutTips(parts, closed);
+  for (const chain of parts) open.push(chain);
+}
+
+function append(to: Part, more: Part): void {
+  for (let i = 0; i < more.lon.length; i++) {
+    to.lon.push(more.lon[i]!);
+    to.lat.push(more.lat[i]!);
+  }
+}
+
+/** Leaves out chains that come back to where they began (a tip that only just reaches across), and joins what they part. */
+function withoutTips(chains: Part[], closed: Part[]): void {
+  for (;;) {
+    const tip = chains.findIndex(({ lon, lat }) => lon[0] === lon.at(-1) && lat[0] === lat.at(-1));
+    if (tip < 0) return;
+    const before = chains.at(tip - 1)!;
+    const after = chains[(tip + 1) % chains.length]!;
+    before.lon.pop();
+    before.lat.pop();
+    after.lon.shift();
+    after.lat.shift();
+    if (before === after) {
+      chains.length = 0;
+      if (before.lon.length >= 3) closed.push(before);
+      return;
+    }
+    append(before, after);
+    const gone = new Set([chains[tip], after]);
+    chains.splice(0, chains.length, ...chains.filter((chain) => !gone.has(chain)));
+  }
 }
 
 /** The first longitude again, running on from the last. */
@@ -102,7 +142,8 @@ function closingLon(ring: SphereRing): number {
 const corners = { se: 0, ne: 1, nw: 2, sw: 3 } as const;
 
 function placeOnFrame(lon: number, lat: number): number {
-  const up = (lat + POLE) / (2 * POLE);
+  // a pole still belongs to the side
+  const up = Math.max(1e-12, Math.min(1 - 1e-12, (lat + POLE) / (2 * POLE)));
   return lon > 0 ? corners.se + up : corners.nw + 1 - up;
 }
 

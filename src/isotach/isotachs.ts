@@ -2,7 +2,7 @@ import { LimitError, UsageError } from '../errors.js';
 import type { Grid } from '../swath/grid.js';
 import { cutAtAntimeridian } from './antimeridian.js';
 import { type PolygonCoordinates, type Position, polygonsAreaM2 } from './area.js';
-import { geographicLattices, indexLattice, UNITS_PER_DEGREE } from './lattice.js';
+import { geographicLattice, indexLattice, UNITS_PER_DEGREE } from './lattice.js';
 import { traceContours } from './marching-squares.js';
 import { type Field, MOST_LEVELS } from './node-classes.js';
 import { assemblePolygons, type FlatPolygons } from './polygons.js';
@@ -48,17 +48,18 @@ export function isotachs(
   const polygons: PolygonCoordinates[][] = levels.map(() => []);
   const upperOf = (level: number): number | null => (options.bands && level + 1 < levels.length ? level + 1 : null);
   if (grid.geographic) {
-    for (const lattice of geographicLattices(grid, levels.length)) {
-      const contours = traceContours(field, lattice, levels);
-      for (let level = 0; level < levels.length; level++) {
-        append(polygons[level]!, degrees(assemblePolygons(contours, level, upperOf(level))));
-      }
+    const lattice = geographicLattice(grid, levels.length);
+    const contours = traceContours(field, lattice, levels);
+    const across = lattice.x[0]! < -180 * UNITS_PER_DEGREE || lattice.x.at(-1)! > 180 * UNITS_PER_DEGREE;
+    for (let level = 0; level < levels.length; level++) {
+      const flat = assemblePolygons(contours, level, upperOf(level));
+      polygons[level] = across ? cutPolygons(flat) : degrees(flat);
     }
   } else {
     const map = ringMap(grid);
     const contours = traceContours(map.withinProjection(field), indexLattice(grid, map.margin), levels);
     for (let level = 0; level < levels.length; level++) {
-      append(polygons[level]!, mapped(assemblePolygons(contours, level, upperOf(level)), map));
+      polygons[level] = mapped(assemblePolygons(contours, level, upperOf(level)), map);
     }
   }
   return levels.map((thresholdMps, level) => ({
@@ -101,6 +102,23 @@ function degrees(flat: FlatPolygons): PolygonCoordinates[] {
       polygon.push(ring);
     }
     out.push(polygon);
+  }
+  return out;
+}
+
+/** Polygons in millionths of a degree that may run past ±180°. */
+function cutPolygons(flat: FlatPolygons): PolygonCoordinates[] {
+  const { x, y, rings, polygons } = flat;
+  const out: PolygonCoordinates[] = [];
+  for (let p = 1; p < polygons.length; p++) {
+    const sphere: SphereRing[] = [];
+    for (let r = polygons[p - 1]!; r < polygons[p]!; r++) {
+      sphere.push({
+        lon: Array.from(x.subarray(rings[r]!, rings[r + 1]!)),
+        lat: Array.from(y.subarray(rings[r]!, rings[r + 1]!)),
+      });
+    }
+    append(out, cutAtAntimeridian(sphere));
   }
   return out;
 }

@@ -18,7 +18,7 @@ export interface EdgeColumn {
 
 /**
  * Where isotachs are looked for: the cell centres of a grid, or of a part of it, between an outermost row and column of
- * nodes on every side that lie on the edge of the grid (or on the meridian where it is cut).
+ * nodes on every side that lie on the edge of the grid.
  *
  * Edge convention: beyond the outermost centres the field keeps their values up to the outer edge of the grid, and the
  * area at or above a level is closed along that edge. A field that is everywhere at or above the level gives exactly the
@@ -46,20 +46,19 @@ export interface Lattice {
   readonly borderStep: number;
 }
 
-/** Crossings of a geographic lattice keep a 64th of the cell away from its nodes: no hair-thin slivers. */
-const MARGIN = 1 / 64;
+/** Crossings keep a 64th of the cell away from the nodes, at least this many units: no hair-thin slivers. */
+const LEAST_MARGIN = 8;
 
 /** Space between two lines of the lattice that leaves room for all levels to pass one above the other. */
-const roomFor = (levels: number): number => 2 * (levels + 1);
+const roomFor = (levels: number): number => Math.max(16, 2 * (levels + 1));
 
 /**
- * The lattices of a geographic grid, in millionths of a degree: one, or one on each side of the antimeridian where the
- * grid runs across it. A grid that goes round the Earth is cut at the antimeridian only, whatever its first column.
+ * The lattice of a geographic grid, in millionths of a degree; longitudes may run on past ±180°. A grid that goes round
+ * the Earth is opened at the antimeridian, whatever its first column, between two columns of nodes with the values there.
  * @throws LimitError `isotach.cell` when the cell is too small for six decimals
  */
-export function geographicLattices(grid: Grid, levels: number): Lattice[] {
+export function geographicLattice(grid: Grid, levels: number): Lattice {
   const { nx, cell } = grid;
-  const west = grid.bounds[0];
   if (cell * UNITS_PER_DEGREE < 4 * roomFor(levels)) {
     throw new LimitError(
       'isotach.cell',
@@ -67,29 +66,14 @@ export function geographicLattices(grid: Grid, levels: number): Lattice[] {
       { fields: { cell, levels } },
     );
   }
-  const rows = latitudeRows(grid, levels);
-  // nearer than this to a column of centres, the cut takes that column's place
-  const near = Math.max(0.05, roomFor(levels) / (cell * UNITS_PER_DEGREE));
-  const full = nx * cell >= 360 - 1e-9;
-  const across = full ? 360 / cell : nx;
-  // in columns from the western edge: where the antimeridian lies
-  const cuts: number[] = [];
-  for (let turn = -3; turn <= 3; turn += 2) {
-    const at = (turn * 180 - west) / cell;
-    if (at > near && at < across - near) cuts.push(at);
-  }
-  const strips: Lattice[] = [];
-  if (full) {
-    const columns = Math.min(nx, Math.floor(across - 0.5 - near) + 1);
-    const from = ((((180 - west) / cell) % across) + across) % across;
-    strips.push(strip({ grid, rows, near, from, to: from + across, period: { across, columns } }));
-  } else {
-    const edges = [0, ...cuts, nx];
-    for (let i = 1; i < edges.length; i++) {
-      strips.push(strip({ grid, rows, near, from: edges[i - 1]!, to: edges[i]!, period: null }));
-    }
-  }
-  return strips;
+  const columns = nx * cell >= 360 - 1e-9 ? roundTheEarth(grid, levels) : partOfTheEarth(grid);
+  return {
+    stride: nx,
+    ...columns,
+    ...latitudeRows(grid, levels),
+    margin: Math.max(1 / 64, LEAST_MARGIN / (cell * UNITS_PER_DEGREE)),
+    borderStep: 60 * UNITS_PER_DEGREE,
+  };
 }
 
 interface Rows {
@@ -114,57 +98,56 @@ function latitudeRows(grid: Grid, levels: number): Rows {
   return { sourceRow, y };
 }
 
-/** The lattice between two meridians, `from` and `to` in columns from the western edge of the grid. */
-function strip(part: {
-  grid: Grid;
-  rows: Rows;
-  near: number;
-  from: number;
-  to: number;
-  period: { across: number; columns: number } | null;
-}): Lattice {
-  const { grid, rows, near, from, to, period } = part;
-  const columns = period?.columns ?? grid.nx;
-  /** where the centre of a column lies; columns go on past the last one where the grid goes round */
-  const centre = (i: number): number => {
-    if (!period) return i + 0.5;
-    const lap = Math.floor(i / columns);
-    return i - lap * columns + 0.5 + lap * period.across;
-  };
-  let first = Math.floor(from - 0.5);
-  while (centre(first) <= from + near) first++;
-  if (!period) first = Math.max(first, 0);
-  let last = first - 1;
-  while ((period || last + 1 < columns) && centre(last + 1) < to - near) last++;
-  const edge = (at: number): EdgeColumn => {
-    let left = Math.floor(at - 0.5) - 1;
-    while (centre(left + 1) <= at) left++;
-    if (!period) left = Math.max(-1, Math.min(left, columns - 1));
-    const inside = (i: number): number =>
-      period ? ((i % columns) + columns) % columns : Math.max(0, Math.min(columns - 1, i));
-    const weight = (at - centre(left)) / (centre(left + 1) - centre(left));
-    const snapped = weight < near ? 0 : weight > 1 - near ? 1 : weight;
-    return { left: inside(left), right: inside(left + 1), weight: snapped };
-  };
-  const lonUnits = (at: number): number => Math.round((grid.bounds[0] + at * grid.cell) * UNITS_PER_DEGREE);
-  // shift by whole turns so that the middle lies within ±180°
-  const shift = -TURN * Math.round(lonUnits((from + to) / 2) / TURN);
-  const clamp = (units: number): number => Math.max(-HALF_TURN, Math.min(HALF_TURN, units + shift)) + 0;
-  const x = new Float64Array(last - first + 3);
-  x[0] = clamp(lonUnits(from));
-  for (let i = first; i <= last; i++) x[i - first + 1] = clamp(lonUnits(centre(i)));
-  x[x.length - 1] = clamp(lonUnits(to));
+type Columns = Pick<Lattice, 'first' | 'period' | 'west' | 'east' | 'x'>;
+
+/** All columns of the grid between its edges, moved by whole turns to within ±180° as far as it goes. */
+function partOfTheEarth({ nx, cell, bounds }: Grid): Columns {
+  const lonUnits = (at: number): number => Math.round((bounds[0] + at * cell) * UNITS_PER_DEGREE);
+  const shift = TURN * Math.round(lonUnits(nx / 2) / TURN);
+  const x = Float64Array.from({ length: nx + 2 }, (_, i) => {
+    const at = i === 0 ? 0 : i > nx ? nx : i - 0.5;
+    return lonUnits(at) - shift + 0;
+  });
   return {
-    stride: grid.nx,
-    period: columns,
-    first: ((first % columns) + columns) % columns,
-    west: edge(from),
-    east: edge(to),
-    ...rows,
+    first: 0,
+    period: nx,
+    west: { left: 0, right: 0, weight: 0 },
+    east: { left: nx - 1, right: nx - 1, weight: 0 },
     x,
-    margin: MARGIN,
-    borderStep: 60 * UNITS_PER_DEGREE,
   };
+}
+
+/** The columns of one turn from −180° to 180°, in between the values on the antimeridian. */
+function roundTheEarth({ nx, cell, bounds }: Grid, levels: number): Columns {
+  // in columns from the western edge of the grid; a last column that lies over the first again is left out
+  const turn = 360 / cell;
+  // nearer than this to the antimeridian, a column of centres stands for it
+  const near = Math.max(0.05, roomFor(levels) / (cell * UNITS_PER_DEGREE));
+  const period = Math.min(nx, Math.floor(turn - 0.5 - near) + 1);
+  const from = ((((180 - bounds[0]) / cell) % turn) + turn) % turn;
+  /** where the centre of a column lies; columns go on past the last one, round the Earth */
+  const centre = (i: number): number => {
+    const lap = Math.floor(i / period);
+    return i - lap * period + 0.5 + lap * turn;
+  };
+  const wrapped = (i: number): number => ((i % period) + period) % period;
+  let left = Math.floor(from - 0.5) - 1;
+  while (centre(left + 1) <= from) left++;
+  const weight = (from - centre(left)) / (centre(left + 1) - centre(left));
+  const first = from + near >= centre(left + 1) ? left + 2 : left + 1;
+  let last = first;
+  while (centre(last + 1) < from + turn - near) last++;
+  const edge: EdgeColumn = {
+    left: wrapped(left),
+    right: wrapped(left + 1),
+    weight: from - centre(left) <= near ? 0 : first === left + 2 ? 1 : weight,
+  };
+  const x = new Float64Array(last - first + 3);
+  x[0] = -HALF_TURN;
+  for (let i = first; i <= last; i++)
+    x[i - first + 1] = Math.round((centre(i) - from - turn / 2) * cell * UNITS_PER_DEGREE) + 0;
+  x[x.length - 1] = HALF_TURN;
+  return { first: wrapped(first), period, west: edge, east: edge, x };
 }
 
 /** The lattice of a projected grid, in 2⁻²⁰ of a cell from its north-west corner; y falls from 0. */

@@ -28,6 +28,8 @@ export interface RingMap {
 const TOLERANCE = 0.1;
 /** Longer steps in longitude than this are divided, degrees. */
 const LONGEST_STEP_DEG = 60;
+/** Vertices keep just off the poles, units: what holds a pole is led there along the antimeridian. */
+const HIGHEST = 90 * UNITS_PER_DEGREE - 2;
 const MOST_DIVISIONS = 30;
 /** Cells smaller than this have no isotachs with six decimals (0.1 m), m. */
 const SMALLEST_CELL_M = 8;
@@ -174,7 +176,7 @@ class RingMapper {
     const lat: number[] = [];
     for (let i = 0; i < this.lon.length; i++) {
       const x = Math.round(this.lon[i]! * UNITS_PER_DEGREE);
-      const y = Math.round(this.lat[i]! * UNITS_PER_DEGREE);
+      const y = Math.max(-HIGHEST, Math.min(HIGHEST, Math.round(this.lat[i]! * UNITS_PER_DEGREE)));
       if (x === lon.at(-1) && y === lat.at(-1)) continue;
       lon.push(x);
       lat.push(y);

@@ -188,16 +188,21 @@ const NEAR_M = 2000;
 function fromDirection(tile: Tile, i: number, { arrays }: Arithmetic, frame: Float64Array): number {
   const [x, y, z] = [arrays.x[i]!, arrays.y[i]!, arrays.z[i]!];
   const [cx, cy, cz] = [frame[0]!, frame[1]!, frame[2]!];
-  const flat = Math.hypot(x, y);
-  const centreFlat = Math.hypot(cx, cy);
+  const flat = Math.sqrt(x * x + y * y);
+  const centreFlat = Math.sqrt(cx * cx + cy * cy);
+  let [real, imaginary] = [-tile.northMps[i]!, -tile.eastMps[i]!];
   // sides of the triangle of the two places and the pole, as far as their bearings need them
   const across = cx * y - cy * x;
   const along = cx * x + cy * y;
   const outEast = across / centreFlat;
   const outNorth = z * centreFlat - (cz * along) / centreFlat;
-  const backEast = -across / flat;
-  const backNorth = cz * flat - (z * along) / flat;
-  const far = flat > 1e-7 && centreFlat > 1e-7 && Math.hypot(outEast, outNorth) * EARTH_RADIUS_M > NEAR_M;
-  const turn = far ? Math.atan2(-backEast, -backNorth) - Math.atan2(outEast, outNorth) : 0;
-  return wrapBearing((Math.atan2(-tile.eastMps[i]!, -tile.northMps[i]!) + turn) / RADIANS);
+  const near = NEAR_M / EARTH_RADIUS_M;
+  if (flat > 1e-7 && centreFlat > 1e-7 && outEast * outEast + outNorth * outNorth > near * near) {
+    // bearings as complex numbers, north real: times the way's direction at the place, divided by that at the centre
+    const onEast = across / flat;
+    const onNorth = (z * along) / flat - cz * flat;
+    [real, imaginary] = [real * onNorth - imaginary * onEast, real * onEast + imaginary * onNorth];
+    [real, imaginary] = [real * outNorth + imaginary * outEast, imaginary * outNorth - real * outEast];
+  }
+  return wrapBearing(Math.atan2(imaginary, real) / RADIANS);
 }

@@ -98,7 +98,7 @@ describe('wind at places', () => {
       const below = (1 - tx) * at(r + 1, c) + tx * at(r + 1, c + 1);
       return Math.abs((1 - ty) * above + ty * below - found.windMps[i]!);
     }).sort((a, b) => a - b);
-    expect(off[Math.floor(0.99 * n)]).toBeLessThan(0.15 + 0.05);
+    expect(off[Math.floor(0.99 * n)]).toBeLessThan(0.3 + 0.05);
     expect(off[n - 1]).toBeLessThan(0.5 + 0.05);
   });
 

@@ -3,7 +3,7 @@ import { pageAssets, pageCoast } from '../io/page-assets.js';
 import { mapSvg } from '../picture/map-svg.js';
 import { mapPage } from '../picture/page-html.js';
 import { recipeText } from '../picture/words.js';
-import { mapInput } from './map-files.js';
+import { mapInput } from './map-input.js';
 import type { SwathResult } from './swath-files.js';
 
 /** The content of `map.html`. */

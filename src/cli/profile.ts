@@ -84,7 +84,7 @@ export async function profile(options: ProfileOptions): Promise<void> {
   };
   if (options.to === 'svg' || options.to === 'png') {
     const { profileSvg } = await import('../picture/profile-svg.js');
-    const svg = profileSvg(vortices);
+    const svg = profileSvg(vortices, { regimeBounds });
     await write(options.to === 'svg' ? svg : await (await import('../io/png.js')).svgToPng(svg));
     return;
   }

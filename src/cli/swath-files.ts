@@ -3,6 +3,7 @@ import { OutputFolder } from '../io/output.js';
 import { safeName } from '../io/safe-name.js';
 import type { PolygonCoordinates } from '../isotach/area.js';
 import type { WindModel } from '../model/wind.js';
+import type { MapInput } from '../picture/map-input.js';
 import type { Swath } from '../swath/swath.js';
 import { isotachsFlatGeobuf } from '../write/flatgeobuf.js';
 import { peakTif } from '../write/geotiff.js';
@@ -34,6 +35,9 @@ export interface SwathResult {
   readonly cautions: readonly string[];
   readonly period: { readonly fromMs: number; readonly toMs: number };
   readonly provenance: Provenance;
+  /** what the user wants to see on the map */
+  readonly places: NonNullable<MapInput['places']>;
+  readonly zones: NonNullable<MapInput['zones']>;
 }
 
 /**
@@ -119,9 +123,12 @@ async function contentOf(name: string, result: SwathResult): Promise<Iterable<Ui
     }
     case 'isotachs.fgb':
       return [isotachsFlatGeobuf({ isotachs, context, provenance })];
+    case 'map.html':
+      return [await (await import('./map-page.js')).mapPageOf(result)];
     default: {
-      const { mapFile } = await import('./map-files.js');
-      return [await mapFile(name, result)];
+      const { mapSvg } = await import('../picture/map-svg.js');
+      const svg = mapSvg((await import('./map-input.js')).mapInput(result));
+      return [name === 'map.svg' ? svg : (await import('../io/png.js')).svgToPng(svg)];
     }
   }
 }

@@ -23,6 +23,7 @@ import {
   type TrackOptions,
 } from './choices.js';
 import { type Console, makeConsole, table } from './console.js';
+import { drawnOf } from './drawn.js';
 import { readStorm } from './storm.js';
 import { FORMATS, openFolder, type SwathResult, writeSwath } from './swath-files.js';
 
@@ -39,6 +40,8 @@ export interface SwathCommandOptions extends CommonOptions, ModelOptions, TrackO
   readonly formats: string;
   readonly force?: boolean;
   readonly jobs?: string;
+  readonly places?: string;
+  readonly zones?: string;
 }
 
 /** `galewake swath`: from a track to isotachs, rasters and a summary. */
@@ -51,6 +54,7 @@ export async function swath(file: string, options: SwathCommandOptions): Promise
   const jobs = options.jobs === undefined ? undefined : countOf(options.jobs, { name: '--jobs', least: 1 });
   const recipe = await recipeOf(options);
   const { track, inputs } = await readStorm(file, options);
+  const drawn = await drawnOf(options);
   const readAt = performance.now();
 
   const model = windModel(track, recipe, { lowestLevelMps: levels[0]! });
@@ -84,7 +88,7 @@ export async function swath(file: string, options: SwathCommandOptions): Promise
     });
     const isotachsAt = performance.now();
     out.progress('files …');
-    const cautions = [...new Set([...field.cautions, ...model.cautions])];
+    const cautions = [...new Set([...field.cautions, ...model.cautions, ...drawn.cautions])];
     if (areas.every((area) => area.polygons.length === 0))
       cautions.push(
         `no ${options.of} reaches the lowest level, ${toKnots(levels[0]!).toFixed(0)} kt: there is no isotach`,
@@ -97,6 +101,8 @@ export async function swath(file: string, options: SwathCommandOptions): Promise
       bands: options.bands === true,
       cautions,
       levels,
+      places: drawn.places,
+      zones: drawn.zones,
       classOf: (thresholdMps) =>
         options.of === 'wind' && model.averagingS === 60
           ? windClass(thresholdMps, { scale: 'saffir-simpson' }).name

@@ -187,6 +187,7 @@ async function convert(file: string, options: TracksOptions, to: 'csv' | 'geojso
 
 async function drawing(chosen: readonly Track[], to: 'svg' | 'png'): Promise<string | Uint8Array> {
   const { trackSvg } = await import('../picture/track-svg.js');
-  const svg = trackSvg(chosen);
+  const { pictureCoast } = await import('../io/coast-picture.js');
+  const svg = trackSvg(chosen, { coast: pictureCoast('50m') });
   return to === 'svg' ? svg : (await import('../io/png.js')).svgToPng(svg);
 }

@@ -14,8 +14,8 @@ export interface KernelArrays {
   readonly frameAt: Int32Array;
   readonly speedAt: Int32Array;
   readonly windAt: Int32Array;
-  /** what `settle` gives: speed, east and north part, m/s */
-  readonly settled: readonly [Float32Array, Float32Array, Float32Array];
+  /** what `settle` gives: speed, east and north part, m/s; (r/R)² */
+  readonly settled: readonly [Float32Array, Float32Array, Float32Array, Float32Array];
 }
 
 /** The hot loops: WebAssembly, or its twin in plain JavaScript with the same bits. */
@@ -36,11 +36,11 @@ export interface Arithmetic {
     frame: Float64Array,
     to: number,
   ) => void;
-  /** see `maxima` in assembly/kernel.ts; first, middle and last are indices of `winds`, −1 where there is none */
   /** the same for the eight places of `probe` */
   readonly probe: (table: Float32Array, groups: number, lastRow: number, frame: Float64Array) => void;
   /** wind of each cell at the moment that `frameAt`, `speedAt` and `windAt` point to */
   readonly settle: (count: number, groups: number, lastRow: number, windHarmonics: number) => void;
+  /** see `maxima` in assembly/kernel.ts; first, middle and last are indices of `winds`, −1 where there is none */
   readonly maxima: (
     quads: number,
     first: number,
@@ -50,12 +50,16 @@ export interface Arithmetic {
     t0: number,
     t2: number,
   ) => void;
-  readonly addHours: (
-    quads: number,
-    from: number,
-    to: number,
-    hours: number,
-    threshold: number,
-    stepHours: number,
-  ) => void;
+  /** hours of the step from `middle` to `last`; `first` (−1 where there is none) tells how the wind bends */
+  readonly addHours: (quads: number, first: number, middle: number, last: number, step: HoursStep) => void;
+}
+
+/** A step whose hours are added. */
+export interface HoursStep {
+  /** which of `hours` */
+  readonly slot: number;
+  readonly thresholdMps: number;
+  readonly stepHours: number;
+  /** length of the step before over that of this one */
+  readonly ratio: number;
 }

@@ -13,10 +13,10 @@ import {
 } from './table.js';
 import type { Leg, Timeline } from './timeline.js';
 
-/** Tables are this far apart in time at most, s: between two of them the nearer one serves, with R and V of the moment. */
-const SLOT_S = 340;
+/** From one table to the next the wind changes by at most this, m/s: between them the nearer one serves, with R and V of the moment. */
+const SLOT_MPS = 0.03;
 /** A table is interpolated between two neighbours that explain the one in their middle within this, m/s. */
-const TOLERANCE_MPS = 0.05;
+const TOLERANCE_MPS = 0.02;
 /** Winds below this need not be explained, m/s: nothing is promised of them. */
 const LEAST_MPS = 7.5;
 /** Truncation of the harmonics that is left out, m/s. */
@@ -43,17 +43,45 @@ export interface Moments {
 /** Builds the tables of a storm as they are needed. */
 export function momentsOf(model: WindModel, timeline: Timeline, arithmetic: Arithmetic): Moments {
   const { layout, sampling, complete } = planTables(model, timeline);
-  const shifts = timeline.legs.map(shiftOf);
-  const firstSlots: number[] = [];
-  const slots = new Int32Array(timeline.count);
-  let count = 0;
-  for (const [number, leg] of timeline.legs.entries()) {
-    firstSlots.push(count);
-    const shift = shifts[number]!;
-    for (let j = 0; j <= 1 << leg.depth && leg.first + j < timeline.count; j++)
-      slots[leg.first + j] = count + Math.round(j / (1 << shift));
-    count += (1 << (leg.depth - shift)) + 1;
+  const build = (timeMs: number): MomentTable => tableOf(model.fieldAt(timeMs), layout, sampling);
+  // where the model is continuous a fix serves the legs on both sides
+  const continuous = model.recipe['path.interpolation'] !== 'linear';
+  const legTables: (readonly Built[])[] = [];
+  let last: MomentTable | null = null;
+  for (const leg of timeline.legs) {
+    const list = tablesOfLeg(leg, continuous ? last : null);
+    legTables.push(list);
+    last = list[list.length - 1]!.table;
   }
+
+  // slots of the tables that are interpolated: as many between two built ones as the wind changes
+  const slots = new Int32Array(timeline.count);
+  const slotFrom: { readonly a: Built; readonly b: Built; readonly t: number }[] = [];
+  for (const [number, leg] of timeline.legs.entries()) {
+    const list = legTables[number]!;
+    const fine = 1 << leg.depth;
+    let serving = 0;
+    for (let i = 0; i + 1 < list.length; i++) {
+      const [a, b] = [list[i]!, list[i + 1]!];
+      const most = Math.max(1, Math.round((b.at - a.at) * fine));
+      const maxWindMps = timeline.frame(leg.first + Math.round(0.5 * (a.at + b.at) * fine))[9]!;
+      const parts = Math.min(
+        most,
+        Math.ceil((farthestApart(a.table, b.table, layout, maxWindMps) * maxWindMps) / SLOT_MPS) || 1,
+      );
+      const first = slotFrom.length;
+      for (let part = 0; part <= parts; part++) slotFrom.push({ a, b, t: part / parts });
+      for (; serving <= b.at * fine && leg.first + serving < timeline.count; serving++) {
+        const t = (serving / fine - a.at) / (b.at - a.at);
+        slots[leg.first + serving] = first + Math.round(t * parts);
+      }
+    }
+    if (list.length === 1) {
+      slots.fill(slotFrom.length, leg.first, leg.first + 1);
+      slotFrom.push({ a: list[0]!, b: list[0]!, t: 0 });
+    }
+  }
+  const count = slotFrom.length;
   const mixed = (p: Float32Array, q: Float32Array, t: number): Float32Array => {
     const out = arithmetic.allocate(p.length);
     if (t === 0) out.set(p);
@@ -66,54 +94,13 @@ export function momentsOf(model: WindModel, timeline: Timeline, arithmetic: Arit
   );
   const frames = arithmetic.allocate(FRAME_FLOATS * timeline.count).fill(0);
   const windAt = new Int32Array(count);
-  const build = (timeMs: number): MomentTable => tableOf(model.fieldAt(timeMs), layout, sampling);
-  const legTables: (readonly Built[] | undefined)[] = new Array(timeline.legs.length);
-  // where the model is continuous a fix serves the legs on both sides
-  const continuous = model.recipe['path.interpolation'] !== 'linear';
-  const atFix = new Map<number, MomentTable>();
-
-  const endTable = (leg: Leg, end: 0 | 1): MomentTable => {
-    const timeMs = end === 0 ? leg.startMs : leg.endMs;
-    if (!continuous) return build(end === 0 || leg.endMs === leg.startMs ? timeMs : timeMs - 1);
-    const known = atFix.get(timeMs);
-    if (known) return known;
-    const made = build(timeMs);
-    atFix.set(timeMs, made);
-    return made;
-  };
-
-  const tablesOfLeg = (number: number): readonly Built[] => {
-    const known = legTables[number];
-    if (known) return known;
-    const leg = timeline.legs[number]!;
-    const list: Built[] = [{ at: 0, table: endTable(leg, 0) }];
-    if (leg.endMs > leg.startMs) {
-      const split = (from: number, a: MomentTable, to: number, b: MomentTable, depth: number): void => {
-        const at = 0.5 * (from + to);
-        const middle = build(leg.startMs + at * (leg.endMs - leg.startMs));
-        const fine =
-          depth >= MOST_SPLITS ||
-          explains(a, b, middle, layout, timeline.frame(leg.first + Math.round(at * (1 << leg.depth)))[9]!);
-        if (!fine) split(from, a, at, middle, depth + 1);
-        list.push({ at, table: middle });
-        if (!fine) split(at, middle, to, b, depth + 1);
-      };
-      const last = endTable(leg, 1);
-      split(0, list[0]!.table, 1, last, 1);
-      list.push({ at: 1, table: last });
-    }
-    legTables[number] = list;
-    return list;
-  };
-
   const tableAt = (index: number): Placed => {
     const slot = slots[index]!;
     const known = tables[slot];
     if (known) return known;
-    const number = timeline.legNumber[index]!;
-    const leg = timeline.legs[number]!;
-    const at = ((slot - firstSlots[number]!) * (1 << shifts[number]!)) / (1 << leg.depth);
-    const { a, b, t, bounds } = around(tablesOfLeg(number), at);
+    const { a: from, b: to, t } = slotFrom[slot]!;
+    const bounds = boundsOf(from, to);
+    const [a, b] = [from.table, to.table];
     const placed: Placed = { ...bounds, speed: mixed(a.speed, b.speed, t), windFrom: { a, b, t } };
     tables[slot] = placed;
     return placed;
@@ -137,12 +124,25 @@ export function momentsOf(model: WindModel, timeline: Timeline, arithmetic: Arit
     arrays.windAt[cell] = windAt[slot]! - 1;
   };
   return { layout, complete, tableAt, place };
-}
 
-/** Fine steps of a leg between two tables, as a power of two. */
-function shiftOf(leg: Leg): number {
-  const fineS = (leg.endMs - leg.startMs) / 1000 / (1 << leg.depth);
-  return fineS > 0 ? Math.max(0, Math.min(leg.depth, Math.floor(Math.log2(SLOT_S / fineS)))) : 0;
+  /** Tables of a leg, more of them where two do not explain the one in their middle. */
+  function tablesOfLeg(leg: Leg, start: MomentTable | null): readonly Built[] {
+    const list: Built[] = [{ at: 0, table: start ?? build(leg.startMs) }];
+    if (leg.endMs === leg.startMs) return list;
+    const split = (from: number, a: MomentTable, to: number, b: MomentTable, depth: number): void => {
+      const at = 0.5 * (from + to);
+      const middle = build(leg.startMs + at * (leg.endMs - leg.startMs));
+      const maxWindMps = timeline.frame(leg.first + Math.round(at * (1 << leg.depth)))[9]!;
+      const fine = depth >= Math.min(MOST_SPLITS, leg.depth) || explains(a, b, middle, layout, maxWindMps);
+      if (!fine) split(from, a, at, middle, depth + 1);
+      list.push({ at, table: middle });
+      if (!fine) split(at, middle, to, b, depth + 1);
+    };
+    const last = build(continuous ? leg.endMs : leg.endMs - 1);
+    split(0, list[0]!.table, 1, last, 1);
+    list.push({ at: 1, table: last });
+    return list;
+  }
 }
 
 /** How many rows and harmonics the fields of this storm need. */
@@ -216,18 +216,30 @@ function harmonicsNeeded(values: readonly number[], bound: number, probe: Sampli
 
 /** Whether the mean of two tables gives the one in their middle. */
 function explains(a: MomentTable, b: MomentTable, middle: MomentTable, layout: Layout, maxWindMps: number): boolean {
-  const { rows, speedStride } = layout;
+  const mean = a.speed.map((value, k) => 0.5 * (value + b.speed[k]!));
+  return farthestApart({ speed: mean }, middle, layout, maxWindMps) * maxWindMps <= TOLERANCE_MPS;
+}
+
+/** The most by which the speeds of two tables differ anywhere, as a share of the maximum wind; calms count for nothing. */
+function farthestApart(
+  a: Pick<MomentTable, 'speed'>,
+  b: MomentTable,
+  { rows, speedStride }: Layout,
+  maxWindMps: number,
+): number {
   const ratio = rowRatios(rows);
+  const least = (LEAST_MPS / maxWindMps) ** 2;
+  let most = 0;
   for (let row = 1; row < rows; row++) {
-    const s = ratio[row]!;
     const at = row * speedStride;
-    let off = Math.abs(middle.speed[at]! - 0.5 * (a.speed[at]! + b.speed[at]!));
-    for (let c = 1; c < speedStride; c++)
-      off += s * Math.abs(middle.speed[at + c]! - 0.5 * (a.speed[at + c]! + b.speed[at + c]!));
-    const speed = Math.max(0.1, Math.sqrt(Math.max(0, middle.speed[at]!)));
-    if ((off / (2 * speed)) * maxWindMps > TOLERANCE_MPS && speed * maxWindMps > LEAST_MPS) return false;
+    const squared = Math.max(a.speed[at]!, b.speed[at]!);
+    if (squared < least) continue;
+    let off = 0;
+    for (let c = 1; c < speedStride; c++) off += Math.abs(a.speed[at + c]! - b.speed[at + c]!);
+    off = ratio[row]! * off + Math.abs(a.speed[at]! - b.speed[at]!);
+    most = Math.max(most, off / (2 * Math.sqrt(squared)));
   }
-  return true;
+  return most;
 }
 
 /** A moment's table in the kernel's memory; its wind part is made when it is asked for. */
@@ -246,13 +258,8 @@ interface Built {
   bounds?: Bounds;
 }
 
-/** The two tables around a share of a leg, how far it is between them, and bounds for both. */
-function around(list: readonly Built[], at: number): { a: MomentTable; b: MomentTable; t: number; bounds: Bounds } {
-  let i = 0;
-  while (i + 2 < list.length && list[i + 1]!.at <= at) i++;
-  const from = list[i]!;
-  const to = list[i + 1] ?? from;
-  const t = to.at > from.at ? Math.min(1, Math.max(0, (at - from.at) / (to.at - from.at))) : 0;
+/** The bounds that hold between a table and the next one. */
+function boundsOf(from: Built, to: Built): Bounds {
   const most = (p: Float32Array, q: Float32Array): Float32Array => p.map((value, k) => Math.max(value, q[k]!));
   from.bounds ??= {
     steepest: most(from.table.steepest, to.table.steepest),
@@ -260,5 +267,5 @@ function around(list: readonly Built[], at: number): { a: MomentTable; b: Moment
     bent: most(from.table.bent, to.table.bent),
     bentWithTaper: most(from.table.bentWithTaper, to.table.bentWithTaper),
   };
-  return { a: from.table, b: to.table, t, bounds: from.bounds };
+  return from.bounds;
 }

@@ -2,9 +2,8 @@ import { EARTH_RADIUS_M, RADIANS } from '../../earth.js';
 import type { WindField } from '../../model/field.js';
 
 /**
- * The wind of one moment as a table over the squared distance x = (r/R)² (r by the sine of the angle), its rows spaced in
- * x as floating-point numbers are: 32 to every doubling, so that a number's own bits give the row. The first row is the
- * centre, the second x = 2⁻⁸; x = 1, the radius of maximum wind, is a row.
+ * The wind of one moment as a table over the squared distance x = (r/R)² (r by the sine of the angle). Rows are even in x
+ * in the core and spaced as floating-point numbers are outside, so that a number's own bits give the row. The first row is the centre; x = 1, the radius of maximum wind, is a row.
  *
  * Columns, for the harmonics 0 … K of the squared speed over V²: [mean, b₁, a₁, b₂, a₂ …] with
  *   S²/V² = mean + Σ (b_k E_k + a_k N_k),  E_k = s·sin kφ, N_k = s·cos kφ, s = √x, φ clockwise from north;
@@ -34,17 +33,20 @@ export interface MomentTable {
   readonly bentWithTaper: Float32Array;
 }
 
-export const ROWS_PER_OCTAVE_BITS = 5;
-const ROWS_PER_OCTAVE = 1 << ROWS_PER_OCTAVE_BITS;
-/** x of the second row is 2^FIRST_EXPONENT */
-export const FIRST_EXPONENT = -8;
+/** Rows of the core, evenly spaced in x, and the x at which they end. */
+export const CORE_ROWS = 64;
+export const CORE_X = 0.5;
+/** From there on 2^OUTER_BITS rows to every doubling of x, as the bits of a float divide it. */
+export const OUTER_BITS = 6;
+/** The row of x = 1. */
+const RIDGE_ROW = CORE_ROWS + (Math.log2(1 / CORE_X) << OUTER_BITS);
 
 /** x of a row. */
 export function rowX(row: number): number {
-  if (row === 0) return 0;
-  const octave = (row - 1) >> ROWS_PER_OCTAVE_BITS;
-  const step = (row - 1) & (ROWS_PER_OCTAVE - 1);
-  return 2 ** (FIRST_EXPONENT + octave) * (1 + step / ROWS_PER_OCTAVE);
+  if (row < CORE_ROWS) return (row * CORE_X) / CORE_ROWS;
+  const outer = row - CORE_ROWS;
+  const each = 1 << OUTER_BITS;
+  return CORE_X * 2 ** (outer >> OUTER_BITS) * (1 + (outer & (each - 1)) / each);
 }
 
 /** √x of the first rows, kept as far as they were asked for; the centre stands for a place next to it. */
@@ -57,8 +59,36 @@ export function rowRatios(rows: number): Float64Array {
 
 /** Rows that reach beyond x. */
 export function rowsBeyond(x: number): number {
-  const octaves = Math.max(1, Math.ceil(Math.log2(x) - FIRST_EXPONENT));
-  return 1 + octaves * ROWS_PER_OCTAVE + 1;
+  return CORE_ROWS + (Math.max(2, Math.ceil(Math.log2(x / CORE_X))) << OUTER_BITS) + 1;
+}
+
+const bits = new Float32Array(1);
+const word = new Int32Array(bits.buffer);
+bits[0] = CORE_X;
+const SHIFT = 23 - OUTER_BITS;
+const FIRST_WORD = (word[0]! >> SHIFT) - CORE_ROWS;
+const FRACTION = (1 << SHIFT) - 1;
+
+/** The share of the way from the row that {@link rowOf} gave last to the next one. */
+export let rowShare = 0;
+
+/** The table row below x, in single precision as the kernel does it. */
+export function rowOf(x: number, last: number): number {
+  if (x < CORE_X) {
+    const at = x * (CORE_ROWS / CORE_X);
+    const row = Math.trunc(at);
+    rowShare = at - row;
+    return row;
+  }
+  bits[0] = x;
+  const w = word[0]!;
+  const row = (w >> SHIFT) - FIRST_WORD;
+  if (row >= last) {
+    rowShare = 0;
+    return last;
+  }
+  rowShare = (w & FRACTION) / (FRACTION + 1);
+  return row;
 }
 
 export function layoutOf(harmonics: number, windHarmonics: number, rows: number): Layout {
@@ -153,6 +183,8 @@ export function tableOf(field: WindField, layout: Layout, sampling: Sampling): M
     lastRadius = radiusM;
     lastMiddle = middle;
   }
+  settleBetween(speed, rows, speedStride);
+  settleBetween(wind, rows, windStride);
   const steepest = new Float32Array(rows);
   const steepestWithTaper = new Float32Array(rows);
   const taperX = (0.9 * field.outerRadiusM) / radiusOfMaxWindM;
@@ -172,6 +204,23 @@ export function tableOf(field: WindField, layout: Layout, sampling: Sampling): M
     bentWithTaper[row] = allBend;
   }
   return { speed, wind, steepest, steepestWithTaper, bent, bentWithTaper };
+}
+
+/**
+ * Straight lines between rows lie to one side of a curve, by up to an eighth of the second difference: half of that, taken
+ * off the rows, leaves half the error, on both sides. The ridge, where the slope jumps, stays as it is.
+ */
+function settleBetween(values: Float32Array, rows: number, stride: number): void {
+  for (let c = 0; c < stride; c++) {
+    let before = values[c]!;
+    let now = values[stride + c]!;
+    for (let row = 1; row + 1 < rows; row++) {
+      const after = values[(row + 1) * stride + c]!;
+      if (row !== CORE_ROWS && row !== RIDGE_ROW) values[row * stride + c] = now - (before - 2 * now + after) / 16;
+      before = now;
+      now = after;
+    }
+  }
 }
 
 /** Fourier coefficients of values on a circle: mean, then for each harmonic the sine and cosine part over s. */

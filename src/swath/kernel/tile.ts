@@ -1,15 +1,17 @@
 import { EARTH_RADIUS_M } from '../../earth.js';
 import type { Arithmetic } from './arithmetic.js';
-import type { Moments } from './moments.js';
-import { FIRST_EXPONENT, type Layout, type MomentTable, ROWS_PER_OCTAVE_BITS } from './table.js';
+import type { Moments, Placed } from './moments.js';
+import { type Layout, type MomentTable, rowOf, rowShare } from './table.js';
 import { MOST_CELLS_OF_TILE } from './tile-size.js';
-import type { Timeline } from './timeline.js';
+import type { Leg, Timeline } from './timeline.js';
 
 /** A step moves the storm by at most this share of the distance from it (or of its radius of maximum wind). */
 const STEP_SHARE = 0.15;
-/** Steps are longer by this factor while the wind is weak against what the tile has had. */
+/** Steps are longer by this factor while the wind is weak against what the tile has had and far from every threshold. */
 const IDLE_FACTOR = 2.5;
 const IDLE_SHARE = 0.6;
+/** Steps through the taper leave out this much of a wind that bends, m/s. */
+const TAPER_MPS = 0.08;
 /** Below this wind, m/s, nothing is promised: there margins are not kept. */
 const CALM_MPS = 7;
 /** Next to the centre steps follow this share of the radius of maximum wind. */
@@ -19,9 +21,18 @@ const ROUNDING_MPS = 0.02;
 /** A parabola is trusted when the wind at its vertex is this near to it, m/s. */
 const PARABOLA_MPS = 0.01;
 /** Farther off than this, the peak is searched for, m/s. */
-const SEARCH_MPS = 0.04;
+const SEARCH_MPS = 0.03;
 /** A second maximum in time within this share of the first is looked at too. */
 const RIVAL_SHARE = 0.95;
+/** (r/R)² about the ridge of the profile within which the wind of a peak may have a corner in time. */
+const CORNER_X = [0.4, 2.4] as const;
+/** Moments about a corner at which it is checked, as a share of its bracket. */
+const CORNER_STEP = 0.05;
+/** Moments between the neighbours of an estimate at which a search looks first. */
+const SEARCH_MOMENTS = 16;
+/** A search ends when its neighbours are this near, m/s, or nearer than this share of a fine step. */
+const SEARCHED_MPS = 0.0005;
+const SEARCHED_STEP = 0.005;
 
 /** The cells of a tile, and what was found for each. The arrays of cells and hours are the kernel's. */
 export interface Tile {
@@ -50,39 +61,13 @@ export function newTile(): Tile {
   };
 }
 
-const bits = new Float32Array(1);
-const word = new Int32Array(bits.buffer);
-const FIRST_X = 2 ** FIRST_EXPONENT;
-const SHIFT = 23 - ROWS_PER_OCTAVE_BITS;
-const FIRST_WORD = ((127 + FIRST_EXPONENT) << ROWS_PER_OCTAVE_BITS) - 1;
-const FRACTION = (1 << SHIFT) - 1;
-const FRACTION_SCALE = 1 / (1 << SHIFT);
-
-/** The table row below x; the share of the way to the next is left in `share`. */
-let share = 0;
-function rowOf(x: number, last: number): number {
-  if (x < FIRST_X) {
-    share = x * (1 / FIRST_X);
-    return 0;
-  }
-  bits[0] = x;
-  const w = word[0]!;
-  const row = (w >> SHIFT) - FIRST_WORD;
-  if (row >= last) {
-    share = 0;
-    return last;
-  }
-  share = (w & FRACTION) * FRACTION_SCALE;
-  return row;
-}
-
 /** Squared speed over V² at scaled coordinates. */
 function squaredAt(table: Pick<MomentTable, 'speed'>, layout: Layout, east: number, north: number): number {
   const { speed } = table;
   const { speedStride: stride, harmonics } = layout;
   const x = east * east + north * north;
   const row = rowOf(x, layout.rows - 2);
-  const t = share;
+  const t = rowShare;
   const a = row * stride;
   const b = a + stride;
   let value =
@@ -141,7 +126,9 @@ export function tileRunner(
   const { layout } = moments;
   const { outerRadiusM, thresholdsMps } = options;
   const taperM = 0.9 * outerRadiusM;
-  const lowestThreshold = 0.7 * Math.min(...thresholdsMps, Number.POSITIVE_INFINITY);
+  const lowestThreshold = options.hours
+    ? Math.min(...thresholdsMps, Number.POSITIVE_INFINITY)
+    : Number.POSITIVE_INFINITY;
   const groups = layout.speedStride / 4;
   const lastRow = layout.rows - 2;
   // the walk: moments, winds at the four corners and the centre, what the tile's winds may differ by until the next moment
@@ -157,6 +144,8 @@ export function tileRunner(
   let wanted = new Uint8Array(capacity);
   const rivals = new Int32Array(5);
   const found = { peak: 0, index: 0 };
+  let [low, high] = [0, 0];
+  const looked = new Float64Array(SEARCH_MOMENTS + 1);
   const startMs = timeline.timeMs(0);
 
   return { run };
@@ -220,18 +209,28 @@ export function tileRunner(
         const table = moments.tableAt(index);
         arithmetic.probe(table.speed, groups, lastRow, frame);
         strongest = Math.max(strongest, wind[4]!);
-        const idle = wind[4]! < IDLE_SHARE * strongest && (!options.hours || wind[4]! < lowestThreshold);
-        const share = idle ? STEP_SHARE * IDLE_FACTOR : STEP_SHARE;
-        stepS = Math.min(leg.longestS, (share * near) / leg.speedMps);
-        const moveM = stepS * leg.speedMps;
-        const reachM = tileM + moveM;
-        const s = distanceM > reachM ? (distanceM - reachM) / rmaxM : 0;
-        const row = rowOf(s * s, lastRow);
-        const inside = distanceM + reachM < taperM;
-        const gradient = 1.1 * (inside ? table.steepest : table.steepestWithTaper)[row]!;
-        const bend = 1.1 * (inside ? table.bent : table.bentWithTaper)[row]!;
-        const change = stepS * (leg.changeMps2 * (wind[4]! / frame[9]!) + gradient * distanceM * leg.growthPerS);
-        const spread = gradient * reachM + change;
+        const mayIdle = wind[4]! < IDLE_SHARE * strongest;
+        let moveM: number;
+        let bend: number;
+        let spread: number;
+        let stepShare = mayIdle ? STEP_SHARE * IDLE_FACTOR : STEP_SHARE;
+        for (;;) {
+          stepS = Math.min(leg.longestS, (stepShare * near) / leg.speedMps);
+          if (distanceM + tileM + stepS * leg.speedMps > taperM)
+            stepS = Math.min(stepS, taperStepS(table, distanceM, tileM, leg, rmaxM));
+          moveM = stepS * leg.speedMps;
+          const reachM = tileM + moveM;
+          const s = distanceM > reachM ? (distanceM - reachM) / rmaxM : 0;
+          const row = rowOf(s * s, lastRow);
+          const inside = distanceM + reachM < taperM;
+          const gradient = 1.1 * (inside ? table.steepest : table.steepestWithTaper)[row]!;
+          bend = 1.1 * (inside ? table.bent : table.bentWithTaper)[row]!;
+          const change = stepS * (leg.changeMps2 * (wind[4]! / frame[9]!) + gradient * distanceM * leg.growthPerS);
+          spread = gradient * reachM + change;
+          // hours want the crossing of a threshold at short steps
+          if (stepShare === STEP_SHARE || wind[4]! + spread < lowestThreshold) break;
+          stepShare = STEP_SHARE;
+        }
         const k = count++;
         walkIndex[k] = index;
         walkMs[k] = leg.startMs + (index - leg.first) * leg.fineMs;
@@ -253,6 +252,13 @@ export function tileRunner(
       const fine = (stepS * 1000) / leg.fineMs;
       index += fine >= room ? room : fine < 2 ? 1 : 1 << (31 - Math.clz32(fine));
     }
+  }
+
+  /** The step in which the wind bends by less than {@link TAPER_MPS} on its way through the taper. */
+  function taperStepS(table: Placed, distanceM: number, tileM: number, leg: Leg, rmaxM: number): number {
+    const s = Math.max(0, Math.min(distanceM - tileM, 0.99 * taperM)) / rmaxM;
+    const bend = table.bentWithTaper[rowOf(s * s, lastRow)]!;
+    return Math.max(0.01 * outerRadiusM, Math.sqrt((8 * TAPER_MPS) / bend)) / leg.speedMps;
   }
 
   function grow(): void {
@@ -299,6 +305,8 @@ export function tileRunner(
       const lower = Math.min(a - slack[k]!, b - slack[k + 1]!);
       for (let h = 0; h < thresholdsMps.length; h++) {
         if (upper >= thresholdsMps[h]! && lower < thresholdsMps[h]!) {
+          // the moment before tells how the wind bends
+          if (k > 0 && broken[k] === 0) wanted[k - 1]! |= 2;
           wanted[k]! |= 2;
           wanted[k + 1]! |= 2;
           break;
@@ -341,8 +349,14 @@ export function tileRunner(
       if (middle >= 0) passed(quads, first, middle, follows ? to : -1, middleK);
       if (options.hours && joined) {
         if (follows) {
+          const ratio = first >= 0 ? (walkMs[k - 1]! - walkMs[k - 2]!) / (walkMs[k]! - walkMs[k - 1]!) : 0;
           for (let h = 0; h < thresholdsMps.length; h++)
-            arithmetic.addHours(quads, middle, to, h, thresholdsMps[h]!, stepHours);
+            arithmetic.addHours(quads, first, middle, to, {
+              slot: h,
+              thresholdMps: thresholdsMps[h]!,
+              stepHours,
+              ratio,
+            });
         } else wholeHours(tile, k, stepHours);
       }
       first = follows ? middle : -1;
@@ -370,13 +384,20 @@ export function tileRunner(
     }
   }
 
-  /** Wind of one cell at a moment. */
-  function speedAt(i: number, index: number): number {
-    const frame = timeline.frame(index);
-    const east = arithmetic.arrays.x[i]! * frame[3]! + arithmetic.arrays.y[i]! * frame[4]!;
+  /** Wind of one cell at a moment or between two. */
+  function speedAt(i: number, moment: number): number {
+    const index = Math.floor(moment);
+    const a = timeline.frame(index);
+    const w = moment - index;
+    const b = w > 0 ? timeline.frame(index + 1) : a;
+    const { x, y, z } = arithmetic.arrays;
+    const east = x[i]! * (a[3]! + w * (b[3]! - a[3]!)) + y[i]! * (a[4]! + w * (b[4]! - a[4]!));
     const north =
-      arithmetic.arrays.x[i]! * frame[5]! + arithmetic.arrays.y[i]! * frame[6]! + arithmetic.arrays.z[i]! * frame[7]!;
-    return Math.sqrt(Math.max(0, squaredAt(moments.tableAt(index), layout, east, north))) * frame[9]!;
+      x[i]! * (a[5]! + w * (b[5]! - a[5]!)) +
+      y[i]! * (a[6]! + w * (b[6]! - a[6]!)) +
+      z[i]! * (a[7]! + w * (b[7]! - a[7]!));
+    const squared = squaredAt(moments.tableAt(Math.round(moment)), layout, east, north);
+    return Math.sqrt(Math.max(0, squared)) * (a[9]! + w * (b[9]! - a[9]!));
   }
 
   /** The peak between the moments that were evaluated, checked where its parabola put it, and the wind's direction then. */
@@ -389,18 +410,18 @@ export function tileRunner(
       moments.place(i, nearest);
     }
     arithmetic.settle(tile.count, groups, lastRow, layout.windHarmonics);
-    const [real] = arrays.settled;
+    const [real, , , squared] = arrays.settled;
     let moved = false;
     for (let i = 0; i < tile.count; i++) {
       tile.windMps[i] = 0;
       if (!(best[i]! > 0)) continue;
       const off = Math.abs(real[i]! - best[i]!);
-      const rival = second[i]! > RIVAL_SHARE * best[i]!;
       found.peak = off <= PARABOLA_MPS ? best[i]! : real[i]!;
       found.index = bestMoment[i]!;
       if (off > SEARCH_MPS) search(i, bestMoment[i]!);
-      // the estimates may be off where the wind has a corner: then the second may be the first
-      if (rival && second[i]! > found.peak - SEARCH_MPS - 3 * off) {
+      else if (squared[i]! > CORNER_X[0] && squared[i]! < CORNER_X[1]) corner(i, bestMoment[i]!);
+      // estimates are off where the wind has a corner: the second may be the first
+      if (second[i]! > RIVAL_SHARE * found.peak) {
         const { peak, index } = found;
         search(i, secondMoment[i]!);
         if (found.peak <= peak) {
@@ -422,8 +443,8 @@ export function tileRunner(
     tile.northMps.set(north.subarray(0, tile.count));
   }
 
-  /** The highest moment around an estimate, between the neighbours that the walk has. */
-  function search(i: number, moment: number): void {
+  /** Moments of the walk on both sides of an estimate. */
+  function bracket(moment: number): void {
     const near = Math.round(moment);
     let [k, above] = [0, count];
     while (above - k > 1) {
@@ -431,19 +452,95 @@ export function tileRunner(
       if (walkIndex[middle]! <= near) k = middle;
       else above = middle;
     }
-    const low = k === 0 || broken[k] === 1 ? walkIndex[k]! : walkIndex[k - 1]!;
+    low = k === 0 || broken[k] === 1 ? walkIndex[k]! : walkIndex[k - 1]!;
     const next = k + 1 < count && broken[k + 1] === 0 ? k + 1 : k;
-    const high = next + 1 < count && broken[next + 1] === 0 ? walkIndex[next + 1]! : walkIndex[next]!;
-    halve(i, low, near, high);
+    high = next + 1 < count && broken[next + 1] === 0 ? walkIndex[next + 1]! : walkIndex[next]!;
   }
 
-  /** Halves the wider side around the best moment until neighbours are left; a parabola through the last three. */
+  /** Looks at the moments about an estimate at which the ridge of the profile passes: there the wind may have a corner. */
+  function corner(i: number, moment: number): void {
+    bracket(moment);
+    const [from, to] = [low, high];
+    const [a, b, c] = [ridgeAt(i, from), ridgeAt(i, moment), ridgeAt(i, to)];
+    if (a < 0 !== b < 0) passing(i, from, a, moment, b);
+    if (b < 0 !== c < 0) passing(i, moment, b, to, c);
+  }
+
+  /** The ridge passes between two moments: the wind then, and whether it is a peak there. */
+  function passing(i: number, from: number, a: number, to: number, b: number): void {
+    let at = from + ((to - from) * a) / (a - b);
+    const x = ridgeAt(i, at);
+    // one more step of the secant
+    if (x < 0 === a < 0) at = a === x ? at : at + ((to - at) * x) / (x - b);
+    else at = from + ((at - from) * a) / (a - x);
+    const wind = speedAt(i, at);
+    if (wind <= found.peak) return;
+    found.peak = wind;
+    found.index = at;
+    const d = CORNER_STEP * (to - from);
+    if (Math.max(speedAt(i, Math.max(low, at - d)), speedAt(i, Math.min(high, at + d))) > wind + 0.003) {
+      const [before, after] = [low, high];
+      search(i, at);
+      if (found.peak < wind) {
+        found.peak = wind;
+        found.index = at;
+      }
+      [low, high] = [before, after];
+    }
+  }
+
+  /** (r/R)² − 1 of a cell at a moment. */
+  function ridgeAt(i: number, moment: number): number {
+    const index = Math.floor(moment);
+    const a = timeline.frame(index);
+    const w = moment - index;
+    const b = w > 0 ? timeline.frame(index + 1) : a;
+    const { x, y, z } = arithmetic.arrays;
+    const east = x[i]! * (a[3]! + w * (b[3]! - a[3]!)) + y[i]! * (a[4]! + w * (b[4]! - a[4]!));
+    const north =
+      x[i]! * (a[5]! + w * (b[5]! - a[5]!)) +
+      y[i]! * (a[6]! + w * (b[6]! - a[6]!)) +
+      z[i]! * (a[7]! + w * (b[7]! - a[7]!));
+    return east * east + north * north - 1;
+  }
+
+  /** The highest moment around an estimate, between the neighbours that the walk has. */
+  function search(i: number, moment: number): void {
+    bracket(moment);
+    // corners and close double peaks: look at moments between first, then around the two highest
+    const step = (high - low) / SEARCH_MOMENTS;
+    for (let m = 0; m <= SEARCH_MOMENTS; m++) looked[m] = speedAt(i, low + m * step);
+    let [one, two] = [-1, -1];
+    for (let m = 0; m <= SEARCH_MOMENTS; m++) {
+      if ((m > 0 && looked[m - 1]! > looked[m]!) || (m < SEARCH_MOMENTS && looked[m + 1]! >= looked[m]!)) continue;
+      if (one < 0 || looked[m]! > looked[one]!) [one, two] = [m, one];
+      else if (two < 0 || looked[m]! > looked[two]!) two = m;
+    }
+    if (one < 0) one = 0;
+    const from = low;
+    around(i, from, step, one);
+    if (two < 0) return;
+    const { peak, index } = found;
+    around(i, from, step, two);
+    if (found.peak > peak) return;
+    found.peak = peak;
+    found.index = index;
+  }
+
+  function around(i: number, first: number, step: number, m: number): void {
+    const from = first + Math.max(0, m - 1) * step;
+    const to = first + Math.min(SEARCH_MOMENTS, m + 1) * step;
+    halve(i, from, first + m * step, to);
+  }
+
+  /** Halves the wider side around the best moment until its neighbours are as high; then a parabola through the three. */
   function halve(i: number, from: number, at: number, to: number): void {
     let [low, middle, high] = [from, at, to];
     let [before, peak, after] = [speedAt(i, low), speedAt(i, middle), speedAt(i, high)];
-    while (high - middle > 1 || middle - low > 1) {
+    for (let n = 0; n < 60; n++) {
+      if (peak - Math.min(before, after) < SEARCHED_MPS || high - low < SEARCHED_STEP) break;
       const right = high - middle > middle - low;
-      const probe = right ? (middle + high) >> 1 : (low + middle) >> 1;
+      const probe = right ? 0.5 * (middle + high) : 0.5 * (low + middle);
       const value = speedAt(i, probe);
       if (value > peak) {
         if (right) [low, before] = [middle, peak];
@@ -454,18 +551,10 @@ export function tileRunner(
     }
     found.peak = peak;
     found.index = middle;
-    if (before > peak || after > peak) {
-      found.peak = Math.max(before, after);
-      found.index = before > after ? low : high;
-      return;
-    }
-    const bend = 0.5 * (before + after) - peak;
-    if (low === middle || high === middle || !(bend < -1e-9)) return;
-    const slope = 0.5 * (after - before);
-    const rise = (-0.25 * slope * slope) / bend;
-    // a corner has no vertex above it
-    if (rise > 0.25 * Math.min(peak - before, peak - after) + 0.02) return;
-    found.peak = peak + rise;
-    found.index = middle - (0.5 * slope) / bend;
+    const [t0, t2] = [low - middle, high - middle];
+    if (!(t0 < 0 && t2 > 0)) return;
+    const bend = ((before - peak) * t2 - (after - peak) * t0) / (t0 * t2 * (t0 - t2));
+    const slope = (before - peak - bend * t0 * t0) / t0;
+    if (bend < 0) found.index = middle + Math.max(t0, Math.min(t2, (-0.5 * slope) / bend));
   }
 }

@@ -1,8 +1,11 @@
 import { EARTH_RADIUS_M, RADIANS } from '../../earth.js';
 import type { WindModel } from '../../model/wind.js';
 
-/** Shortest step that the timeline can take, about, s. */
-const FINEST_S = 40;
+/** Moments lie at most this far apart, s, and nearer where the centre moves fast past its radius of maximum wind: */
+const FINE_S = 40;
+/** share of that radius from one moment to the next; down to the bound, s. */
+const FINE_SHARE = 0.04;
+const FINEST_S = 4;
 /** A step changes the maximum wind by at most this, m/s, and the radius of maximum wind by at most this share. */
 const STEP_CHANGE_MPS = 2;
 const STEP_GROWTH = 0.06;
@@ -55,8 +58,9 @@ export function timelineOf(model: WindModel, fromMs: number, toMs: number): Time
   let first = 0;
   for (let i = 0; i + 1 < knots.length; i++) {
     const [startMs, endMs] = [knots[i]!, knots[i + 1]!];
-    const depth = Math.max(2, Math.ceil(Math.log2((endMs - startMs) / 1000 / FINEST_S)));
-    const bounds = boundsOf(model, startMs, endMs);
+    const { smallestM, ...bounds } = boundsOf(model, startMs, endMs);
+    const fineS = Math.max(FINEST_S, Math.min(FINE_S, (FINE_SHARE * smallestM) / bounds.speedMps));
+    const depth = Math.max(2, Math.ceil(Math.log2((endMs - startMs) / 1000 / fineS)));
     const longestS = Math.min(
       LONGEST_STEP_S,
       (endMs - startMs) / 1000,
@@ -132,17 +136,19 @@ function boundsOf(
   model: WindModel,
   startMs: number,
   endMs: number,
-): Pick<Leg, 'speedMps' | 'growthPerS' | 'changeMps2'> {
+): Pick<Leg, 'speedMps' | 'growthPerS' | 'changeMps2'> & { readonly smallestM: number } {
   const dt = (endMs - startMs) / 1000 / SAMPLES;
   let [speedMps, growthPerS, changeMps2] = [0, 0, 0];
   let before = frameOf(model.path.at(startMs));
+  let smallestM = before[8]!;
   for (let i = 1; i <= SAMPLES; i++) {
     const after = frameOf(model.path.at(startMs + i * dt * 1000));
     const chord = Math.hypot(after[0]! - before[0]!, after[1]! - before[1]!, after[2]! - before[2]!);
     speedMps = Math.max(speedMps, (chord * EARTH_RADIUS_M) / dt);
     growthPerS = Math.max(growthPerS, Math.abs(Math.log(after[8]! / before[8]!)) / dt);
     changeMps2 = Math.max(changeMps2, Math.abs(after[9]! - before[9]!) / dt);
+    smallestM = Math.min(smallestM, after[8]!);
     before = after;
   }
-  return { speedMps: MARGIN * speedMps, growthPerS: MARGIN * growthPerS, changeMps2: MARGIN * changeMps2 };
+  return { smallestM, speedMps: MARGIN * speedMps, growthPerS: MARGIN * growthPerS, changeMps2: MARGIN * changeMps2 };
 }

@@ -1,17 +1,8 @@
 import type { Arithmetic, KernelArrays } from './arithmetic.js';
-import { FIRST_EXPONENT, ROWS_PER_OCTAVE_BITS } from './table.js';
+import { rowOf, rowShare } from './table.js';
 import { MOST_CELLS_OF_TILE, THRESHOLD_SLOTS } from './tile-size.js';
 
 const f = Math.fround;
-const FIRST_X = 2 ** FIRST_EXPONENT;
-const PER_FIRST_X = 1 / FIRST_X;
-const SHIFT = 23 - ROWS_PER_OCTAVE_BITS;
-const FIRST_WORD = ((127 + FIRST_EXPONENT) << ROWS_PER_OCTAVE_BITS) - 1;
-const FRACTION = (1 << SHIFT) - 1;
-const FRACTION_SCALE = 1 / (1 << SHIFT);
-const bits = new Float32Array(1);
-const word = new Int32Array(bits.buffer);
-
 /** The hot loops in plain JavaScript: every step rounded to single precision, in the order of assembly/kernel.ts. */
 export function twinArithmetic(): Arithmetic {
   const floats = (): Float32Array => new Float32Array(MOST_CELLS_OF_TILE);
@@ -26,7 +17,7 @@ export function twinArithmetic(): Arithmetic {
     frameAt: new Int32Array(MOST_CELLS_OF_TILE),
     speedAt: new Int32Array(MOST_CELLS_OF_TILE),
     windAt: new Int32Array(MOST_CELLS_OF_TILE),
-    settled: [floats(), floats(), floats()],
+    settled: [floats(), floats(), floats(), floats()],
   };
   const products = new Float32Array(24);
   let heap = new Float32Array(0);
@@ -93,16 +84,36 @@ export function twinArithmetic(): Arithmetic {
         }
       }
     },
-    addHours(quads, from, to, slot, threshold, stepHours) {
-      const a = arrays.winds[from]!;
-      const b = arrays.winds[to]!;
+    addHours(quads, first, middle, last, { slot, thresholdMps, stepHours, ratio }) {
+      const before = arrays.winds[Math.max(0, first)]!;
+      const a = arrays.winds[middle]!;
+      const b = arrays.winds[last]!;
       const hours = arrays.hours[slot]!;
-      const [t, step, least] = [f(threshold), f(stepHours), f(0.000001)];
+      const [threshold, step, r] = [f(thresholdMps), f(stepHours), f(ratio)];
+      const perRatio = first >= 0 ? f(1 / r) : 0;
+      const perBoth = first >= 0 ? f(1 / f(1 + r)) : 0;
       for (let i = 0; i < quads * 4; i++) {
-        const high = Math.max(a[i]!, b[i]!);
-        const low = Math.min(a[i]!, b[i]!);
-        const share = f(f(high - t) / Math.max(f(high - low), least));
-        hours[i] = f(hours[i]! + f(step * Math.min(1, Math.max(0, share))));
+        const from = a[i]!;
+        const to = b[i]!;
+        const rise = f(to - from);
+        const bend = first >= 0 ? f(f(rise - f(f(from - before[i]!) * perRatio)) * perBoth) : 0;
+        const size = f(Math.abs(bend) * 0.5);
+        if (f(Math.max(from, to) + size) < threshold) continue;
+        let share = 1;
+        if (f(Math.min(from, to) - size) < threshold) {
+          const need = f(threshold - from);
+          const slope = f(rise - bend);
+          const inner = f(f(slope * slope) + f(4 * f(bend * need)));
+          const root = f(Math.sqrt(Math.max(inner, 0)));
+          const twice = f(need + need);
+          const vertex = f(slope / f(-2 * bend));
+          const across = vertex > 0 && vertex < 1 && inner > 0 ? clamped(f(root / Math.abs(bend))) : 0;
+          if (from >= threshold)
+            share = to >= threshold ? f(1 - (bend > 0 ? across : 0)) : clamped(f(twice / f(slope - root)));
+          else if (to >= threshold) share = f(1 - clamped(f(twice / f(slope + root))));
+          else share = bend < 0 ? across : 0;
+        }
+        hours[i] = f(hours[i]! + f(step * share));
       }
     },
   };
@@ -125,19 +136,8 @@ export function twinArithmetic(): Arithmetic {
       const east = f(f(cx * e0) + f(cy * e1));
       const north = f(f(f(cx * n0) + f(cy * n1)) + f(z[i]! * n2));
       const s2 = f(f(east * east) + f(north * north));
-      let row = 0;
-      let t: number;
-      if (s2 < FIRST_X) t = f(s2 * PER_FIRST_X);
-      else {
-        bits[0] = s2;
-        const w = word[0]!;
-        row = (w >> SHIFT) - FIRST_WORD;
-        t = f(f(w & FRACTION) * FRACTION_SCALE);
-        if (row >= lastRow) {
-          row = lastRow;
-          t = 0;
-        }
-      }
+      const row = rowOf(s2, lastRow);
+      const t = f(rowShare);
       const a = row * stride;
       const b = a + stride;
       const mean = f(table[a]! + f(t * f(table[b]! - table[a]!)));
@@ -158,7 +158,7 @@ export function twinArithmetic(): Arithmetic {
   }
 
   function settle(count: number, groups: number, lastRow: number, windHarmonics: number): void {
-    const [speeds, easts, norths] = arrays.settled;
+    const [speeds, easts, norths, places] = arrays.settled;
     const stride = groups * 4;
     const part = 1 + 2 * windHarmonics;
     const column = (at: number, step: number, t: number): number =>
@@ -170,19 +170,8 @@ export function twinArithmetic(): Arithmetic {
       const north = f(f(f(x * heap[frame + 2]!) + f(y * heap[frame + 3]!)) + f(z * heap[frame + 4]!));
       const maxWind = heap[frame + 5]!;
       const s2 = f(f(east * east) + f(north * north));
-      let row = 0;
-      let t: number;
-      if (s2 < FIRST_X) t = f(s2 * PER_FIRST_X);
-      else {
-        bits[0] = s2;
-        const w = word[0]!;
-        row = (w >> SHIFT) - FIRST_WORD;
-        t = f(f(w & FRACTION) * FRACTION_SCALE);
-        if (row >= lastRow) {
-          row = lastRow;
-          t = 0;
-        }
-      }
+      const row = rowOf(s2, lastRow);
+      const t = f(rowShare);
       const inverse = s2 > 0 ? f(1 / f(Math.sqrt(s2))) : 0;
       const c = f(north * inverse);
       const s = f(east * inverse);
@@ -212,6 +201,7 @@ export function twinArithmetic(): Arithmetic {
         n = f(f(n * c) - f(e * s));
         e = nextE;
       }
+      places[i] = s2;
       easts[i] = f(u * maxWind);
       norths[i] = f(v * maxWind);
     }
@@ -234,4 +224,9 @@ export function twinArithmetic(): Arithmetic {
       products[k + 1] = n;
     }
   }
+}
+
+/** Within 0 and 1; 0 for what is not a number. */
+function clamped(value: number): number {
+  return value > 0 ? Math.min(1, value) : 0;
 }

@@ -44,8 +44,19 @@ interface Exports {
     outSpeed: number,
     outEast: number,
     outNorth: number,
+    outX: number,
   ) => void;
-  readonly addHours: (a: number, b: number, hours: number, quads: number, threshold: number, stepHours: number) => void;
+  readonly addHours: (
+    first: number,
+    a: number,
+    b: number,
+    hours: number,
+    quads: number,
+    threshold: number,
+    stepHours: number,
+    ratio: number,
+    has0: number,
+  ) => void;
 }
 
 const PAGE = 65_536;
@@ -60,7 +71,7 @@ const HOURS = STATE + 4 * PITCH;
 const PROBE = HOURS + THRESHOLD_SLOTS * PITCH;
 const POINTERS = PROBE + 4 * PITCH;
 const SETTLED = POINTERS + 3 * PITCH;
-const HEAP = SETTLED + 3 * PITCH;
+const HEAP = SETTLED + 4 * PITCH;
 
 let compiled: WebAssembly.Module | null | undefined;
 
@@ -155,6 +166,7 @@ export function wasmArithmetic(): Arithmetic | null {
         SETTLED,
         SETTLED + PITCH,
         SETTLED + 2 * PITCH,
+        SETTLED + 3 * PITCH,
       );
     },
     maxima(quads, first, middle, last, moment, t0, t2) {
@@ -172,8 +184,18 @@ export function wasmArithmetic(): Arithmetic | null {
         last >= 0 ? 1 : 0,
       );
     },
-    addHours(quads, from, to, slot, threshold, stepHours) {
-      addHours(windAt(from), windAt(to), HOURS + slot * PITCH, quads, threshold, stepHours);
+    addHours(quads, first, middle, last, { slot, thresholdMps, stepHours, ratio }) {
+      addHours(
+        windAt(first),
+        windAt(middle),
+        windAt(last),
+        HOURS + slot * PITCH,
+        quads,
+        thresholdMps,
+        stepHours,
+        ratio,
+        first >= 0 ? 1 : 0,
+      );
     },
   };
 }
@@ -191,6 +213,6 @@ function viewsOf(buffer: ArrayBuffer): KernelArrays {
     frameAt: new Int32Array(buffer, POINTERS, MOST_CELLS_OF_TILE),
     speedAt: new Int32Array(buffer, POINTERS + PITCH, MOST_CELLS_OF_TILE),
     windAt: new Int32Array(buffer, POINTERS + 2 * PITCH, MOST_CELLS_OF_TILE),
-    settled: [at(SETTLED), at(SETTLED + PITCH), at(SETTLED + 2 * PITCH)],
+    settled: [at(SETTLED), at(SETTLED + PITCH), at(SETTLED + 2 * PITCH), at(SETTLED + 3 * PITCH)],
   };
 }

@@ -2,12 +2,13 @@
 // operation here is a single-precision one in the same order. Pointers are byte offsets; arrays hold f32 and are padded
 // to whole groups of four.
 
-const FIRST_X: f32 = 0.00390625; // 2^-8, x of the second row
-const PER_FIRST_X: f32 = 256;
-const SHIFT: i32 = 18; // 23 bits of fraction less 5 bits of rows in an octave
-const FIRST_WORD: i32 = ((127 - 8) << 5) - 1;
-const FRACTION: i32 = (1 << 18) - 1;
-const FRACTION_SCALE: f32 = 1.0 / 262144.0;
+// the rows of a table, as in table.ts
+const CORE_X: f32 = 0.5;
+const CORE_ROWS_PER_X: f32 = 128;
+const SHIFT: i32 = 23 - 6;
+const FIRST_WORD: i32 = ((127 - 1) << 6) - 64;
+const FRACTION: i32 = (1 << SHIFT) - 1;
+const FRACTION_SCALE: f32 = <f32>1 / <f32>(1 << SHIFT);
 
 /** Room for the products s·cos kφ and s·sin kφ of four cells: 1 + 2·10, padded. */
 const BASIS: usize = memory.data(24 * 16, 16);
@@ -37,15 +38,18 @@ export function sample(
     const east = f32x4.add(f32x4.mul(x, ve0), f32x4.mul(y, ve1));
     const north = f32x4.add(f32x4.add(f32x4.mul(x, vn0), f32x4.mul(y, vn1)), f32x4.mul(z, vn2));
     const s2 = f32x4.add(f32x4.mul(east, east), f32x4.mul(north, north));
-    // row and share of the way to the next from the number's bits
-    const inner = f32x4.lt(s2, f32x4.splat(FIRST_X));
-    const row0 = i32x4.sub(i32x4.shr_s(s2, SHIFT), i32x4.splat(FIRST_WORD));
-    const beyond = i32x4.ge_s(row0, i32x4.splat(lastRow));
-    const row1 = i32x4.min_s(row0, i32x4.splat(lastRow));
-    const row = v128.andnot(row1, inner);
-    const share0 = f32x4.mul(f32x4.convert_i32x4_s(v128.and(s2, i32x4.splat(FRACTION))), f32x4.splat(FRACTION_SCALE));
-    const share1 = v128.andnot(share0, beyond);
-    const share = v128.bitselect(f32x4.mul(s2, f32x4.splat(PER_FIRST_X)), share1, inner);
+    // row and share of the way to the next
+    const core = f32x4.lt(s2, f32x4.splat(CORE_X));
+    const evenly = f32x4.mul(s2, f32x4.splat(CORE_ROWS_PER_X));
+    const coreRow = i32x4.trunc_sat_f32x4_s(evenly);
+    const coreShare = f32x4.sub(evenly, f32x4.convert_i32x4_s(coreRow));
+    const outerRow = i32x4.sub(i32x4.shr_s(s2, SHIFT), i32x4.splat(FIRST_WORD));
+    const outerShare = f32x4.mul(
+      f32x4.convert_i32x4_s(v128.and(s2, i32x4.splat(FRACTION))), f32x4.splat(FRACTION_SCALE));
+    const row0 = v128.bitselect(coreRow, outerRow, core);
+    const share0 = v128.bitselect(coreShare, outerShare, core);
+    const row = i32x4.min_s(row0, i32x4.splat(lastRow));
+    const share = v128.andnot(share0, i32x4.ge_s(row0, i32x4.splat(lastRow)));
     const p0 = table + <usize>(i32x4.extract_lane(row, 0) * stride);
     const p1 = table + <usize>(i32x4.extract_lane(row, 1) * stride);
     const p2 = table + <usize>(i32x4.extract_lane(row, 2) * stride);
@@ -176,32 +180,74 @@ export function maxima(
   }
 }
 
-/** Adds the hours of one step in which a wind that runs straight from `a` to `b` is at or above a threshold. */
-export function addHours(a: usize, b: usize, hours: usize, quads: i32, threshold: f32, stepHours: f32): void {
+/**
+ * Adds the hours of the step from `a` to `b` in which the wind is at or above a threshold: the wind between them is the
+ * parabola through the moment before, `a` and `b`, and a straight line where there is none before.
+ * @param ratio length of the step before over that of this one
+ */
+export function addHours(
+  first: usize, a: usize, b: usize, hours: usize, quads: i32, threshold: f32, stepHours: f32, ratio: f32, has0: i32,
+): void {
   const one = f32x4.splat(1);
   const zero = f32x4.splat(0);
-  const least = f32x4.splat(0.000001);
+  const half = f32x4.splat(0.5);
   const vthreshold = f32x4.splat(threshold);
   const vstep = f32x4.splat(stepHours);
+  const perRatio = f32x4.splat(has0 != 0 ? <f32>1 / ratio : 0);
+  const perBoth = f32x4.splat(has0 != 0 ? <f32>1 / (<f32>1 + ratio) : 0);
   for (let q = 0; q < quads; q++) {
     const at = <usize>q << 4;
     const from = v128.load(a + at);
     const to = v128.load(b + at);
-    const high = f32x4.max(from, to);
-    const low = f32x4.min(from, to);
-    const share = f32x4.div(f32x4.sub(high, vthreshold), f32x4.max(f32x4.sub(high, low), least));
-    const part = f32x4.min(one, f32x4.max(zero, share));
-    v128.store(hours + at, f32x4.add(v128.load(hours + at), f32x4.mul(vstep, part)));
+    const rise = f32x4.sub(to, from);
+    // the wind at a share u of the step: from + rise·u + bend·u(u − 1)
+    let bend = zero;
+    if (has0 != 0)
+      bend = f32x4.mul(f32x4.sub(rise, f32x4.mul(f32x4.sub(from, v128.load(first + at)), perRatio)), perBoth);
+    const size = f32x4.mul(f32x4.abs(bend), half);
+    const low = f32x4.sub(f32x4.min(from, to), size);
+    const high = f32x4.add(f32x4.max(from, to), size);
+    if (!v128.any_true(f32x4.ge(high, vthreshold))) continue;
+    let share = one;
+    if (v128.any_true(f32x4.lt(low, vthreshold))) {
+      const fromAbove = f32x4.ge(from, vthreshold);
+      const toAbove = f32x4.ge(to, vthreshold);
+      const need = f32x4.sub(vthreshold, from);
+      const slope = f32x4.sub(rise, bend);
+      const four = f32x4.mul(f32x4.splat(4), f32x4.mul(bend, need));
+      const inner = f32x4.add(f32x4.mul(slope, slope), four);
+      const root = f32x4.sqrt(f32x4.max(inner, zero));
+      const twice = f32x4.add(need, need);
+      const up = f32x4.div(twice, f32x4.add(slope, root));
+      const down = f32x4.div(twice, f32x4.sub(slope, root));
+      const rising = f32x4.sub(one, clamped(up));
+      const falling = clamped(down);
+      // both ends on one side: a vertex between them may reach to the other side
+      const vertex = f32x4.div(slope, f32x4.mul(f32x4.splat(-2), bend));
+      const between = v128.and(v128.and(f32x4.gt(vertex, zero), f32x4.lt(vertex, one)), f32x4.gt(inner, zero));
+      const across = v128.and(clamped(f32x4.div(root, f32x4.abs(bend))), between);
+      const hump = v128.and(across, f32x4.lt(bend, zero));
+      const dip = f32x4.sub(one, v128.and(across, f32x4.gt(bend, zero)));
+      share = v128.bitselect(v128.bitselect(dip, falling, toAbove), v128.bitselect(rising, hump, toAbove), fromAbove);
+    }
+    v128.store(hours + at, f32x4.add(v128.load(hours + at), f32x4.mul(vstep, share)));
   }
 }
 
+// @ts-ignore: decorator
+@inline
+function clamped(v: v128): v128 {
+  // pmin and pmax: not a number becomes 0
+  return f32x4.pmin(f32x4.splat(1), f32x4.pmax(f32x4.splat(0), v));
+}
+
 /**
- * Wind of single cells, each at a moment of its own: speed (to check an estimate) and parts east and north.
+ * Wind of single cells, each at a moment of its own: speed (to check an estimate), parts east and north, (r/R)².
  * @param frames, speeds, winds per cell: where its frame (e0, e1, n0, n1, n2, V) and its two tables stand
  */
 export function settle(
   cells: usize, pitch: usize, count: i32, frames: usize, speeds: usize, winds: usize,
-  groups: i32, lastRow: i32, windHarmonics: i32, outSpeed: usize, outEast: usize, outNorth: usize,
+  groups: i32, lastRow: i32, windHarmonics: i32, outSpeed: usize, outEast: usize, outNorth: usize, outX: usize,
 ): void {
   const stride: i32 = groups << 4;
   const part: i32 = (1 + 2 * windHarmonics) << 2;
@@ -215,10 +261,13 @@ export function settle(
     const north: f32 = x * load<f32>(frame, 8) + y * load<f32>(frame, 12) + z * load<f32>(frame, 16);
     const maxWind = load<f32>(frame, 20);
     const s2: f32 = east * east + north * north;
-    let row: i32 = 0;
+    let row: i32;
     let t: f32;
-    if (s2 < FIRST_X) t = s2 * PER_FIRST_X;
-    else {
+    if (s2 < CORE_X) {
+      t = s2 * CORE_ROWS_PER_X;
+      row = <i32>t;
+      t -= <f32>row;
+    } else {
       const w = reinterpret<i32>(s2);
       row = (w >> SHIFT) - FIRST_WORD;
       t = <f32>(w & FRACTION) * FRACTION_SCALE;
@@ -259,6 +308,7 @@ export function settle(
       n = n * c - e * s;
       e = nextE;
     }
+    store<f32>(outX + at, s2);
     store<f32>(outEast + at, u * maxWind);
     store<f32>(outNorth + at, v * maxWind);
   }

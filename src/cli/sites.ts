@@ -1,5 +1,5 @@
-import { wrapLongitude } from '../earth.js';
 import { UsageError } from '../errors.js';
+import { plainLongitude } from '../exposure/point-table.js';
 import { type SiteRecord, siteRecords } from '../exposure/sites.js';
 import { writeWhole } from '../io/output.js';
 import { readPoints } from '../io/points.js';
@@ -63,9 +63,9 @@ export async function sites(file: string, placesFile: string, options: SitesOpti
     cautions.push(`${twice.length} names stand more than once, such as '${twice[0]}'; each row is kept`);
   if (read.skippedCount > 0)
     cautions.push(
-      `${read.skippedCount} rows were skipped: ${read.skipped
+      `${read.skippedCount} ${read.skippedCount === 1 ? 'row was' : 'rows were'} skipped: ${read.skipped
         .slice(0, 3)
-        .map((row) => `line ${row.line}, ${row.reason}`)
+        .map((row) => `${read.unit} ${row.line}, ${row.reason}`)
         .join('; ')}${read.skippedCount > 3 ? ' …' : ''}`,
     );
 
@@ -172,8 +172,8 @@ function siteDocument(record: SiteRecord): Record<string, unknown> {
 
 function siteFeatures(records: readonly SiteRecord[]): Record<string, unknown> {
   const bbox = placesBox(
-    records.map((record) => wrapLongitude(record.site.lonDeg)),
-    records.map((record) => record.site.latDeg),
+    records.map((record) => round(plainLongitude(record.site.lonDeg), 7)),
+    records.map((record) => round(record.site.latDeg, 7)),
   );
   return {
     type: 'FeatureCollection',
@@ -186,7 +186,10 @@ function siteFeatures(records: readonly SiteRecord[]): Record<string, unknown> {
       void [lat_deg, lon_deg, series];
       return {
         type: 'Feature',
-        geometry: { type: 'Point', coordinates: [wrapLongitude(record.site.lonDeg), record.site.latDeg] },
+        geometry: {
+          type: 'Point',
+          coordinates: [round(plainLongitude(record.site.lonDeg), 7), round(record.site.latDeg, 7)],
+        },
         properties: { ...properties, levels, closest },
       };
     }),

@@ -1,6 +1,5 @@
-import { wrapLongitude } from '../earth.js';
 import { decimalsOf } from './decimal-sum.js';
-import { type PointRow, VALUE_DECIMALS } from './point-table.js';
+import { type PointRow, plainLongitude, VALUE_DECIMALS } from './point-table.js';
 
 /** Assets in columns: a million of them take some tens of megabytes. */
 export interface AssetColumns {
@@ -67,7 +66,7 @@ export function assetStore(): AssetStore {
       }
       starts[count + 1] = at + encoder.encodeInto(row.name, names.subarray(at)).written;
       hashes[count] = hashOf(row.name);
-      lon[count] = row.lonDeg >= -180 && row.lonDeg <= 180 ? row.lonDeg : wrapLongitude(row.lonDeg);
+      lon[count] = plainLongitude(row.lonDeg);
       lat[count] = row.latDeg;
       if (row.lonDeg === 0 && row.latDeg === 0) atZero++;
       for (let c = 0; c < values.length; c++) {

@@ -1,3 +1,4 @@
+import { wrapLongitude } from '../earth.js';
 import { InputError } from '../errors.js';
 import { didYouMean } from '../nearest.js';
 import { type Delimiter, delimiterOf, splitCells, unguardCell } from '../track/read/cells.js';
@@ -59,6 +60,13 @@ export function placeProblem(latDeg: number, lonDeg: number): string | null {
     return `latitude ${latDeg} is beyond the poles${swapped}`;
   }
   return Math.abs(lonDeg) > 360 ? `longitude ${lonDeg} is beyond ±360` : null;
+}
+
+/** A longitude in −180 … 180; one that is so already keeps its digits. */
+export function plainLongitude(lonDeg: number): number {
+  if (lonDeg >= -180 && lonDeg <= 180) return lonDeg;
+  // a nanodegree is a tenth of a millimetre: it takes off what the subtraction adds
+  return Math.round(wrapLongitude(lonDeg) * 1e9) / 1e9;
 }
 
 /** Says why a number is no value of an asset, or null. */

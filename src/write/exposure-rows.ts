@@ -66,6 +66,9 @@ function columnsOf(exposed: ExposedAssets): Column[] {
   return [...values, ...own];
 }
 
+/** Seven decimals are a centimetre. */
+const degrees = (value: number): number => Math.round(value * 1e7) / 1e7;
+
 const shortest = (value: number): string => String(value);
 
 /** `.001` … `.999`, without trailing zeros */
@@ -128,11 +131,11 @@ export function* assetsGeojson(
   const { assets } = exposed;
   const columns = columnsOf(exposed);
   const keys = columns.map((column) => `,${JSON.stringify(column.heading)}:`);
-  const bbox = placesBox(assets.lonDeg, assets.latDeg);
+  const bbox = placesBox(assets.lonDeg, assets.latDeg)?.map(degrees);
   yield `${JSON.stringify({ type: 'FeatureCollection', ...(bbox ? { bbox } : {}), ...members }).slice(0, -1)},"features":[\n`;
   let text = '';
   for (let i = 0; i < assets.count; i++) {
-    text += `${i > 0 ? ',\n' : ''}{"type":"Feature","geometry":{"type":"Point","coordinates":[${assets.lonDeg[i]},${assets.latDeg[i]}]},"properties":{"name":${JSON.stringify(assets.nameOf(i))}`;
+    text += `${i > 0 ? ',\n' : ''}{"type":"Feature","geometry":{"type":"Point","coordinates":[${degrees(assets.lonDeg[i]!)},${degrees(assets.latDeg[i]!)}]},"properties":{"name":${JSON.stringify(assets.nameOf(i))}`;
     for (let k = 0; k < columns.length; k++) {
       const value = columns[k]!.text(i);
       text += keys[k];

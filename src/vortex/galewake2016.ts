@@ -3,11 +3,11 @@ import type { ProfileMethod } from './profile.js';
 /** Coefficients of the profile, from `scripts/calibrate.js` (own calibration). */
 export const PROFILE_2016 = {
   /** p = outer + outerWind · ln(V/35 m/s), within `outerBounds` */
-  outer: 0.8107,
-  outerWind: 0.4148,
+  outer: 0.82,
+  outerWind: 0.405,
   outerBounds: [0.2, 4],
   /** k */
-  stretch: 0.8085,
+  stretch: 0.801,
   /** δ: set by hand, as narrow as a ridge may be that grids of some kilometres can show */
   ridge: 0.25,
 } as const;

@@ -25,19 +25,19 @@ const DAY_MS = 86_400_000;
  * Coefficients of the size relation, from `scripts/calibrate.js` (own calibration): ln r₁₇ (km) = c₀ + Σ cᵢ xᵢ.
  */
 export const SIZE_2016 = {
-  constant: 4.8286,
+  constant: 4.828,
   /** ln(V/35 m/s) */
-  wind: -0.2863,
+  wind: -0.286,
   /** ln(V̄/35 m/s) */
-  dayMeanWind: -1.1996,
+  dayMeanWind: -1.185,
   /** ln(Δp̄/25 hPa) */
-  dayMeanDeficit: 1.2547,
+  dayMeanDeficit: 1.249,
   /** |φ| − 20° */
-  latitude: 0.0088,
+  latitude: 0.009,
   /** c − 5 m/s */
-  translation: -0.0157,
+  translation: -0.0138,
   /** ln(V_highest/V) */
-  pastPeak: 0.3223,
+  pastPeak: 0.319,
 } as const;
 
 /** Bounds of the size, m: beyond those of every storm of the calibration. */

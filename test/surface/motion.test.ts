@@ -23,9 +23,13 @@ describe('background wind', () => {
     expect(ns).toBe(-n);
   });
 
-  it('leaves half the wind to the vortex of a fast, weak storm', () => {
-    const [east, north] = backgroundWind(LIN_CHAVAS_2012, { ...storm, motionNorthMps: 30, maxWindMps: 10 });
-    expect(Math.hypot(east, north)).toBeCloseTo(5, 10);
+  it('leaves the weak side of a fast storm about gale force, where the storm has it', () => {
+    const sizeAt = (maxWindMps: number): number =>
+      Math.hypot(...backgroundWind(LIN_CHAVAS_2012, { ...storm, motionNorthMps: 30, maxWindMps }));
+    // identity: V − 2B = 17 m/s
+    expect(sizeAt(25)).toBeCloseTo(4, 10);
+    expect(sizeAt(10)).toBeCloseTo(0.3, 10);
+    expect(sizeAt(60)).toBeCloseTo(0.55 * 30, 10);
   });
 });
 

@@ -89,8 +89,10 @@ export async function windAtPoints(
       const { arrays } = arithmetic;
       for (let i = 0; i < tile.count; i++) {
         const k = order[from + i]!;
-        for (let h = 0; h < count; h++) hours[first + h]![k] = arrays.hours[h]![i]!;
         const wind = tile.windMps[i]!;
+        // a wind that only grazes a threshold must not last where it is not reached
+        for (let h = 0; h < count; h++)
+          hours[first + h]![k] = wind >= thresholds[first + h]! ? arrays.hours[h]![i]! : 0;
         if (pass > 0 || !(wind > 0)) continue;
         windMps[k] = wind;
         peakTimeS[k] = offsetS + tile.peakS[i]!;

@@ -17,18 +17,32 @@ export const BIBLIOGRAPHY: Readonly<Record<string, string>> = {
   CIE15: 'Commission Internationale de l’Éclairage, 2004: Colorimetry, 3rd ed. CIE 15:2004',
   ChavasKnaff2022:
     'Chavas, D. R., and J. A. Knaff, 2022: A simple model for predicting the tropical cyclone radius of maximum wind from outer size. Weather and Forecasting 37, 563–579. doi:10.1175/WAF-D-21-0103.1',
+  ChavasLinEmanuel2015:
+    'Chavas, D. R., N. Lin and K. Emanuel, 2015: A model for the complete radial structure of the tropical cyclone wind field. Part I: comparison with observed structure. J. Atmos. Sci. 72, 3647–3662',
+  Coles2001: 'Coles, S., 2001: An Introduction to Statistical Modeling of Extreme Values. Springer',
   CourtneyKnaff2009:
     'Courtney, J., and J. A. Knaff, 2009: Adapting the Knaff and Zehr wind–pressure relationship for operational use in Tropical Cyclone Warning Centres. Australian Meteorological and Oceanographic Journal 58, 167–179',
+  Cunnane1978: 'Cunnane, C., 1978: Unbiased plotting positions: a review. J. Hydrology 37, 205–222',
+  DeMariaEtAl1992:
+    'DeMaria, M., S. D. Aberson, K. V. Ooyama and S. J. Lord, 1992: A nested spectral model for hurricane track forecasting. Mon. Wea. Rev. 120, 1628–1643',
   Durst1960: 'Durst, C. S., 1960: Wind speeds over short periods of time. Meteorological Magazine 89, 181–186',
   EatonEtAl2023: 'Eaton, B., and coauthors, 2023: NetCDF Climate and Forecast (CF) metadata conventions, version 1.11',
+  Emanuel2004:
+    'Emanuel, K., 2004: Tropical cyclone energetics and structure. In: Atmospheric Turbulence and Mesoscale Meteorology, Cambridge University Press, 165–191',
   Emanuel2011:
     'Emanuel, K., 2011: Global warming effects on U.S. hurricane damage. Weather, Climate, and Society 3, 261–268. doi:10.1175/WCAS-D-11-00007.1',
+  EmanuelRotunno2011:
+    'Emanuel, K., and R. Rotunno, 2011: Self-stratification of tropical cyclone outflow. Part I: implications for storm structure. J. Atmos. Sci. 68, 2236–2249',
   Franklin2003:
     'Franklin, J. L., M. L. Black, and K. Valde, 2003: GPS dropwindsonde wind profiles in hurricanes and their operational implications. Weather and Forecasting 18, 32–44. doi:10.1175/1520-0434(2003)018<0032:GDWPIH>2.0.CO;2',
   FritschButland1984:
     'Fritsch, F. N., and J. Butland, 1984: A method for constructing local monotone piecewise cubic interpolants. SIAM Journal on Scientific and Statistical Computing 5, 300–304. doi:10.1137/0905021',
   FritschCarlson1980:
     'Fritsch, F. N., and R. E. Carlson, 1980: Monotone piecewise cubic interpolation. SIAM Journal on Numerical Analysis 17, 238–246. doi:10.1137/0717021',
+  Fujita1952: 'Fujita, T., 1952: Pressure distribution within typhoon. Geophys. Mag. 23, 437–451',
+  Gringorten1963:
+    'Gringorten, I. I., 1963: A plotting rule for extreme probability paper. J. Geophys. Res. 68, 813–814',
+  Gumbel1958: 'Gumbel, E. J., 1958: Statistics of Extremes. Columbia University Press',
   HarperKepertGinger2010:
     'Harper, B. A., J. D. Kepert, and J. D. Ginger, 2010: Guidelines for converting between various wind averaging periods in tropical cyclone conditions. World Meteorological Organization, WMO/TD-No. 1555',
   Harrtell2020:
@@ -37,6 +51,9 @@ export const BIBLIOGRAPHY: Readonly<Record<string, string>> = {
     'Hilbert, D., 1891: Ueber die stetige Abbildung einer Linie auf ein Flächenstück. Mathematische Annalen 38, 459–460. doi:10.1007/BF01199431',
   Holland1980:
     'Holland, G. J., 1980: An analytic model of the wind and pressure profiles in hurricanes. Monthly Weather Review 108, 1212–1218. doi:10.1175/1520-0493(1980)108<1212:AAMOTW>2.0.CO;2',
+  Holland2008: 'Holland, G., 2008: A revised hurricane pressure–wind model. Mon. Wea. Rev. 136, 3432–3445',
+  HollandBelangerFritz2010:
+    'Holland, G. J., J. I. Belanger and A. Fritz, 2010: A revised model for radial profiles of hurricane winds. Mon. Wea. Rev. 138, 4393–4401',
   Holton2004: 'Holton, J. R., 2004: An Introduction to Dynamic Meteorology, 4th ed. Elsevier Academic Press',
   Hughes1952:
     'Hughes, L. A., 1952: On the low-level wind structure of tropical storms. Journal of Meteorology 9, 422–428',
@@ -49,7 +66,6 @@ export const BIBLIOGRAPHY: Readonly<Record<string, string>> = {
     'Japan Meteorological Agency, 2023: Classification of tropical cyclones. RSMC Tokyo – Typhoon Center, www.jma.go.jp',
   Jelesnianski1966:
     'Jelesnianski, C. P., 1966: Numerical computations of storm surges without bottom stress. Monthly Weather Review 94, 379–394',
-  KML22: 'Open Geospatial Consortium, 2008: OGC KML, version 2.2.0. OGC 07-147r2',
   KamelFaloutsos1993:
     'Kamel, I., and C. Faloutsos, 1993: On packing R-trees. Proceedings of the second international conference on Information and knowledge management, 490–499. doi:10.1145/170088.170403',
   KaplanDeMaria1995:
@@ -90,6 +106,8 @@ export const BIBLIOGRAPHY: Readonly<Record<string, string>> = {
     'Rew, R., E. Hartnett, and J. Caron, 2006: NetCDF-4: software implementing an enhanced data model for the geosciences. 22nd International Conference on Interactive Information Processing Systems, American Meteorological Society',
   SampsonSchrader2000:
     'Sampson, C. R., and A. J. Schrader, 2000: The Automated Tropical Cyclone Forecasting System (version 3.2). Bulletin of the American Meteorological Society 81, 1231–1240',
+  Schloemer1954:
+    'Schloemer, R. W., 1954: Analysis and synthesis of hurricane wind patterns over Lake Okeechobee, Florida. Hydrometeorological Report 31, U.S. Weather Bureau',
   SchottEtAl2012:
     'Schott, T., C. Landsea, G. Hafele, J. Lorens, A. Taylor, H. Thurm, B. Ward, M. Willis, and W. Zaleski, 2012: The Saffir–Simpson hurricane wind scale. National Weather Service',
   SchwerdtHoWatkins1979:
@@ -102,6 +120,8 @@ export const BIBLIOGRAPHY: Readonly<Record<string, string>> = {
   Sobey1977:
     'Sobey, R. J., B. A. Harper, and K. P. Stark, 1977: Numerical simulation of tropical cyclone storm surge. James Cook University, Department of Civil and Systems Engineering, Research Bulletin CS14',
   Stull2000: 'Stull, R. B., 2000: Meteorology for Scientists and Engineers, 2nd ed. Brooks/Cole',
+  Takahashi1939:
+    'Takahashi, K., 1939: Distribution of pressure and wind in a typhoon. J. Meteor. Soc. Japan 17, 417–421',
   USACE2002: 'U.S. Army Corps of Engineers, 2002: Coastal Engineering Manual, part II, chapter 2. EM 1110-2-1100',
   VanOosteromStrackee1983:
     'Van Oosterom, A., and J. Strackee, 1983: The solid angle of a plane triangle. IEEE Transactions on Biomedical Engineering BME-30, 125–126. doi:10.1109/TBME.1983.325207',

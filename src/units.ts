@@ -34,13 +34,21 @@ export interface Quantity {
  * @returns the value in SI units (m/s, m, s, Pa) or degrees, with its kind
  * @throws UsageError `units.quantity` when the number, the unit or the kind is wrong
  */
-export function parseQuantity(text: string, kinds: readonly QuantityKind[], options: { bareUnit?: string; name: string }): Quantity {
+export function parseQuantity(
+  text: string,
+  kinds: readonly QuantityKind[],
+  options: { bareUnit?: string; name: string },
+): Quantity {
   const match = /^\s*([+-]?(?:\d+\.?\d*|\.\d+)(?:[eE][+-]?\d+)?)\s*([^\d\s].*?)?\s*$/.exec(text);
   const accepted = kinds.flatMap((kind) => Object.keys(UNITS[kind]));
   const fail = (what: string): never => {
-    throw new UsageError('units.quantity', `${options.name}: ${what}; write a number with one of ${accepted.join(', ')}`, {
-      fields: { text, name: options.name },
-    });
+    throw new UsageError(
+      'units.quantity',
+      `${options.name}: ${what}; write a number with one of ${accepted.join(', ')}`,
+      {
+        fields: { text, name: options.name },
+      },
+    );
   };
   if (!match) return fail(`'${text}' is not a quantity`);
   const unit = (match[2] ?? options.bareUnit)?.toLowerCase();

@@ -1,10 +1,15 @@
 import { bearingDeg, distanceM, type Place, RADIANS, wrapBearing } from '../earth.js';
+import { decayOverLand, decays } from '../land/decay.js';
+import type { Land } from '../land/land.js';
+import { DECAY_SETS } from '../surface/inland-decay.js';
 import { type CompletedTrack, completeTrack } from '../track/complete.js';
 import { type Path, pathOf } from '../track/path.js';
 import type { Track } from '../track/track.js';
 import { knots } from '../units.js';
 import { type FieldMethods, fieldMethods, type WindField, windField } from './field.js';
-import { type Recipe, recipeNumber } from './recipe.js';
+import { fieldWithRadii } from './radii-field.js';
+import { fitRadii } from './radii-fit.js';
+import { type Recipe, type RecipeValue, recipeNumber } from './recipe.js';
 
 /** The wind at a place and time: 10 m, earth-relative, in the recipe's averaging period. */
 export interface WindAt {
@@ -31,24 +36,34 @@ export interface WindModel {
 
 /** The radius is chosen so that the wind outside is below this share of the lowest level. */
 const EDGE_SHARE = 0.45;
+/** Outer radius of a field that serves as a base: nothing of it is tapered where it is used, m. */
+const UNTAPERED_M = 4_000_000;
+
+function sizeOf(value: RecipeValue): string | number {
+  return typeof value === 'number' ? value * 1000 : value;
+}
+
 const OUTER_RADIUS_BOUNDS_M = [200_000, 1_000_000] as const;
 
 /**
  * The model of a track under a recipe.
  * @param lowestLevelMps the lowest wind that anybody asks for; it sets the model's radius
+ * @param land where the storm decays (recipe `land.decay`); without it nothing decays
  * @throws InputError from the completion
  */
 export function windModel(
   track: Track,
   recipe: Recipe,
-  { lowestLevelMps = knots(34) }: { lowestLevelMps?: number } = {},
+  { lowestLevelMps = knots(34), land }: { lowestLevelMps?: number; land?: Pick<Land, 'isLand'> } = {},
 ): WindModel {
   const methods = fieldMethods(recipe);
   const interpolation = recipe['path.interpolation'] as 'monotone-cubic' | 'linear';
-  const completed = completeTrack(track, {
+  const filled = completeTrack(track, {
     averagingS: recipeNumber(recipe, 'wind.averaging_s'),
     pressure: recipe['completion.pressure'] as string,
     rmax: recipe['completion.rmax'] as string,
+    size: sizeOf(recipe['completion.size']!),
+    radii: recipe['vortex.radii'] as 'fit' | 'ignore',
     ambientHpa: recipe['completion.ambient_hpa'] as number | 'basin',
     b: recipe['completion.b'] as number | 'gradient-consistent' | 'cyclostrophic',
     maxGapH: recipeNumber(recipe, 'completion.max_gap_h'),
@@ -57,10 +72,18 @@ export function windModel(
     airDensityKgM3: methods.airDensityKgM3,
     motionShare: methods.keepMaximum ? (methods.motion?.fraction ?? 0) : 0,
   });
-  const path = pathOf(completed, { interpolation });
-  const cautions = [...completed.cautions];
+  const cautions = [...filled.cautions];
+  const { completed, marine } = decayed();
+  // where the cells know their roughness, the storm's own step from sea to land is theirs
+  const path = pathOf(recipe['land.surface'] === 'on' ? marine : completed, { interpolation });
+  const baseFieldAt = (timeMs: number, outerRadiusM = UNTAPERED_M): WindField =>
+    windField(path.at(timeMs), methods, { outerRadiusM });
+  const radii = recipe['vortex.radii'] === 'fit' ? fitRadii(completed, path, { baseFieldAt, interpolation }) : null;
+  cautions.push(...(radii?.cautions ?? []));
+  const fieldWithin = (timeMs: number, outerRadiusM: number): WindField =>
+    radii ? fieldWithRadii(baseFieldAt(timeMs), radii.at(timeMs), { outerRadiusM }) : baseFieldAt(timeMs, outerRadiusM);
   const outerRadiusM = outerRadius();
-  const fieldAt = (timeMs: number): WindField => windField(path.at(timeMs), methods, { outerRadiusM });
+  const fieldAt = (timeMs: number): WindField => fieldWithin(timeMs, outerRadiusM);
   return {
     recipe,
     completed,
@@ -73,6 +96,24 @@ export function windModel(
     windAt: (place, timeMs) => windOf(fieldAt(timeMs), place),
   };
 
+  function decayed(): { completed: CompletedTrack; marine: CompletedTrack } {
+    const unchanged = { completed: filled, marine: filled };
+    const setting = recipe['land.decay'] as 'auto' | 'on' | 'off';
+    if (!decays(setting, track.kind)) return unchanged;
+    if (!land) {
+      if (setting === 'on') cautions.push(`storm ${track.id}: land.decay is on, but no land was given: nothing decays`);
+      return unchanged;
+    }
+    const set = DECAY_SETS.find(({ id }) => id === recipe['land.decay_set'])!;
+    const result = decayOverLand(filled, { isLand: land.isLand, set, interpolation });
+    cautions.push(...result.notes);
+    if (track.kind === 'best' && result.notes.length > 0)
+      cautions.push(
+        `storm ${track.id}: a best track already holds what land did to the storm; with land.decay=on it decays twice`,
+      );
+    return result;
+  }
+
   function outerRadius(): number {
     const chosen = recipe['vortex.radius_km'];
     if (typeof chosen === 'number') return chosen * 1000;
@@ -81,7 +122,7 @@ export function windModel(
     let radius = least;
     let reaches = false;
     for (const timeMs of path.knotsMs) {
-      const field = windField(path.at(timeMs), methods, { outerRadiusM: 2 * most });
+      const field = fieldWithin(timeMs, 2 * most);
       while (radius < most && field.strongestOnCircle(radius) > edge) radius *= 1.05;
       reaches ||= radius >= most && field.strongestOnCircle(most) > lowestLevelMps;
     }

@@ -71,6 +71,7 @@ export function hollandProfile(input: VortexInput, hollandB: number): RadialProf
   return {
     windMps: (radiusM) => hollandWind(radiusM, wind),
     pressurePa: (radiusM) => input.centralPressurePa + hollandPressureRise(radiusM, pressure),
+    impliedDeficitPa: wind.pressureDeficitPa,
   };
 }
 

@@ -56,7 +56,27 @@ export function pressureAt(
       toM: radiusM,
       coriolisPerS: vortex.coriolisPerS,
       airDensityKgM3: vortex.airDensityKgM3,
-      breaksM: [vortex.radiusOfMaxWindM],
+      breaksM: profile.kinksM ?? [vortex.radiusOfMaxWindM],
+    })
+  );
+}
+
+/**
+ * The pressure deficit that the winds of a profile imply, Pa: the closed form where there is one, else the balance
+ * integrated from the centre to `toM`. Profiles that fall slower than r⁻¹ have no limit for toM → ∞.
+ */
+export function impliedDeficit(
+  profile: RadialProfile,
+  vortex: { toM: number; coriolisPerS: number; airDensityKgM3: number; radiusOfMaxWindM: number },
+): number {
+  return (
+    profile.impliedDeficitPa ??
+    pressureRise(profile.windMps, {
+      fromM: 0,
+      toM: vortex.toM,
+      coriolisPerS: vortex.coriolisPerS,
+      airDensityKgM3: vortex.airDensityKgM3,
+      breaksM: profile.kinksM ?? [vortex.radiusOfMaxWindM],
     })
   );
 }

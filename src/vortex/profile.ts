@@ -13,6 +13,14 @@ export interface VortexInput {
   readonly translationMps: number;
   /** whether `maxWindMps` is the maximum of the gradient or of the cyclostrophic wind */
   readonly maximumIs: 'gradient' | 'cyclostrophic';
+  /** what the calibrated vortex is built from; without it that profile takes a storm of middling size */
+  readonly size?: {
+    /** the radius at which the storm's own 10-m wind would be 17.5 m/s, m */
+    readonly radiusM: number;
+    /** maximum 10-m wind of the vortex alone, and of the whole field, m/s, 1-min means */
+    readonly ownMaxMps: number;
+    readonly fieldMaxMps: number;
+  };
   /** numbers of single profiles, by the recipe: `vortex.exponent` and the like */
   readonly numbers: Readonly<Record<string, number>>;
 }
@@ -23,6 +31,17 @@ export interface RadialProfile {
   readonly windMps: (radiusM: number) => number;
   /** p(r), Pa, where the profile itself defines it; otherwise the balance is integrated (see pressure.ts) */
   readonly pressurePa?: (radiusM: number) => number;
+  /**
+   * ∫ρ(V²/r + |f|V)dr over all radii, Pa, where it has a closed form: the pressure deficit that the winds imply. It is
+   * the input's own deficit only where B or the maximum was chosen to fit it.
+   */
+  readonly impliedDeficitPa?: number;
+  /** where the maximum is, if the method places it itself, m */
+  readonly radiusOfMaxWindM?: number;
+  /** what the method had to leave out for this vortex, for the model's cautions */
+  readonly note?: string;
+  /** radii where the slope of the wind jumps, m; the radius of maximum wind where not stated */
+  readonly kinksM?: readonly number[];
 }
 
 /** A published method that makes a profile. */

@@ -67,9 +67,30 @@ describe('the swath', () => {
   it.each([30, 55.5, 120, 236.75])('moved by %d degrees of longitude keeps its areas', async (byDeg) => {
     const here = await run(recurving, { cell: 0.1 });
     const there = await run(shifted(recurving, byDeg), { cell: 0.1 });
-    // identity: the fitted grid moves along
+    // identity: the fitted grid moves along; the kernel's single precision leaves a few millionths
     for (const [i, area] of here.areas.entries()) {
-      expect(Math.abs(there.areas[i]!.areaM2 / area.areaM2 - 1)).toBeLessThan(1e-6);
+      expect(Math.abs(there.areas[i]!.areaM2 / area.areaM2 - 1)).toBeLessThan(1e-5);
+    }
+  });
+
+  it('by the plain model, moved by any longitude, keeps its areas to a millionth', () => {
+    const areasOf = (track: Track): Isotach[] => {
+      const model = windModel(track, recipe, { lowestLevelMps: LEVELS[0]! });
+      const grid = fitGrid(model, {
+        crs: 'EPSG:4326',
+        cell: 0.25,
+        lowestMps: LEVELS[0]!,
+        fromMs: model.path.startMs,
+        toMs: model.path.endMs,
+      });
+      return isotachs(exactSwath(model, grid, { stepS: 1800 }).windMps, grid, { levelsMps: LEVELS });
+    };
+    const here = areasOf(recurving);
+    // identity
+    for (const byDeg of [55.5, 236.75]) {
+      for (const [i, area] of areasOf(shifted(recurving, byDeg)).entries()) {
+        expect(Math.abs(area.areaM2 / here[i]!.areaM2 - 1)).toBeLessThan(1e-6);
+      }
     }
   });
 
@@ -87,7 +108,8 @@ describe('the swath', () => {
           distanceM({ latDeg: 20, lonDeg: -60 }, { latDeg: latDeg!, lonDeg: lonDeg! }),
         );
         const spread = Math.max(...radii) - Math.min(...radii);
-        expect(spread).toBeLessThan(0.05 * 111_195 * 0.35);
+        // half a cell: the wind falls sharply outside R, straight between cells
+        expect(spread).toBeLessThan(0.05 * 111_195 * 0.5);
       }
     }
   });

@@ -1,7 +1,6 @@
 // Before the compiler: the hot loops of the swath, from AssemblyScript to WebAssembly, as a text module, so that the same
 // bytes run in Node.js and in a page.
-import { readFileSync, writeFileSync } from 'node:fs';
-import { mkdtempSync } from 'node:fs';
+import { mkdtempSync, readFileSync, writeFileSync } from 'node:fs';
 import { tmpdir } from 'node:os';
 import { join } from 'node:path';
 import { fileURLToPath } from 'node:url';
@@ -9,7 +8,22 @@ import asc from 'assemblyscript/asc';
 
 const root = fileURLToPath(new URL('../..', import.meta.url));
 const out = join(mkdtempSync(join(tmpdir(), 'galewake-kernel-')), 'kernel.wasm');
-const words = ['src/swath/kernel/assembly/kernel.ts', '--baseDir', root, '--outFile', out, '-O3', '--noAssert', '--runtime', 'stub', '--enable', 'simd', '--importMemory', '--initialMemory', '1'];
+const words = [
+  'src/swath/kernel/assembly/kernel.ts',
+  '--baseDir',
+  root,
+  '--outFile',
+  out,
+  '-O3',
+  '--noAssert',
+  '--runtime',
+  'stub',
+  '--enable',
+  'simd',
+  '--importMemory',
+  '--initialMemory',
+  '1',
+];
 const { error, stderr } = await asc.main(words);
 if (error) {
   console.error(`${error.message}\n${stderr.toString()}`);

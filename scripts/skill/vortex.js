@@ -3,7 +3,7 @@
 import { backgroundWind, LIN_CHAVAS_2012 } from '../../dist/surface/motion.js';
 import { radius2016M } from '../../dist/track/relations/radius2016.js';
 import { SIZE_BOUNDS_M } from '../../dist/track/relations/size.js';
-import { PROFILE_2016, stretchedExponential } from '../../dist/vortex/galewake2016.js';
+import { PROFILE_2016, stretchedExponential } from '../../dist/vortex/calibrated2016.js';
 
 const WINDS_MPS = [34, 50, 64].map((kt) => (kt * 1852) / 3600);
 const AZIMUTHS = 24;

@@ -53,21 +53,21 @@ export const RECIPE_ENTRIES: readonly RecipeEntry[] = [
   },
   {
     key: 'completion.pressure',
-    standard: 'galewake-pressure-2016',
+    standard: 'calibrated-pressure-2016',
     words: ids(PRESSURE_WIND_RELATIONS),
     help: 'relation that gives a missing central pressure from the wind, or the wind from the pressure',
     source: 'own calibration',
   },
   {
     key: 'completion.rmax',
-    standard: 'galewake-rmax-2016',
+    standard: 'calibrated-rmax-2016',
     words: ids(RADIUS_RELATIONS),
     help: 'relation that gives a missing radius of maximum wind',
     source: 'ChavasKnaff2022',
   },
   {
     key: 'completion.size',
-    standard: 'galewake-size-2016',
+    standard: 'calibrated-size-2016',
     words: ids(SIZE_RELATIONS),
     range: [20, 800],
     help: 'relation for the size: the radius of 17.5 m/s of the storm’s own wind; or a number, km',
@@ -105,7 +105,7 @@ export const RECIPE_ENTRIES: readonly RecipeEntry[] = [
   },
   {
     key: 'vortex.profile',
-    standard: 'galewake-2016',
+    standard: 'calibrated-2016',
     words: ids(PROFILES),
     help: 'radial profile of the gradient-level wind',
     source: 'own calibration',

@@ -1,8 +1,8 @@
+import { calibrated2016 } from './calibrated2016.js';
 import { chavasLinEmanuel2015 } from './chavas-lin-emanuel2015.js';
 import { demaria1992 } from './demaria1992.js';
 import { emanuelRotunno2011 } from './emanuel-rotunno2011.js';
 import { fujita1952 } from './fujita1952.js';
-import { galewake2016 } from './galewake2016.js';
 import { hollandBelangerFritz2010 } from './holland-belanger-fritz2010.js';
 import { holland1980 } from './holland1980.js';
 import { holland2008 } from './holland2008.js';
@@ -16,7 +16,7 @@ import { willoughby2006 } from './willoughby2006.js';
 
 /** Every profile that a recipe may name, in the order of help texts. */
 export const PROFILES: readonly ProfileMethod[] = [
-  galewake2016,
+  calibrated2016,
   rankine,
   modifiedRankine,
   takahashi1939,

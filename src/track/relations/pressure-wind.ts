@@ -104,7 +104,7 @@ const pressure2016Pa = (maxWindMps: number, input: PressureWindInput): number =>
   input.ambientPressurePa - 100 * deficit2016Hpa(maxWindMps, input);
 
 const pressure2016: PressureWindRelation = {
-  id: 'galewake-pressure-2016',
+  id: 'calibrated-pressure-2016',
   title: 'Own calibration on 2004–2016: wind, latitude, motion, radius of 34 kt',
   source: 'own calibration',
   centralPressurePa: pressure2016Pa,

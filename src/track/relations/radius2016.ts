@@ -23,7 +23,7 @@ export function radius2016M(input: RadiusInput): number {
 }
 
 export const radius2016: RadiusRelation = {
-  id: 'galewake-rmax-2016',
+  id: 'calibrated-rmax-2016',
   title: 'Chavas & Knaff 2022, kept inside the strong winds (own calibration on 2004–2016)',
   source: 'ChavasKnaff2022',
   radiusM: radius2016M,

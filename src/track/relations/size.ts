@@ -67,7 +67,7 @@ export function size2016RadiusM(input: SizeInput): number {
 /** Every size relation that a recipe may name. */
 export const SIZE_RELATIONS: readonly SizeRelation[] = [
   {
-    id: 'galewake-size-2016',
+    id: 'calibrated-size-2016',
     title: 'Own calibration on 2004–2016: wind and deficit of the day, latitude, motion, past peak',
     source: 'own calibration',
     radiusM: size2016RadiusM,

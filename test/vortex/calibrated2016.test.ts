@@ -1,7 +1,7 @@
 import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
 import { size2016RadiusM } from '../../src/track/relations/size.js';
-import { outerParameter, PROFILE_2016, stretchedExponential } from '../../src/vortex/galewake2016.js';
+import { outerParameter, PROFILE_2016, stretchedExponential } from '../../src/vortex/calibrated2016.js';
 
 describe('the calibrated vortex', () => {
   it('has its maximum at R and falls everywhere outside', () => {

@@ -66,8 +66,8 @@ export function stretchedExponential(p: StretchedExponential): (radiusM: number)
  * 50 and 64 kt all follow from one size; the maximum and its radius are kept. The shape is one of 10-m winds; at gradient
  * level it is the same divided by the reduction at the maximum.
  */
-export const galewake2016: ProfileMethod = {
-  id: 'galewake-2016',
+export const calibrated2016: ProfileMethod = {
+  id: 'calibrated-2016',
   title: 'Own calibration on 2004–2016: stretched-exponential outer vortex of the storm’s size, ridge of maximum wind',
   source: 'own calibration',
   kinematic: true,

@@ -14,6 +14,10 @@ const IDLE_SHARE = 0.6;
 const TAPER_MPS = 0.08;
 /** Below this wind, m/s, nothing is promised: there margins are not kept. */
 const CALM_MPS = 7;
+/** A step changes a tile's wind by at most this where the maximum wind changes, m/s. */
+const STEP_CHANGE_MPS = 2;
+/** Longest step where the tile has the maximum wind, s; longer where it has less. */
+const LONGEST_S = 2000;
 /** Next to the centre steps follow this share of the radius of maximum wind. */
 const CORE_SHARE = 0.8;
 /** What the tables' rounding may hide, m/s. */
@@ -26,6 +30,8 @@ const SEARCH_MPS = 0.03;
 const RIVAL_SHARE = 0.95;
 /** (r/R)² about the ridge of the profile within which the wind of a peak may have a corner in time. */
 const CORNER_X = [0.4, 2.4] as const;
+/** What a corner may hide between moments, m/s. */
+const CORNER_MPS = 0.4;
 /** Moments about a corner at which it is checked, as a share of its bracket. */
 const CORNER_STEP = 0.05;
 /** Moments between the neighbours of an estimate at which a search looks first. */
@@ -209,13 +215,19 @@ export function tileRunner(
         const table = moments.tableAt(index);
         arithmetic.probe(table.speed, groups, lastRow, frame);
         strongest = Math.max(strongest, wind[4]!);
+        const weight = Math.max(0.1, wind[4]! / frame[9]!);
         const mayIdle = wind[4]! < IDLE_SHARE * strongest;
         let moveM: number;
         let bend: number;
         let spread: number;
         let stepShare = mayIdle ? STEP_SHARE * IDLE_FACTOR : STEP_SHARE;
         for (;;) {
-          stepS = Math.min(leg.longestS, (stepShare * near) / leg.speedMps);
+          stepS = Math.min(
+            leg.longestS,
+            (stepShare * near) / leg.speedMps,
+            STEP_CHANGE_MPS / (leg.changeMps2 * weight),
+            LONGEST_S / weight,
+          );
           if (distanceM + tileM + stepS * leg.speedMps > taperM)
             stepS = Math.min(stepS, taperStepS(table, distanceM, tileM, leg, rmaxM));
           moveM = stepS * leg.speedMps;
@@ -246,11 +258,15 @@ export function tileRunner(
         gap = false;
       }
       if (index === end) return;
-      // the longest dyadic step that fits, starts on its own grid and ends within the leg
-      const local = index - leg.first;
-      const room = local === 0 ? 1 << leg.depth : local & -local;
+      // two significant bits: so that tiles share moments
+      const room = leg.first + (1 << leg.depth) - index;
       const fine = (stepS * 1000) / leg.fineMs;
-      index += fine >= room ? room : fine < 2 ? 1 : 1 << (31 - Math.clz32(fine));
+      if (fine >= room) index += room;
+      else if (fine < 4) index += Math.max(1, Math.floor(fine));
+      else {
+        const unit = 1 << (29 - Math.clz32(fine));
+        index = leg.first + ((Math.floor((index - leg.first + fine) / unit) * unit) | 0);
+      }
     }
   }
 
@@ -293,8 +309,11 @@ export function tileRunner(
       wanted[k] = 0;
       for (let q = 0; q < 5; q++) if (winds[5 * k + q]! > winds[5 * rivals[q]! + q]!) rivals[q] = k;
     }
+    let strongest = 0;
+    for (let q = 0; q < 5; q++) strongest = Math.max(strongest, winds[5 * rivals[q]! + q]!);
+    const weak = strongest + margin[rivals[4]!]! < CALM_MPS;
     for (let k = 0; k < count; k++) {
-      if (!beaten(k)) {
+      if (weak ? k === rivals[4] : !beaten(k)) {
         if (k > 0) wanted[k - 1]! |= 1;
         wanted[k]! |= 1;
         if (k + 1 < count) wanted[k + 1]! |= 1;
@@ -305,8 +324,10 @@ export function tileRunner(
       const lower = Math.min(a - slack[k]!, b - slack[k + 1]!);
       for (let h = 0; h < thresholdsMps.length; h++) {
         if (upper >= thresholdsMps[h]! && lower < thresholdsMps[h]!) {
-          // the moment before tells how the wind bends
-          if (k > 0 && broken[k] === 0) wanted[k - 1]! |= 2;
+          // the moment before, or after, tells how the wind bends
+          if (cornerAt(k)) {
+            if (k + 2 < count && broken[k + 2] === 0) wanted[k + 2]! |= 2;
+          } else if (k > 0 && broken[k] === 0) wanted[k - 1]! |= 2;
           wanted[k]! |= 2;
           wanted[k + 1]! |= 2;
           break;
@@ -335,35 +356,55 @@ export function tileRunner(
   function evaluate(tile: Tile, quads: number): void {
     // buffers of the two moments before; −1 for none
     let [first, middle, middleK] = [-1, -1, -1];
+    // the step from `first` to `middle` starts at a corner in time: the moment after it is to tell how the wind bends
+    let waiting = false;
     for (let k = 0; k < count; k++) {
       const joined = k > 0 && broken[k] === 0;
-      const stepHours = joined ? (walkMs[k]! - walkMs[k - 1]!) / 3_600_000 : 0;
+      const follows = joined && wanted[k] !== 0 && middleK === k - 1;
+      if (waiting && !follows) {
+        addHours(quads, -1, first, middle, middleK);
+        waiting = false;
+      }
       if (wanted[k] === 0) {
-        if (options.hours && joined) wholeHours(tile, k, stepHours);
+        if (options.hours && joined) wholeHours(tile, k);
         continue;
       }
       const index = walkIndex[k]!;
       const to = first !== 0 && middle !== 0 ? 0 : first !== 1 && middle !== 1 ? 1 : 2;
       arithmetic.sample(quads, moments.tableAt(index).speed, groups, lastRow, timeline.frame(index), to);
-      const follows = joined && middleK === k - 1;
       if (middle >= 0) passed(quads, first, middle, follows ? to : -1, middleK);
       if (options.hours && joined) {
-        if (follows) {
-          const ratio = first >= 0 ? (walkMs[k - 1]! - walkMs[k - 2]!) / (walkMs[k]! - walkMs[k - 1]!) : 0;
-          for (let h = 0; h < thresholdsMps.length; h++)
-            arithmetic.addHours(quads, first, middle, to, {
-              slot: h,
-              thresholdMps: thresholdsMps[h]!,
-              stepHours,
-              ratio,
-            });
-        } else wholeHours(tile, k, stepHours);
+        if (!follows) wholeHours(tile, k);
+        else {
+          if (waiting) addHours(quads, to, middle, first, k - 1, stepS(k) / stepS(k - 1));
+          waiting = cornerAt(k - 1);
+          if (!waiting) addHours(quads, first, middle, to, k, first >= 0 ? stepS(k - 1) / stepS(k) : 0);
+        }
       }
       first = follows ? middle : -1;
       middle = to;
       middleK = k;
     }
+    if (waiting) addHours(quads, -1, first, middle, middleK);
     if (middle >= 0) passed(quads, first, middle, -1, middleK);
+  }
+
+  /** Whether the motion turns at another rate from a moment of the walk. */
+  function cornerAt(k: number): boolean {
+    const index = walkIndex[k]!;
+    return timeline.legs[timeline.legNumber[index]!]!.first === index;
+  }
+
+  /** Length of the step that ends at a moment of the walk, s. */
+  function stepS(k: number): number {
+    return 0.001 * (walkMs[k]! - walkMs[k - 1]!);
+  }
+
+  /** Adds the hours of the step that ends at the `k`th moment; `beside` lies on the side of `from`, −1 for none. */
+  function addHours(quads: number, beside: number, from: number, to: number, k: number, ratio = 0): void {
+    const stepHours = stepS(k) / 3600;
+    for (let slot = 0; slot < thresholdsMps.length; slot++)
+      arithmetic.addHours(quads, beside, from, to, { slot, thresholdMps: thresholdsMps[slot]!, stepHours, ratio });
   }
 
   /** Looks for local maxima at a moment whose neighbours are known. */
@@ -375,7 +416,8 @@ export function tileRunner(
   }
 
   /** A step in which no threshold lies between the bounds: all cells are above it or none is. */
-  function wholeHours(tile: Tile, k: number, stepHours: number): void {
+  function wholeHours(tile: Tile, k: number): void {
+    const stepHours = stepS(k) / 3600;
     const lower = Math.min(winds[5 * k - 1]! - slack[k - 1]!, winds[5 * k + 4]! - slack[k]!);
     for (let h = 0; h < thresholdsMps.length; h++) {
       if (lower < thresholdsMps[h]!) continue;
@@ -418,17 +460,11 @@ export function tileRunner(
       const off = Math.abs(real[i]! - best[i]!);
       found.peak = off <= PARABOLA_MPS ? best[i]! : real[i]!;
       found.index = bestMoment[i]!;
-      if (off > SEARCH_MPS) search(i, bestMoment[i]!);
+      if (best[i]! < CALM_MPS) found.peak = best[i]!;
+      else if (off > SEARCH_MPS) search(i, bestMoment[i]!);
       else if (squared[i]! > CORNER_X[0] && squared[i]! < CORNER_X[1]) corner(i, bestMoment[i]!);
       // estimates are off where the wind has a corner: the second may be the first
-      if (second[i]! > RIVAL_SHARE * found.peak) {
-        const { peak, index } = found;
-        search(i, secondMoment[i]!);
-        if (found.peak <= peak) {
-          found.peak = peak;
-          found.index = index;
-        }
-      }
+      if (second[i]! > RIVAL_SHARE * found.peak && second[i]! > CALM_MPS) rival(i, second[i]!, secondMoment[i]!);
       tile.windMps[i] = found.peak;
       tile.peakS[i] = (timeline.timeMs(found.index) - startMs) / 1000;
       const nearest = Math.round(found.index);
@@ -441,6 +477,20 @@ export function tileRunner(
     const [, east, north] = arrays.settled;
     tile.eastMps.set(east.subarray(0, tile.count));
     tile.northMps.set(north.subarray(0, tile.count));
+  }
+
+  /** The peak at another local maximum, where it is higher than the one that was found. */
+  function rival(i: number, estimate: number, moment: number): void {
+    const { peak, index } = found;
+    const wind = speedAt(i, moment);
+    // by as much as its estimate is off it may be off itself
+    const x = ridgeAt(i, moment) + 1;
+    const cornered = x > CORNER_X[0] && x < CORNER_X[1] ? CORNER_MPS : 0;
+    if (Math.max(wind, estimate) + Math.abs(wind - estimate) + cornered + ROUNDING_MPS < peak) return;
+    search(i, moment);
+    if (found.peak > peak) return;
+    found.peak = peak;
+    found.index = index;
   }
 
   /** Moments of the walk on both sides of an estimate. */
@@ -464,6 +514,17 @@ export function tileRunner(
     const [a, b, c] = [ridgeAt(i, from), ridgeAt(i, moment), ridgeAt(i, to)];
     if (a < 0 !== b < 0) passing(i, from, a, moment, b);
     if (b < 0 !== c < 0) passing(i, moment, b, to, c);
+    if (a < 0 !== b < 0 || b < 0 !== c < 0 || !(from < moment && moment < to)) return;
+    // (r/R)² is close to a parabola in time: it may touch the ridge between two moments
+    const bend =
+      ((a - b) * (to - moment) - (c - b) * (from - moment)) / ((from - moment) * (to - moment) * (from - to));
+    const slope = (a - b) / (from - moment) - bend * (from - moment);
+    const vertex = moment - (0.5 * slope) / bend;
+    if (!(vertex > from && vertex < to)) return;
+    const x = ridgeAt(i, vertex);
+    if (x < 0 === a < 0) return;
+    passing(i, from, a, vertex, x);
+    passing(i, vertex, x, to, c);
   }
 
   /** The ridge passes between two moments: the wind then, and whether it is a peak there. */

@@ -6,15 +6,12 @@ const FINE_S = 40;
 /** share of that radius from one moment to the next; down to the bound, s. */
 const FINE_SHARE = 0.04;
 const FINEST_S = 4;
-/** A step changes the maximum wind by at most this, m/s, and the radius of maximum wind by at most this share. */
-const STEP_CHANGE_MPS = 2;
-const STEP_GROWTH = 0.06;
-/** Longest step, s. */
-const LONGEST_STEP_S = 3600;
+/** A step changes the radius of maximum wind by at most this share. */
+const STEP_GROWTH = 0.08;
 /** Numbers in a frame: see {@link Timeline.frame}. */
 export const FRAME = 10;
 
-/** One leg of the timeline: from a fix to the next, cut into 2^depth fine steps. */
+/** One leg of the timeline: half of the way from a fix to the next, cut into 2^depth fine steps. */
 export interface Leg {
   readonly startMs: number;
   readonly endMs: number;
@@ -27,16 +24,16 @@ export interface Leg {
   readonly changeMps2: number;
   /** between two moments */
   readonly fineMs: number;
-  /** longest step within which intensity and size change little, s */
+  /** longest step within which the size changes little, s */
   readonly longestS: number;
 }
 
-/** Moments of a storm on a dyadic grid between its fixes, each fix being one of them. */
+/** Moments of a storm between its fixes, each fix being one of them. */
 export interface Timeline {
   readonly legs: readonly Leg[];
   /** moments in all */
   readonly count: number;
-  /** number of the leg that a moment belongs to; a fix belongs to the leg that it starts */
+  /** number of the leg that a moment belongs to; the start of a leg belongs to it */
   readonly legNumber: Uint16Array;
   readonly timeMs: (index: number) => number;
   /**
@@ -49,11 +46,11 @@ export interface Timeline {
 
 /** The timeline of a model between two times. */
 export function timelineOf(model: WindModel, fromMs: number, toMs: number): Timeline {
-  const knots = [
-    fromMs,
-    ...model.path.knotsMs.filter((time) => time > fromMs && time < toMs),
-    ...(toMs > fromMs ? [toMs] : []),
-  ];
+  const { knotsMs } = model.path;
+  // the motion turns at another rate from the middle between two fixes
+  const middles = knotsMs.slice(1).map((time, i) => Math.round(0.5 * (time + knotsMs[i]!)));
+  const inside = [...new Set([...knotsMs, ...middles])].filter((time) => time > fromMs && time < toMs);
+  const knots = [fromMs, ...inside.sort((a, b) => a - b), ...(toMs > fromMs ? [toMs] : [])];
   const legs: Leg[] = [];
   let first = 0;
   for (let i = 0; i + 1 < knots.length; i++) {
@@ -61,12 +58,7 @@ export function timelineOf(model: WindModel, fromMs: number, toMs: number): Time
     const { smallestM, ...bounds } = boundsOf(model, startMs, endMs);
     const fineS = Math.max(FINEST_S, Math.min(FINE_S, (FINE_SHARE * smallestM) / bounds.speedMps));
     const depth = Math.max(2, Math.ceil(Math.log2((endMs - startMs) / 1000 / fineS)));
-    const longestS = Math.min(
-      LONGEST_STEP_S,
-      (endMs - startMs) / 1000,
-      STEP_CHANGE_MPS / bounds.changeMps2,
-      STEP_GROWTH / bounds.growthPerS,
-    );
+    const longestS = Math.min((endMs - startMs) / 1000, STEP_GROWTH / bounds.growthPerS);
     legs.push({ startMs, endMs, first, depth, ...bounds, fineMs: (endMs - startMs) / (1 << depth), longestS });
     first += 1 << depth;
   }

@@ -3,16 +3,10 @@
  * alone and sharing nothing with the code that it judges.
  */
 
-type Ring = number[][];
-interface Edge {
-  readonly ax: number;
-  readonly ay: number;
-  readonly bx: number;
-  readonly by: number;
-  readonly ring: number;
-  readonly index: number;
-}
+import { type Edge, meet, orientation } from './edges-meet.js';
 
+type Ring = number[][];
+/** Whole units in a degree: seven decimals. */
 const SCALE = 1e7;
 const GEOMETRIES = ['Point', 'MultiPoint', 'LineString', 'MultiLineString', 'Polygon', 'MultiPolygon'];
 
@@ -225,33 +219,6 @@ function follows(a: Edge, b: Edge, count: number): boolean {
   if (gap !== 1 && gap !== count - 1) return false;
   const shared = (a.bx === b.ax && a.by === b.ay ? 1 : 0) + (b.bx === a.ax && b.by === a.ay ? 1 : 0);
   return shared === 1;
-}
-
-function orientation(ax: number, ay: number, bx: number, by: number, cx: number, cy: number): number {
-  const left = (bx - ax) * (cy - ay);
-  const right = (by - ay) * (cx - ax);
-  const det = left - right;
-  if (Math.abs(det) > 1e-14 * (Math.abs(left) + Math.abs(right))) return Math.sign(det);
-  const exact = BigInt(bx - ax) * BigInt(cy - ay) - BigInt(by - ay) * BigInt(cx - ax);
-  return exact > 0n ? 1 : exact < 0n ? -1 : 0;
-}
-
-function meet(p: Edge, q: Edge): 'apart' | 'touch' | 'cross' | 'overlap' {
-  if (Math.max(p.ax, p.bx) < Math.min(q.ax, q.bx) || Math.max(q.ax, q.bx) < Math.min(p.ax, p.bx)) return 'apart';
-  if (Math.max(p.ay, p.by) < Math.min(q.ay, q.by) || Math.max(q.ay, q.by) < Math.min(p.ay, p.by)) return 'apart';
-  const o1 = orientation(p.ax, p.ay, p.bx, p.by, q.ax, q.ay);
-  const o2 = orientation(p.ax, p.ay, p.bx, p.by, q.bx, q.by);
-  const o3 = orientation(q.ax, q.ay, q.bx, q.by, p.ax, p.ay);
-  const o4 = orientation(q.ax, q.ay, q.bx, q.by, p.bx, p.by);
-  if (o1 === 0 && o2 === 0) {
-    // on one line: more than one common point?
-    const along = Math.abs(p.bx - p.ax) >= Math.abs(p.by - p.ay);
-    const [p1, p2, q1, q2] = along ? [p.ax, p.bx, q.ax, q.bx] : [p.ay, p.by, q.ay, q.by];
-    const common = Math.min(Math.max(p1, p2), Math.max(q1, q2)) - Math.max(Math.min(p1, p2), Math.min(q1, q2));
-    return common > 0 ? 'overlap' : common === 0 ? 'touch' : 'apart';
-  }
-  if (o1 * o2 > 0 || o3 * o4 > 0) return 'apart';
-  return o1 * o2 < 0 && o3 * o4 < 0 ? 'cross' : 'touch';
 }
 
 /** 1 inside, 0 on the ring, −1 outside. */

@@ -96,9 +96,9 @@ function degrees(flat: FlatPolygons): PolygonCoordinates[] {
     for (let r = polygons[p - 1]!; r < polygons[p]!; r++) {
       const from = rings[r]!;
       const to = rings[r + 1]!;
-      const ring: Position[] = [];
-      for (let i = from; i < to; i++) ring.push([x[i]! / UNITS_PER_DEGREE, y[i]! / UNITS_PER_DEGREE]);
-      ring.push([x[from]! / UNITS_PER_DEGREE, y[from]! / UNITS_PER_DEGREE]);
+      const ring = new Array<Position>(to - from + 1);
+      for (let i = from; i < to; i++) ring[i - from] = [x[i]! / UNITS_PER_DEGREE, y[i]! / UNITS_PER_DEGREE];
+      ring[to - from] = [x[from]! / UNITS_PER_DEGREE, y[from]! / UNITS_PER_DEGREE];
       polygon.push(ring);
     }
     out.push(polygon);

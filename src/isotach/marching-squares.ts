@@ -1,6 +1,14 @@
 import { type BorderEvent, borderEdge, borderStepOf, walkBorder } from './border.js';
 import type { Lattice } from './lattice.js';
-import { classify, crossingDistance, edgeValue, type Field, type Nodes, OUTSIDE } from './node-classes.js';
+import {
+  classify,
+  crossingDistance,
+  edgeValue,
+  type Field,
+  type LatticeEdge,
+  type Nodes,
+  OUTSIDE,
+} from './node-classes.js';
 
 /** The lines of all levels on one lattice: chains of vertices with the higher ground on their left (seen with north up). */
 export interface Contours {
@@ -58,6 +66,8 @@ class Tracer {
   private readonly turning: number[] = [];
   /** chain of each crossing of a row, −1 before it is met */
   private readonly owner: Int32Array;
+  /** used again for every edge */
+  private readonly edge: LatticeEdge;
 
   constructor(
     private readonly field: Field,
@@ -66,6 +76,7 @@ class Tracer {
     private readonly nodes: Nodes,
   ) {
     this.owner = new Int32Array(nodes.count).fill(-1);
+    this.edge = { low: 0.5, high: 0.5, lowClass: 0, highClass: 0, length: 0.5, margin: lattice.margin };
   }
 
   trace(): Contours {
@@ -104,7 +115,7 @@ class Tracer {
     };
     for (let i = 0; i < order.length; i++) {
       const west = nodes.node[order[i]!]!;
-      const row = Math.floor(west / width);
+      const row = (west / width) | 0;
       crossings.row[i] = row - 1;
       crossings.column[i] = west - row * width - 1;
       crossings.chain[i] = owner[order[i]!]!;
@@ -134,27 +145,30 @@ class Tracer {
     const chain = this.turning.length;
     const firstAbove = above;
     const firstBelow = below;
+    const { owner } = this;
+    let { x, y, vertices: n } = this;
     let turns = 0;
     let open = false;
     for (;;) {
-      if (this.vertices === this.x.length) {
-        this.x = doubled(this.x);
-        this.y = doubled(this.y);
+      if (n === x.length) {
+        x = doubled(x);
+        y = doubled(y);
       }
       const across = below - above;
       let ahead: number;
       if (across === 1 || across === -1) {
         const west = across === 1 ? above : below;
         const crossing = first[west]! + level - classes[below]!;
-        this.owner[crossing] = chain;
-        this.x[this.vertices] = at[crossing]!;
-        this.y[this.vertices++] = rowAt[((west / width) | 0) - 1]!;
+        owner[crossing] = chain;
+        x[n] = at[crossing]!;
+        y[n++] = rowAt[((west / width) | 0) - 1]!;
         ahead = across === 1 ? -width : width;
       } else {
         const north = across === width ? above : below;
         const row = (north / width) | 0;
-        this.x[this.vertices] = columnAt[north - row * width - 1]!;
-        this.y[this.vertices++] = this.columnCrossing(level, above, below);
+        const column = north - row * width - 1;
+        x[n] = columnAt[column]!;
+        y[n++] = this.columnCrossing(level, above, below, row - 1, column);
         ahead = across === width ? 1 : -1;
       }
       const left = above + ahead;
@@ -182,36 +196,44 @@ class Tracer {
       }
       if (above === firstAbove && below === firstBelow) break;
     }
-    this.offsets.push(this.vertices);
+    this.x = x;
+    this.y = y;
+    this.vertices = n;
+    this.offsets.push(n);
     this.turning.push(open ? 0 : turns > 0 ? 1 : -1);
     return [above, below];
   }
 
   /** Position of a level between two nodes of one column. */
-  private columnCrossing(level: number, above: number, below: number): number {
-    const { classes, width } = this.nodes;
-    const { y, margin } = this.lattice;
-    const row = Math.floor(Math.min(above, below) / width) - 1;
-    const length = y[row]! - y[row + 1]!;
-    const low = this.value(below);
-    const high = this.value(above);
-    const edge = { low, high, lowClass: classes[below]!, highClass: classes[above]!, length, margin };
+  private columnCrossing(level: number, above: number, below: number, row: number, column: number): number {
+    const { classes } = this.nodes;
+    const { y } = this.lattice;
+    const { edge } = this;
+    const [north, south] = [y[row]!, y[row + 1]!];
+    const rising = below > above;
+    edge.low = this.value(rising ? row + 1 : row, column);
+    edge.high = this.value(rising ? row : row + 1, column);
+    edge.lowClass = classes[below]!;
+    edge.highClass = classes[above]!;
+    edge.length = north - south;
     const distance = crossingDistance(edge, level, this.levels);
-    return below < above ? y[row]! - distance : y[row + 1]! + distance;
+    return rising ? south + distance : north - distance;
   }
 
   /** Whether the two high corners of a saddle hold together. Added in pairs, so that a mirrored field gives the mirror. */
   private joined(level: number, above: number, below: number, left: number, right: number): boolean {
-    const mean = (this.value(above) + this.value(right) + (this.value(below) + this.value(left))) / 4;
+    const mean = (this.nodeValue(above) + this.nodeValue(right) + (this.nodeValue(below) + this.nodeValue(left))) / 4;
     return mean >= this.levels[level]!;
   }
 
-  private value(node: number): number {
+  private nodeValue(node: number): number {
+    const row = (node / this.nodes.width) | 0;
+    return this.value(row - 1, node - row * this.nodes.width - 1);
+  }
+
+  private value(row: number, column: number): number {
     const { lattice, field } = this;
-    const { width } = this.nodes;
-    const row = Math.floor(node / width);
-    const column = node - row * width - 1;
-    const base = lattice.sourceRow[row - 1]! * lattice.stride;
+    const base = lattice.sourceRow[row]! * lattice.stride;
     if (column === 0) return edgeValue(field, base, lattice.west);
     if (column === lattice.x.length - 1) return edgeValue(field, base, lattice.east);
     const source = lattice.first + column - 1;

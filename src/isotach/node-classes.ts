@@ -35,13 +35,13 @@ export function edgeValue(field: Field, base: number, edge: EdgeColumn): number 
 
 /** An edge between two nodes, from the one of the lower class to the one of the higher. */
 export interface LatticeEdge {
-  readonly low: number;
-  readonly high: number;
-  readonly lowClass: number;
-  readonly highClass: number;
+  low: number;
+  high: number;
+  lowClass: number;
+  highClass: number;
   /** whole units */
-  readonly length: number;
-  readonly margin: number;
+  length: number;
+  margin: number;
 }
 
 /**
@@ -51,11 +51,15 @@ export interface LatticeEdge {
 export function crossingDistance(edge: LatticeEdge, level: number, levels: readonly number[]): number {
   const { low, high, lowClass, highClass, length, margin } = edge;
   const count = highClass - lowClass;
-  const space = Math.max(1, Math.floor(Math.min(length * margin, length / (2 * (count + 1)))));
+  const space = Math.max(
+    1,
+    Math.floor(count === 1 ? length * Math.min(margin, 0.25) : Math.min(length * margin, length / (2 * (count + 1)))),
+  );
+  const perUnit = 1 / (high - low);
   let distance = 0;
   for (let i = lowClass; i <= level; i++) {
-    const part = (levels[i]! - low) / (high - low);
-    const place = Math.round((part >= 0 && part <= 1 ? part : 0.5) * length);
+    const part = (levels[i]! - low) * perUnit;
+    const place = Math.floor((part >= 0 && part <= 1 ? part : 0.5) * length + 0.5);
     distance = Math.max(place, distance + space);
   }
   return Math.min(distance, length - (highClass - level) * space);
@@ -130,6 +134,8 @@ class Crossings {
   node = new Int32Array(1 << 14);
   level = new Uint8Array(1 << 14);
   at = new Float64Array(1 << 14);
+  /** used again for every edge */
+  private readonly edge: LatticeEdge;
 
   constructor(
     private readonly lattice: Lattice,
@@ -137,23 +143,22 @@ class Crossings {
     private readonly width: number,
   ) {
     this.first = new Int32Array(width * (lattice.sourceRow.length + 2) + 1);
+    this.edge = { low: 0.5, high: 0.5, lowClass: 0, highClass: 0, length: 0.5, margin: lattice.margin };
   }
 
   /** The class changes between node `to − 1` and node `to`. */
   add(to: number, classBefore: number, classAfter: number, valueBefore: number, value: number): void {
-    const { x, margin } = this.lattice;
+    const { x } = this.lattice;
     const column = (to % this.width) - 1;
     const west = x[column - 1]!;
     const east = x[column]!;
     const rising = classBefore < classAfter;
-    const edge: LatticeEdge = {
-      low: rising ? valueBefore : value,
-      high: rising ? value : valueBefore,
-      lowClass: rising ? classBefore : classAfter,
-      highClass: rising ? classAfter : classBefore,
-      length: east - west,
-      margin,
-    };
+    const { edge } = this;
+    edge.low = rising ? valueBefore : value;
+    edge.high = rising ? value : valueBefore;
+    edge.lowClass = rising ? classBefore : classAfter;
+    edge.highClass = rising ? classAfter : classBefore;
+    edge.length = east - west;
     if (this.count + this.levels.length > this.node.length) this.grow();
     this.first[to - 1] = this.count;
     for (let level = edge.lowClass; level < edge.highClass; level++) {

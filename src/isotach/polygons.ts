@@ -6,15 +6,18 @@ export interface FlatPolygons {
   readonly x: Float64Array;
   readonly y: Float64Array;
   /** ring i has the vertices `rings[i]` to `rings[i + 1] − 1` */
-  readonly rings: readonly number[];
+  readonly rings: Float64Array;
   /** polygon i has the rings `polygons[i]` to `polygons[i + 1] − 1`: its shell, anticlockwise, then its holes, clockwise */
   readonly polygons: readonly number[];
 }
 
-/** A ring before it is written out: chains by `2 · chain + (1 if reversed)`, border nodes by `−1 − step`. */
-interface Ring {
-  readonly pieces: number[];
-  readonly shell: boolean;
+/** Pieces of rings before they are written out: chains by `2 · chain + (1 if reversed)`, border nodes by `−1 − step`. */
+interface Rings {
+  /** all pieces, ring after ring; ring i has the pieces `starts[i]` to `starts[i + 1] − 1` */
+  readonly pieces: Int32Array;
+  readonly starts: Int32Array;
+  readonly shell: Uint8Array;
+  readonly count: number;
 }
 
 /**
@@ -23,23 +26,44 @@ interface Ring {
  * of a row; all rings are met in one scan of the crossings, so the work is linear in the number of vertices.
  */
 export function assemblePolygons(contours: Contours, level: number, upper: number | null): FlatPolygons {
-  const { turning, levelChains } = contours;
-  const ringOfChain = new Int32Array(turning.length).fill(-1);
-  const { rings, westRing } = joinAlongBorder(contours, level, upper, ringOfChain);
-  for (const [of, reversed] of upper === null
-    ? [[level, 0]]
-    : [
-        [level, 0],
-        [upper, 1],
-      ]) {
-    for (let chain = levelChains[of!]!; chain < levelChains[of! + 1]!; chain++) {
-      if (turning[chain] === 0) continue;
-      ringOfChain[chain] = rings.length;
-      rings.push({ pieces: [2 * chain + reversed!], shell: (turning[chain] === 1) === (reversed === 0) });
-    }
-  }
+  const ringOfChain = new Int32Array(contours.turning.length).fill(-1);
+  const { bordering, westRing } = joinAlongBorder(contours, level, upper, ringOfChain);
+  const rings = gatherRings(contours, { level, upper }, bordering, ringOfChain);
   const parents = findShells({ contours, level, upper, ringOfChain, westRing }, rings);
   return flatten(contours, rings, parents);
+}
+
+/** The rings along the border, all of them shells, and after them the closed chains. */
+function gatherRings(
+  { turning, levelChains }: Contours,
+  of: { level: number; upper: number | null },
+  bordering: readonly (readonly number[])[],
+  ringOfChain: Int32Array,
+): Rings {
+  const chains = (level: number | null): number => (level === null ? 0 : levelChains[level + 1]! - levelChains[level]!);
+  const most = bordering.length + chains(of.level) + chains(of.upper);
+  const starts = new Int32Array(most + 1);
+  const shell = new Uint8Array(most);
+  const pieces = new Int32Array(most + bordering.reduce((sum, ring) => sum + ring.length, 0));
+  let count = 0;
+  let n = 0;
+  for (const ring of bordering) {
+    shell[count] = 1;
+    for (const piece of ring) pieces[n++] = piece;
+    starts[++count] = n;
+  }
+  for (const level of of.upper === null ? [of.level] : [of.level, of.upper]) {
+    // the lines of the upper level bound a band from above: they are taken backwards
+    const reversed = level === of.upper ? 1 : 0;
+    for (let chain = levelChains[level]!; chain < levelChains[level + 1]!; chain++) {
+      if (turning[chain] === 0) continue;
+      ringOfChain[chain] = count;
+      shell[count] = (turning[chain] === 1) === (reversed === 0) ? 1 : 0;
+      pieces[n++] = 2 * chain + reversed;
+      starts[++count] = n;
+    }
+  }
+  return { pieces, starts, shell, count };
 }
 
 /** Rings that run along the border, and which of them holds the western border in each row. */
@@ -48,12 +72,12 @@ function joinAlongBorder(
   level: number,
   upper: number | null,
   ringOfChain: Int32Array,
-): { rings: Ring[]; westRing: Int32Array } {
+): { bordering: number[][]; westRing: Int32Array } {
   const { lattice, border, cornerClass } = contours;
   const across = lattice.x.length - 1;
   const down = lattice.y.length - 1;
   const steps = 2 * (across + down);
-  const rings: Ring[] = [];
+  const rings: number[][] = [];
   const westRing = new Int32Array(down + 1).fill(-1);
   const addNodes = (pieces: number[], from: number, count: number): void => {
     let [lastColumn, lastRow] = borderNode(lattice, from + steps - 1);
@@ -76,9 +100,9 @@ function joinAlongBorder(
     if (cornerClass > level && (upper === null || cornerClass <= upper)) {
       const pieces: number[] = [];
       addNodes(pieces, 0, steps);
-      rings.push({ pieces, shell: true });
+      rings.push(pieces);
     }
-    return { rings, westRing };
+    return { bordering: rings, westRing };
   }
   /** the area is left here: the start of a chain, or the end of one of the upper level, which is taken backwards */
   const leaves = (event: BorderEvent): boolean => event.rises === (event.level === upper);
@@ -103,30 +127,32 @@ function joinAlongBorder(
       if (count < 0 || (count === 0 && at <= entry)) count += steps;
       addNodes(pieces, from + 1, count);
     } while (at !== start);
-    rings.push({ pieces, shell: true });
+    rings.push(pieces);
   }
-  return { rings, westRing };
+  return { bordering: rings, westRing };
 }
 
 /** For each hole the ring that is its shell, −1 for shells. */
 function findShells(
   of: { contours: Contours; level: number; upper: number | null; ringOfChain: Int32Array; westRing: Int32Array },
-  rings: readonly Ring[],
+  rings: Rings,
 ): Int32Array {
   const { crossings } = of.contours;
   const { start, row, column, chain, falls } = crossings;
-  const parents = new Int32Array(rings.length).fill(-1);
-  if (rings.every((ring) => ring.shell)) return parents;
+  const { shell, count } = rings;
+  const { ringOfChain, westRing } = of;
+  const parents = new Int32Array(count).fill(-1);
+  if (!shell.subarray(0, count).includes(0)) return parents;
   let lastRow = -1;
   let lastRing = -1;
   const meet = (i: number): void => {
     if (row[i] !== lastRow) {
       lastRow = row[i]!;
-      lastRing = of.westRing[lastRow]!;
+      lastRing = westRing[lastRow]!;
     }
-    const ring = of.ringOfChain[chain[i]!]!;
-    if (!rings[ring]!.shell && parents[ring] === -1)
-      parents[ring] = rings[lastRing]!.shell ? lastRing : parents[lastRing]!;
+    const ring = ringOfChain[chain[i]!]!;
+    if (ring === lastRing) return;
+    if (!shell[ring] && parents[ring] === -1) parents[ring] = shell[lastRing] ? lastRing : parents[lastRing]!;
     lastRing = ring;
   };
   let a = start[of.level]!;
@@ -142,30 +168,33 @@ function findShells(
 }
 
 /** Writes the rings out, each shell followed by its holes. */
-function flatten(contours: Contours, rings: readonly Ring[], parents: Int32Array): FlatPolygons {
+function flatten(contours: Contours, rings: Rings, parents: Int32Array): FlatPolygons {
   const { lattice, offsets } = contours;
+  const { pieces, starts, shell, count } = rings;
   // holes of each shell as linked lists, in the order found
-  const nextHole = new Int32Array(rings.length).fill(-1);
-  const firstHole = new Int32Array(rings.length).fill(-1);
-  let vertices = 0;
-  for (let i = rings.length - 1; i >= 0; i--) {
+  const nextHole = new Int32Array(count).fill(-1);
+  const firstHole = new Int32Array(count).fill(-1);
+  for (let i = count - 1; i >= 0; i--) {
     const parent = parents[i]!;
-    if (parent >= 0) {
-      nextHole[i] = firstHole[parent]!;
-      firstHole[parent] = i;
-    }
-    for (const piece of rings[i]!.pieces) {
-      vertices += piece < 0 ? 1 : offsets[(piece >> 1) + 1]! - offsets[piece >> 1]!;
-    }
+    if (parent < 0) continue;
+    nextHole[i] = firstHole[parent]!;
+    firstHole[parent] = i;
+  }
+  let vertices = 0;
+  for (let i = 0; i < starts[count]!; i++) {
+    const piece = pieces[i]!;
+    vertices += piece < 0 ? 1 : offsets[(piece >> 1) + 1]! - offsets[piece >> 1]!;
   }
   const x = new Float64Array(vertices);
   const y = new Float64Array(vertices);
-  const ringStarts: number[] = [];
+  const ringStarts = new Float64Array(count + 1);
   const polygonStarts: number[] = [];
+  let written = 0;
   let n = 0;
-  const write = (ring: Ring): void => {
-    ringStarts.push(n);
-    for (const piece of ring.pieces) {
+  const write = (ring: number): void => {
+    ringStarts[written++] = n;
+    for (let i = starts[ring]!; i < starts[ring + 1]!; i++) {
+      const piece = pieces[i]!;
       if (piece < 0) {
         const [column, row] = borderNode(lattice, -1 - piece);
         x[n] = lattice.x[column]!;
@@ -174,26 +203,20 @@ function flatten(contours: Contours, rings: readonly Ring[], parents: Int32Array
       }
       const from = offsets[piece >> 1]!;
       const to = offsets[(piece >> 1) + 1]!;
-      if (piece & 1) {
-        for (let k = to - 1; k >= from; k--, n++) {
-          x[n] = contours.x[k]!;
-          y[n] = contours.y[k]!;
-        }
-      } else {
-        for (let k = from; k < to; k++, n++) {
-          x[n] = contours.x[k]!;
-          y[n] = contours.y[k]!;
-        }
+      const step = piece & 1 ? -1 : 1;
+      for (let k = piece & 1 ? to - 1 : from, left = to - from; left > 0; left--, k += step, n++) {
+        x[n] = contours.x[k]!;
+        y[n] = contours.y[k]!;
       }
     }
   };
-  for (let i = 0; i < rings.length; i++) {
-    if (!rings[i]!.shell) continue;
-    polygonStarts.push(ringStarts.length);
-    write(rings[i]!);
-    for (let hole = firstHole[i]!; hole >= 0; hole = nextHole[hole]!) write(rings[hole]!);
+  for (let i = 0; i < count; i++) {
+    if (!shell[i]) continue;
+    polygonStarts.push(written);
+    write(i);
+    for (let hole = firstHole[i]!; hole >= 0; hole = nextHole[hole]!) write(hole);
   }
-  ringStarts.push(n);
-  polygonStarts.push(ringStarts.length - 1);
+  ringStarts[written] = n;
+  polygonStarts.push(written);
   return { x, y, rings: ringStarts, polygons: polygonStarts };
 }

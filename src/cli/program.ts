@@ -180,6 +180,24 @@ export async function runProgram(argv: readonly string[]): Promise<void> {
     )
     .action(async (file, assets, options) => (await import('./exposure.js')).exposure(file, assets, options));
 
+  readsTracks(
+    models(
+      common(
+        program
+          .command('verify <FILES...>')
+          .description('Modelled against observed wind radii, radius of maximum wind and pressure.'),
+      ),
+    ),
+  )
+    .option('--hide <LIST>', 'observed values kept from the model: 34kt, 50kt, 64kt, rmax, pressure')
+    .option('--without-radii', 'hide the three radii and the radius of maximum wind')
+    .addOption(
+      new Option('--as <FORMAT>', 'table or drawing, to standard output or --out').choices(['csv', 'svg', 'png']),
+    )
+    .option('--out <FILE>', 'where the table or drawing goes')
+    .option('--force', 'replace an existing file')
+    .action(async (files, options) => (await import('./verify.js')).verify(files, options));
+
   common(program.command('recipe').description('The recipe in force with its sources; check one.'))
     .option('--recipe <FILE>', 'read and check this recipe')
     .option('--set <KEY=VALUE>', 'one modelling choice; may be repeated', gather)

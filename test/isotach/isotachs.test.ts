@@ -374,6 +374,52 @@ describe('the antimeridian and the poles', () => {
   });
 });
 
+describe('larger fields', () => {
+  /** three ridges and a wave over them */
+  const ridges = (column: number, row: number): number =>
+    12 + 9 * Math.sin(column / 31) + 9 * Math.cos(row / 23 + column / 57) + 4 * Math.sin((column + 2 * row) / 11);
+
+  it('a field quantised to the levels, with plateaus and gaps', () => {
+    const grid = geographic(176.41, -18, 0.02, 300, 250);
+    const field = Float32Array.from({ length: 75_000 }, (_, k) => {
+      const [column, row] = [k % 300, Math.floor(k / 300)];
+      return (column * 7 + row * 13) % 499 === 0 || Math.hypot(column - 200, row - 90) < 25
+        ? Number.NaN
+        : Math.round(ridges(column, row) * 2) / 2;
+    });
+    const levels = [5, 10, 12.5, 15, 17.5, 20, 22.5, 25];
+    for (const bands of [false, true])
+      expect(problemsOf(isotachs(field, grid, { levelsMps: levels, bands }))).toEqual([]);
+  });
+
+  it('independent: d3-contour gives the same areas in degrees and as many rings', async () => {
+    const module = 'd3-contour';
+    const { contours } = (await import(module)) as {
+      contours: () => {
+        size: (size: number[]) => { contour: (values: Float64Array, level: number) => { coordinates: number[][][][] } };
+      };
+    };
+    const [nx, ny] = [220, 180];
+    const grid = geographic(-60, 0, 0.01, nx, ny);
+    // falls to nothing at the border, where the two have different conventions
+    const field = Float64Array.from({ length: nx * ny }, (_, k) => {
+      const [column, row] = [k % nx, Math.floor(k / nx)];
+      return ridges(column, row) * Math.sin((Math.PI * column) / (nx - 1)) * Math.sin((Math.PI * row) / (ny - 1));
+    });
+    const planar = (polygons: readonly (readonly (readonly (readonly number[])[])[])[]): number =>
+      polygons.flat().reduce((total, ring) => {
+        let sum = 0;
+        for (let i = 1; i < ring.length; i++) sum += ring[i - 1]![0]! * ring[i]![1]! - ring[i]![0]! * ring[i - 1]![1]!;
+        return total + sum / 2;
+      }, 0);
+    for (const one of isotachs(field, grid, { levelsMps: [4, 9.3, 15.1, 21] })) {
+      const other = contours().size([nx, ny]).contour(field, one.thresholdMps).coordinates;
+      expect(one.polygons.flat()).toHaveLength(other.flat().length);
+      expect(planar(one.polygons) / (Math.abs(planar(other)) * 1e-4)).toBeCloseTo(1, 4);
+    }
+  });
+});
+
 describe('what is asked for', () => {
   it('islands, lakes and islands in lakes', () => {
     const field = new Float32Array(81);

@@ -105,6 +105,7 @@ export function swathWork(
     thresholdsMps: HOURS_THRESHOLDS_MPS,
     hours: options.peakOnly !== true,
   });
+  const counts = options.peakOnly !== true;
   const offsetS = (fromMs - model.path.startMs) / 1000;
   const cautions = moments.complete
     ? []
@@ -121,9 +122,13 @@ export function swathWork(
         const { cells } = bounds;
         const { arrays } = arithmetic;
         if (!runner.run(tile, bounds)) continue;
+        if (counts)
+          for (let h = 0; h < fields.hours.length; h++) {
+            const [from, to] = [arrays.hours[h]!, fields.hours[h]!];
+            for (let i = 0; i < tile.count; i++) to[cells[i]!] = from[i]!;
+          }
         for (let i = 0; i < tile.count; i++) {
           const k = cells[i]!;
-          for (let h = 0; h < fields.hours.length; h++) fields.hours[h]![k] = arrays.hours[h]![i]!;
           const wind = tile.windMps[i]!;
           if (!(wind > 0)) continue;
           fields.windMps[k] = wind;

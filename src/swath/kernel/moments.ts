@@ -26,8 +26,12 @@ const MOST_HARMONICS = 10;
 const PROBES = 32;
 /** A frame in the kernel's memory, padded. */
 const FRAME_FLOATS = 8;
-/** Splits of a leg at most: 2⁵ tables of a leg are built, the others interpolated. */
-const MOST_SPLITS = 5;
+/** Splits of a leg at most: 2³ tables of a leg are built, the others interpolated. */
+const MOST_SPLITS = 3;
+/** Floats that all tables of a storm may take; beyond it fewer tables serve for longer. */
+const MOST_FLOATS = 80_000_000;
+/** Harmonics of the direction at most: 2° are promised of it. */
+const MOST_WIND_HARMONICS = 5;
 
 /** The tables of a storm in time. */
 export interface Moments {
@@ -55,6 +59,19 @@ export function momentsOf(model: WindModel, timeline: Timeline, arithmetic: Arit
   }
 
   // slots of the tables that are interpolated: as many between two built ones as the wind changes
+  const wanted = (leg: Leg, a: Built, b: Built): number => {
+    const fine = 1 << leg.depth;
+    const maxWindMps = timeline.frame(leg.first + Math.round(0.5 * (a.at + b.at) * fine))[9]!;
+    const parts = Math.ceil((farthestApart(a.table, b.table, layout, maxWindMps) * maxWindMps) / SLOT_MPS) || 1;
+    return Math.min(parts, Math.max(1, Math.round((b.at - a.at) * fine)));
+  };
+  const partsOf = timeline.legs.map((leg, number) => {
+    const list = legTables[number]!;
+    return list.slice(1).map((b, i) => wanted(leg, list[i]!, b));
+  });
+  const asked =
+    partsOf.flat().reduce((sum, parts) => sum + parts + 1, 1) * layout.rows * (layout.speedStride + layout.windStride);
+  const thin = Math.max(1, asked / MOST_FLOATS);
   const slots = new Int32Array(timeline.count);
   const slotFrom: { readonly a: Built; readonly b: Built; readonly t: number }[] = [];
   for (const [number, leg] of timeline.legs.entries()) {
@@ -63,12 +80,7 @@ export function momentsOf(model: WindModel, timeline: Timeline, arithmetic: Arit
     let serving = 0;
     for (let i = 0; i + 1 < list.length; i++) {
       const [a, b] = [list[i]!, list[i + 1]!];
-      const most = Math.max(1, Math.round((b.at - a.at) * fine));
-      const maxWindMps = timeline.frame(leg.first + Math.round(0.5 * (a.at + b.at) * fine))[9]!;
-      const parts = Math.min(
-        most,
-        Math.ceil((farthestApart(a.table, b.table, layout, maxWindMps) * maxWindMps) / SLOT_MPS) || 1,
-      );
+      const parts = Math.max(1, Math.round(partsOf[number]![i]! / thin));
       const first = slotFrom.length;
       for (let part = 0; part <= parts; part++) slotFrom.push({ a, b, t: part / parts });
       for (; serving <= b.at * fine && leg.first + serving < timeline.count; serving++) {
@@ -179,10 +191,10 @@ function planTables(model: WindModel, timeline: Timeline): { layout: Layout; sam
         harmonics = Math.max(harmonics, Math.min(MOST_HARMONICS, needed));
         for (const part of [0, 1]) {
           const component = Array.from({ length: PROBES }, (_, i) => winds[2 * i + part]!);
-          // half a degree of the local wind
+          // a degree of the local wind
           windHarmonics = Math.max(
             windHarmonics,
-            Math.min(MOST_HARMONICS, harmonicsNeeded(component, 0.008 * Math.max(mean, 4), probe)),
+            Math.min(MOST_WIND_HARMONICS, harmonicsNeeded(component, 0.015 * Math.max(mean, 4), probe)),
           );
         }
       }

@@ -28,8 +28,10 @@ const PARABOLA_MPS = 0.01;
 const SEARCH_MPS = 0.03;
 /** A second maximum in time within this share of the first is looked at too. */
 const RIVAL_SHARE = 0.95;
-/** (r/R)² about the ridge of the profile within which the wind of a peak may have a corner in time. */
-const CORNER_X = [0.4, 2.4] as const;
+/** (r/R)² at which winds have corners: the radius of maximum wind, and 1.2 of it, where the inflow stops turning [Sobey1977]. */
+const CORNERS_X = [1, 1.44] as const;
+/** (r/R)² about them within which the wind of a peak may have a corner in time. */
+const CORNER_X = [0.4, 3] as const;
 /** What a corner may hide between moments, m/s. */
 const CORNER_MPS = 0.4;
 /** Moments about a corner at which it is checked, as a share of its bracket. */
@@ -462,10 +464,13 @@ export function tileRunner(
       found.index = bestMoment[i]!;
       if (best[i]! < CALM_MPS) found.peak = best[i]!;
       else if (off > SEARCH_MPS) search(i, bestMoment[i]!);
-      else if (squared[i]! > CORNER_X[0] && squared[i]! < CORNER_X[1]) corner(i, bestMoment[i]!);
+      else if (squared[i]! > CORNER_X[0] && squared[i]! < CORNER_X[1]) corners(i, bestMoment[i]!);
       // estimates are off where the wind has a corner: the second may be the first
       if (second[i]! > RIVAL_SHARE * found.peak && second[i]! > CALM_MPS) rival(i, second[i]!, secondMoment[i]!);
       tile.windMps[i] = found.peak;
+      // a parabola over a corner may have counted a wind that was never there
+      if (options.hours)
+        for (let h = 0; h < thresholdsMps.length; h++) if (found.peak < thresholdsMps[h]!) arrays.hours[h]![i] = 0;
       tile.peakS[i] = (timeline.timeMs(found.index) - startMs) / 1000;
       const nearest = Math.round(found.index);
       if (nearest === tile.peakIndex[i]) continue;
@@ -481,16 +486,13 @@ export function tileRunner(
 
   /** The peak at another local maximum, where it is higher than the one that was found. */
   function rival(i: number, estimate: number, moment: number): void {
-    const { peak, index } = found;
+    const { peak } = found;
     const wind = speedAt(i, moment);
     // by as much as its estimate is off it may be off itself
-    const x = ridgeAt(i, moment) + 1;
+    const x = squaredRatio(i, moment);
     const cornered = x > CORNER_X[0] && x < CORNER_X[1] ? CORNER_MPS : 0;
     if (Math.max(wind, estimate) + Math.abs(wind - estimate) + cornered + ROUNDING_MPS < peak) return;
-    search(i, moment);
-    if (found.peak > peak) return;
-    found.peak = peak;
-    found.index = index;
+    searchOn(i, moment);
   }
 
   /** Moments of the walk on both sides of an estimate. */
@@ -507,51 +509,68 @@ export function tileRunner(
     high = next + 1 < count && broken[next + 1] === 0 ? walkIndex[next + 1]! : walkIndex[next]!;
   }
 
-  /** Looks at the moments about an estimate at which the ridge of the profile passes: there the wind may have a corner. */
-  function corner(i: number, moment: number): void {
+  /** Looks at the moments about an estimate at which a corner of the profile passes. */
+  function corners(i: number, moment: number): void {
     bracket(moment);
     const [from, to] = [low, high];
-    const [a, b, c] = [ridgeAt(i, from), ridgeAt(i, moment), ridgeAt(i, to)];
-    if (a < 0 !== b < 0) passing(i, from, a, moment, b);
-    if (b < 0 !== c < 0) passing(i, moment, b, to, c);
-    if (a < 0 !== b < 0 || b < 0 !== c < 0 || !(from < moment && moment < to)) return;
-    // (r/R)² is close to a parabola in time: it may touch the ridge between two moments
-    const bend =
-      ((a - b) * (to - moment) - (c - b) * (from - moment)) / ((from - moment) * (to - moment) * (from - to));
-    const slope = (a - b) / (from - moment) - bend * (from - moment);
-    const vertex = moment - (0.5 * slope) / bend;
-    if (!(vertex > from && vertex < to)) return;
-    const x = ridgeAt(i, vertex);
-    if (x < 0 === a < 0) return;
-    passing(i, from, a, vertex, x);
-    passing(i, vertex, x, to, c);
-  }
-
-  /** The ridge passes between two moments: the wind then, and whether it is a peak there. */
-  function passing(i: number, from: number, a: number, to: number, b: number): void {
-    let at = from + ((to - from) * a) / (a - b);
-    const x = ridgeAt(i, at);
-    // one more step of the secant
-    if (x < 0 === a < 0) at = a === x ? at : at + ((to - at) * x) / (x - b);
-    else at = from + ((at - from) * a) / (a - x);
-    const wind = speedAt(i, at);
-    if (wind <= found.peak) return;
-    found.peak = wind;
-    found.index = at;
-    const d = CORNER_STEP * (to - from);
-    if (Math.max(speedAt(i, Math.max(low, at - d)), speedAt(i, Math.min(high, at + d))) > wind + 0.003) {
-      const [before, after] = [low, high];
-      search(i, at);
-      if (found.peak < wind) {
-        found.peak = wind;
-        found.index = at;
-      }
-      [low, high] = [before, after];
+    const [a, b, c] = [squaredRatio(i, from), squaredRatio(i, moment), squaredRatio(i, to)];
+    // (r/R)² is close to a parabola in time: it may touch a corner between two moments
+    let [vertex, lowest] = [-1, 0];
+    if (from < moment && moment < to) {
+      const bend =
+        ((a - b) * (to - moment) - (c - b) * (from - moment)) / ((from - moment) * (to - moment) * (from - to));
+      const slope = (a - b) / (from - moment) - bend * (from - moment);
+      vertex = moment - (0.5 * slope) / bend;
+      if (vertex > from && vertex < to) lowest = squaredRatio(i, vertex);
+      else vertex = -1;
+    }
+    for (const x of CORNERS_X) {
+      if (a < x !== b < x) passing(i, x, { from, a, to: moment, b });
+      if (b < x !== c < x) passing(i, x, { from: moment, a: b, to, b: c });
+      if (vertex < 0 || a < x !== b < x || b < x !== c < x || lowest < x === a < x) continue;
+      passing(i, x, { from, a, to: vertex, b: lowest });
+      passing(i, x, { from: vertex, a: lowest, to, b: c });
     }
   }
 
-  /** (r/R)² − 1 of a cell at a moment. */
-  function ridgeAt(i: number, moment: number): number {
+  /** A corner at x passes between two moments with (r/R)² of a and b: the wind then, and whether it is a peak there. */
+  function passing(i: number, x: number, between: { from: number; a: number; to: number; b: number }): void {
+    const { from, to } = between;
+    const [a, b] = [between.a - x, between.b - x];
+    let at = from + ((to - from) * a) / (a - b);
+    const off = squaredRatio(i, at) - x;
+    // one more step of the secant
+    if (off < 0 === a < 0) at = off === b ? at : at + ((to - at) * off) / (off - b);
+    else at = from + ((at - from) * a) / (a - off);
+    const wind = speedAt(i, at);
+    if (wind <= found.peak) {
+      // a hollow there may part the peak that was found from a higher one
+      if (wind < found.peak - CORNER_MPS) return;
+      const beside = Math.max(speedAt(i, 0.5 * (from + at)), speedAt(i, 0.5 * (at + to)));
+      if (beside > found.peak - ROUNDING_MPS) searchOn(i, at);
+      return;
+    }
+    found.peak = wind;
+    found.index = at;
+    const d = CORNER_STEP * (to - from);
+    if (Math.max(speedAt(i, Math.max(low, at - d)), speedAt(i, Math.min(high, at + d))) <= wind + SEARCHED_MPS) return;
+    searchOn(i, at);
+  }
+
+  /** Searches about a moment for a higher peak than the one that was found. */
+  function searchOn(i: number, moment: number): void {
+    const [from, to] = [low, high];
+    const { peak, index } = found;
+    search(i, moment);
+    if (found.peak < peak) {
+      found.peak = peak;
+      found.index = index;
+    }
+    [low, high] = [from, to];
+  }
+
+  /** (r/R)² of a cell at a moment. */
+  function squaredRatio(i: number, moment: number): number {
     const index = Math.floor(moment);
     const a = timeline.frame(index);
     const w = moment - index;
@@ -562,7 +581,7 @@ export function tileRunner(
       x[i]! * (a[5]! + w * (b[5]! - a[5]!)) +
       y[i]! * (a[6]! + w * (b[6]! - a[6]!)) +
       z[i]! * (a[7]! + w * (b[7]! - a[7]!));
-    return east * east + north * north - 1;
+    return east * east + north * north;
   }
 
   /** The highest moment around an estimate, between the neighbours that the walk has. */

@@ -44,8 +44,20 @@ export interface Moments {
   readonly place: (cell: number, index: number) => void;
 }
 
-/** Builds the tables of a storm as they are needed. */
+/** The tables of a storm as they are built, before any is interpolated: plain data. */
+export interface StormTables {
+  readonly layout: Layout;
+  readonly complete: boolean;
+  readonly legTables: readonly (readonly Built[])[];
+}
+
+/** The tables of a storm in the memory of a kernel. */
 export function momentsOf(model: WindModel, timeline: Timeline, arithmetic: Arithmetic): Moments {
+  return momentsFrom(stormTables(model, timeline), timeline, arithmetic);
+}
+
+/** Builds the tables of a storm. */
+export function stormTables(model: WindModel, timeline: Timeline): StormTables {
   const { layout, sampling, complete } = planTables(model, timeline);
   const build = (timeMs: number): MomentTable => tableOf(model.fieldAt(timeMs), layout, sampling);
   // where the model is continuous a fix serves the legs on both sides
@@ -58,6 +70,34 @@ export function momentsOf(model: WindModel, timeline: Timeline, arithmetic: Arit
     last = list[list.length - 1]!.table;
   }
 
+  return { layout, complete, legTables };
+
+  /** Tables of a leg, more of them where two do not explain the one in their middle. */
+  function tablesOfLeg(leg: Leg, start: MomentTable | null): readonly Built[] {
+    const list: Built[] = [{ at: 0, table: start ?? build(leg.startMs) }];
+    if (leg.endMs === leg.startMs) return list;
+    const split = (from: number, a: MomentTable, to: number, b: MomentTable, depth: number): void => {
+      const at = 0.5 * (from + to);
+      const middle = build(leg.startMs + at * (leg.endMs - leg.startMs));
+      const maxWindMps = timeline.frame(leg.first + Math.round(at * (1 << leg.depth)))[9]!;
+      const fine = depth >= Math.min(MOST_SPLITS, leg.depth) || explains(a, b, middle, layout, maxWindMps);
+      if (!fine) split(from, a, at, middle, depth + 1);
+      list.push({ at, table: middle });
+      if (!fine) split(at, middle, to, b, depth + 1);
+    };
+    const last = build(continuous ? leg.endMs : leg.endMs - 1);
+    split(0, list[0]!.table, 1, last, 1);
+    list.push({ at: 1, table: last });
+    return list;
+  }
+}
+
+/** Puts the tables of a storm into the memory of a kernel, those between two built ones as they are needed. */
+export function momentsFrom(
+  { layout, complete, legTables }: StormTables,
+  timeline: Timeline,
+  arithmetic: Arithmetic,
+): Moments {
   // slots of the tables that are interpolated: as many between two built ones as the wind changes
   const wanted = (leg: Leg, a: Built, b: Built): number => {
     const fine = 1 << leg.depth;
@@ -136,25 +176,6 @@ export function momentsOf(model: WindModel, timeline: Timeline, arithmetic: Arit
     arrays.windAt[cell] = windAt[slot]! - 1;
   };
   return { layout, complete, tableAt, place };
-
-  /** Tables of a leg, more of them where two do not explain the one in their middle. */
-  function tablesOfLeg(leg: Leg, start: MomentTable | null): readonly Built[] {
-    const list: Built[] = [{ at: 0, table: start ?? build(leg.startMs) }];
-    if (leg.endMs === leg.startMs) return list;
-    const split = (from: number, a: MomentTable, to: number, b: MomentTable, depth: number): void => {
-      const at = 0.5 * (from + to);
-      const middle = build(leg.startMs + at * (leg.endMs - leg.startMs));
-      const maxWindMps = timeline.frame(leg.first + Math.round(at * (1 << leg.depth)))[9]!;
-      const fine = depth >= Math.min(MOST_SPLITS, leg.depth) || explains(a, b, middle, layout, maxWindMps);
-      if (!fine) split(from, a, at, middle, depth + 1);
-      list.push({ at, table: middle });
-      if (!fine) split(at, middle, to, b, depth + 1);
-    };
-    const last = build(continuous ? leg.endMs : leg.endMs - 1);
-    split(0, list[0]!.table, 1, last, 1);
-    list.push({ at: 1, table: last });
-    return list;
-  }
 }
 
 /** How many rows and harmonics the fields of this storm need. */
@@ -261,10 +282,10 @@ export interface Placed extends Bounds {
 }
 
 /** Bounds that hold between two tables. */
-type Bounds = Pick<MomentTable, 'steepest' | 'steepestWithTaper' | 'bent' | 'bentWithTaper'>;
+export type Bounds = Pick<MomentTable, 'steepest' | 'steepestWithTaper' | 'bent' | 'bentWithTaper'>;
 
 /** A table at a share of its leg, and the bounds from there to the next one. */
-interface Built {
+export interface Built {
   readonly at: number;
   readonly table: MomentTable;
   bounds?: Bounds;

@@ -44,6 +44,12 @@ export interface Timeline {
   readonly frame: (index: number) => Float64Array;
 }
 
+/** A timeline as plain data, its frames filled: what another thread needs of it. */
+export interface TimelineData extends Pick<Timeline, 'legs' | 'count' | 'legNumber'> {
+  /** count × FRAME */
+  readonly frames: Float64Array;
+}
+
 /** The timeline of a model between two times. */
 export function timelineOf(model: WindModel, fromMs: number, toMs: number): Timeline {
   const { knotsMs } = model.path;
@@ -75,21 +81,37 @@ export function timelineOf(model: WindModel, fromMs: number, toMs: number): Time
       longestS: 0,
     });
   const count = legs.length === 1 && legs[0]!.depth === 0 ? 1 : first + 1;
-  const frames: (Float64Array | undefined)[] = new Array(count);
-
   const legNumber = new Uint16Array(count);
   for (const [number, leg] of legs.entries())
     legNumber.fill(number, leg.first, Math.min(count, leg.first + (1 << leg.depth) + 1));
-  const legOf = (index: number): Leg => legs[legNumber[Math.min(count - 1, Math.max(0, Math.floor(index)))]!]!;
+  return over({ legs, count, legNumber }, (timeMs) => frameOf(model.path.at(timeMs)));
+}
+
+/** The timeline of plain data. */
+export function timelineFrom({ frames, ...data }: TimelineData): Timeline {
+  return over(data, (_, index) => frames.subarray(index * FRAME, (index + 1) * FRAME));
+}
+
+/** A timeline as plain data. */
+export function timelineData({ legs, count, legNumber, frame }: Timeline): TimelineData {
+  const frames = new Float64Array(count * FRAME);
+  for (let index = 0; index < count; index++) frames.set(frame(index), index * FRAME);
+  return { legs, count, legNumber, frames };
+}
+
+function over(
+  { legs, count, legNumber }: Pick<Timeline, 'legs' | 'count' | 'legNumber'>,
+  frameAt: (timeMs: number, index: number) => Float64Array,
+): Timeline {
+  const frames: (Float64Array | undefined)[] = new Array(count);
   const timeMs = (index: number): number => {
-    const leg = legOf(index);
+    const leg = legs[legNumber[Math.min(count - 1, Math.max(0, Math.floor(index)))]!]!;
     return leg.startMs + ((leg.endMs - leg.startMs) * (index - leg.first)) / (1 << leg.depth);
   };
   const frame = (index: number): Float64Array => {
     const known = frames[index];
     if (known) return known;
-    const state = model.path.at(timeMs(index));
-    const made = frameOf(state);
+    const made = frameAt(timeMs(index), index);
     frames[index] = made;
     return made;
   };

@@ -95,10 +95,12 @@ function checkMemory(grid: Grid, cells: number): void {
 
 function swathFrom(model: WindModel, grid: Grid, fields: SwathFields, cautions: readonly string[]): Swath {
   const gust = gustFactorOf(model, 'at-sea');
+  const gustMps = new Float32Array(fields.windMps.length);
+  for (let k = 0; k < gustMps.length; k++) gustMps[k] = fields.windMps[k]! * gust;
   return {
     grid,
     windMps: fields.windMps,
-    gustMps: Float32Array.from(fields.windMps, (wind) => wind * gust),
+    gustMps,
     windFromDeg: fields.windFromDeg,
     peakTimeS: fields.peakTimeS,
     hoursAbove: HOURS_THRESHOLDS_MPS.map((thresholdMps, i) => ({ thresholdMps, hours: fields.hours[i]! })),

@@ -17,6 +17,8 @@ import type { Leg, Timeline } from './timeline.js';
 const SLOT_MPS = 0.03;
 /** A table is interpolated between two neighbours that explain the one in their middle within this, m/s. */
 const TOLERANCE_MPS = 0.02;
+/** Tables that differ by more than this, m/s, are not believed to explain the one in their middle. */
+const HIDDEN_MPS = 1;
 /** Winds below this need not be explained, m/s: nothing is promised of them. */
 const LEAST_MPS = 7.5;
 /** Truncation of the harmonics that is left out, m/s. */
@@ -26,8 +28,8 @@ const MOST_HARMONICS = 10;
 const PROBES = 32;
 /** A frame in the kernel's memory, padded. */
 const FRAME_FLOATS = 8;
-/** Splits of a leg at most: 2³ tables of a leg are built, the others interpolated. */
-const MOST_SPLITS = 3;
+/** Splits of a leg at most, and where many harmonics make tables dear: the tables between are interpolated. */
+const MOST_SPLITS = [6, 3] as const;
 /** Floats that all tables of a storm may take; beyond it fewer tables serve for longer. */
 const MOST_FLOATS = 80_000_000;
 /** Harmonics of the direction at most: 2° are promised of it. */
@@ -80,7 +82,11 @@ export function stormTables(model: WindModel, timeline: Timeline): StormTables {
       const at = 0.5 * (from + to);
       const middle = build(leg.startMs + at * (leg.endMs - leg.startMs));
       const maxWindMps = timeline.frame(leg.first + Math.round(at * (1 << leg.depth)))[9]!;
-      const fine = depth >= Math.min(MOST_SPLITS, leg.depth) || explains(a, b, middle, layout, maxWindMps);
+      // what bends one way first and then the other may pass through the mean in the middle
+      const hidden = depth < 3 && farthestApart(a, b, layout, maxWindMps) * maxWindMps > HIDDEN_MPS;
+      const fine =
+        depth >= Math.min(MOST_SPLITS[layout.harmonics > 2 ? 1 : 0], leg.depth) ||
+        (!hidden && explains(a, b, middle, layout, maxWindMps));
       if (!fine) split(from, a, at, middle, depth + 1);
       list.push({ at, table: middle });
       if (!fine) split(at, middle, to, b, depth + 1);

@@ -165,7 +165,8 @@ export function tableOf(field: WindField, layout: Layout, sampling: Sampling): M
       const next = speeds[(i + 1) % count]!;
       const previous = speeds[(i + count - 1) % count]!;
       around = Math.max(around, Math.abs(speeds[i]! - next));
-      if (row > 0) {
+      // rows beyond the antipodes stand at one radius
+      if (row > 0 && radiusM > lastRadius) {
         const slope = (speeds[i]! - lastSpeeds[i]!) / (radiusM - lastRadius);
         radial = Math.max(radial, Math.abs(slope));
         const outward = row > 1 ? Math.abs(slope - slopes[i]!) / (middle - lastMiddle) : 0;

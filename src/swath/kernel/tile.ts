@@ -26,6 +26,8 @@ const ROUNDING_MPS = 0.02;
 const PARABOLA_MPS = 0.01;
 /** Farther off than this, the peak is searched for, m/s. */
 const SEARCH_MPS = 0.03;
+/** Farther off than this, both sides of the vertex are looked at, m/s. */
+const DOUBT_MPS = 0.004;
 /** A second maximum in time within this share of the first is looked at too. */
 const RIVAL_SHARE = 0.95;
 /** (r/R)² at which winds have corners: the radius of maximum wind, and 1.2 of it, where the inflow stops turning [Sobey1977]. */
@@ -37,9 +39,9 @@ const CORNER_MPS = 0.4;
 /** Moments about a corner at which it is checked, as a share of its bracket. */
 const CORNER_STEP = 0.05;
 /** Moments between the neighbours of an estimate at which a search looks first. */
-const SEARCH_MOMENTS = 16;
+const SEARCH_MOMENTS = 10;
 /** A search ends when its neighbours are this near, m/s, or nearer than this share of a fine step. */
-const SEARCHED_MPS = 0.0005;
+const SEARCHED_MPS = 0.001;
 const SEARCHED_STEP = 0.005;
 
 /** The cells of a tile, and what was found for each. The arrays of cells and hours are the kernel's. */
@@ -264,7 +266,7 @@ export function tileRunner(
       const room = leg.first + (1 << leg.depth) - index;
       const fine = (stepS * 1000) / leg.fineMs;
       if (fine >= room) index += room;
-      else if (fine < 4) index += Math.max(1, Math.floor(fine));
+      else if (!(fine >= 4)) index += Math.max(1, Math.floor(fine));
       else {
         const unit = 1 << (29 - Math.clz32(fine));
         index = leg.first + ((Math.floor((index - leg.first + fine) / unit) * unit) | 0);
@@ -464,7 +466,10 @@ export function tileRunner(
       found.index = bestMoment[i]!;
       if (best[i]! < CALM_MPS) found.peak = best[i]!;
       else if (off > SEARCH_MPS) search(i, bestMoment[i]!);
-      else if (squared[i]! > CORNER_X[0] && squared[i]! < CORNER_X[1]) corners(i, bestMoment[i]!);
+      else {
+        if (off > DOUBT_MPS) doubt(i, bestMoment[i]!);
+        if (squared[i]! > CORNER_X[0] && squared[i]! < CORNER_X[1]) corners(i, bestMoment[i]!);
+      }
       // estimates are off where the wind has a corner: the second may be the first
       if (second[i]! > RIVAL_SHARE * found.peak && second[i]! > CALM_MPS) rival(i, second[i]!, secondMoment[i]!);
       tile.windMps[i] = found.peak;
@@ -507,6 +512,14 @@ export function tileRunner(
     low = k === 0 || broken[k] === 1 ? walkIndex[k]! : walkIndex[k - 1]!;
     const next = k + 1 < count && broken[k + 1] === 0 ? k + 1 : k;
     high = next + 1 < count && broken[next + 1] === 0 ? walkIndex[next + 1]! : walkIndex[next]!;
+  }
+
+  /** Looks on both sides of an estimate: near a corner in time a parabola may agree with the wind below the peak. */
+  function doubt(i: number, moment: number): void {
+    bracket(moment);
+    const before = speedAt(i, Math.round(moment - (moment - low) / 3));
+    const after = speedAt(i, Math.round(moment + (high - moment) / 3));
+    if (Math.max(before, after) > found.peak) searchOn(i, moment);
   }
 
   /** Looks at the moments about an estimate at which a corner of the profile passes. */

@@ -5,6 +5,7 @@ import type { Grid } from './grid.js';
 import type { Arithmetic } from './kernel/arithmetic.js';
 import type { Rows } from './kernel/pool.js';
 import { newFields, type SwathFields, swathPlan, swathWork } from './kernel/work.js';
+import { settlePeaks } from './settle-peaks.js';
 import type { Swath } from './swath.js';
 
 export interface PeakOptions extends SwathOptions {
@@ -58,11 +59,22 @@ export async function peakSwath(model: WindModel, grid: Grid, options: PeakOptio
   } finally {
     work.done();
   }
-  return swathFrom(model, grid, helped ? unshared(fields) : fields, plan.tables.complete ? [] : [INCOMPLETE]);
+  const cautions = plan.tables.complete ? [] : [INCOMPLETE];
+  if (options.surface?.rowOf.some((row) => row > 0)) cautions.push(OPEN_SEA);
+  const own = helped ? unshared(fields) : fields;
+  if (!plan.tables.complete) {
+    settlePeaks(model, grid, own, {
+      fromMs: options.fromMs ?? model.path.startMs,
+      toMs: options.toMs ?? model.path.endMs,
+    });
+  }
+  return swathFrom(model, grid, own, cautions);
 }
 
 const INCOMPLETE =
-  'the wind varies more around the centre than the fast tables hold; peaks may be off by more than 0.05 m/s';
+  'the wind varies more around the centre than the fast tables hold: peaks were taken from the plain model at the times that the tables gave; hours may be off by more than 1 %';
+
+const OPEN_SEA = 'the winds are those over open sea everywhere: the fast swath does not take a surface map yet';
 
 /** Fields in memory of this thread alone, which every writer takes. */
 function unshared({ windMps, windFromDeg, peakTimeS, hours }: SwathFields): SwathFields {

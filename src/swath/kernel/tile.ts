@@ -496,8 +496,9 @@ export function tileRunner(
     // by as much as its estimate is off it may be off itself
     const x = squaredRatio(i, moment);
     const cornered = x > CORNER_X[0] && x < CORNER_X[1] ? CORNER_MPS : 0;
-    if (Math.max(wind, estimate) + Math.abs(wind - estimate) + cornered + ROUNDING_MPS < peak) return;
-    searchOn(i, moment);
+    const highest = Math.max(wind, estimate) + Math.abs(wind - estimate) + ROUNDING_MPS;
+    if (highest >= peak) searchOn(i, moment);
+    else if (highest + cornered >= peak) corners(i, moment);
   }
 
   /** Moments of the walk on both sides of an estimate. */
@@ -601,28 +602,30 @@ export function tileRunner(
   function search(i: number, moment: number): void {
     bracket(moment);
     // corners and close double peaks: look at moments between first, then around the two highest
-    const step = (high - low) / SEARCH_MOMENTS;
-    for (let m = 0; m <= SEARCH_MOMENTS; m++) looked[m] = speedAt(i, low + m * step);
+    const x = squaredRatio(i, moment);
+    const parts = x > CORNER_X[0] && x < CORNER_X[1] ? SEARCH_MOMENTS : SEARCH_MOMENTS / 2;
+    const step = (high - low) / parts;
+    for (let m = 0; m <= parts; m++) looked[m] = speedAt(i, low + m * step);
     let [one, two] = [-1, -1];
-    for (let m = 0; m <= SEARCH_MOMENTS; m++) {
-      if ((m > 0 && looked[m - 1]! > looked[m]!) || (m < SEARCH_MOMENTS && looked[m + 1]! >= looked[m]!)) continue;
+    for (let m = 0; m <= parts; m++) {
+      if ((m > 0 && looked[m - 1]! > looked[m]!) || (m < parts && looked[m + 1]! >= looked[m]!)) continue;
       if (one < 0 || looked[m]! > looked[one]!) [one, two] = [m, one];
       else if (two < 0 || looked[m]! > looked[two]!) two = m;
     }
     if (one < 0) one = 0;
     const from = low;
-    around(i, from, step, one);
-    if (two < 0) return;
+    around(i, from, step, one, parts);
+    if (two < 0 || looked[two]! < looked[one]! - CORNER_MPS) return;
     const { peak, index } = found;
-    around(i, from, step, two);
+    around(i, from, step, two, parts);
     if (found.peak > peak) return;
     found.peak = peak;
     found.index = index;
   }
 
-  function around(i: number, first: number, step: number, m: number): void {
+  function around(i: number, first: number, step: number, m: number, parts: number): void {
     const from = first + Math.max(0, m - 1) * step;
-    const to = first + Math.min(SEARCH_MOMENTS, m + 1) * step;
+    const to = first + Math.min(parts, m + 1) * step;
     halve(i, from, first + m * step, to);
   }
 

@@ -1,0 +1,48 @@
+import { type WindModel, windOf } from '../model/wind.js';
+import { cellCentre, type Grid, projection } from './grid.js';
+import type { SwathFields } from './kernel/work.js';
+
+/** Minutes around the time that the tables gave at which the plain model is asked too. */
+const AROUND_MIN = [0, -4, 4, -10, 10] as const;
+const MINUTE_MS = 60_000;
+
+/**
+ * Takes each cell's peak from the plain model, at the time that the tables gave and a few minutes around it: for fields
+ * that vary more around the centre than the tables hold, such as those fitted to observed radii. Cells are taken by time,
+ * so that a moment's field is built once.
+ */
+export function settlePeaks(
+  model: WindModel,
+  grid: Grid,
+  fields: SwathFields,
+  period: { fromMs: number; toMs: number },
+): void {
+  const { windMps, windFromDeg, peakTimeS } = fields;
+  const originMs = model.path.startMs;
+  const byMinute = new Map<number, number[]>();
+  const first = Math.ceil((period.fromMs - originMs) / MINUTE_MS);
+  const last = Math.floor((period.toMs - originMs) / MINUTE_MS);
+  for (let k = 0; k < windMps.length; k++) {
+    if (!(windMps[k]! > 0)) continue;
+    for (const around of AROUND_MIN) {
+      const minute = Math.min(last, Math.max(first, Math.round(peakTimeS[k]! / 60) + around));
+      const cells = byMinute.get(minute);
+      if (!cells) byMinute.set(minute, [k]);
+      else if (cells[cells.length - 1] !== k) cells.push(k);
+    }
+  }
+  const { inverse } = projection(grid.crs);
+  const best = new Float32Array(windMps.length);
+  for (const [minute, cells] of byMinute) {
+    const field = model.fieldAt(originMs + minute * MINUTE_MS);
+    for (const k of cells) {
+      const [lonDeg, latDeg] = inverse(...cellCentre(grid, k % grid.nx, Math.floor(k / grid.nx)));
+      const { speedMps, fromDeg } = windOf(field, { latDeg, lonDeg });
+      if (!(speedMps > best[k]!)) continue;
+      best[k] = speedMps;
+      windFromDeg[k] = fromDeg;
+      peakTimeS[k] = minute * 60;
+    }
+  }
+  for (let k = 0; k < best.length; k++) if (best[k]! > 0) windMps[k] = best[k]!;
+}

@@ -43,11 +43,11 @@ for (const withSize of [false, true]) {
       floor: 0.3,
     });
   const errors = (part, c) => part.map(({ x, y }) => Math.exp(x.reduce((sum, v, i) => sum + v * c[i], 0)) - y);
-  const all = fit(rows);
+  const all = fitted(rows);
   const crossed = Array.from({ length: FOLDS }, (_, k) =>
     errors(
       rows.filter(({ fold }) => fold === k),
-      fit(rows.filter(({ fold }) => fold !== k)),
+      fitted(rows.filter(({ fold }) => fold !== k)),
     ),
   ).flat();
   console.log(

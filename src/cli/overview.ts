@@ -9,8 +9,6 @@ Usage: galewake COMMAND [options]
   sites FILE PLACES        wind against time at places
   exposure FILE ASSETS     what stands in the wind
   verify FILE...           modelled against observed wind radii
-  events run|plan|shard|missing|reduce|submit|show
-                           event sets, on one machine or many
   recipe                   the modelling choices in force, with their sources
 
 galewake COMMAND --help tells the options of a command; --version the version.

@@ -26,15 +26,22 @@ export function outerExponent(
   return Math.log(outer.windMps / core.maxWindMps) / (Math.log(u) + 1 - u);
 }
 
-/** Bounds of x_n in a model that runs through all stages of a storm; own choice. */
-const EXPONENT_BOUNDS = [0.25, 1.5] as const;
+/** Largest x_n in a model that runs through all stages of a storm; own choice. */
+const MOST_EXPONENT = 1.5;
+
+/** The least x_n with which the wind does not rise again before the outer wind: its slope there is not positive. */
+function leastExponent(outerRadiusM: number, core: { readonly radiusOfMaxWindM: number; readonly b: number }): number {
+  const u = (core.radiusOfMaxWindM / outerRadiusM) ** core.b;
+  const gain = (u - 1 - Math.log(u)) / (outerRadiusM - core.radiusOfMaxWindM);
+  return (0.5 * gain) / ((core.b * (1 - u)) / outerRadiusM + gain);
+}
 
 /**
  * V = V_m [s⁻ᵇ exp(1 − s⁻ᵇ)]ˣ, s = r/R; x = ½ inside R, outside x = ½ + (r − R)(x_n − ½)/(r_n − R), held at x_n beyond r_n
  * (own choice: it would grow without limit)   [HollandBelangerFritz2010, from memory].
  * b is the storm's B. The outer wind is a 10-m wind of the vortex, without the motion's part (`vortex.outer_wind_mps` at
  * `vortex.outer_wind_radius_km`), brought to the profile's level by `surface.factor`; without one x is ½ everywhere. While
- * the storm is too weak or too wide for the observation, x_n is limited to 0.25–1.5.
+ * the storm is too weak or too wide for the observation, x_n is limited to 1.5 and to what keeps the wind falling outward.
  */
 export const hollandBelangerFritz2010: ProfileMethod = {
   id: 'holland-belanger-fritz-2010',
@@ -50,8 +57,10 @@ export const hollandBelangerFritz2010: ProfileMethod = {
             radiusM: Math.max(radiusKm * 1000, 1.2 * radiusOfMaxWindM),
             windMps: Math.min((numbers['outer_wind_mps'] ?? 17.5) / (numbers['factor'] ?? 0.9), 0.99 * maxWindMps),
           };
-    const [least, most] = EXPONENT_BOUNDS;
-    const xn = outer ? Math.min(most, Math.max(least, outerExponent(outer, { maxWindMps, radiusOfMaxWindM, b }))) : 0.5;
+    const core = { maxWindMps, radiusOfMaxWindM, b };
+    const xn = outer
+      ? Math.min(MOST_EXPONENT, Math.max(leastExponent(outer.radiusM, core), outerExponent(outer, core)))
+      : 0.5;
     const reach = outer ? outer.radiusM - radiusOfMaxWindM : 1;
     return {
       windMps: (radiusM) => {

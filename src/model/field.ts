@@ -66,8 +66,18 @@ export function fieldMethods(recipe: Recipe): FieldMethods {
     airDensityKgM3: recipeNumber(recipe, 'vortex.density_kgm3'),
     maximumIs: recipeWord(recipe, 'vortex.maximum') as VortexInput['maximumIs'],
     toOneMinute: averagingFactor('at-sea', { fromS: recipeNumber(recipe, 'wind.averaging_s'), toS: 60 }),
-    numbers: { exponent: recipeNumber(recipe, 'vortex.exponent'), factor: recipeNumber(recipe, 'surface.factor') },
+    numbers: methodNumbers(recipe),
   };
+}
+
+/** Numbers of single methods: every `vortex.` and `surface.` entry that is a number, by its name after the dot. */
+function methodNumbers(recipe: Recipe): Record<string, number> {
+  const numbers: Record<string, number> = {};
+  for (const [key, value] of Object.entries(recipe)) {
+    const [group, name] = key.split('.') as [string, string];
+    if (typeof value === 'number' && (group === 'vortex' || group === 'surface')) numbers[name] = value;
+  }
+  return numbers;
 }
 
 /** Share of the outer radius over which the wind is tapered to zero. */

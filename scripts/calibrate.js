@@ -35,7 +35,7 @@ for (const withSize of [false, true]) {
         ...(withSize ? [Math.log(fix.meanOf34Km / 160)] : []),
       ],
     }));
-  const fit = (part) =>
+  const fitted = (part) =>
     fitAbsolute({
       start: [3.2, 1.8, 0, 0, ...(withSize ? [0] : [])],
       residuals: (c) => part.map(({ x, y }) => Math.exp(x.reduce((sum, v, i) => sum + v * c[i], 0)) - y),

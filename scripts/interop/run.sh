@@ -5,7 +5,7 @@ out=${1:-out}
 here=$(dirname "$0")
 root=$(cd "$here/../.." && pwd)
 python=/usr/bin/python3
-folders=$(find "$out" -name summary.json -printf '%h\n' | sort)
+folders=$(find "$out" -name peak.nc -printf '%h\n' | sort)
 
 $python "$here/check_rasters.py" $folders
 bash "$here/check_vectors.sh" $folders
@@ -13,6 +13,8 @@ $python "$here/check_polygons.py" $(find "$out" -name '*.geojson')
 
 work=$(mktemp -d)
 trap 'rm -rf "$work"' EXIT
+node "$here/isotach_samples.js" "$work/samples"
+$python "$here/check_polygons.py" "$work/samples"
 node "$root/dist/cli/main.js" swath "$root/fixtures/steady-curve.csv" --bounds=-72,14.5,-60,30.5 --cell 0.1 \
   --set vortex.profile=holland-1980 --set vortex.maximum=cyclostrophic --set path.interpolation=linear \
   --set surface.motion=vector --set surface.motion_fraction=0.6 --set surface.motion_rotation_deg=0 \

@@ -62,7 +62,8 @@ export async function peakSwath(model: WindModel, grid: Grid, options: PeakOptio
   const cautions = plan.tables.complete ? [] : [INCOMPLETE];
   if (options.surface?.rowOf.some((row) => row > 0)) cautions.push(OPEN_SEA);
   const own = helped ? unshared(fields) : fields;
-  if (!plan.tables.complete) {
+  // a few samples cannot show every wiggle of a field with many harmonics
+  if (!plan.tables.complete || plan.tables.layout.harmonics > SURE_HARMONICS) {
     settlePeaks(model, grid, own, {
       fromMs: options.fromMs ?? model.path.startMs,
       toMs: options.toMs ?? model.path.endMs,
@@ -70,6 +71,9 @@ export async function peakSwath(model: WindModel, grid: Grid, options: PeakOptio
   }
   return swathFrom(model, grid, own, cautions);
 }
+
+/** Up to so many harmonics the tables hold a field without doubt. */
+const SURE_HARMONICS = 2;
 
 const INCOMPLETE =
   'the wind varies more around the centre than the fast tables hold: peaks were taken from the plain model at the times that the tables gave; hours may be off by more than 1 %';

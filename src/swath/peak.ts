@@ -62,8 +62,8 @@ export async function peakSwath(model: WindModel, grid: Grid, options: PeakOptio
   const cautions = plan.tables.complete ? [] : [INCOMPLETE];
   if (options.surface?.rowOf.some((row) => row > 0)) cautions.push(OPEN_SEA);
   const own = helped ? unshared(fields) : fields;
-  // a few samples cannot show every wiggle of a field with many harmonics
-  if (!plan.tables.complete || plan.tables.layout.harmonics > SURE_HARMONICS) {
+  // what the few probes of the tables may miss in a field that was fitted, the plain model knows
+  if (!plan.tables.complete || isFitted(model)) {
     settlePeaks(model, grid, own, {
       fromMs: options.fromMs ?? model.path.startMs,
       toMs: options.toMs ?? model.path.endMs,
@@ -72,8 +72,14 @@ export async function peakSwath(model: WindModel, grid: Grid, options: PeakOptio
   return swathFrom(model, grid, own, cautions);
 }
 
-/** Up to so many harmonics the tables hold a field without doubt. */
-const SURE_HARMONICS = 2;
+/** Whether observed wind radii shape the field of a model. */
+function isFitted(model: WindModel): boolean {
+  const observed = ({ radiiM }: { radiiM: readonly (number | null)[] }): boolean =>
+    radiiM.some((radius) => radius !== null);
+  return (
+    model.recipe['vortex.radii'] === 'fit' && model.completed.fixes.some(({ fix }) => fix.windRadii.some(observed))
+  );
+}
 
 const INCOMPLETE =
   'the wind varies more around the centre than the fast tables hold: peaks were taken from the plain model at the times that the tables gave; hours may be off by more than 1 %';

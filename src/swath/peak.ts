@@ -82,7 +82,7 @@ function isFitted(model: WindModel): boolean {
 }
 
 const INCOMPLETE =
-  'the wind varies more around the centre than the fast tables hold: peaks were taken from the plain model at the times that the tables gave; hours may be off by more than 1 %';
+  'the wind varies more around the centre than the fast tables hold: peaks were taken from the plain model at the times that the tables gave; they may be low by 0.2 m/s where two maxima in time come near each other, and hours may be off by more than 1 %';
 
 const OPEN_SEA = 'the winds are those over open sea everywhere: the fast swath does not take a surface map yet';
 

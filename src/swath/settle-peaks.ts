@@ -2,12 +2,12 @@ import { type WindModel, windOf } from '../model/wind.js';
 import { cellCentre, type Grid, projection } from './grid.js';
 import type { SwathFields } from './kernel/work.js';
 
-/** Minutes around the time that the tables gave at which the plain model is asked too. */
-const AROUND_MIN = [0, -4, 4, -10, 10] as const;
+/** Minutes from the time that the tables gave at which the plain model is asked: a broad peak may lie off by hours. */
+const AROUND_MIN = [0, -4, 4, -10, 10, -20, 20, -40, 40, -80, 80] as const;
 const MINUTE_MS = 60_000;
 
 /**
- * Takes each cell's peak from the plain model, at the time that the tables gave and a few minutes around it: for fields
+ * Takes each cell's peak from the plain model, at the time that the tables gave and at moments around it: for fields
  * that vary more around the centre than the tables hold, such as those fitted to observed radii. Cells are taken by time,
  * so that a moment's field is built once.
  */

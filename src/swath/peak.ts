@@ -2,8 +2,8 @@ import { LimitError } from '../errors.js';
 import type { WindModel } from '../model/wind.js';
 import { gustFactorOf, HOURS_THRESHOLDS_MPS, type SwathOptions } from './exact.js';
 import type { Grid } from './grid.js';
-import type { Arithmetic } from './kernel/arithmetic.js';
-import type { Rows } from './kernel/pool.js';
+import type { Engine } from './kernel/engine.js';
+import type { Tiles } from './kernel/pool.js';
 import { newFields, type SwathFields, swathPlan, swathWork } from './kernel/work.js';
 import { settlePeaks } from './settle-peaks.js';
 import type { Swath } from './swath.js';
@@ -14,7 +14,7 @@ export interface PeakOptions extends SwathOptions {
   /** threads; by default one a core. The result is the same for any number */
   readonly jobs?: number;
   /** the hot loops, on this thread alone; WebAssembly where there is any */
-  readonly arithmetic?: Arithmetic;
+  readonly engine?: Engine;
   readonly signal?: AbortSignal;
   readonly onProgress?: (share: number) => void;
 }
@@ -35,19 +35,19 @@ export async function peakSwath(model: WindModel, grid: Grid, options: PeakOptio
   checkMemory(grid, cells);
   options.signal?.throwIfAborted();
   const plan = swathPlan(model, grid, options);
-  const threads = options.arithmetic || cells < CELLS_FOR_THREADS ? null : await threadsFor(options.jobs);
+  const threads = options.engine || cells < CELLS_FOR_THREADS ? null : await threadsFor(options.jobs);
   const fields = newFields(cells, { shared: threads !== null });
-  const work = swathWork(plan, options.arithmetic);
-  const { rows } = work.tiling;
-  const helped: Rows | null = threads?.start(plan, fields, rows) ?? null;
+  const work = swathWork(plan, options.engine);
+  const { tiles } = work;
+  const helped: Tiles | null = threads?.start(plan, fields, tiles) ?? null;
   try {
     let next = 0;
     const take = helped ? helped.take : () => next++;
-    for (let row = take(), done = 1; row < rows; row = take(), done++) {
+    for (let tile = take(), done = 1; tile < tiles; tile = take(), done++) {
       options.signal?.throwIfAborted();
-      work.runRow(row, fields);
+      work.runTile(tile, fields);
       if ((done & 15) !== 0) continue;
-      options.onProgress?.(row / rows);
+      options.onProgress?.(tile / tiles);
       await new Promise((resolve) => setTimeout(resolve, 0));
     }
     await helped?.finished;

@@ -7,8 +7,7 @@ import type { WindField } from '../../model/field.js';
  *
  * Columns, for the harmonics 0 … K of the squared speed over V²: [mean, b₁, a₁, b₂, a₂ …] with
  *   S²/V² = mean + Σ (b_k E_k + a_k N_k),  E_k = s·sin kφ, N_k = s·cos kφ, s = √x, φ clockwise from north;
- * E₁ and N₁ are the cell's coordinates in units of R. Then the same for the wind's east and north part over V, and a bound
- * of the speed's gradient, m/s per metre.
+ * E₁ and N₁ are the cell's coordinates in units of R. Then the same for the wind's east and north part over V.
  */
 export interface Layout {
   readonly harmonics: number;
@@ -25,12 +24,6 @@ export interface MomentTable {
   readonly speed: Float32Array;
   /** rows × windStride: east [mean, b₁, a₁ …], north [mean, b₁, a₁ …] */
   readonly wind: Float32Array;
-  /** rows: the largest gradient of the speed from this row outward, the taper left out; then the same with it */
-  readonly steepest: Float32Array;
-  readonly steepestWithTaper: Float32Array;
-  /** the same for the second derivative of the speed, m/s per m² */
-  readonly bent: Float32Array;
-  readonly bentWithTaper: Float32Array;
 }
 
 /** Rows of the core, evenly spaced in x, and the x at which they end. */
@@ -62,35 +55,6 @@ export function rowsBeyond(x: number): number {
   return CORE_ROWS + (Math.max(2, Math.ceil(Math.log2(x / CORE_X))) << OUTER_BITS) + 1;
 }
 
-const bits = new Float32Array(1);
-const word = new Int32Array(bits.buffer);
-bits[0] = CORE_X;
-const SHIFT = 23 - OUTER_BITS;
-const FIRST_WORD = (word[0]! >> SHIFT) - CORE_ROWS;
-const FRACTION = (1 << SHIFT) - 1;
-
-/** The share of the way from the row that {@link rowOf} gave last to the next one. */
-export let rowShare = 0;
-
-/** The table row below x, in single precision as the kernel does it. */
-export function rowOf(x: number, last: number): number {
-  if (x < CORE_X) {
-    const at = x * (CORE_ROWS / CORE_X);
-    const row = Math.trunc(at);
-    rowShare = at - row;
-    return row;
-  }
-  bits[0] = x;
-  const w = word[0]!;
-  const row = (w >> SHIFT) - FIRST_WORD;
-  if (row >= last) {
-    rowShare = 0;
-    return last;
-  }
-  rowShare = (w & FRACTION) / (FRACTION + 1);
-  return row;
-}
-
 export function layoutOf(harmonics: number, windHarmonics: number, rows: number): Layout {
   return {
     harmonics,
@@ -117,94 +81,29 @@ export function samplingOf(count: number): Sampling {
 }
 
 /** The table of a field. */
-export function tableOf(field: WindField, layout: Layout, sampling: Sampling): MomentTable {
+export function tableOf(field: WindField, layout: Layout, { count, directions }: Sampling): MomentTable {
   const { rows, speedStride, windStride, harmonics, windHarmonics } = layout;
-  const { count, directions } = sampling;
   const { radiusOfMaxWindM, maxWindMps } = field.state;
   const speed = new Float32Array(rows * speedStride);
   const wind = new Float32Array(rows * windStride);
-  const gradient = new Float64Array(rows);
-  const curvature = new Float64Array(rows);
-  const slopes = new Float64Array(count);
-  let lastMiddle = 0;
   const winds = new Float64Array(2 * count);
-  const speeds = new Float64Array(count);
-  const lastSpeeds = new Float64Array(count);
-  let lastRadius = 0;
-  const inverse = 1 / (maxWindMps * maxWindMps);
+  const perWind = 1 / maxWindMps;
   const ratio = rowRatios(rows);
+  const part = 1 + 2 * windHarmonics;
   for (let row = 0; row < rows; row++) {
     const s = ratio[row]!;
     const radiusM = EARTH_RADIUS_M * Math.asin(Math.min(1, (s * radiusOfMaxWindM) / EARTH_RADIUS_M));
-    if (radiusM >= field.outerRadiusM) winds.fill(0);
-    else field.onCircle(winds, radiusM, directions);
-    fourier(winds, 2, count, directions, windHarmonics, 1 / maxWindMps, s, wind, row * windStride, 0);
-    fourier(
-      winds,
-      2,
-      count,
-      directions,
-      windHarmonics,
-      1 / maxWindMps,
-      s,
-      wind,
-      row * windStride + 1 + 2 * windHarmonics,
-      1,
-    );
-    let around = 0;
-    for (let i = 0; i < count; i++) {
-      const squared = winds[2 * i]! ** 2 + winds[2 * i + 1]! ** 2;
-      winds[2 * i] = squared;
-      speeds[i] = Math.sqrt(squared);
-    }
-    fourier(winds, 2, count, directions, harmonics, inverse, s, speed, row * speedStride, 0);
-    const arc = Math.max((2 * Math.PI * radiusM) / count, 0.2 * radiusOfMaxWindM);
-    const middle = 0.5 * (radiusM + lastRadius);
-    let [radial, bend] = [0, 0];
-    for (let i = 0; i < count; i++) {
-      const next = speeds[(i + 1) % count]!;
-      const previous = speeds[(i + count - 1) % count]!;
-      around = Math.max(around, Math.abs(speeds[i]! - next));
-      // rows beyond the antipodes stand at one radius
-      if (row > 0 && radiusM > lastRadius) {
-        const slope = (speeds[i]! - lastSpeeds[i]!) / (radiusM - lastRadius);
-        radial = Math.max(radial, Math.abs(slope));
-        const outward = row > 1 ? Math.abs(slope - slopes[i]!) / (middle - lastMiddle) : 0;
-        bend = Math.max(
-          bend,
-          outward,
-          Math.abs(slope) / radiusM + Math.abs(next - 2 * speeds[i]! + previous) / (arc * arc),
-        );
-        slopes[i] = slope;
-      }
-      lastSpeeds[i] = speeds[i]!;
-    }
-    gradient[row] = Math.hypot(radial, around / arc);
-    curvature[row] = bend;
-    lastRadius = radiusM;
-    lastMiddle = middle;
+    // what lies farther out is zero
+    if (radiusM >= field.outerRadiusM) break;
+    field.onCircle(winds, radiusM, directions);
+    fourier(winds, directions, windHarmonics, perWind, s, wind, row * windStride, 0);
+    fourier(winds, directions, windHarmonics, perWind, s, wind, row * windStride + part, 1);
+    for (let i = 0; i < 2 * count; i += 2) winds[i] = winds[i]! ** 2 + winds[i + 1]! ** 2;
+    fourier(winds, directions, harmonics, perWind * perWind, s, speed, row * speedStride, 0);
   }
   settleBetween(speed, rows, speedStride);
   settleBetween(wind, rows, windStride);
-  const steepest = new Float32Array(rows);
-  const steepestWithTaper = new Float32Array(rows);
-  const taperX = (0.9 * field.outerRadiusM) / radiusOfMaxWindM;
-  const bent = new Float32Array(rows);
-  const bentWithTaper = new Float32Array(rows);
-  let [inner, all, innerBend, allBend] = [0, 0, 0, 0];
-  for (let row = rows - 1; row >= 0; row--) {
-    all = Math.max(all, gradient[row]!);
-    allBend = Math.max(allBend, curvature[row]!);
-    if (ratio[row]! < taperX) {
-      inner = Math.max(inner, gradient[row]!);
-      innerBend = Math.max(innerBend, curvature[row]!);
-    }
-    steepest[row] = inner;
-    steepestWithTaper[row] = all;
-    bent[row] = innerBend;
-    bentWithTaper[row] = allBend;
-  }
-  return { speed, wind, steepest, steepestWithTaper, bent, bentWithTaper };
+  return { speed, wind };
 }
 
 /**
@@ -224,11 +123,9 @@ function settleBetween(values: Float32Array, rows: number, stride: number): void
   }
 }
 
-/** Fourier coefficients of values on a circle: mean, then for each harmonic the sine and cosine part over s. */
+/** Fourier coefficients of the values in every other place on a circle: mean, then for each harmonic the sine and cosine part over s. */
 function fourier(
   values: Float64Array,
-  step: number,
-  count: number,
   directions: Float64Array,
   harmonics: number,
   factor: number,
@@ -237,24 +134,25 @@ function fourier(
   at: number,
   offset: number,
 ): void {
+  const count = values.length >> 1;
   if (count === 4 && harmonics === 1) {
     // north, east, south, west
-    const [n, e, w] = [values[offset]!, values[step + offset]!, values[3 * step + offset]!];
-    const south = values[2 * step + offset]!;
+    const [n, e, w] = [values[offset]!, values[2 + offset]!, values[6 + offset]!];
+    const south = values[4 + offset]!;
     out[at] = 0.25 * factor * (n + e + south + w);
     out[at + 1] = (0.5 * factor * (e - w)) / s;
     out[at + 2] = (0.5 * factor * (n - south)) / s;
     return;
   }
   let mean = 0;
-  for (let i = 0; i < count; i++) mean += values[step * i + offset]!;
+  for (let i = 0; i < count; i++) mean += values[2 * i + offset]!;
   out[at] = (mean * factor) / count;
   for (let k = 1; k <= harmonics; k++) {
     let [sine, cosine] = [0, 0];
     for (let i = 0; i < count; i++) {
       const j = (i * k) % count;
-      sine += values[step * i + offset]! * directions[2 * j]!;
-      cosine += values[step * i + offset]! * directions[2 * j + 1]!;
+      sine += values[2 * i + offset]! * directions[2 * j]!;
+      cosine += values[2 * i + offset]! * directions[2 * j + 1]!;
     }
     const scale = (2 * factor) / (count * s);
     out[at + 2 * k - 1] = sine * scale;

@@ -2,13 +2,15 @@ import { EARTH_RADIUS_M, RADIANS } from '../../earth.js';
 import type { WindModel } from '../../model/wind.js';
 
 /** Moments lie at most this far apart, s, and nearer where the centre moves fast past its radius of maximum wind: */
-const FINE_S = 40;
+const FINE_S = 60;
 /** share of that radius from one moment to the next; down to the bound, s. */
-const FINE_SHARE = 0.04;
-const FINEST_S = 4;
+const FINE_SHARE = 0.06;
+const FINEST_S = 5;
+/** Every so many moments the frame is the path's own; between them frames are straight lines: a few metres off. */
+const KNOT_MOMENTS = 4;
 /** A step changes the radius of maximum wind by at most this share. */
-const STEP_GROWTH = 0.08;
-/** Numbers in a frame: see {@link Timeline.frame}. */
+const STEP_GROWTH = 0.1;
+/** Numbers in a frame: see {@link Timeline.frames}. */
 export const FRAME = 10;
 
 /** One leg of the timeline: half of the way from a fix to the next, cut into 2^depth fine steps. */
@@ -28,26 +30,40 @@ export interface Leg {
   readonly longestS: number;
 }
 
-/** Moments of a storm between its fixes, each fix being one of them. */
+/** Moments of a storm between its fixes, each fix being one of them: plain data. */
 export interface Timeline {
   readonly legs: readonly Leg[];
   /** moments in all */
   readonly count: number;
-  /** number of the leg that a moment belongs to; the start of a leg belongs to it */
-  readonly legNumber: Uint16Array;
-  readonly timeMs: (index: number) => number;
   /**
-   * The frame of a moment at `index * FRAME`: the centre as a unit vector (3), then its local east (2) and north (3)
-   * times a/R, then R in metres and the maximum wind in m/s. Dot products of a cell with the scaled vectors are its
-   * coordinates in units of R.
+   * count × FRAME: the centre as a unit vector (3), then its local east (2) and north (3) times a/R, then R in metres and
+   * the maximum wind in m/s. Dot products of a cell with the scaled vectors are its coordinates in units of R.
    */
-  readonly frame: (index: number) => Float64Array;
+  readonly frames: Float64Array;
 }
 
-/** A timeline as plain data, its frames filled: what another thread needs of it. */
-export interface TimelineData extends Pick<Timeline, 'legs' | 'count' | 'legNumber'> {
-  /** count × FRAME */
-  readonly frames: Float64Array;
+/** Time of a moment, or of one between two. */
+export function timeMsOf(timeline: Timeline, moment: number): number {
+  const leg = timeline.legs[legOf(timeline, ({ first }) => first <= moment)]!;
+  return leg.startMs + (moment - leg.first) * leg.fineMs;
+}
+
+/** Moment of a time. */
+export function momentOf(timeline: Timeline, timeMs: number): number {
+  const leg = timeline.legs[legOf(timeline, ({ startMs }) => startMs <= timeMs)]!;
+  const moment = leg.first + (leg.fineMs > 0 ? (timeMs - leg.startMs) / leg.fineMs : 0);
+  return Math.min(timeline.count - 1, Math.max(0, moment));
+}
+
+/** Number of the last leg that has begun. */
+function legOf({ legs }: Timeline, begun: (leg: Leg) => boolean): number {
+  let [low, high] = [0, legs.length];
+  while (high - low > 1) {
+    const middle = (low + high) >> 1;
+    if (begun(legs[middle]!)) low = middle;
+    else high = middle;
+  }
+  return low;
 }
 
 /** The timeline of a model between two times. */
@@ -81,41 +97,28 @@ export function timelineOf(model: WindModel, fromMs: number, toMs: number): Time
       longestS: 0,
     });
   const count = legs.length === 1 && legs[0]!.depth === 0 ? 1 : first + 1;
-  const legNumber = new Uint16Array(count);
-  for (const [number, leg] of legs.entries())
-    legNumber.fill(number, leg.first, Math.min(count, leg.first + (1 << leg.depth) + 1));
-  return over({ legs, count, legNumber }, (timeMs) => frameOf(model.path.at(timeMs)));
+  return { legs, count, frames: framesOf(model, legs, count) };
 }
 
-/** The timeline of plain data. */
-export function timelineFrom({ frames, ...data }: TimelineData): Timeline {
-  return over(data, (_, index) => frames.subarray(index * FRAME, (index + 1) * FRAME));
-}
-
-/** A timeline as plain data. */
-export function timelineData({ legs, count, legNumber, frame }: Timeline): TimelineData {
+function framesOf(model: WindModel, legs: readonly Leg[], count: number): Float64Array {
   const frames = new Float64Array(count * FRAME);
-  for (let index = 0; index < count; index++) frames.set(frame(index), index * FRAME);
-  return { legs, count, legNumber, frames };
-}
-
-function over(
-  { legs, count, legNumber }: Pick<Timeline, 'legs' | 'count' | 'legNumber'>,
-  frameAt: (timeMs: number, index: number) => Float64Array,
-): Timeline {
-  const frames: (Float64Array | undefined)[] = new Array(count);
-  const timeMs = (index: number): number => {
-    const leg = legs[legNumber[Math.min(count - 1, Math.max(0, Math.floor(index)))]!]!;
-    return leg.startMs + ((leg.endMs - leg.startMs) * (index - leg.first)) / (1 << leg.depth);
-  };
-  const frame = (index: number): Float64Array => {
-    const known = frames[index];
-    if (known) return known;
-    const made = frameAt(timeMs(index), index);
-    frames[index] = made;
-    return made;
-  };
-  return { legs, count, legNumber, timeMs, frame };
+  for (const leg of legs) {
+    const end = Math.min(count - 1, leg.first + (1 << leg.depth));
+    frames.set(frameOf(model.path.at(leg.startMs)), leg.first * FRAME);
+    for (let from = leg.first; from < end; from += KNOT_MOMENTS) {
+      const to = from + KNOT_MOMENTS;
+      const a = from * FRAME;
+      frames.set(frameOf(model.path.at(leg.startMs + (to - leg.first) * leg.fineMs)), to * FRAME);
+      for (let i = 1; i < KNOT_MOMENTS; i++) {
+        const t = i / KNOT_MOMENTS;
+        for (let k = 0; k < FRAME; k++) {
+          const start = frames[a + k]!;
+          frames[a + i * FRAME + k] = start + t * (frames[to * FRAME + k]! - start);
+        }
+      }
+    }
+  }
+  return frames;
 }
 
 function frameOf(state: {

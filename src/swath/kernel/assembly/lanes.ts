@@ -1,0 +1,190 @@
+// Four points at a time. `../twin-lanes.ts` does the same in plain JavaScript, bit for bit: every operation here is a
+// single-precision one in the same order.
+import { BASIS, EXTREMES, LEVELS, NEAR, NEED, QUAD } from './places';
+
+// the rows of a table, as in table.ts
+const CORE_X: f32 = 0.5;
+const CORE_ROWS_PER_X: f32 = 128;
+const SHIFT: i32 = 23 - 6;
+const FIRST_WORD: i32 = ((127 - 1) << 6) - 64;
+const FRACTION: i32 = (1 << SHIFT) - 1;
+const FRACTION_SCALE: f32 = <f32>1 / <f32>(1 << SHIFT);
+
+/**
+ * Winds of the four points of {@link QUAD} at a moment.
+ * @param frame the moment's frame: e0, e1, n0, n1, n2, V, R, table
+ * @param east0, north0 coordinates of the first point
+ */
+export function sampleQuad(
+  to: i32, frame: i32, east0: f64, north0: f64, table: i32, groups: i32, lastRow: i32,
+): void {
+  const zero = f32x4.splat(0);
+  const stride: i32 = groups << 4;
+  const x = v128.load(QUAD);
+  const y = v128.load(QUAD, 16);
+  const z = v128.load(QUAD, 32);
+  const f = <usize>frame;
+  const east = f32x4.add(f32x4.splat(<f32>east0), f32x4.add(
+    f32x4.mul(x, f32x4.splat(<f32>load<f64>(f))), f32x4.mul(y, f32x4.splat(<f32>load<f64>(f, 8)))));
+  const north = f32x4.add(f32x4.splat(<f32>north0), f32x4.add(f32x4.add(
+    f32x4.mul(x, f32x4.splat(<f32>load<f64>(f, 16))), f32x4.mul(y, f32x4.splat(<f32>load<f64>(f, 24)))),
+    f32x4.mul(z, f32x4.splat(<f32>load<f64>(f, 32)))));
+  const s2 = f32x4.add(f32x4.mul(east, east), f32x4.mul(north, north));
+  // row and share of the way to the next
+  const core = f32x4.lt(s2, f32x4.splat(CORE_X));
+  const evenly = f32x4.mul(s2, f32x4.splat(CORE_ROWS_PER_X));
+  const coreRow = i32x4.trunc_sat_f32x4_s(evenly);
+  const coreShare = f32x4.sub(evenly, f32x4.convert_i32x4_s(coreRow));
+  const outerRow = i32x4.sub(i32x4.shr_s(s2, SHIFT), i32x4.splat(FIRST_WORD));
+  const outerShare = f32x4.mul(
+    f32x4.convert_i32x4_s(v128.and(s2, i32x4.splat(FRACTION))), f32x4.splat(FRACTION_SCALE));
+  const row0 = v128.bitselect(coreRow, outerRow, core);
+  const share0 = v128.bitselect(coreShare, outerShare, core);
+  const row = i32x4.min_s(row0, i32x4.splat(lastRow));
+  const share = v128.andnot(share0, i32x4.ge_s(row0, i32x4.splat(lastRow)));
+  const p0 = <usize>(table + i32x4.extract_lane(row, 0) * stride);
+  const p1 = <usize>(table + i32x4.extract_lane(row, 1) * stride);
+  const p2 = <usize>(table + i32x4.extract_lane(row, 2) * stride);
+  const p3 = <usize>(table + i32x4.extract_lane(row, 3) * stride);
+  const t0 = v128.shuffle<f32>(share, share, 0, 0, 0, 0);
+  const t1 = v128.shuffle<f32>(share, share, 1, 1, 1, 1);
+  const t2 = v128.shuffle<f32>(share, share, 2, 2, 2, 2);
+  const t3 = v128.shuffle<f32>(share, share, 3, 3, 3, 3);
+  let value: v128;
+  if (groups == 1) {
+    const a = between(p0, 16, t0);
+    const b = between(p1, 16, t1);
+    const c = between(p2, 16, t2);
+    const d = between(p3, 16, t3);
+    const ab01 = v128.shuffle<f32>(a, b, 0, 4, 1, 5);
+    const cd01 = v128.shuffle<f32>(c, d, 0, 4, 1, 5);
+    const ab2 = v128.shuffle<f32>(a, b, 2, 6, 2, 6);
+    const cd2 = v128.shuffle<f32>(c, d, 2, 6, 2, 6);
+    const mean = v128.shuffle<f32>(ab01, cd01, 0, 1, 4, 5);
+    const sine = v128.shuffle<f32>(ab01, cd01, 2, 3, 6, 7);
+    const cosine = v128.shuffle<f32>(ab2, cd2, 0, 1, 4, 5);
+    value = f32x4.add(f32x4.add(mean, f32x4.mul(east, sine)), f32x4.mul(north, cosine));
+  } else {
+    basis(east, north, s2, groups);
+    value = zero;
+    for (let g = 0; g < groups; g++) {
+      const offset = <usize>g << 4;
+      const a = between(p0 + offset, stride, t0);
+      const b = between(p1 + offset, stride, t1);
+      const c = between(p2 + offset, stride, t2);
+      const d = between(p3 + offset, stride, t3);
+      const ab01 = v128.shuffle<f32>(a, b, 0, 4, 1, 5);
+      const cd01 = v128.shuffle<f32>(c, d, 0, 4, 1, 5);
+      const ab23 = v128.shuffle<f32>(a, b, 2, 6, 3, 7);
+      const cd23 = v128.shuffle<f32>(c, d, 2, 6, 3, 7);
+      const from = BASIS + (g << 6);
+      value = f32x4.add(value, f32x4.mul(v128.shuffle<f32>(ab01, cd01, 0, 1, 4, 5), v128.load(from)));
+      value = f32x4.add(value, f32x4.mul(v128.shuffle<f32>(ab01, cd01, 2, 3, 6, 7), v128.load(from, 16)));
+      value = f32x4.add(value, f32x4.mul(v128.shuffle<f32>(ab23, cd23, 0, 1, 4, 5), v128.load(from, 32)));
+      value = f32x4.add(value, f32x4.mul(v128.shuffle<f32>(ab23, cd23, 2, 3, 6, 7), v128.load(from, 48)));
+    }
+  }
+  const wind = f32x4.mul(f32x4.sqrt(f32x4.max(value, zero)), f32x4.splat(<f32>load<f64>(f, 40)));
+  v128.store(<usize>to, wind);
+  const rmax = <f32>load<f64>(f, 48);
+  const squared = f32x4.mul(s2, f32x4.splat(rmax * rmax));
+  v128.store(NEAR, f32x4.min(v128.load(NEAR), squared));
+  store<f32>(EXTREMES, lowest(squared));
+  store<f32>(EXTREMES, highest(wind), 4);
+}
+
+// @ts-ignore: decorator
+@inline
+function lowest(v: v128): f32 {
+  const pairs = f32x4.min(v, v128.shuffle<f32>(v, v, 2, 3, 0, 1));
+  return min<f32>(f32x4.extract_lane(pairs, 0), f32x4.extract_lane(pairs, 1));
+}
+
+// @ts-ignore: decorator
+@inline
+function highest(v: v128): f32 {
+  const pairs = f32x4.max(v, v128.shuffle<f32>(v, v, 2, 3, 0, 1));
+  return max<f32>(f32x4.extract_lane(pairs, 0), f32x4.extract_lane(pairs, 1));
+}
+
+// @ts-ignore: decorator
+@inline
+function between(row: usize, stride: i32, t: v128): v128 {
+  const a = v128.load(row);
+  return f32x4.add(a, f32x4.mul(t, f32x4.sub(v128.load(row + <usize>stride), a)));
+}
+
+/** 1, s sin φ, s cos φ, s sin 2φ, s cos 2φ … of four points. */
+function basis(east: v128, north: v128, s2: v128, groups: i32): void {
+  const zero = f32x4.splat(0);
+  const inverse = v128.bitselect(f32x4.div(f32x4.splat(1), f32x4.sqrt(s2)), zero, f32x4.gt(s2, zero));
+  const c = f32x4.mul(north, inverse);
+  const s = f32x4.mul(east, inverse);
+  let e = east;
+  let n = north;
+  v128.store(BASIS, f32x4.splat(1));
+  v128.store(BASIS, e, 16);
+  v128.store(BASIS, n, 32);
+  const columns = groups << 2;
+  for (let k = 3; k < columns; k += 2) {
+    const nextE = f32x4.add(f32x4.mul(e, c), f32x4.mul(n, s));
+    n = f32x4.sub(f32x4.mul(n, c), f32x4.mul(e, s));
+    e = nextE;
+    const to = <usize>(BASIS + (k << 4));
+    v128.store(to, e);
+    v128.store(to, n, 16);
+  }
+}
+
+/**
+ * Which of four points may have a maximum in time about the middle of three moments that matters: higher than what the
+ * point needs, or across the next threshold. The flanks' slopes, carried on, bound it.
+ * @param ratio length of the step after the middle over that of the step before
+ */
+export function peaks(first: i32, middle: i32, last: i32, ratio: f64, margin: f64, thresholds: i32): i32 {
+  const a = v128.load(<usize>first);
+  const b = v128.load(<usize>middle);
+  const c = v128.load(<usize>last);
+  const peak = v128.and(f32x4.gt(b, a), f32x4.ge(b, c));
+  if (!v128.any_true(peak)) return 0;
+  const reach = f32x4.add(reachOf(f32x4.sub(b, a), f32x4.sub(b, c), ratio), f32x4.splat(<f32>margin));
+  let need = v128.load(NEED);
+  for (let h = 0; h < thresholds; h++) {
+    const level = v128.load32_splat(<usize>(LEVELS + (h << 2)));
+    need = f32x4.min(need, v128.bitselect(level, f32x4.splat(Infinity), f32x4.gt(level, b)));
+  }
+  return i32x4.bitmask(v128.and(peak, f32x4.gt(f32x4.add(b, reach), need)));
+}
+
+/** Which of four points may dip below a threshold about the middle of three moments. */
+export function dips(first: i32, middle: i32, last: i32, ratio: f64, margin: f64, thresholds: i32): i32 {
+  const a = v128.load(<usize>first);
+  const b = v128.load(<usize>middle);
+  const c = v128.load(<usize>last);
+  const dip = v128.and(f32x4.le(b, a), f32x4.lt(b, c));
+  if (!v128.any_true(dip)) return 0;
+  const reach = f32x4.add(reachOf(f32x4.sub(a, b), f32x4.sub(c, b), ratio), f32x4.splat(<f32>margin));
+  const least = f32x4.sub(b, reach);
+  let across = f32x4.splat(0);
+  for (let h = 0; h < thresholds; h++) {
+    const level = v128.load32_splat(<usize>(LEVELS + (h << 2)));
+    across = v128.or(across, v128.and(f32x4.ge(b, level), f32x4.lt(least, level)));
+  }
+  return i32x4.bitmask(v128.and(dip, across));
+}
+
+// @ts-ignore: decorator
+@inline
+function reachOf(before: v128, after: v128, ratio: f64): v128 {
+  const r = <f32>ratio;
+  return f32x4.max(f32x4.mul(before, f32x4.splat(r)), f32x4.mul(after, f32x4.splat(<f32>1 / r)));
+}
+
+/** Which thresholds the four points are at or above: bit 4h + lane. */
+export function sides(winds: i32, thresholds: i32): i32 {
+  const w = v128.load(<usize>winds);
+  let bits = 0;
+  for (let h = 0; h < thresholds; h++)
+    bits |= i32x4.bitmask(f32x4.ge(w, v128.load32_splat(<usize>(LEVELS + (h << 2))))) << (h << 2);
+  return bits;
+}

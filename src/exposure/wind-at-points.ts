@@ -115,6 +115,7 @@ function gather(tracer: Tracer, points: PointColumns, order: Uint32Array): boole
     y[i] = flat * Math.sin(lo);
     z[i] = Math.sin(la);
   }
+  tracer.windMps.fill(0, 0, order.length);
   let farthest = 0;
   for (let i = 1; i < order.length; i++)
     farthest = Math.max(farthest, Math.hypot(x[i]! - x[0]!, y[i]! - y[0]!, z[i]! - z[0]!));

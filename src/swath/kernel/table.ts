@@ -42,6 +42,14 @@ export function rowX(row: number): number {
   return CORE_X * 2 ** (outer >> OUTER_BITS) * (1 + (outer & (each - 1)) / each);
 }
 
+/** The last row within a ratio r/R. */
+export function rowsBelow(ratio: number): number {
+  const x = ratio * ratio;
+  if (x < CORE_X) return Math.floor((x * CORE_ROWS) / CORE_X);
+  const octave = Math.floor(Math.log2(x / CORE_X));
+  return CORE_ROWS + (octave << OUTER_BITS) + Math.floor((x / CORE_X / 2 ** octave - 1) * (1 << OUTER_BITS));
+}
+
 /** √x of the first rows, kept as far as they were asked for; the centre stands for a place next to it. */
 let ratios = new Float64Array(0);
 export function rowRatios(rows: number): Float64Array {

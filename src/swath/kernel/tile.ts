@@ -146,6 +146,7 @@ export function tileRunner(tracer: Tracer, placing: Placing, thresholdsMps: read
     const [right, bottom] = near === 1 ? [width, height] : [EDGE, EDGE];
     let count = 0;
     for (const { column, row } of blocks) {
+      const expected = near === WIDEST / 2 ? 0 : expectedMps(row * EDGE + column, 2 * near);
       const toColumn = Math.min(right, column + 4 * near + 1);
       const toRow = Math.min(bottom, row + 4 * near + 1);
       for (let j = row; j < toRow; j += near) {
@@ -156,6 +157,7 @@ export function tileRunner(tracer: Tracer, placing: Placing, thresholdsMps: read
           windMps[at] = Number.NaN;
           if (!placing.place(tracer, count, left + i, top + j)) continue;
           asked[count] = at;
+          tracer.windMps[count] = expected;
           if (++count < MOST_POINTS) continue;
           answer(count);
           count = 0;
@@ -163,6 +165,14 @@ export function tileRunner(tracer: Tracer, placing: Placing, thresholdsMps: read
       }
     }
     if (count > 0) answer(count);
+  }
+
+  /** A lower bound of what the points between 3 × 3 have, as far as these tell. */
+  function expectedMps(first: number, spacing: number): number {
+    let least = Number.POSITIVE_INFINITY;
+    for (let b = 0; b < 3; b++)
+      for (let a = 0; a < 3; a++) least = Math.min(least, windMps[first + spacing * (b * EDGE + a)]!);
+    return least >= 0 ? least : 0;
   }
 
   function answer(count: number): void {

@@ -80,7 +80,7 @@ export function timelineOf(model: WindModel, fromMs: number, toMs: number): Time
     const { smallestM, ...bounds } = boundsOf(model, startMs, endMs);
     const fineS = Math.max(FINEST_S, Math.min(FINE_S, (FINE_SHARE * smallestM) / bounds.speedMps));
     const depth = Math.max(2, Math.ceil(Math.log2((endMs - startMs) / 1000 / fineS)));
-    const longestS = Math.min((endMs - startMs) / 1000, STEP_GROWTH / bounds.growthPerS);
+    const longestS = STEP_GROWTH / bounds.growthPerS;
     legs.push({ startMs, endMs, first, depth, ...bounds, fineMs: (endMs - startMs) / (1 << depth), longestS });
     first += 1 << depth;
   }

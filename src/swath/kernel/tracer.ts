@@ -1,13 +1,17 @@
 import { EARTH_RADIUS_M, RADIANS, wrapBearing } from '../../earth.js';
+import { TAPER_SHARE } from '../../model/field.js';
 import type { Engine } from './engine.js';
 import * as at from './places.js';
 import { type StormTables, servingTables } from './storm-tables.js';
+import { rowsBelow } from './table.js';
 import { FRAME, momentOf, type Timeline, timeMsOf } from './timeline.js';
 
 /** A step changes a point's wind by at most this where the maximum wind changes, m/s. */
 const STEP_CHANGE_MPS = 2;
 /** Longest step where a point has the maximum wind, s; longer where it has less. */
 const LONGEST_S = 2000;
+/** Winds in a taper that are stepped through with care, m/s. */
+const CALM_MPS = 6.5;
 const LEG_NUMBERS = 8;
 
 /** A storm in an engine's memory, and the points that it is asked about. */
@@ -16,7 +20,7 @@ export interface Tracer {
   readonly x: Float64Array;
   readonly y: Float64Array;
   readonly z: Float64Array;
-  /** come out: peak wind, m/s, 0 for none; least distance from the centre, m; hours at or above each threshold */
+  /** what the points may expect goes in, 0 where that is not known; the peak wind comes out, m/s, 0 for none; least distance from the centre, m; hours at or above each threshold */
   readonly windMps: Float64Array;
   readonly leastM: Float64Array;
   readonly hours: readonly Float64Array[];
@@ -116,6 +120,7 @@ export function tracerOf(
       layout.windHarmonics,
       thresholdsMps.length,
       hoursAt,
+      taperFromM(timeline, tables, outerRadiusM),
     ],
     at.STORM >> 3,
   );
@@ -177,6 +182,18 @@ export function tracerOf(
       return runs > 0;
     },
   };
+}
+
+/** From here on steps follow the taper, m: nowhere, where the wind that is tapered is one of which nothing is promised. */
+function taperFromM({ legs, frames }: Timeline, { layout, legTables }: StormTables, outerRadiusM: number): number {
+  for (const [number, { first }] of legs.entries()) {
+    const [radiusM, maxWindMps] = [frames[first * FRAME + 8]!, frames[first * FRAME + 9]!];
+    const row = Math.min(layout.rows - 1, rowsBelow(((1 - TAPER_SHARE) * outerRadiusM) / radiusM));
+    for (const { table } of legTables[number]!)
+      if (Math.sqrt(table.speed[row * layout.speedStride]!) * maxWindMps > CALM_MPS)
+        return (1 - 1.3 * TAPER_SHARE) * outerRadiusM;
+  }
+  return 1e30;
 }
 
 /** Nearer to the centre than this, squared and in units of the earth's radius, the way back to it has no direction: there nothing has turned yet. */

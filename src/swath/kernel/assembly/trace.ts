@@ -4,19 +4,20 @@ import { bitsOf, f32At, f64At, i32At, root, setF32, setF64, whole } from './memo
 import { dips, peaks, sampleQuad, sides } from './lanes';
 import {
   AHEAD, COLUMN, EAST, EXTREMES, FRAMES, FRESH, GROUPS, HELD, HOURS, LAST_ROW, LEAST, LEGS, LEVELS, LOOKED, MOMENT, MOMENTS,
-  NEAR, NEED, NONE, NORTH, OUTER, QUAD, RUNS, RUN_COUNT, STORM, THRESHOLDS, TIMES, WIND, WINDS, WIND_HARMONICS, WIND_TABLES, X, Y, Z,
+  NEAR, NEED, NONE, NORTH, OUTER, QUAD, RUNS, RUN_COUNT, STORM, TAPER, THRESHOLDS, TIMES, WIND, WINDS, WIND_HARMONICS, WIND_TABLES, X, Y, Z,
 } from './places';
 
 /** A step moves the storm by at most this share of the distance from it (or of its radius of maximum wind). */
 const STEP_SHARE: f64 = 0.2;
 /** Next to the centre steps follow this share of the radius of maximum wind. */
 const CORE_SHARE: f64 = 0.7;
-/** Steps are longer by this factor while the wind is weak against what a point has had and below every threshold. */
+/** Steps are longer by these factors while the wind is below this share of what the points have had or expect: with a threshold near, and below all. */
 const IDLE_FACTOR: f64 = 2;
+const IDLE_FACTOR_BELOW: f64 = 3;
 const IDLE_SHARE: f64 = 0.6;
+const IDLE_BELOW: f64 = 0.8;
 /** Steps through the taper move the storm by this share of the outer radius. */
-const TAPER_STEP: f64 = 0.012;
-const TAPER_FROM: f64 = 0.87;
+const TAPER_STEP: f64 = 0.015;
 /** With more wind than this a step ends where a leg does, m/s: there the motion turns at another rate, and the wind with it. */
 const LEG_MPS: f64 = 6;
 /** A step of which no more is left ends where a leg does. */
@@ -47,6 +48,7 @@ let runCount: i32 = 0;
 let groups: i32 = 0;
 let lastRow: i32 = 0;
 let outerM: f64 = 0;
+let taperM: f64 = 0;
 let hoursAt: i32 = 0;
 let windTables: i32 = 0;
 let windHarmonics: i32 = 0;
@@ -78,6 +80,7 @@ function begin(): void {
   groups = whole(storm(GROUPS));
   lastRow = whole(storm(LAST_ROW));
   outerM = storm(OUTER);
+  taperM = storm(TAPER);
   hoursAt = whole(storm(TIMES));
   windTables = whole(storm(WIND_TABLES));
   windHarmonics = whole(storm(WIND_HARMONICS));
@@ -89,7 +92,10 @@ function begin(): void {
   }
 }
 
-/** Peaks and hours of the first `count` points, whole groups of four. */
+/**
+ * Peaks and hours of the first `count` points, whole groups of four. The column of winds holds what a point may expect,
+ * 0 where that is not known: steps are longer while the wind is far below it.
+ */
 export function trace(count: i32): void {
   begin();
   for (let p = 0; p < count; p += 4) traceQuad(p);
@@ -220,8 +226,10 @@ function traceQuad(p: i32): void {
   const cx = f64At(X + 8 * p);
   const cy = f64At(Y + 8 * p);
   const cz = f64At(Z + 8 * p);
+  let expected: f64 = 1e30;
   for (let i = 0; i < 4; i++) {
     const at = 8 * (p + i);
+    expected = least(expected, f64At(WIND + at));
     setF32(QUAD + 4 * i, f64At(X + at) - cx);
     setF32(QUAD + 16 + 4 * i, f64At(Y + at) - cy);
     setF32(QUAD + 32 + 4 * i, f64At(Z + at) - cz);
@@ -275,20 +283,22 @@ function traceQuad(p: i32): void {
       const distanceM = root(f32At(EXTREMES));
       const outside = distanceM > outerM;
       const coreM = CORE_SHARE * f64At(frame + 48);
-      const idle = wind < IDLE_SHARE * strongest && wind < 0.8 * lowestLevel;
-      let moveM = (idle ? STEP_SHARE * IDLE_FACTOR : STEP_SHARE) * (distanceM > coreM ? distanceM : coreM);
-      if (distanceM > TAPER_FROM * outerM) moveM = least(moveM, TAPER_STEP * outerM);
-      if (outside) moveM = distanceM - outerM;
+      const idle = wind < IDLE_SHARE * (strongest > expected ? strongest : expected);
+      let moveM = STEP_SHARE * (distanceM > coreM ? distanceM : coreM);
+      const factor = idle ? (wind < IDLE_BELOW * lowestLevel ? IDLE_FACTOR_BELOW : IDLE_FACTOR) : 1;
+      moveM *= factor;
+      if (distanceM > taperM) moveM = least(moveM, TAPER_STEP * outerM);
+      if (outside) moveM = distanceM - outerM + TAPER_STEP * outerM;
       let weight = wind / f64At(frame + 40);
       if (weight < 0.1) weight = 0.1;
-      const stops = wind > LEG_MPS;
+      const stops = !idle && wind > LEG_MPS;
       const from = m;
       let budget: f64 = 1;
       let done = false;
       for (;;) {
         let moments = moveM * f64At(leg + 16);
         if (!outside) {
-          moments = least(moments, least(f64At(leg + 32), f64At(leg + 40)) / weight);
+          moments = least(moments, (factor * least(f64At(leg + 32), f64At(leg + 40))) / weight);
           moments = least(moments, f64At(leg + 24));
         }
         const last = whole(f64At(leg + 8));

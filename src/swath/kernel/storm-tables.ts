@@ -13,7 +13,7 @@ import {
 import { FRAME, type Leg, type Timeline } from './timeline.js';
 
 /** From one table to the next the wind changes by at most this, m/s: between them the nearer one serves, with R and V of the moment. */
-const SLOT_MPS = 0.03;
+const SLOT_MPS = 0.015;
 /** A table is interpolated between two neighbours that explain the one in their middle within this, m/s. */
 const TOLERANCE_MPS = 0.02;
 /** Tables that differ by more than this, m/s, are not believed to explain the one in their middle. */

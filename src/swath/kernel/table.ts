@@ -3,7 +3,8 @@ import type { WindField } from '../../model/field.js';
 
 /**
  * The wind of one moment as a table over the squared distance x = (r/R)² (r by the sine of the angle). Rows are even in x
- * in the core and spaced as floating-point numbers are outside, so that a number's own bits give the row. The first row is the centre; x = 1, the radius of maximum wind, is a row.
+ * in the core and spaced as floating-point numbers are outside, so that a number's own bits give the row; between them goes a parabola through three rows of one octave.
+ * The first row is the centre; x = 1, the radius of maximum wind, is a row and begins an octave: there the wind may have a corner.
  *
  * Columns, for the harmonics 0 … K of the squared speed over V²: [mean, b₁, a₁, b₂, a₂ …] with
  *   S²/V² = mean + Σ (b_k E_k + a_k N_k),  E_k = s·sin kφ, N_k = s·cos kφ, s = √x, φ clockwise from north;
@@ -27,13 +28,10 @@ export interface MomentTable {
 }
 
 /** Rows of the core, evenly spaced in x, and the x at which they end. */
-export const CORE_ROWS = 64;
+export const CORE_ROWS = 32;
 export const CORE_X = 0.5;
 /** From there on 2^OUTER_BITS rows to every doubling of x, as the bits of a float divide it. */
-export const OUTER_BITS = 6;
-/** The row of x = 1. */
-const RIDGE_ROW = CORE_ROWS + (Math.log2(1 / CORE_X) << OUTER_BITS);
-
+export const OUTER_BITS = 5;
 /** x of a row. */
 export function rowX(row: number): number {
   if (row < CORE_ROWS) return (row * CORE_X) / CORE_ROWS;
@@ -60,7 +58,7 @@ export function rowRatios(rows: number): Float64Array {
 
 /** Rows that reach beyond x. */
 export function rowsBeyond(x: number): number {
-  return CORE_ROWS + (Math.max(2, Math.ceil(Math.log2(x / CORE_X))) << OUTER_BITS) + 1;
+  return CORE_ROWS + (Math.max(2, Math.ceil(Math.log2(x / CORE_X))) << OUTER_BITS) + 2;
 }
 
 export function layoutOf(harmonics: number, windHarmonics: number, rows: number): Layout {
@@ -109,26 +107,7 @@ export function tableOf(field: WindField, layout: Layout, { count, directions }:
     for (let i = 0; i < 2 * count; i += 2) winds[i] = winds[i]! ** 2 + winds[i + 1]! ** 2;
     fourier(winds, directions, harmonics, perWind * perWind, s, speed, row * speedStride, 0);
   }
-  settleBetween(speed, rows, speedStride);
-  settleBetween(wind, rows, windStride);
   return { speed, wind };
-}
-
-/**
- * Straight lines between rows lie to one side of a curve, by up to an eighth of the second difference: half of that, taken
- * off the rows, leaves half the error, on both sides. The ridge, where the slope jumps, stays as it is.
- */
-function settleBetween(values: Float32Array, rows: number, stride: number): void {
-  for (let c = 0; c < stride; c++) {
-    let before = values[c]!;
-    let now = values[stride + c]!;
-    for (let row = 1; row + 1 < rows; row++) {
-      const after = values[(row + 1) * stride + c]!;
-      if (row !== CORE_ROWS && row !== RIDGE_ROW) values[row * stride + c] = now - (before - 2 * now + after) / 16;
-      before = now;
-      now = after;
-    }
-  }
 }
 
 /** Fourier coefficients of the values in every other place on a circle: mean, then for each harmonic the sine and cosine part over s. */

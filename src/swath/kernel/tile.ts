@@ -17,7 +17,7 @@ const CHECK_HOURS_SHARE = 0.02;
 const CHECK_HOURS = 0.015;
 /** Times nearer than this are right, s; others are where the wind then is the peak to {@link CHECK_TIME_MPS}. */
 const CHECK_TIME_S = 45;
-const CHECK_TIME_MPS = 0.02;
+const CHECK_TIME_MPS = 0.035;
 /** Peaks below this need not be right, m/s: nothing is promised of them. */
 const CALM_MPS = 6.5;
 /** Less than this is no wind, m/s. */

@@ -114,7 +114,7 @@ export function tracerOf(
       runsAt,
       0,
       layout.speedStride / 4,
-      layout.rows - 2,
+      layout.rows - 3,
       outerRadiusM,
       windTablesAt,
       layout.windHarmonics,

@@ -4,9 +4,10 @@ import { bitsOf, f32At, f64At, setF32 } from './twin-memory.js';
 /** Four points at a time, as `assembly/lanes.ts` does them: every operation rounds to single precision, in the same order. */
 const { fround } = Math;
 const CORE_X = 0.5;
-const CORE_ROWS_PER_X = 128;
-const SHIFT = 17;
-const FIRST_WORD = (126 << 6) - 64;
+const CORE_ROWS_PER_X = 64;
+const SHIFT = 18;
+const FIRST_WORD = (126 << 5) - 32;
+const LAST_OF_OCTAVE = 31;
 const FRACTION = (1 << SHIFT) - 1;
 const FRACTION_SCALE = 1 / (1 << SHIFT);
 
@@ -54,12 +55,21 @@ export function sampleQuad(
     if (row >= lastRow) {
       row = lastRow;
       t = 0;
+    } else if ((row & LAST_OF_OCTAVE) === LAST_OF_OCTAVE) {
+      row -= 1;
+      t = fround(t + 1);
     }
+    const rest = fround(2 - t);
+    const less = fround(t - 1);
+    const w0 = fround(-0.5 * fround(less * rest));
+    const w1 = fround(t * rest);
+    const w2 = fround(0.5 * fround(t * less));
     const at = table + row * stride;
-    const column = (k: number): number => {
-      const a = f32At(at + k);
-      return fround(a + fround(t * fround(f32At(at + stride + k) - a)));
-    };
+    const column = (k: number): number =>
+      fround(
+        fround(fround(w0 * f32At(at + k)) + fround(w1 * f32At(at + stride + k))) +
+          fround(w2 * f32At(at + 2 * stride + k)),
+      );
     let value: number;
     if (groups === 1) {
       value = fround(fround(column(0) + fround(east * column(4))) + fround(north * column(8)));

@@ -4,9 +4,11 @@ import { BASIS, EXTREMES, LEVELS, NEAR, NEED, QUAD } from './places';
 
 // the rows of a table, as in table.ts
 const CORE_X: f32 = 0.5;
-const CORE_ROWS_PER_X: f32 = 128;
-const SHIFT: i32 = 23 - 6;
-const FIRST_WORD: i32 = ((127 - 1) << 6) - 64;
+const CORE_ROWS_PER_X: f32 = 64;
+const SHIFT: i32 = 23 - 5;
+const FIRST_WORD: i32 = ((127 - 1) << 5) - 32;
+/** The last row of an octave: what comes after is spaced otherwise. */
+const LAST_OF_OCTAVE: i32 = 31;
 const FRACTION: i32 = (1 << SHIFT) - 1;
 const FRACTION_SCALE: f32 = <f32>1 / <f32>(1 << SHIFT);
 
@@ -40,22 +42,28 @@ export function sampleQuad(
     f32x4.convert_i32x4_s(v128.and(s2, i32x4.splat(FRACTION))), f32x4.splat(FRACTION_SCALE));
   const row0 = v128.bitselect(coreRow, outerRow, core);
   const share0 = v128.bitselect(coreShare, outerShare, core);
-  const row = i32x4.min_s(row0, i32x4.splat(lastRow));
-  const share = v128.andnot(share0, i32x4.ge_s(row0, i32x4.splat(lastRow)));
+  const beyond = i32x4.ge_s(row0, i32x4.splat(lastRow));
+  // a parabola through three rows of one octave
+  const turn = v128.andnot(
+    i32x4.eq(v128.and(row0, i32x4.splat(LAST_OF_OCTAVE)), i32x4.splat(LAST_OF_OCTAVE)), beyond);
+  const row = i32x4.add(i32x4.min_s(row0, i32x4.splat(lastRow)), turn);
+  const share1 = v128.andnot(share0, beyond);
+  const share = f32x4.add(share1, v128.and(turn, f32x4.splat(1)));
+  const rest = f32x4.sub(f32x4.splat(2), share);
+  const less = f32x4.sub(share, f32x4.splat(1));
+  const w0 = f32x4.mul(f32x4.splat(-0.5), f32x4.mul(less, rest));
+  const w1 = f32x4.mul(share, rest);
+  const w2 = f32x4.mul(f32x4.splat(0.5), f32x4.mul(share, less));
   const p0 = <usize>(table + i32x4.extract_lane(row, 0) * stride);
   const p1 = <usize>(table + i32x4.extract_lane(row, 1) * stride);
   const p2 = <usize>(table + i32x4.extract_lane(row, 2) * stride);
   const p3 = <usize>(table + i32x4.extract_lane(row, 3) * stride);
-  const t0 = v128.shuffle<f32>(share, share, 0, 0, 0, 0);
-  const t1 = v128.shuffle<f32>(share, share, 1, 1, 1, 1);
-  const t2 = v128.shuffle<f32>(share, share, 2, 2, 2, 2);
-  const t3 = v128.shuffle<f32>(share, share, 3, 3, 3, 3);
   let value: v128;
   if (groups == 1) {
-    const a = between(p0, 16, t0);
-    const b = between(p1, 16, t1);
-    const c = between(p2, 16, t2);
-    const d = between(p3, 16, t3);
+    const a = between(p0, 16, v128.shuffle<f32>(w0, w0, 0, 0, 0, 0), v128.shuffle<f32>(w1, w1, 0, 0, 0, 0), v128.shuffle<f32>(w2, w2, 0, 0, 0, 0));
+    const b = between(p1, 16, v128.shuffle<f32>(w0, w0, 1, 1, 1, 1), v128.shuffle<f32>(w1, w1, 1, 1, 1, 1), v128.shuffle<f32>(w2, w2, 1, 1, 1, 1));
+    const c = between(p2, 16, v128.shuffle<f32>(w0, w0, 2, 2, 2, 2), v128.shuffle<f32>(w1, w1, 2, 2, 2, 2), v128.shuffle<f32>(w2, w2, 2, 2, 2, 2));
+    const d = between(p3, 16, v128.shuffle<f32>(w0, w0, 3, 3, 3, 3), v128.shuffle<f32>(w1, w1, 3, 3, 3, 3), v128.shuffle<f32>(w2, w2, 3, 3, 3, 3));
     const ab01 = v128.shuffle<f32>(a, b, 0, 4, 1, 5);
     const cd01 = v128.shuffle<f32>(c, d, 0, 4, 1, 5);
     const ab2 = v128.shuffle<f32>(a, b, 2, 6, 2, 6);
@@ -69,10 +77,10 @@ export function sampleQuad(
     value = zero;
     for (let g = 0; g < groups; g++) {
       const offset = <usize>g << 4;
-      const a = between(p0 + offset, stride, t0);
-      const b = between(p1 + offset, stride, t1);
-      const c = between(p2 + offset, stride, t2);
-      const d = between(p3 + offset, stride, t3);
+      const a = between(p0 + offset, stride, v128.shuffle<f32>(w0, w0, 0, 0, 0, 0), v128.shuffle<f32>(w1, w1, 0, 0, 0, 0), v128.shuffle<f32>(w2, w2, 0, 0, 0, 0));
+      const b = between(p1 + offset, stride, v128.shuffle<f32>(w0, w0, 1, 1, 1, 1), v128.shuffle<f32>(w1, w1, 1, 1, 1, 1), v128.shuffle<f32>(w2, w2, 1, 1, 1, 1));
+      const c = between(p2 + offset, stride, v128.shuffle<f32>(w0, w0, 2, 2, 2, 2), v128.shuffle<f32>(w1, w1, 2, 2, 2, 2), v128.shuffle<f32>(w2, w2, 2, 2, 2, 2));
+      const d = between(p3 + offset, stride, v128.shuffle<f32>(w0, w0, 3, 3, 3, 3), v128.shuffle<f32>(w1, w1, 3, 3, 3, 3), v128.shuffle<f32>(w2, w2, 3, 3, 3, 3));
       const ab01 = v128.shuffle<f32>(a, b, 0, 4, 1, 5);
       const cd01 = v128.shuffle<f32>(c, d, 0, 4, 1, 5);
       const ab23 = v128.shuffle<f32>(a, b, 2, 6, 3, 7);
@@ -109,9 +117,11 @@ function highest(v: v128): f32 {
 
 // @ts-ignore: decorator
 @inline
-function between(row: usize, stride: i32, t: v128): v128 {
-  const a = v128.load(row);
-  return f32x4.add(a, f32x4.mul(t, f32x4.sub(v128.load(row + <usize>stride), a)));
+function between(row: usize, stride: i32, w0: v128, w1: v128, w2: v128): v128 {
+  const next = row + <usize>stride;
+  return f32x4.add(
+    f32x4.add(f32x4.mul(w0, v128.load(row)), f32x4.mul(w1, v128.load(next))),
+    f32x4.mul(w2, v128.load(next + <usize>stride)));
 }
 
 /** 1, s sin φ, s cos φ, s sin 2φ, s cos 2φ … of four points. */

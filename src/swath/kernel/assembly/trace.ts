@@ -28,7 +28,11 @@ const MARGIN_MPS: f64 = 0.03;
 const ROUGH_MPS: f64 = 0.015;
 /** one farther off than this is no parabola, and is looked for among moments between. */
 const CORNER_MPS: f64 = 0.15;
-/** Within this (r/R)² profiles have corners: at the radius of maximum wind, and at 1.2 of it, where the inflow stops turning [Sobey1977]. */
+/** (r/R)² at which the inflow stops turning [Sobey1977]. */
+const INFLOW_X: f64 = 1.44;
+/** Places beside a corner at which it is checked, as a share of its bracket. */
+const CORNER_STEP: f64 = 0.06;
+/** Within this (r/R)² the wind has corners: at the radius of maximum wind and where the inflow stops turning. */
 const CORNER_X: f64 = 4;
 /** A search ends when a peak's neighbours are this near, m/s. */
 const SEARCHED_MPS: f64 = 0.002;
@@ -64,8 +68,10 @@ let fresh: i32 = 0;
 let ahead: i32 = 0;
 // (r/R)² of the last wind
 let squaredRatio: f64 = 0;
-// the row of a table and the share of the way to the next
-let rowShare: f64 = 0;
+// weights of three rows of a table
+let weight0: f64 = 0;
+let weight1: f64 = 0;
+let weight2: f64 = 0;
 
 function storm(index: i32): f64 {
   return f64At(STORM + 8 * index);
@@ -111,26 +117,34 @@ export function winds(count: i32): void {
   }
 }
 
+/** The first of the three rows about (r/R)² of x, as in `lanes.ts`, and the weights of the parabola through them. */
 function rowOf(x: f64): i32 {
+  let row: i32 = 0;
+  let t: f64 = 0;
   if (x < 0.5) {
-    const at = x * 128;
-    const row = whole(at);
-    rowShare = at - <f64>row;
-    return row;
+    t = x * 64;
+    row = whole(t);
+    t -= <f64>row;
+  } else {
+    const w = bitsOf(x);
+    row = (w >> 18) - 4000;
+    t = <f64>(w & 262143) * (1.0 / 262144.0);
   }
-  const w = bitsOf(x);
-  const row = (w >> 17) - 8000;
   if (row >= lastRow) {
-    rowShare = 0;
-    return lastRow;
+    row = lastRow;
+    t = 0;
+  } else if ((row & 31) === 31) {
+    row--;
+    t += 1;
   }
-  rowShare = <f64>(w & 131071) * (1.0 / 131072.0);
+  weight0 = -0.5 * (t - 1) * (2 - t);
+  weight1 = t * (2 - t);
+  weight2 = 0.5 * t * (t - 1);
   return row;
 }
 
 function column(at: i32, stride: i32): f64 {
-  const a = f32At(at);
-  return a + rowShare * (f32At(at + stride) - a);
+  return weight0 * f32At(at) + weight1 * f32At(at + stride) + weight2 * f32At(at + 2 * stride);
 }
 
 /** Wind of a point at a moment or between two. */
@@ -414,6 +428,7 @@ function extreme(p: i32, low: f64, fLow: f64, middle: f64, fMiddle: f64, high: f
       }
       if (off > CORNER_MPS || off < -CORNER_MPS) break;
     }
+    if (atCorner(p, low, fLow, middle, fMiddle, high, fHigh, m, fm, sign, turns)) return;
   }
   // corners and close pairs: look at moments between, then around the two highest
   if (!(low < high)) {
@@ -456,6 +471,90 @@ function looked(k: i32): f64 {
 
 function lookedAt(k: i32): f64 {
   return f64At(LOOKED + 16 * k);
+}
+
+/** (r/R)² of a point at a moment or between two. */
+function ratioAt(p: i32, moment: f64): f64 {
+  let m = whole(moment);
+  if (m > lastMoment) m = lastMoment;
+  const w = moment - <f64>m;
+  const a = frames + (m << 6);
+  const b = w > 0 ? a + 64 : a;
+  const x = f64At(X + 8 * p);
+  const y = f64At(Y + 8 * p);
+  const z = f64At(Z + 8 * p);
+  const east = x * (f64At(a) + w * (f64At(b) - f64At(a))) + y * (f64At(a + 8) + w * (f64At(b + 8) - f64At(a + 8)));
+  const north =
+    x * (f64At(a + 16) + w * (f64At(b + 16) - f64At(a + 16))) +
+    y * (f64At(a + 24) + w * (f64At(b + 24) - f64At(a + 24))) +
+    z * (f64At(a + 32) + w * (f64At(b + 32) - f64At(a + 32)));
+  return east * east + north * north;
+}
+
+/**
+ * The peak between three moments where a corner of the wind passes between them: at the corner, or on the smooth flank
+ * that the highest moment `m` known lies on. False where no corner passes, or where what is found is not higher than that.
+ */
+function atCorner(
+  p: i32, low: f64, fLow: f64, middle: f64, fMiddle: f64, high: f64, fHigh: f64, m: f64, fm: f64, sign: f64, turns: boolean,
+): boolean {
+  let corner: f64 = -1;
+  let top: f64 = -1e30;
+  let left = low;
+  let fLeft = fLow;
+  let right = high;
+  let fRight = fHigh;
+  if (turns) {
+    corner = middle;
+    top = fMiddle;
+    if (middle < m) {
+      left = middle;
+      fLeft = fMiddle;
+    } else if (middle > m) {
+      right = middle;
+      fRight = fMiddle;
+    }
+  }
+  const a = ratioAt(p, low);
+  const b = ratioAt(p, middle);
+  const c = ratioAt(p, high);
+  for (let k = 0; k < 4; k++) {
+    const x: f64 = k < 2 ? 1 : INFLOW_X;
+    const after = (k & 1) !== 0;
+    const xa = (after ? b : a) - x;
+    const xb = (after ? c : b) - x;
+    if ((xa < 0) === (xb < 0)) continue;
+    const from = after ? middle : low;
+    const to = after ? high : middle;
+    let t = from + ((to - from) * xa) / (xa - xb);
+    const off = ratioAt(p, t) - x;
+    // one more step of the secant
+    if ((off < 0) === (xa < 0)) t += ((to - t) * off) / (off - xb);
+    else t = from + ((t - from) * xa) / (xa - off);
+    const value = sign * speedAt(p, t);
+    if (value > top) {
+      corner = t;
+      top = value;
+    }
+    if (t < m && t > left) {
+      left = t;
+      fLeft = value;
+    } else if (t > m && t < right) {
+      right = t;
+      fRight = value;
+    }
+  }
+  if (corner < 0) return false;
+  if (top < fm) {
+    narrow(p, left, fLeft, m, fm, right, fRight, sign);
+    return true;
+  }
+  const beside = CORNER_STEP * (high - low);
+  const before = sign * speedAt(p, corner - beside > low ? corner - beside : low);
+  const behind = sign * speedAt(p, corner + beside < high ? corner + beside : high);
+  foundMoment = corner;
+  foundMps = top;
+  return before <= top && behind <= top;
 }
 
 /** Whether the parabola through three moments tells the wind at another one. */

@@ -12,10 +12,10 @@ const STEP_SHARE: f64 = 0.2;
 /** Next to the centre steps follow this share of the radius of maximum wind. */
 const CORE_SHARE: f64 = 0.7;
 /** Steps are longer by these factors while the wind is below this share of what the points have had or expect: with a threshold near, and below all. */
-const IDLE_FACTOR: f64 = 2;
+const IDLE_FACTOR: f64 = 1;
 const IDLE_FACTOR_BELOW: f64 = 3;
 const IDLE_SHARE: f64 = 0.6;
-const IDLE_BELOW: f64 = 0.8;
+const IDLE_BELOW: f64 = 0.7;
 /** Steps through the taper move the storm by this share of the outer radius. */
 const TAPER_STEP: f64 = 0.015;
 /** With more wind than this a step ends where a leg does, m/s: there the motion turns at another rate, and the wind with it. */
@@ -390,6 +390,7 @@ function extreme(p: i32, low: f64, fLow: f64, middle: f64, fMiddle: f64, high: f
     let fm = fMiddle;
     let h = high;
     let fh = fHigh;
+    let tried = false;
     for (let n = 0; n < 2; n++) {
       const vertex = vertexOf(l, fl, m, fm, h, fh);
       const estimate = foundMps;
@@ -422,13 +423,19 @@ function extreme(p: i32, low: f64, fLow: f64, middle: f64, fMiddle: f64, high: f
         foundMoment = vertexOf(l, fl, m, fm, h, fh);
         if (foundMps > fm + ROUGH_MPS) foundMps = fm + ROUGH_MPS;
         if (!cornered) return;
-        // by chance it may pass through a flank of a corner: then it is off elsewhere
+        // by chance it may pass through a flank of a corner
+        tried = true;
+        const vertexAt = foundMoment;
+        const height = foundMps;
+        if (atCorner(p, low, fLow, middle, fMiddle, high, fHigh, m, fm, sign, turns)) return;
+        foundMoment = vertexAt;
+        foundMps = height;
         if (agrees(p, 0.5 * (h - m > m - l ? m + h : l + m), l, fl, m, fm, h, fh, sign)) return;
         break;
       }
       if (off > CORNER_MPS || off < -CORNER_MPS) break;
     }
-    if (atCorner(p, low, fLow, middle, fMiddle, high, fHigh, m, fm, sign, turns)) return;
+    if (!tried && atCorner(p, low, fLow, middle, fMiddle, high, fHigh, m, fm, sign, turns)) return;
   }
   // corners and close pairs: look at moments between, then around the two highest
   if (!(low < high)) {

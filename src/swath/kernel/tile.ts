@@ -1,4 +1,4 @@
-import { EARTH_RADIUS_M, wrapBearing } from '../../earth.js';
+import { EARTH_RADIUS_M } from '../../earth.js';
 import { MOST_POINTS } from './places.js';
 import { type Placing, TILE_EDGE } from './tiling.js';
 import type { Tracer } from './tracer.js';
@@ -57,6 +57,26 @@ interface Guess {
   readonly fromDeg: number;
 }
 
+/** Points of a block, in units of half the spacing of its 3 × 3 points. */
+interface Pattern {
+  readonly points: readonly (readonly [number, number])[];
+  /** those that the 3 × 3 points are to tell */
+  readonly checks: readonly (readonly [number, number])[];
+  /** of what a check allows */
+  readonly share: number;
+}
+
+const FIVE = [0, 1, 2, 3, 4];
+const SQUARE = FIVE.flatMap((b) => FIVE.map((a) => [a, b] as const));
+/** All points: the cells between are interpolated from these, and what the checks allow is left by about an eighth. */
+const ALL: Pattern = { points: SQUARE, checks: SQUARE.filter(([a, b]) => a % 2 === 1 || b % 2 === 1), share: 1 };
+/** Those in the middle of four: the cells between are interpolated as the checks were. */
+const CENTRES: Pattern = {
+  points: SQUARE.filter(([a, b]) => a % 2 === b % 2),
+  checks: SQUARE.filter(([a, b]) => a % 2 === 1 && b % 2 === 1),
+  share: 0.4,
+};
+
 /** Weights of the parabola through 0, 1, 2 at a place. */
 const weightsAt = (t: number): readonly [number, number, number] => [
   0.5 * (t - 1) * (t - 2),
@@ -65,9 +85,9 @@ const weightsAt = (t: number): readonly [number, number, number] => [
 ];
 /** At the halves, which a block is checked at. */
 const HALVES = [0, 0.5, 1, 1.5, 2].map(weightsAt);
-/** At the cells of a piece, by the spacing of its points. */
-const CELLS = new Map(
-  [8, 4, 2].map((spacing) => [spacing, Array.from({ length: 2 * spacing }, (_, k) => weightsAt(k / spacing))]),
+/** At the cells of a piece of 3 × 3 points, by their spacing. */
+const CELLS = Array.from({ length: WIDEST / 2 + 1 }, (_, spacing) =>
+  Float64Array.from({ length: 6 * spacing }, (_, k) => weightsAt(Math.trunc(k / 3) / spacing)[k % 3]!),
 );
 
 /**
@@ -89,6 +109,9 @@ export function tileRunner(tracer: Tracer, placing: Placing, thresholdsMps: read
   const times = new Float64Array(9);
   /** from that of the fifth */
   const angles = new Float64Array(9);
+  /** three values along a line */
+  const line = new Float64Array(3);
+  /** squares of hours: toward the edge of where a wind is reached its hours fall as a square root does */
   const counted = thresholdsMps.map(() => new Float64Array(9));
   const { cellM } = placing;
   let guesses: Guess[] = [];
@@ -106,13 +129,21 @@ export function tileRunner(tracer: Tracer, placing: Placing, thresholdsMps: read
       for (let i = 0; i < width; i += 2 * WIDEST) blocks.push({ column: i, row: j });
     for (let spacing = WIDEST; blocks.length > 0; spacing >>= 1) {
       const near = spacing >> 1;
-      ask(blocks, near);
-      if (near === 1) break;
+      const pattern = near > 1 ? ALL : CENTRES;
+      ask(blocks, near, pattern);
       guesses = [];
-      const smooth = new Set(blocks.filter((block) => isSmooth(block, spacing)));
+      const smooth = new Set(blocks.filter((block) => isSmooth(block, spacing, pattern)));
       for (const block of wrongGuesses()) smooth.delete(block);
-      for (const block of smooth) fill(block, near);
-      blocks = blocks.filter((block) => !smooth.has(block)).flatMap((block) => quarters(block, spacing));
+      for (const { column, row } of smooth) {
+        if (near === 1) fillPiece(column, row, spacing);
+        else for (const b of [0, spacing]) for (const a of [0, spacing]) fillPiece(column + a, row + b, near);
+      }
+      blocks = blocks.filter((block) => !smooth.has(block));
+      if (near === 1) {
+        ask(blocks, near, ALL);
+        break;
+      }
+      blocks = blocks.flatMap((block) => quarters(block, spacing));
     }
     return true;
   }
@@ -140,28 +171,25 @@ export function tileRunner(tracer: Tracer, placing: Placing, thresholdsMps: read
     ].filter((block) => block.column < width && block.row < height);
   }
 
-  /** Asks for the points of blocks that are not known yet, 5 × 5 each. */
-  function ask(blocks: readonly Block[], near: number): void {
+  /** Asks for the points of blocks that are not known yet. */
+  function ask(blocks: readonly Block[], near: number, pattern: Pattern): void {
     // at last the cells themselves, and none beyond them
-    const [right, bottom] = near === 1 ? [width, height] : [EDGE, EDGE];
+    const [right, bottom] = near === 1 && pattern === ALL ? [width, height] : [EDGE, EDGE];
     let count = 0;
     for (const { column, row } of blocks) {
       const expected = near === WIDEST / 2 ? 0 : expectedMps(row * EDGE + column, 2 * near);
-      const toColumn = Math.min(right, column + 4 * near + 1);
-      const toRow = Math.min(bottom, row + 4 * near + 1);
-      for (let j = row; j < toRow; j += near) {
-        for (let i = column; i < toColumn; i += near) {
-          const at = j * EDGE + i;
-          if (known[at] !== 0) continue;
-          known[at] = 1;
-          windMps[at] = Number.NaN;
-          if (!placing.place(tracer, count, left + i, top + j)) continue;
-          asked[count] = at;
-          tracer.windMps[count] = expected;
-          if (++count < MOST_POINTS) continue;
-          answer(count);
-          count = 0;
-        }
+      for (const [a, b] of pattern.points) {
+        const [i, j] = [column + near * a, row + near * b];
+        const at = j * EDGE + i;
+        if (i >= right || j >= bottom || known[at] !== 0) continue;
+        known[at] = 1;
+        windMps[at] = Number.NaN;
+        if (!placing.place(tracer, count, left + i, top + j)) continue;
+        asked[count] = at;
+        tracer.windMps[count] = expected;
+        if (++count < MOST_POINTS) continue;
+        answer(count);
+        count = 0;
       }
     }
     if (count > 0) answer(count);
@@ -172,7 +200,8 @@ export function tileRunner(tracer: Tracer, placing: Placing, thresholdsMps: read
     let least = Number.POSITIVE_INFINITY;
     for (let b = 0; b < 3; b++)
       for (let a = 0; a < 3; a++) least = Math.min(least, windMps[first + spacing * (b * EDGE + a)]!);
-    return least >= 0 ? least : 0;
+    // not a number: a place is missing
+    return Number.isNaN(least) ? 0 : least;
   }
 
   function answer(count: number): void {
@@ -188,20 +217,18 @@ export function tileRunner(tracer: Tracer, placing: Placing, thresholdsMps: read
     }
   }
 
-  /** Whether parabolas through every other point of 5 × 5 tell the others; times that are off are put among the guesses. */
-  function isSmooth(block: Block, spacing: number): boolean {
+  /** Whether parabolas through 3 × 3 points tell the others of a pattern; times that are off are put among the guesses. */
+  function isSmooth(block: Block, spacing: number, { points, checks, share }: Pattern): boolean {
     const near = spacing >> 1;
     const first = block.row * EDGE + block.column;
     let [highest, lowest, least] = [0, Number.POSITIVE_INFINITY, Number.POSITIVE_INFINITY];
-    for (let b = 0; b < 5; b++) {
-      for (let a = 0; a < 5; a++) {
-        const at = first + near * (b * EDGE + a);
-        // not a number: no place
-        if (!(windMps[at]! >= 0)) return false;
-        highest = Math.max(highest, windMps[at]!);
-        lowest = Math.min(lowest, windMps[at]!);
-        least = Math.min(least, leastM[at]!);
-      }
+    for (const [a, b] of points) {
+      const at = first + near * (b * EDGE + a);
+      // not a number: no place
+      if (!(windMps[at]! >= 0)) return false;
+      highest = Math.max(highest, windMps[at]!);
+      lowest = Math.min(lowest, windMps[at]!);
+      least = Math.min(least, leastM[at]!);
     }
     if (least < AWAY_SPACINGS * spacing * cellM) return false;
     if (highest < CALM_MPS) return true;
@@ -209,27 +236,25 @@ export function tileRunner(tracer: Tracer, placing: Placing, thresholdsMps: read
     const centreDeg = gather(first, spacing);
     for (const angle of angles) if (Math.abs(angle) > 60) return false;
     const own: Guess[] = [];
-    for (let b = 0; b < 5; b++) {
-      for (let a = 0; a < 5; a++) {
-        if ((a & 1) === 0 && (b & 1) === 0) continue;
-        const at = first + near * (b * EDGE + a);
-        const wind = windMps[at]!;
-        const off = Math.abs(ofNine(winds, HALVES[a]!, HALVES[b]!) - wind);
-        if (wind < CALM_MPS) {
-          if (off > 10 * CHECK_MPS) return false;
-          continue;
-        }
-        if (off > CHECK_MPS) return false;
-        for (let h = 0; h < hours.length; h++) {
-          const real = hours[h]![at]!;
-          if (Math.abs(ofNine(counted[h]!, HALVES[a]!, HALVES[b]!) - real) > CHECK_HOURS + CHECK_HOURS_SHARE * real)
-            return false;
-        }
-        const guess = centreDeg + ofNine(angles, HALVES[a]!, HALVES[b]!);
-        const time = ofNine(times, HALVES[a]!, HALVES[b]!);
-        if (Math.abs(time - timeS[at]!) > CHECK_TIME_S) own.push({ block, at, timeS: time, fromDeg: guess });
-        else if (Math.abs(turnDeg(guess, fromDeg[at]!)) > CHECK_DEG) return false;
+    for (const [a, b] of checks) {
+      const [across, down] = [HALVES[a]!, HALVES[b]!];
+      const at = first + near * (b * EDGE + a);
+      const wind = windMps[at]!;
+      const off = Math.abs(ofNine(winds, across, down) - wind);
+      if (wind < CALM_MPS) {
+        if (off > 10 * CHECK_MPS) return false;
+        continue;
       }
+      if (off > share * CHECK_MPS) return false;
+      for (let h = 0; h < hours.length; h++) {
+        const real = hours[h]![at]!;
+        if (Math.abs(Math.sqrt(Math.max(0, ofNine(counted[h]!, across, down))) - real) > share * (CHECK_HOURS + CHECK_HOURS_SHARE * real))
+          return false;
+      }
+      const guess = centreDeg + ofNine(angles, across, down);
+      const time = ofNine(times, across, down);
+      if (Math.abs(time - timeS[at]!) > CHECK_TIME_S) own.push({ block, at, timeS: time, fromDeg: guess });
+      else if (Math.abs(turnDeg(guess, fromDeg[at]!)) > CHECK_DEG) return false;
     }
     guesses.push(...own);
     return true;
@@ -251,7 +276,7 @@ export function tileRunner(tracer: Tracer, placing: Placing, thresholdsMps: read
       winds[k] = windMps[at]!;
       times[k] = timeS[from]!;
       angles[k] = turnDeg(fromDeg[from]!, centreDeg);
-      for (let h = 0; h < hours.length; h++) counted[h]![k] = hours[h]![at]!;
+      for (let h = 0; h < hours.length; h++) counted[h]![k] = hours[h]![at]! ** 2;
     }
     return centreDeg;
   }
@@ -276,31 +301,62 @@ export function tileRunner(tracer: Tracer, placing: Placing, thresholdsMps: read
     return wrong;
   }
 
-  /** Interpolates the cells of a block from its 5 × 5 points, `near` apart: four pieces of 3 × 3. */
-  function fill({ column, row }: Block, near: number): void {
-    const weights = CELLS.get(near)!;
-    for (let piece = 0; piece < 4; piece++) {
-      const left = column + (piece & 1) * 2 * near;
-      const top = row + (piece >> 1) * 2 * near;
-      const centreDeg = gather(top * EDGE + left, near);
-      const still = winds.every((wind) => wind === 0);
-      const right = Math.min(left + 2 * near, width);
-      const bottom = Math.min(top + 2 * near, height);
-      for (let j = top; j < bottom; j++) {
-        const down = weights[j - top]!;
-        for (let i = left; i < right; i++) {
-          if ((j - top) % near === 0 && (i - left) % near === 0) continue;
-          const across = weights[i - left]!;
-          const at = j * EDGE + i;
-          const wind = still ? 0 : ofNine(winds, across, down);
-          const calm = wind < LEAST_MPS;
-          windMps[at] = calm ? 0 : wind;
-          timeS[at] = calm ? Number.NaN : Math.max(0, ofNine(times, across, down));
-          fromDeg[at] = calm ? Number.NaN : wrapBearing(centreDeg + ofNine(angles, across, down));
-          for (let h = 0; h < hours.length; h++)
-            hours[h]![at] = wind < thresholdsMps[h]! ? 0 : Math.max(0, ofNine(counted[h]!, across, down));
-        }
+  /** Interpolates the cells of a piece that are not known from its 3 × 3 points. */
+  function fillPiece(left: number, top: number, near: number): void {
+    const weights = CELLS[near]!;
+    const first = top * EDGE + left;
+    const centreDeg = gather(first, near);
+    const right = Math.min(left + 2 * near, width) - left;
+    const bottom = Math.min(top + 2 * near, height) - top;
+    let calm = false;
+    for (let k = 0; k < 9; k++) calm ||= !(winds[k]! > CALM_MPS);
+    for (let j = 0; j < bottom; j++) {
+      const from = first + j * EDGE;
+      along(winds, weights, j);
+      spread(windMps, from, weights, right);
+      along(times, weights, j);
+      spread(timeS, from, weights, right);
+      along(angles, weights, j);
+      spread(fromDeg, from, weights, right);
+      for (let at = from; at < from + right; at++) if (known[at] === 0) fromDeg[at] = wrapped(centreDeg + fromDeg[at]!);
+      for (let h = 0; h < hours.length; h++) {
+        along(counted[h]!, weights, j);
+        spread(hours[h]!, from, weights, right);
       }
+      if (calm || hours.length > 0) settle(from, right);
+    }
+  }
+
+  /** The parabolas along a line, from those down the columns of 3 × 3 points. */
+  function along(v: Float64Array, weights: Float64Array, j: number): void {
+    const a = weights[3 * j]!;
+    const b = weights[3 * j + 1]!;
+    const c = weights[3 * j + 2]!;
+    line[0] = a * v[0]! + b * v[3]! + c * v[6]!;
+    line[1] = a * v[1]! + b * v[4]! + c * v[7]!;
+    line[2] = a * v[2]! + b * v[5]! + c * v[8]!;
+  }
+
+  function spread(to: Float64Array, from: number, weights: Float64Array, count: number): void {
+    const a = line[0]!;
+    const b = line[1]!;
+    const c = line[2]!;
+    for (let i = 0, w = 0; i < count; i++, w += 3)
+      if (known[from + i] === 0) to[from + i] = weights[w]! * a + weights[w + 1]! * b + weights[w + 2]! * c;
+  }
+
+  /** What interpolation makes of calms and of hours that are not reached. */
+  function settle(from: number, count: number): void {
+    for (let at = from; at < from + count; at++) {
+      if (known[at] !== 0) continue;
+      const wind = windMps[at]!;
+      if (!(wind >= LEAST_MPS)) {
+        windMps[at] = 0;
+        timeS[at] = Number.NaN;
+        fromDeg[at] = Number.NaN;
+      } else if (timeS[at]! < 0) timeS[at] = 0;
+      for (let h = 0; h < hours.length; h++)
+        hours[h]![at] = wind >= thresholdsMps[h]! && hours[h]![at]! > 0 ? Math.sqrt(hours[h]![at]!) : 0;
     }
   }
 }
@@ -321,4 +377,9 @@ function ofNine(
 /** The turn from one direction to another, −180 to 180°. */
 function turnDeg(toDeg: number, fromDeg: number): number {
   return ((toDeg - fromDeg + 540) % 360) - 180;
+}
+
+/** A direction that is off by less than a turn, 0 to 360°. */
+function wrapped(deg: number): number {
+  return deg < 0 ? deg + 360 : deg >= 360 ? deg - 360 : deg;
 }

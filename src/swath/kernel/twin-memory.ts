@@ -47,3 +47,8 @@ export function whole(value: number): number {
 export function root(value: number): number {
   return Math.sqrt(value);
 }
+
+/** Zero bits before the first one. */
+export function zeros(value: number): number {
+  return Math.clz32(value);
+}

@@ -50,3 +50,10 @@ export function whole(value: f64): i32 {
 export function root(value: f64): f64 {
   return sqrt<f64>(value);
 }
+
+/** Zero bits before the first one. */
+// @ts-ignore: decorator
+@inline
+export function zeros(value: i32): i32 {
+  return clz<i32>(value);
+}

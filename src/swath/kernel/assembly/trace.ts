@@ -1,6 +1,6 @@
 // The wind at points through a storm's life: peak over continuous time, hours above thresholds. The build makes
 // `../twin-trace.ts` of this file, with plain JavaScript beneath it: what stands here must mean the same in both.
-import { bitsOf, f32At, f64At, i32At, root, setF32, setF64, whole } from './memory';
+import { bitsOf, f32At, f64At, i32At, root, setF32, setF64, whole, zeros } from './memory';
 import { dips, peaks, sampleQuad, sides } from './lanes';
 import {
   AHEAD, COLUMN, EAST, EXTREMES, FRAMES, FRESH, GROUPS, HELD, HOURS, LAST_ROW, LEAST, LEGS, LEVELS, LOOKED, MOMENT, MOMENTS,
@@ -9,6 +9,8 @@ import {
 
 /** A step moves the storm by at most this share of the distance from it (or of its radius of maximum wind). */
 const STEP_SHARE: f64 = 0.2;
+/** A step keeps so many of its leading bits. */
+const ROUND_BITS: i32 = 2;
 /** Next to the centre steps follow this share of the radius of maximum wind. */
 const CORE_SHARE: f64 = 0.7;
 /** Steps are longer by these factors while the wind is below this share of what the points have had or expect: with a threshold near, and below all. */
@@ -318,8 +320,11 @@ function traceQuad(p: i32): void {
         const last = whole(f64At(leg + 8));
         const room = <f64>(last - m);
         if (budget * moments < room) {
-          m += whole(budget * moments);
-          if (m === from) m++;
+          const n = whole(budget * moments);
+          m += n;
+          // round moments, so that neighbours use the same ones: their tables are at hand
+          if (n > 7) m -= (m - whole(f64At(leg))) & ((1 << (31 - ROUND_BITS - zeros(n))) - 1);
+          if (m <= from) m = from + 1;
           break;
         }
         m = last;

@@ -248,7 +248,10 @@ export function tileRunner(tracer: Tracer, placing: Placing, thresholdsMps: read
       if (off > share * CHECK_MPS) return false;
       for (let h = 0; h < hours.length; h++) {
         const real = hours[h]![at]!;
-        if (Math.abs(Math.sqrt(Math.max(0, ofNine(counted[h]!, across, down))) - real) > share * (CHECK_HOURS + CHECK_HOURS_SHARE * real))
+        if (
+          Math.abs(Math.sqrt(Math.max(0, ofNine(counted[h]!, across, down))) - real) >
+          share * (CHECK_HOURS + CHECK_HOURS_SHARE * real)
+        )
           return false;
       }
       const guess = centreDeg + ofNine(angles, across, down);

@@ -1,9 +1,9 @@
-import { EARTH_RADIUS_M, RADIANS, wrapBearing } from '../../earth.js';
+import { EARTH_RADIUS_M, RADIANS } from '../../earth.js';
 import { TAPER_SHARE } from '../../model/field.js';
 import type { Engine } from './engine.js';
 import * as at from './places.js';
 import { type StormTables, servingTables } from './storm-tables.js';
-import { rowsBelow } from './table.js';
+import { type MomentTable, rowsBelow } from './table.js';
 import { FRAME, momentOf, type Timeline, timeMsOf } from './timeline.js';
 
 /** A step changes a point's wind by at most this where the maximum wind changes, m/s. */
@@ -53,7 +53,7 @@ export function tracerOf(
   const rounded = (bytes: number): number => (bytes + 63) & ~63;
   engine.release();
   engine.reserve(
-    serving.tables.length * rounded(speedBytes) +
+    (serving.tables.length + built.size) * rounded(speedBytes) +
       built.size * rounded(windBytes) +
       count * (64 + 24 + 8) +
       legs.length * (64 + 8) +
@@ -66,12 +66,22 @@ export function tracerOf(
     f32.set(table.wind, address >> 2);
     built.set(table, address);
   }
-  const speedAt = serving.tables.map(({ a, b, share }) => {
+  // those that were built stand where the first that serves them is wanted
+  const placed = new Map<MomentTable, number>();
+  const placeOf = (table: MomentTable): number => {
+    const known = placed.get(table);
+    if (known !== undefined) return known;
     const address = engine.allocate(speedBytes);
-    const [p, q] = [a.speed, b.speed];
-    const to = address >> 2;
-    if (share === 0) f32.set(p, to);
-    else for (let k = 0; k < p.length; k++) f32[to + k] = p[k]! + share * (q[k]! - p[k]!);
+    f32.set(table.speed, address >> 2);
+    placed.set(table, address);
+    return address;
+  };
+  const speedAt = serving.tables.map(({ a, b, share }) => {
+    if (share === 0) return placeOf(a);
+    if (share === 1) return placeOf(b);
+    const [from, to] = [placeOf(a), placeOf(b)];
+    const address = engine.allocate(speedBytes);
+    engine.mix(address, from, to, share, layout.rows * layout.speedStride);
     return address;
   });
   const framesAt = engine.allocate(64 * count);
@@ -155,13 +165,10 @@ export function tracerOf(
       moments[point] = momentOf(timeline, originMs + timeS * 1000);
     },
     timeS: (point) => (timeMsOf(timeline, moments[point]!) - originMs) / 1000,
-    fromDeg: (point) =>
-      fromDirection(x[point]!, y[point]!, z[point]!, {
-        frames,
-        at: FRAME * Math.min(count - 1, Math.trunc(moments[point]! + 0.5)),
-        eastMps: east[point]!,
-        northMps: north[point]!,
-      }),
+    fromDeg: (point) => {
+      const k = FRAME * Math.min(count - 1, Math.trunc(moments[point]! + 0.5));
+      return fromDirection(x[point]!, y[point]!, z[point]!, frames, k, east[point]!, north[point]!);
+    },
     near([cx, cy, cz], radiusM) {
       const own = radiusM / EARTH_RADIUS_M;
       let runs = 0;
@@ -204,24 +211,32 @@ function fromDirection(
   x: number,
   y: number,
   z: number,
-  wind: { frames: Float64Array; at: number; eastMps: number; northMps: number },
+  frames: Float64Array,
+  k: number,
+  eastMps: number,
+  northMps: number,
 ): number {
-  const { frames, at: k } = wind;
-  const [cx, cy, cz] = [frames[k]!, frames[k + 1]!, frames[k + 2]!];
+  const cx = frames[k]!;
+  const cy = frames[k + 1]!;
+  const cz = frames[k + 2]!;
   const flat = Math.sqrt(x * x + y * y);
   const centreFlat = Math.sqrt(cx * cx + cy * cy);
-  let [real, imaginary] = [-wind.northMps, -wind.eastMps];
+  let real = -northMps;
+  let imaginary = -eastMps;
   // sides of the triangle of the two places and the pole, as far as their bearings need them
-  const across = cx * y - cy * x;
+  const side = cx * y - cy * x;
   const along = cx * x + cy * y;
-  const outEast = across / centreFlat;
+  const outEast = side / centreFlat;
   const outNorth = z * centreFlat - (cz * along) / centreFlat;
   if (flat > 1e-9 && centreFlat > 1e-9 && outEast * outEast + outNorth * outNorth > NEAR_SQUARED) {
     // bearings as complex numbers, north real: times the way's direction at the place, divided by that at the centre
-    const onEast = across / flat;
+    const onEast = side / flat;
     const onNorth = (z * along) / flat - cz * flat;
-    [real, imaginary] = [real * onNorth - imaginary * onEast, real * onEast + imaginary * onNorth];
-    [real, imaginary] = [real * outNorth + imaginary * outEast, imaginary * outNorth - real * outEast];
+    const turned = real * onNorth - imaginary * onEast;
+    const across = real * onEast + imaginary * onNorth;
+    real = turned * outNorth + across * outEast;
+    imaginary = across * outNorth - turned * outEast;
   }
-  return wrapBearing(Math.atan2(imaginary, real) / RADIANS);
+  const degrees = Math.atan2(imaginary, real) / RADIANS;
+  return degrees < 0 ? degrees + 360 : degrees;
 }

@@ -165,3 +165,11 @@ export function sides(winds: number, thresholds: number): number {
     for (let i = 0; i < 4; i++) if (f32At(winds + 4 * i) >= f32At(LEVELS + 4 * h)) bits |= 1 << (4 * h + i);
   return bits;
 }
+
+export function mix(to: number, a: number, b: number, share: number, count: number): void {
+  const t = fround(share);
+  for (let k = 0; k < 4 * count; k += 4) {
+    const p = f32At(a + k);
+    setF32(to + k, fround(p + fround(t * fround(f32At(b + k) - p))));
+  }
+}

@@ -1,5 +1,6 @@
 import { allocator, type Engine, viewsOf } from './engine.js';
 import { HEAP } from './places.js';
+import { mix } from './twin-lanes.js';
 import { bind } from './twin-memory.js';
 import { trace, winds } from './twin-trace.js';
 
@@ -27,6 +28,10 @@ export function twinEngine(): Engine {
     trace(count) {
       bind(views);
       trace(count);
+    },
+    mix(to, a, b, share, count) {
+      bind(views);
+      mix(to, a, b, share, count);
     },
     winds(count) {
       bind(views);

@@ -23,9 +23,9 @@ export function wasmEngine(): Engine | null {
   const module = kernelModule();
   if (!module) return null;
   const memory = new WebAssembly.Memory({ initial: Math.ceil(HEAP / PAGE) + 1, maximum: 65_536 });
-  const { trace, winds } = new WebAssembly.Instance(module, { env: { memory } }).exports as unknown as Pick<
+  const { trace, winds, mix } = new WebAssembly.Instance(module, { env: { memory } }).exports as unknown as Pick<
     Engine,
-    'trace' | 'winds'
+    'trace' | 'winds' | 'mix'
   >;
   let views = viewsOf(memory.buffer);
   return {
@@ -48,6 +48,7 @@ export function wasmEngine(): Engine | null {
     },
     trace,
     winds,
+    mix,
   };
 }
 

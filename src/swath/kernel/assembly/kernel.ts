@@ -1,2 +1,3 @@
 // What the kernel exports.
 export { trace, winds } from './trace';
+export { mix } from './lanes';

@@ -198,3 +198,12 @@ export function sides(winds: i32, thresholds: i32): i32 {
     bits |= i32x4.bitmask(f32x4.ge(w, v128.load32_splat(<usize>(LEVELS + (h << 2))))) << (h << 2);
   return bits;
 }
+
+/** Numbers at a share of the way from `a` to `b`, whole groups of four. */
+export function mix(to: i32, a: i32, b: i32, share: f64, count: i32): void {
+  const t = f32x4.splat(<f32>share);
+  for (let k: usize = 0; k < <usize>(count << 2); k += 16) {
+    const p = v128.load(<usize>a + k);
+    v128.store(<usize>to + k, f32x4.add(p, f32x4.mul(t, f32x4.sub(v128.load(<usize>b + k), p))));
+  }
+}

@@ -26,6 +26,8 @@ export const BIBLIOGRAPHY: Readonly<Record<string, string>> = {
   DeMariaEtAl1992:
     'DeMaria, M., S. D. Aberson, K. V. Ooyama and S. J. Lord, 1992: A nested spectral model for hurricane track forecasting. Mon. Wea. Rev. 120, 1628–1643',
   Durst1960: 'Durst, C. S., 1960: Wind speeds over short periods of time. Meteorological Magazine 89, 181–186',
+  Dvorak1984:
+    'Dvorak, V. F., 1984: Tropical cyclone intensity analysis using satellite data. NOAA Technical Report NESDIS 11',
   EatonEtAl2023: 'Eaton, B., and coauthors, 2023: NetCDF Climate and Forecast (CF) metadata conventions, version 1.11',
   Emanuel2004:
     'Emanuel, K., 2004: Tropical cyclone energetics and structure. In: Atmospheric Turbulence and Mesoscale Meteorology, Cambridge University Press, 165–191',

@@ -6,7 +6,7 @@ import { DECAY_SETS } from '../surface/inland-decay.js';
 import { MOTION_WEIGHTS } from '../surface/motion.js';
 import { REDUCTIONS } from '../surface/reduction.js';
 import { BLENDING_HEIGHT_M } from '../surface/roughness.js';
-import { PRESSURE_WIND_RELATIONS } from '../track/relations/pressure-wind.js';
+import { PRESSURE_WIND_RELATIONS } from '../track/relations/pressure-wind-relations.js';
 import { RADIUS_RELATIONS } from '../track/relations/radius-of-max-wind.js';
 import { SIZE_RELATIONS } from '../track/relations/size.js';
 import { PROFILES } from '../vortex/profiles.js';

@@ -5,7 +5,8 @@ import { HOUR_MS, knots } from '../units.js';
 import { gradientConsistentB, HOLLAND_B_BOUNDS } from '../vortex/holland1980.js';
 import { monotoneCubic, piecewiseLinear } from './interpolate.js';
 import { ambientPressurePa } from './relations/ambient-pressure.js';
-import { PRESSURE_WIND_RELATIONS, type PressureWindInput } from './relations/pressure-wind.js';
+import type { PressureWindInput } from './relations/pressure-wind.js';
+import { PRESSURE_WIND_RELATIONS } from './relations/pressure-wind-relations.js';
 import { RADIUS_RELATIONS } from './relations/radius-of-max-wind.js';
 import { dayMeans, SIZE_RELATIONS } from './relations/size.js';
 import { type Fix, hemisphereOf, type Track } from './track.js';
@@ -106,10 +107,18 @@ export function completeTrack(track: Track, options: CompletionOptions): Complet
   const meanOf34Kt = (fix: Fix): number | null => (options.radii === 'fit' ? meanRadiusM(fix, knots(34)) : null);
   const relationInput = (i: number): PressureWindInput => ({
     latDeg: fixes[i]!.latDeg,
+    lonDeg: fixes[i]!.lonDeg,
+    basin: track.basin,
     translationMps: translation[i]!,
     radiusOf34KtM: meanOf34Kt(fixes[i]!),
     ambientPressurePa: ambient[i]!.value,
+    pressureTrendPaPerS: pressureTrendPaPerS(fixes, i),
+    airDensityKgM3: options.airDensityKgM3,
   });
+  const byPressureWind = (i: number, from: 'wind' | 'pressure'): string => {
+    const note = pressureWind.note?.(relationInput(i)) ?? null;
+    return `${pressureWind.id} from ${from}${note === null ? '' : `; ${note}`}`;
+  };
   // relations are for 1-min winds
   const toOneMinute = averagingFactor('at-sea', { fromS: options.averagingS, toS: 60 });
 
@@ -121,7 +130,7 @@ export function completeTrack(track: Track, options: CompletionOptions): Complet
     }
     if (fix.centralPressurePa === null) return null;
     const wind = pressureWind.maxWindMps(fix.centralPressurePa, relationInput(i)) / toOneMinute;
-    return { value: wind, origin: 'estimated', by: `${pressureWind.id} from pressure` };
+    return { value: wind, origin: 'estimated', by: byPressureWind(i, 'pressure') };
   });
   const wind = between(stated, times, options.interpolation);
   if (!wind) {
@@ -140,7 +149,7 @@ export function completeTrack(track: Track, options: CompletionOptions): Complet
         : {
             value: pressureWind.centralPressurePa(oneMinute, relationInput(i)),
             origin: 'estimated',
-            by: `${pressureWind.id} from wind`,
+            by: byPressureWind(i, 'wind'),
           };
     let around = ambient[i]!;
     if (pressure.value > around.value - LEAST_DEFICIT_PA) {
@@ -291,6 +300,23 @@ function between(
       by: at < first || at > last ? 'held from the nearest fix with a wind' : 'between fixes',
     };
   });
+}
+
+/** Fixes farther apart say nothing of the trend, ms. */
+const TREND_SPAN_MS = 24 * HOUR_MS;
+
+/** Trend of the central pressure at a fix from the given pressures next to it (and its own), Pa/s; null where there are not two. */
+function pressureTrendPaPerS(fixes: readonly Fix[], i: number): number | null {
+  const near = [i - 1, i, i + 1].flatMap((k) => {
+    const fix = fixes[k];
+    return fix === undefined || fix.centralPressurePa === null
+      ? []
+      : [{ atMs: fix.timeMs, pressurePa: fix.centralPressurePa }];
+  });
+  const first = near[0];
+  const last = near[near.length - 1];
+  if (!first || !last || first === last || last.atMs - first.atMs > TREND_SPAN_MS) return null;
+  return ((last.pressurePa - first.pressurePa) / (last.atMs - first.atMs)) * 1000;
 }
 
 /** Translation speed at each fix, m/s: the mean over the legs that meet there. */

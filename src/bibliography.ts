@@ -26,6 +26,8 @@ export const BIBLIOGRAPHY: Readonly<Record<string, string>> = {
   DeMariaEtAl1992:
     'DeMaria, M., S. D. Aberson, K. V. Ooyama and S. J. Lord, 1992: A nested spectral model for hurricane track forecasting. Mon. Wea. Rev. 120, 1628–1643',
   Durst1960: 'Durst, C. S., 1960: Wind speeds over short periods of time. Meteorological Magazine 89, 181–186',
+  Dvorak1984:
+    'Dvorak, V. F., 1984: Tropical cyclone intensity analysis using satellite data. NOAA Technical Report NESDIS 11',
   EatonEtAl2023: 'Eaton, B., and coauthors, 2023: NetCDF Climate and Forecast (CF) metadata conventions, version 1.11',
   Emanuel2004:
     'Emanuel, K., 2004: Tropical cyclone energetics and structure. In: Atmospheric Turbulence and Mesoscale Meteorology, Cambridge University Press, 165–191',
@@ -43,6 +45,8 @@ export const BIBLIOGRAPHY: Readonly<Record<string, string>> = {
   Gringorten1963:
     'Gringorten, I. I., 1963: A plotting rule for extreme probability paper. J. Geophys. Res. 68, 813–814',
   Gumbel1958: 'Gumbel, E. J., 1958: Statistics of Extremes. Columbia University Press',
+  HarperHolland1999:
+    'Harper, B. A., and G. J. Holland, 1999: An updated parametric model of the tropical cyclone. 23rd Conference on Hurricanes and Tropical Meteorology, American Meteorological Society, Dallas',
   HarperKepertGinger2010:
     'Harper, B. A., J. D. Kepert, and J. D. Ginger, 2010: Guidelines for converting between various wind averaging periods in tropical cyclone conditions. World Meteorological Organization, WMO/TD-No. 1555',
   Harrtell2020:
@@ -55,6 +59,8 @@ export const BIBLIOGRAPHY: Readonly<Record<string, string>> = {
   HollandBelangerFritz2010:
     'Holland, G. J., J. I. Belanger and A. Fritz, 2010: A revised model for radial profiles of hurricane winds. Mon. Wea. Rev. 138, 4393–4401',
   Holton2004: 'Holton, J. R., 2004: An Introduction to Dynamic Meteorology, 4th ed. Elsevier Academic Press',
+  HubbertEtAl1991:
+    'Hubbert, G. D., G. J. Holland, L. M. Leslie, and M. J. Manton, 1991: A real-time system for forecasting tropical cyclone storm surges. Weather and Forecasting 6, 86–97',
   Hughes1952:
     'Hughes, L. A., 1952: On the low-level wind structure of tropical storms. Journal of Meteorology 9, 422–428',
   IEC61966:
@@ -72,6 +78,8 @@ export const BIBLIOGRAPHY: Readonly<Record<string, string>> = {
     'Kaplan, J., and M. DeMaria, 1995: A simple empirical model for predicting the decay of tropical cyclone winds after landfall. Journal of Applied Meteorology 34, 2499–2512. doi:10.1175/1520-0450(1995)034<2499:ASEMFP>2.0.CO;2',
   KaplanDeMaria2001:
     'Kaplan, J., and M. DeMaria, 2001: On the decay of tropical cyclone winds after landfall in the New England area. Journal of Applied Meteorology 40, 280–286',
+  KnaffEtAl2015:
+    'Knaff, J. A., S. P. Longmore, R. T. DeMaria, and D. A. Molenar, 2015: Improved tropical-cyclone flight-level wind estimates using routine infrared satellite reconnaissance. Journal of Applied Meteorology and Climatology 54, 463–478',
   KnaffZehr2007:
     'Knaff, J. A., and R. M. Zehr, 2007: Reexamination of tropical cyclone wind–pressure relationships. Weather and Forecasting 22, 71–88. doi:10.1175/WAF965.1',
   KnappEtAl2010:
@@ -93,6 +101,8 @@ export const BIBLIOGRAPHY: Readonly<Record<string, string>> = {
   OgcKml2008: 'Open Geospatial Consortium, 2008: KML, version 2.2. OGC 07-147r2',
   OgcWkt2019:
     'Open Geospatial Consortium, 2019: Geographic information: well-known text representation of coordinate reference systems, version 2.0.6. OGC 18-010r7',
+  PowellEtAl2005:
+    'Powell, M., G. Soukup, S. Cocke, S. Gulati, N. Morisseau-Leroy, S. Hamid, N. Dorst, and L. Axe, 2005: State of Florida hurricane loss projection model: atmospheric science component. Journal of Wind Engineering and Industrial Aerodynamics 93, 651–674',
   RFC1950:
     'Deutsch, P., and J.-L. Gailly, 1996: ZLIB compressed data format specification version 3.3. RFC 1950. doi:10.17487/RFC1950',
   RFC4180:
@@ -125,6 +135,10 @@ export const BIBLIOGRAPHY: Readonly<Record<string, string>> = {
   USACE2002: 'U.S. Army Corps of Engineers, 2002: Coastal Engineering Manual, part II, chapter 2. EM 1110-2-1100',
   VanOosteromStrackee1983:
     'Van Oosterom, A., and J. Strackee, 1983: The solid angle of a plane triangle. IEEE Transactions on Biomedical Engineering BME-30, 125–126. doi:10.1109/TBME.1983.325207',
+  VickeryEtAl2000:
+    'Vickery, P. J., P. F. Skerlj, and L. A. Twisdale, 2000: Simulation of hurricane risk in the U.S. using empirical track model. Journal of Structural Engineering 126, 1222–1237',
+  VickeryWadhera2008:
+    'Vickery, P. J., and D. Wadhera, 2008: Statistical models of Holland pressure profile parameter and radius to maximum winds of hurricanes from flight-level pressure and H*Wind data. Journal of Applied Meteorology and Climatology 47, 2497–2517',
   WCAG22: 'World Wide Web Consortium, 2023: Web Content Accessibility Guidelines (WCAG) 2.2. W3C Recommendation',
   WGS84:
     'National Imagery and Mapping Agency, 2000: Department of Defense World Geodetic System 1984, its definition and relationships with local geodetic systems, 3rd ed. TR8350.2',
@@ -135,4 +149,6 @@ export const BIBLIOGRAPHY: Readonly<Record<string, string>> = {
     'Wieringa, J., 1992: Updating the Davenport roughness classification. Journal of Wind Engineering and Industrial Aerodynamics 41, 357–368',
   Willoughby2006:
     'Willoughby, H. E., R. W. R. Darling, and M. E. Rahn, 2006: Parametric representation of the primary hurricane vortex. Part II: A new family of sectionally continuous profiles. Monthly Weather Review 134, 1102–1120. doi:10.1175/MWR3106.1',
+  WilloughbyRahn2004:
+    'Willoughby, H. E., and M. E. Rahn, 2004: Parametric representation of the primary hurricane vortex. Part I: Observations and evaluation of the Holland (1980) model. Monthly Weather Review 132, 3033–3048',
 };

@@ -72,7 +72,7 @@ export async function verify(files: readonly string[], options: VerifyOptions): 
   if (options.as === 'csv') await write(csvOf(rows));
   else if (options.as !== undefined) {
     const { verifySvg } = await import('../picture/verify-svg.js');
-    const svg = verifySvg(rows, { title: files.join(', '), hidden: hide });
+    const svg = verifySvg(rows, { title: titleOf(files), hidden: hide });
     await write(options.as === 'svg' ? svg : (await import('../io/png.js')).svgToPng(svg));
   } else {
     const number = (value: number | null, digits: number): string => (value === null ? '-' : value.toFixed(digits));
@@ -95,6 +95,12 @@ export async function verify(files: readonly string[], options: VerifyOptions): 
     out.say('\nModelled less observed. Radii: mean of the quadrants, where all four are observed above zero.');
   }
   for (const caution of cautions) out.say(`caution: ${caution}`);
+}
+
+/** The files by their names alone; more than two by their number. */
+function titleOf(files: readonly string[]): string {
+  const names = files.map((file) => (file === '-' ? 'standard input' : file.replace(/^.*[\\/]/, '')));
+  return names.length > 2 ? `${names[0]} and ${names.length - 1} more files` : names.join(', ');
 }
 
 /** Whether a storm is the one that was named, if one was. */

@@ -6,8 +6,9 @@ import { DECAY_SETS } from '../surface/inland-decay.js';
 import { MOTION_WEIGHTS } from '../surface/motion.js';
 import { REDUCTIONS } from '../surface/reduction.js';
 import { BLENDING_HEIGHT_M } from '../surface/roughness.js';
-import { PRESSURE_WIND_RELATIONS } from '../track/relations/pressure-wind.js';
-import { RADIUS_RELATIONS } from '../track/relations/radius-of-max-wind.js';
+import { HOLLAND_B_RELATIONS } from '../track/relations/holland-b.js';
+import { PRESSURE_WIND_RELATIONS } from '../track/relations/pressure-wind-relations.js';
+import { RADIUS_RELATIONS } from '../track/relations/radius-relations.js';
 import { SIZE_RELATIONS } from '../track/relations/size.js';
 import { PROFILES } from '../vortex/profiles.js';
 
@@ -84,10 +85,17 @@ export const RECIPE_ENTRIES: readonly RecipeEntry[] = [
   {
     key: 'completion.b',
     standard: 'gradient-consistent',
-    words: ['gradient-consistent', 'cyclostrophic'],
+    words: ['gradient-consistent', 'cyclostrophic', ...ids(HOLLAND_B_RELATIONS)],
     range: [0.5, 3.5],
-    help: 'Holland B where the track has none, limited to 0.8–2.5; or a number',
+    help: 'Holland B where the track has none, limited to 0.8–2.5: by an identity or a relation; or a number',
     source: 'Holland1980',
+  },
+  {
+    key: 'completion.sea_temperature_c',
+    standard: 28,
+    range: [10, 35],
+    help: 'temperature of the sea, °C, for completion.b=vickery-wadhera-2008',
+    source: 'own choice',
   },
   {
     key: 'completion.max_gap_h',

@@ -1,15 +1,17 @@
 import { pairsOf, scoreOf, type VerificationRow, type VerificationSummary } from '../model/verify.js';
-import { knots } from '../units.js';
 import { chart, roundDomain, roundTicks } from './chart.js';
-import { hexOf, PAPER, windColour } from './colours.js';
+import { hexOf, PAPER, scaleColour } from './colours.js';
 import { sheet } from './sheet.js';
-import { element, textAt } from './svg.js';
+import { coordinate, element, textAt } from './svg.js';
 
-const SIDE = 64;
+const SIDE = 68;
 const PANEL = 330;
-const GAP = 66;
+const GAP = 74;
 const ACROSS = 3;
 const DOT = 2.6;
+
+/** From the dark half of the scale, so that single dots stand out from white paper; strong winds are darker, as on maps. */
+const dotColour = (at: number): string => hexOf(scaleColour(at));
 
 const PANELS: readonly {
   readonly key: keyof VerificationSummary;
@@ -17,9 +19,9 @@ const PANELS: readonly {
   readonly unit: string;
   readonly colour: string;
 }[] = [
-  { key: '34kt', name: 'Radius of 34 kt, mean of the quadrants', unit: 'km', colour: hexOf(windColour(knots(34))) },
-  { key: '50kt', name: 'Radius of 50 kt, mean of the quadrants', unit: 'km', colour: hexOf(windColour(knots(50))) },
-  { key: '64kt', name: 'Radius of 64 kt, mean of the quadrants', unit: 'km', colour: hexOf(windColour(knots(64))) },
+  { key: '34kt', name: 'Radius of 34 kt, mean of the quadrants', unit: 'km', colour: dotColour(0.64) },
+  { key: '50kt', name: 'Radius of 50 kt, mean of the quadrants', unit: 'km', colour: dotColour(0.42) },
+  { key: '64kt', name: 'Radius of 64 kt, mean of the quadrants', unit: 'km', colour: dotColour(0.2) },
   { key: 'rmax_km', name: 'Radius of maximum wind', unit: 'km', colour: PAPER.lines[1] },
   { key: 'pressure_hpa', name: 'Central pressure', unit: 'hPa', colour: PAPER.lines[2] },
 ];
@@ -65,7 +67,7 @@ export function verifySvg(
           under: (sx, sy) =>
             element(
               'g',
-              { class: 'dots', fill: colour, 'fill-opacity': 0.45 },
+              { class: 'dots', fill: colour, 'fill-opacity': 0.5, stroke: colour, 'stroke-width': 0.6 },
               pairs
                 .map(({ observed, modelled }) =>
                   element('circle', { cx: sx.at(observed), cy: sy.at(modelled), r: DOT }),
@@ -92,6 +94,11 @@ export function verifySvg(
             { x, y: y - 10, size: 14, fill: PAPER.quiet },
           ),
           drawn.svg,
+          element(
+            'g',
+            { transform: `translate(${coordinate(x - 48)} ${coordinate(y + PANEL / 2)}) rotate(-90)` },
+            textAt('modelled', { x: 0, y: 0, size: 14, fill: PAPER.ink, anchor: 'middle' }),
+          ),
           textAt('observed', { x: x + PANEL / 2, y: y + PANEL + 36, size: 14, fill: PAPER.ink, anchor: 'middle' }),
         );
       }

@@ -5,8 +5,11 @@ import { HOUR_MS, knots } from '../units.js';
 import { gradientConsistentB, HOLLAND_B_BOUNDS } from '../vortex/holland1980.js';
 import { monotoneCubic, piecewiseLinear } from './interpolate.js';
 import { ambientPressurePa } from './relations/ambient-pressure.js';
-import { PRESSURE_WIND_RELATIONS, type PressureWindInput } from './relations/pressure-wind.js';
-import { RADIUS_RELATIONS } from './relations/radius-of-max-wind.js';
+import { HOLLAND_B_RELATIONS } from './relations/holland-b.js';
+import type { PressureWindInput } from './relations/pressure-wind.js';
+import { PRESSURE_WIND_RELATIONS } from './relations/pressure-wind-relations.js';
+import { RADIUS_BOUNDS_M, type RadiusInput } from './relations/radius-of-max-wind.js';
+import { RADIUS_RELATIONS } from './relations/radius-relations.js';
 import { dayMeans, SIZE_RELATIONS } from './relations/size.js';
 import { type Fix, hemisphereOf, type Track } from './track.js';
 
@@ -55,7 +58,10 @@ export interface CompletionOptions {
   /** whether observed wind radii count: an estimated radius of maximum wind then lies inside them */
   readonly radii: 'fit' | 'ignore';
   readonly ambientHpa: number | 'basin';
-  readonly b: number | 'gradient-consistent' | 'cyclostrophic';
+  /** B itself, an identity (`gradient-consistent`, `cyclostrophic`) or the name of a relation */
+  readonly b: number | string;
+  /** temperature of the sea, °C, for relations that ask for it */
+  readonly seaTemperatureC: number;
   readonly maxGapH: number;
   readonly interpolation: 'monotone-cubic' | 'linear';
   /** 10-m over gradient-level wind near the maximum */
@@ -106,12 +112,28 @@ export function completeTrack(track: Track, options: CompletionOptions): Complet
   const meanOf34Kt = (fix: Fix): number | null => (options.radii === 'fit' ? meanRadiusM(fix, knots(34)) : null);
   const relationInput = (i: number): PressureWindInput => ({
     latDeg: fixes[i]!.latDeg,
+    lonDeg: fixes[i]!.lonDeg,
+    basin: track.basin,
     translationMps: translation[i]!,
     radiusOf34KtM: meanOf34Kt(fixes[i]!),
     ambientPressurePa: ambient[i]!.value,
+    pressureTrendPaPerS: pressureTrendPaPerS(fixes, i),
+    airDensityKgM3: options.airDensityKgM3,
   });
+  const byPressureWind = (i: number, from: 'wind' | 'pressure'): string => {
+    const note = pressureWind.note?.(relationInput(i)) ?? null;
+    return `${pressureWind.id} from ${from}${note === null ? '' : `; ${note}`}`;
+  };
   // relations are for 1-min winds
   const toOneMinute = averagingFactor('at-sea', { fromS: options.averagingS, toS: 60 });
+
+  const estimatedRadius = (input: RadiusInput): Traced => {
+    const raw = radius.radiusM(input);
+    const value = Math.min(RADIUS_BOUNDS_M[1], Math.max(RADIUS_BOUNDS_M[0], raw));
+    const note = radius.note?.(input) ?? null;
+    const limit = value === raw ? '' : `, limited to ${RADIUS_BOUNDS_M[0] / 1000}–${RADIUS_BOUNDS_M[1] / 1000} km`;
+    return { value, origin: 'estimated', by: `${radius.id}${note === null ? '' : `; ${note}`}${limit}` };
+  };
 
   const stated = fixes.map((fix, i): Traced | null => {
     if (fix.maxWindMps !== null) {
@@ -121,7 +143,7 @@ export function completeTrack(track: Track, options: CompletionOptions): Complet
     }
     if (fix.centralPressurePa === null) return null;
     const wind = pressureWind.maxWindMps(fix.centralPressurePa, relationInput(i)) / toOneMinute;
-    return { value: wind, origin: 'estimated', by: `${pressureWind.id} from pressure` };
+    return { value: wind, origin: 'estimated', by: byPressureWind(i, 'pressure') };
   });
   const wind = between(stated, times, options.interpolation);
   if (!wind) {
@@ -140,7 +162,7 @@ export function completeTrack(track: Track, options: CompletionOptions): Complet
         : {
             value: pressureWind.centralPressurePa(oneMinute, relationInput(i)),
             origin: 'estimated',
-            by: `${pressureWind.id} from wind`,
+            by: byPressureWind(i, 'wind'),
           };
     let around = ambient[i]!;
     if (pressure.value > around.value - LEAST_DEFICIT_PA) {
@@ -183,19 +205,15 @@ export function completeTrack(track: Track, options: CompletionOptions): Complet
     let rmax: Traced =
       fix.radiusOfMaxWindM !== null
         ? { value: fix.radiusOfMaxWindM, origin: 'given', by: null }
-        : {
-            value: radius.radiusM({
-              maxWindMps: oneMinute,
-              surfaceFactor: options.surfaceFactor,
-              latDeg: fix.latDeg,
-              pressureDeficitPa: deficit,
-              translationMps: translation[i]!,
-              radiusOf34KtM: meanOf34Kt(fix),
-              sizeRadiusM: size.value,
-            }),
-            origin: 'estimated',
-            by: radius.id,
-          };
+        : estimatedRadius({
+            maxWindMps: oneMinute,
+            surfaceFactor: options.surfaceFactor,
+            latDeg: fix.latDeg,
+            pressureDeficitPa: deficit,
+            translationMps: translation[i]!,
+            radiusOf34KtM: meanOf34Kt(fix),
+            sizeRadiusM: size.value,
+          });
     const innermostM = options.radii === 'fit' ? innermostRadiusM(fix) : null;
     if (rmax.origin === 'estimated' && innermostM !== null && rmax.value > SHARE_OF_INNERMOST * innermostM)
       rmax = { value: SHARE_OF_INNERMOST * innermostM, origin: 'estimated', by: `${rmax.by}, inside the wind radii` };
@@ -212,6 +230,8 @@ export function completeTrack(track: Track, options: CompletionOptions): Complet
       hollandB: hollandB(fix, options, {
         maxWindMps: maxWind.value,
         translationMps: translation[i]!,
+        oneMinuteFactor: toOneMinute,
+        centralPressurePa: pressure.value,
         deficitPa: deficit,
         rmaxM: rmax.value,
       }),
@@ -228,18 +248,36 @@ export function completeTrack(track: Track, options: CompletionOptions): Complet
 function hollandB(
   fix: Fix,
   options: CompletionOptions,
-  storm: { maxWindMps: number; translationMps: number; deficitPa: number; rmaxM: number },
+  storm: {
+    maxWindMps: number;
+    /** turns winds of the completion into 1-min means */
+    oneMinuteFactor: number;
+    translationMps: number;
+    centralPressurePa: number;
+    deficitPa: number;
+    rmaxM: number;
+  },
 ): Traced {
   if (fix.hollandB !== null) return { value: fix.hollandB, origin: 'given', by: null };
   if (typeof options.b === 'number') return { value: options.b, origin: 'estimated', by: 'recipe' };
   const own = storm.maxWindMps - Math.min(options.motionShare * storm.translationMps, 0.5 * storm.maxWindMps);
-  const raw = gradientConsistentB({
-    maxWindMps: own / options.surfaceFactor,
-    pressureDeficitPa: storm.deficitPa,
-    airDensityKgM3: options.airDensityKgM3,
-    coriolisPerS: options.b === 'cyclostrophic' ? 0 : coriolisPerS(fix.latDeg),
-    radiusOfMaxWindM: storm.rmaxM,
-  });
+  const raw =
+    options.b === 'gradient-consistent' || options.b === 'cyclostrophic'
+      ? gradientConsistentB({
+          maxWindMps: own / options.surfaceFactor,
+          pressureDeficitPa: storm.deficitPa,
+          airDensityKgM3: options.airDensityKgM3,
+          coriolisPerS: options.b === 'cyclostrophic' ? 0 : coriolisPerS(fix.latDeg),
+          radiusOfMaxWindM: storm.rmaxM,
+        })
+      : named(HOLLAND_B_RELATIONS, options.b).hollandB({
+          gradientWindMps: (storm.oneMinuteFactor * own) / options.surfaceFactor,
+          radiusOfMaxWindM: storm.rmaxM,
+          pressureDeficitPa: storm.deficitPa,
+          centralPressurePa: storm.centralPressurePa,
+          latDeg: fix.latDeg,
+          seaTemperatureK: options.seaTemperatureC + 273.15,
+        });
   const value = Math.min(HOLLAND_B_BOUNDS[1], Math.max(HOLLAND_B_BOUNDS[0], raw));
   return {
     value,
@@ -291,6 +329,23 @@ function between(
       by: at < first || at > last ? 'held from the nearest fix with a wind' : 'between fixes',
     };
   });
+}
+
+/** Fixes farther apart say nothing of the trend, ms. */
+const TREND_SPAN_MS = 24 * HOUR_MS;
+
+/** Trend of the central pressure at a fix from the given pressures next to it (and its own), Pa/s; null where there are not two. */
+function pressureTrendPaPerS(fixes: readonly Fix[], i: number): number | null {
+  const near = [i - 1, i, i + 1].flatMap((k) => {
+    const fix = fixes[k];
+    return fix === undefined || fix.centralPressurePa === null
+      ? []
+      : [{ atMs: fix.timeMs, pressurePa: fix.centralPressurePa }];
+  });
+  const first = near[0];
+  const last = near[near.length - 1];
+  if (!first || !last || first === last || last.atMs - first.atMs > TREND_SPAN_MS) return null;
+  return ((last.pressurePa - first.pressurePa) / (last.atMs - first.atMs)) * 1000;
 }
 
 /** Translation speed at each fix, m/s: the mean over the legs that meet there. */

@@ -2,6 +2,7 @@ import { readFileSync } from 'node:fs';
 import { describe, expect, it } from 'vitest';
 import { makeRecipe } from '../../src/model/recipe.js';
 import { hideableOf, scoreOf, summarize, verifyTrack, WITHOUT_RADII, withHidden } from '../../src/model/verify.js';
+import { contrast, rgbOf } from '../../src/picture/colours.js';
 import { verifySvg } from '../../src/picture/verify-svg.js';
 import { readTracksFromText } from '../../src/track/read/read.js';
 import { knots } from '../../src/units.js';
@@ -65,6 +66,10 @@ describe('rows', () => {
   it('are drawn', () => {
     const svg = verifySvg(verifyTrack(track, recipe), { title: 'Testor', hidden: ['rmax'] });
     expect(svg).toContain('Central pressure');
+    expect(svg.match(/>modelled</g)).toHaveLength(svg.match(/>observed</g)!.length);
+    // dots stand out from the paper by 3 to 1, as WCAG 2.2 asks of graphics
+    for (const [, fill] of svg.matchAll(/class="dots" fill="(#\w+)"/g))
+      expect(contrast(rgbOf(fill!), [255, 255, 255])).toBeGreaterThan(3);
     expect(svg).toContain('Hidden from the model: rmax.');
   });
 });

@@ -41,6 +41,7 @@ describe('Chavas, Lin & Emanuel 2015', () => {
       r0: 900,
       rmax: 23.89164,
       ra: 66.855,
+      atMerge: 31.0804,
       r34: 135.656,
       winds: [38.6975, 22.2691, 12.9973, 9.5332, 7.5121, 4.8054],
     },
@@ -61,7 +62,7 @@ describe('Chavas, Lin & Emanuel 2015', () => {
       winds: [26.8156, 16.3352, 9.5294, 6.8414, 5.142, 2.3575],
     },
   ];
-  it.each(cases)('merges within $r0 km and from $rmax km', ({ maxWindMps, r0, rmax, ra, r34, winds }) => {
+  it.each(cases)('merges within $r0 km and from $rmax km', ({ maxWindMps, r0, rmax, ra, atMerge, r34, winds }) => {
     const p: MergeParameters = { ...usual, maxWindMps };
     const merge = mergeWithin(r0 * 1000, p);
     expect(Math.abs(merge.radiusOfMaxWindM - rmax * 1000)).toBeLessThan(1);
@@ -72,6 +73,7 @@ describe('Chavas, Lin & Emanuel 2015', () => {
     });
     expect(Math.abs(windMps(r34 * 1000) - (34 * 1852) / 3600)).toBeLessThan(1e-3);
     expect(windMps(r0 * 1000)).toBe(0);
+    if (atMerge !== undefined) expect(Math.abs(windMps(merge.mergeRadiusM) - atMerge)).toBeLessThan(1e-3);
     // the other way round
     const back = mergeAt(merge.radiusOfMaxWindM, p);
     expect(Math.abs(back.outerRadiusM / (r0 * 1000) - 1)).toBeLessThan(1e-6);

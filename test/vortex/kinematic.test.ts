@@ -38,6 +38,10 @@ describe('Willoughby, Darling & Rahn 2006', () => {
     const { startM, endM } = transitionOf(p);
     expect(startM / 1000).toBeCloseTo(17.150345, 5);
     expect(endM / 1000).toBeCloseTo(42.150345, 5);
+    // the place of the maximum in the transition, and its weight there
+    const xi = (32_615.886 - startM) / (endM - startM);
+    expect(xi).toBeCloseTo(0.618622, 6);
+    expect(rampWeight(xi)).toBeCloseTo(0.771093, 6);
   });
   it('has the stated winds and no slope at R', () => {
     const { windMps } = willoughbyProfile(p);

@@ -1,5 +1,6 @@
 import { describe, expect, it } from 'vitest';
 import { coriolisPerS } from '../../src/earth.js';
+import { cyclostrophicWind } from '../../src/vortex/balance.js';
 import { impliedDeficit, pressureAt, pressureRise } from '../../src/vortex/pressure.js';
 import type { VortexInput } from '../../src/vortex/profile.js';
 import { PROFILES, profileMethod } from '../../src/vortex/profiles.js';
@@ -76,21 +77,57 @@ describe.each(PROFILES.map(({ id }) => id))('profile %s', (id) => {
   });
 
   it('gives back its pressure deficit from its winds', () => {
-    // identity: ∫ρ(V²/r + |f|V)dr
+    // identity: ∫ρ(V²/r + |f|V)dr, here summed by trapezia in ln r, apart from the model's own quadrature
     for (const latDeg of [0, 20]) {
       const vortex = { ...usual, latDeg, coriolisPerS: coriolisPerS(latDeg) };
       const profile = method.build(vortex);
       const toM = method.kinematic ? 1_000_000 : 1e13;
+      const n = 30_000;
+      const step = Math.log(toM / 0.1) / n;
+      let sum = 0;
+      for (let i = 0; i <= n; i++) {
+        const r = 0.1 * Math.exp(i * step);
+        const v = profile.windMps(r);
+        sum += (i === 0 || i === n ? 0.5 : 1) * (v * v + vortex.coriolisPerS * r * v);
+      }
+      const deficit = impliedDeficit(profile, { ...vortex, toM });
+      expect(Math.abs((vortex.airDensityKgM3 * sum * step) / deficit - 1)).toBeLessThan(2e-5);
+      expect(profile.impliedDeficitPa !== undefined).toBe(!method.kinematic);
+      // the rise between two radii is the difference of their pressures
       const rise = pressureRise(profile.windMps, {
-        fromM: 0,
-        toM,
+        fromM: 20_000,
+        toM: 300_000,
         coriolisPerS: vortex.coriolisPerS,
         airDensityKgM3: vortex.airDensityKgM3,
         breaksM: [vortex.radiusOfMaxWindM, ...(profile.kinksM ?? [])],
       });
-      const deficit = impliedDeficit(profile, { ...vortex, toM });
-      expect(Math.abs(rise / deficit - 1)).toBeLessThan(2e-5);
-      expect(profile.impliedDeficitPa !== undefined).toBe(!method.kinematic);
+      // a balanced profile's own pressure is scaled to the given deficit
+      const scale =
+        profile.impliedDeficitPa === undefined
+          ? 1
+          : profile.impliedDeficitPa / (vortex.ambientPressurePa - vortex.centralPressurePa);
+      const difference = pressureAt(profile, 300_000, vortex) - pressureAt(profile, 20_000, vortex);
+      expect(Math.abs(rise / (scale * difference) - 1)).toBeLessThan(1e-4);
+    }
+  });
+
+  it('has the limit f → 0', () => {
+    // identity: without rotation of the Earth the winds are those of a vanishing one
+    const still = method.build({ ...usual, latDeg: 1e-7, coriolisPerS: 0 });
+    const nearly = method.build({ ...usual, latDeg: 1e-7, coriolisPerS: 1e-12 });
+    for (const km of [12, 20, 30, 60, 150, 400]) {
+      const v = still.windMps(km * 1000);
+      expect(Math.abs(nearly.windMps(km * 1000) - v)).toBeLessThan(1e-4 * v + 1e-6);
+      // identity: then it is the cyclostrophic wind of its own pressure
+      if (still.pressurePa === undefined) continue;
+      const share = still.impliedDeficitPa! / (usual.ambientPressurePa - usual.centralPressurePa);
+      const slope = (still.pressurePa(km * 1000 + 10) - still.pressurePa(km * 1000 - 10)) / 20;
+      const balanced = cyclostrophicWind({
+        radiusM: km * 1000,
+        pressureGradientMps2: (share * slope) / usual.airDensityKgM3,
+        coriolisPerS: 0,
+      });
+      expect(Math.abs(balanced / v - 1)).toBeLessThan(1e-4);
     }
   });
 
@@ -118,5 +155,22 @@ describe.each(PROFILES.map(({ id }) => id))('profile %s', (id) => {
     const north = method.build(usual);
     const south = method.build({ ...usual, latDeg: -20, coriolisPerS: coriolisPerS(-20) });
     for (const r of [5e3, 3e4, 2e5]) expect(south.windMps(r)).toBe(north.windMps(r));
+  });
+});
+
+describe('B = 1', () => {
+  it('makes the profile of Holland that of Schloemer', () => {
+    // identity
+    const schloemer = profileMethod('schloemer-1954')!.build(usual);
+    for (const [hollandB, within] of [
+      [1, 1e-12],
+      [1 + 1e-6, 1e-4],
+    ] as const) {
+      const holland = profileMethod('holland-1980')!.build({ ...usual, hollandB });
+      for (const km of [2, 10, 30, 80, 300]) {
+        expect(Math.abs(holland.windMps(km * 1000) - schloemer.windMps(km * 1000))).toBeLessThan(within);
+        expect(Math.abs(holland.pressurePa!(km * 1000) - schloemer.pressurePa!(km * 1000))).toBeLessThan(100 * within);
+      }
+    }
   });
 });

@@ -91,6 +91,38 @@ describe('a set of radii', () => {
     }
   });
 
+  it('interpolates between two winds of a quadrant even where the higher one lies well inside R', () => {
+    const { state } = radiiState(
+      [
+        level(17.5, [200, 180, 120, 160], 150),
+        level(25.7, [null, null, null, null], 80),
+        level(32.9, [60, 60, 15, 50], 50),
+      ],
+      storm,
+    );
+    const [inner, between] = state.levels.map(({ logRatio }) => 30 * Math.exp(logRatio[2]!));
+    expect(inner).toBeCloseTo(15, 9);
+    // identity: ln r = ln r₁ + (ln r₂ − ln r₁) t^1.34, t = ln(25.7/17.5)/ln(32.9/17.5)
+    const t = Math.log(25.7 / 17.5) / Math.log(32.9 / 17.5);
+    expect(between).toBeCloseTo(120 * (15 / 120) ** (t ** 1.34), 9);
+  });
+
+  it('takes a wind that is absent from a quadrant for the highest that may blow there', () => {
+    const of = (quadrant: number | null): number => {
+      const { state } = radiiState(
+        [
+          level(17.5, [200, 180, 120, 160], 150),
+          level(25.7, [null, null, null, null], 80),
+          level(32.9, [60, 60, quadrant, 50], 50),
+        ],
+        storm,
+      );
+      return state.levels[1]!.logRatio[2]!;
+    };
+    expect(of(0)).toBeLessThan(of(null));
+    expect(of(0)).toBeGreaterThan(0);
+  });
+
   it('takes a missing quadrant from the others and 0 for no such wind', () => {
     const { state } = radiiState([level(17.5, [200, null, 0, 160], 150)], storm);
     expect(30 * Math.exp(state.levels[0]!.logRatio[1]!)).toBeGreaterThan(150);

@@ -1,5 +1,5 @@
 import { coriolisPerS } from '../../earth.js';
-import type { RadiusInput, RadiusRelation } from './radius-of-max-wind.js';
+import { RADIUS_BOUNDS_M, type RadiusInput, type RadiusRelation } from './radius-of-max-wind.js';
 
 /** A mean of quadrant maxima is a maximum of azimuths: the mean radius is taken as this share of it [ChavasKnaff2022, from memory]. */
 const SHARE_OF_QUADRANT_MEAN = 0.85;
@@ -24,9 +24,6 @@ export function chavasKnaffRadiusM(p: { windMps: number; radiusOf34KtM: number; 
   return ((inner / v) * 2) / (Math.sqrt(1 + 2 * x) + 1);
 }
 
-/** Bounds within which R is kept, m: own choice. */
-const BOUNDS_M = [5_000, 250_000] as const;
-
 /** The same for what a recipe's relation is given: observed radius of 34 kt, else the size. */
 export function chavasKnaffEstimateM({
   maxWindMps,
@@ -37,12 +34,17 @@ export function chavasKnaffEstimateM({
 }: RadiusInput): number {
   const windMps = Math.max(maxWindMps - 0.55 * translationMps, 0.5 * maxWindMps);
   const radius = chavasKnaffRadiusM({ windMps, radiusOf34KtM: radiusOf34KtM ?? sizeRadiusM, latDeg });
-  return Math.min(BOUNDS_M[1], Math.max(BOUNDS_M[0], radius));
+  return Math.min(RADIUS_BOUNDS_M[1], Math.max(RADIUS_BOUNDS_M[0], radius));
 }
+
+/** What both relations from the radius of 34 kt do without it. */
+export const sizeInstead = ({ radiusOf34KtM }: Pick<RadiusInput, 'radiusOf34KtM'>): string | null =>
+  radiusOf34KtM === null ? 'no radius of 34 kt: from the size relation' : null;
 
 export const chavasKnaff2022: RadiusRelation = {
   id: 'chavas-knaff-2022',
   title: 'Chavas & Knaff 2022: radius of 34 kt (observed, or of the size relation), wind, latitude',
   source: 'ChavasKnaff2022',
   radiusM: chavasKnaffEstimateM,
+  note: sizeInstead,
 };

@@ -1,4 +1,4 @@
-import type { PressureWindInput } from './pressure-wind.js';
+import { type PressureWindInput, type PressureWindRelation, windOfPressure } from './pressure-wind.js';
 
 /** Coefficients of ln Δp (hPa), from `scripts/calibrate.js` (own calibration): without and with the radius of 34 kt. */
 export const PRESSURE_2016 = {
@@ -11,7 +11,10 @@ export const PRESSURE_2016 = {
  * (own calibration on HURDAT2 2004–2016, fixes at least 100 km off land, `scripts/calibrate.js`). r₃₄ is the mean of the
  * quadrants that have 34 kt; without it c₄ = 0 and the other four have values of their own. Monotone in every variable.
  */
-export function deficit2016Hpa(maxWindMps: number, input: PressureWindInput): number {
+export function deficit2016Hpa(
+  maxWindMps: number,
+  input: Pick<PressureWindInput, 'radiusOf34KtM' | 'latDeg' | 'translationMps'>,
+): number {
   const c = input.radiusOf34KtM === null ? PRESSURE_2016.withoutSize : PRESSURE_2016.withSize;
   return Math.exp(
     c.constant +
@@ -21,3 +24,14 @@ export function deficit2016Hpa(maxWindMps: number, input: PressureWindInput): nu
       (input.radiusOf34KtM === null ? 0 : c.size * Math.log(Math.max(20_000, input.radiusOf34KtM) / 160_000)),
   );
 }
+
+const pressurePa = (maxWindMps: number, input: PressureWindInput): number =>
+  input.ambientPressurePa - 100 * deficit2016Hpa(maxWindMps, input);
+
+export const pressure2016: PressureWindRelation = {
+  id: 'calibrated-pressure-2016',
+  title: 'Own calibration on 2004–2016: wind, latitude, motion, radius of 34 kt',
+  source: 'own calibration',
+  centralPressurePa: pressurePa,
+  maxWindMps: (centralPressurePa, input) => windOfPressure((wind) => pressurePa(wind, input), centralPressurePa),
+};

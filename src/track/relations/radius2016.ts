@@ -1,5 +1,5 @@
 import { outerFall } from '../../vortex/outer-fall.js';
-import { chavasKnaffEstimateM } from './chavas-knaff2022.js';
+import { chavasKnaffEstimateM, sizeInstead } from './chavas-knaff2022.js';
 import type { RadiusInput, RadiusRelation } from './radius-of-max-wind.js';
 
 const THRESHOLD_34_MPS = (34 * 1852) / 3600;
@@ -27,4 +27,5 @@ export const radius2016: RadiusRelation = {
   title: 'Chavas & Knaff 2022, kept inside the strong winds (own calibration on 2004–2016)',
   source: 'ChavasKnaff2022',
   radiusM: radius2016M,
+  note: sizeInstead,
 };

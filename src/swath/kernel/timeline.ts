@@ -6,8 +6,10 @@ const FINE_S = 60;
 /** share of that radius from one moment to the next; down to the bound, s. */
 const FINE_SHARE = 0.06;
 const FINEST_S = 5;
-/** Every so many moments the frame is the path's own; between them frames are straight lines: a few metres off. */
+/** Every so many moments the frame is the path's own; between them frames are straight lines where these are as near as this. */
 const KNOT_MOMENTS = 4;
+const STRAIGHT_M = 2;
+const STRAIGHT_MPS = 0.002;
 /** A step changes the radius of maximum wind by at most this share. */
 const STEP_GROWTH = 0.1;
 /** Numbers in a frame: see {@link Timeline.frames}. */
@@ -102,23 +104,45 @@ export function timelineOf(model: WindModel, fromMs: number, toMs: number): Time
 
 function framesOf(model: WindModel, legs: readonly Leg[], count: number): Float64Array {
   const frames = new Float64Array(count * FRAME);
+  const put = (leg: Leg, m: number): void =>
+    frames.set(frameOf(model.path.at(leg.startMs + (m - leg.first) * leg.fineMs)), m * FRAME);
   for (const leg of legs) {
     const end = Math.min(count - 1, leg.first + (1 << leg.depth));
-    frames.set(frameOf(model.path.at(leg.startMs)), leg.first * FRAME);
-    for (let from = leg.first; from < end; from += KNOT_MOMENTS) {
-      const to = from + KNOT_MOMENTS;
-      const a = from * FRAME;
-      frames.set(frameOf(model.path.at(leg.startMs + (to - leg.first) * leg.fineMs)), to * FRAME);
-      for (let i = 1; i < KNOT_MOMENTS; i++) {
-        const t = i / KNOT_MOMENTS;
-        for (let k = 0; k < FRAME; k++) {
-          const start = frames[a + k]!;
-          frames[a + i * FRAME + k] = start + t * (frames[to * FRAME + k]! - start);
-        }
+    for (let m = leg.first; m <= end; m += KNOT_MOMENTS) put(leg, m);
+    const straight = isStraight(frames, leg.first, end);
+    for (let m = leg.first; m < end; m++) {
+      const t = ((m - leg.first) % KNOT_MOMENTS) / KNOT_MOMENTS;
+      if (t === 0) continue;
+      if (!straight) {
+        put(leg, m);
+        continue;
       }
+      const a = (m - t * KNOT_MOMENTS) * FRAME;
+      const b = a + KNOT_MOMENTS * FRAME;
+      const between = (k: number, wa = 1, wb = 1): number => (1 - t) * wa * frames[a + k]! + t * wb * frames[b + k]!;
+      const radiusM = between(8);
+      const to = m * FRAME;
+      for (let k = 0; k < 3; k++) frames[to + k] = between(k);
+      // of unit vectors, so that they stay square to the centre's
+      const [wa, wb] = [frames[a + 8]! / radiusM, frames[b + 8]! / radiusM];
+      for (let k = 3; k < 8; k++) frames[to + k] = between(k, wa, wb);
+      frames[to + 8] = radiusM;
+      frames[to + 9] = between(9);
     }
   }
   return frames;
+}
+
+/** Whether straight lines between the knots of a leg are near enough: an eighth of the second difference is what they are off. */
+function isStraight(frames: Float64Array, first: number, end: number): boolean {
+  const step = KNOT_MOMENTS * FRAME;
+  if (end - first < 2 * KNOT_MOMENTS) return false;
+  for (let b = first * FRAME + step; b < end * FRAME; b += step) {
+    const bend = (k: number): number => Math.abs(frames[b - step + k]! - 2 * frames[b + k]! + frames[b + step + k]!) / 8;
+    const offM = EARTH_RADIUS_M * Math.max(bend(0), bend(1), bend(2));
+    if (offM > STRAIGHT_M || bend(8) > STRAIGHT_M || bend(9) > STRAIGHT_MPS) return false;
+  }
+  return true;
 }
 
 function frameOf(state: {

@@ -159,6 +159,14 @@ function reachOf(before: number, after: number, ratio: number): number {
   return Math.max(fround(before * r), fround(after * fround(1 / r)));
 }
 
+export function busy(winds: number, share: number, expected: number): boolean {
+  for (let i = 0; i < 4; i++) {
+    const most = Math.max(f32At(NEED + 4 * i), fround(expected));
+    if (f32At(winds + 4 * i) >= fround(most * fround(share))) return true;
+  }
+  return false;
+}
+
 export function sides(winds: number, thresholds: number): number {
   let bits = 0;
   for (let h = 0; h < thresholds; h++)

@@ -190,6 +190,12 @@ function reachOf(before: v128, after: v128, ratio: f64): v128 {
   return f32x4.max(f32x4.mul(before, f32x4.splat(r)), f32x4.mul(after, f32x4.splat(<f32>1 / r)));
 }
 
+/** Whether any of four winds comes near, by a share, to what its point has had or all of them may expect. */
+export function busy(winds: i32, share: f64, expected: f64): boolean {
+  const most = f32x4.max(v128.load(NEED), f32x4.splat(<f32>expected));
+  return v128.any_true(f32x4.ge(v128.load(<usize>winds), f32x4.mul(most, f32x4.splat(<f32>share))));
+}
+
 /** Which thresholds the four points are at or above: bit 4h + lane. */
 export function sides(winds: i32, thresholds: i32): i32 {
   const w = v128.load(<usize>winds);

@@ -1,7 +1,7 @@
 // The wind at points through a storm's life: peak over continuous time, hours above thresholds. The build makes
 // `../twin-trace.ts` of this file, with plain JavaScript beneath it: what stands here must mean the same in both.
 import { bitsOf, f32At, f64At, i32At, root, setF32, setF64, whole, zeros } from './memory';
-import { dips, peaks, sampleQuad, sides } from './lanes';
+import { busy, dips, peaks, sampleQuad, sides } from './lanes';
 import {
   AHEAD, COLUMN, EAST, EXTREMES, FRAMES, FRESH, GROUPS, HELD, HOURS, LAST_ROW, LEAST, LEGS, LEVELS, LOOKED, MOMENT, MOMENTS,
   NEAR, NEED, NONE, NORTH, OUTER, QUAD, RUNS, RUN_COUNT, STORM, TAPER, THRESHOLDS, TIMES, WIND, WINDS, WIND_HARMONICS, WIND_TABLES, X, Y, Z,
@@ -165,27 +165,35 @@ function speedAt(p: i32, moment: f64): f64 {
     y * (f64At(a + 24) + w * (f64At(b + 24) - f64At(a + 24))) +
     z * (f64At(a + 32) + w * (f64At(b + 32) - f64At(a + 32)));
   const maxWind = f64At(a + 40) + w * (f64At(b + 40) - f64At(a + 40));
-  const table = whole(f64At((w < 0.5 ? a : b) + 56));
   const s2 = east * east + north * north;
   squaredRatio = s2;
-  const stride = groups << 4;
-  const at = table + rowOf(s2) * stride;
-  let value = column(at, stride) + east * column(at + 4, stride) + north * column(at + 8, stride);
-  if (groups > 1) {
-    const inverse = s2 > 0 ? 1 / root(s2) : 0;
-    const c = north * inverse;
-    const s = east * inverse;
-    let e = east;
-    let n = north;
-    const end = stride - 4;
-    for (let k = 12; k < end; k += 8) {
-      const nextE = e * c + n * s;
-      n = n * c - e * s;
-      e = nextE;
-      value += e * column(at + k, stride) + n * column(at + k + 4, stride);
-    }
-  }
+  const offset = rowOf(s2) * (groups << 4);
+  const table = f64At(a + 56);
+  const next = f64At(b + 56);
+  let value = squaredAt(whole(table) + offset, east, north, s2);
+  // where two moments have tables of their own the wind lies between
+  if (next !== table) value += w * (squaredAt(whole(next) + offset, east, north, s2) - value);
   return value > 0 ? root(value) * maxWind : 0;
+}
+
+/** Squared speed over V² from three rows. */
+function squaredAt(at: i32, east: f64, north: f64, s2: f64): f64 {
+  const stride = groups << 4;
+  let value = column(at, stride) + east * column(at + 4, stride) + north * column(at + 8, stride);
+  if (groups === 1) return value;
+  const inverse = s2 > 0 ? 1 / root(s2) : 0;
+  const c = north * inverse;
+  const s = east * inverse;
+  let e = east;
+  let n = north;
+  const end = stride - 4;
+  for (let k = 12; k < end; k += 8) {
+    const nextE = e * c + n * s;
+    n = n * c - e * s;
+    e = nextE;
+    value += e * column(at + k, stride) + n * column(at + k + 4, stride);
+  }
+  return value;
 }
 
 /** Parts east and north of a point's wind at a moment, in the frame at the centre. */
@@ -299,7 +307,7 @@ function traceQuad(p: i32): void {
       const distanceM = root(f32At(EXTREMES));
       const outside = distanceM > outerM;
       const coreM = CORE_SHARE * f64At(frame + 48);
-      const idle = wind < IDLE_SHARE * (strongest > expected ? strongest : expected);
+      const idle = !busy(b, IDLE_SHARE, expected);
       let moveM = STEP_SHARE * (distanceM > coreM ? distanceM : coreM);
       const factor = idle ? (wind < IDLE_BELOW * lowestLevel ? IDLE_FACTOR_BELOW : IDLE_FACTOR) : 1;
       moveM *= factor;

@@ -1,5 +1,5 @@
 import { EARTH_RADIUS_M, RADIANS } from '../../earth.js';
-import type { WindField } from '../../model/field.js';
+import { taper, type WindField } from '../../model/field.js';
 
 /**
  * The wind of one moment as a table over the squared distance x = (r/R)² (r by the sine of the angle). Rows are even in x
@@ -47,6 +47,9 @@ export function rowsBelow(ratio: number): number {
   const octave = Math.floor(Math.log2(x / CORE_X));
   return CORE_ROWS + (octave << OUTER_BITS) + Math.floor((x / CORE_X / 2 ** octave - 1) * (1 << OUTER_BITS));
 }
+
+/** Under a taper that leaves less than this the wind is not asked for. */
+const LEAST_FADE = 0.02;
 
 /** √x of the first rows, kept as far as they were asked for; the centre stands for a place next to it. */
 let ratios = new Float64Array(0);
@@ -99,9 +102,15 @@ export function tableOf(field: WindField, layout: Layout, { count, directions }:
   for (let row = 0; row < rows; row++) {
     const s = ratio[row]!;
     const radiusM = EARTH_RADIUS_M * Math.asin(Math.min(1, (s * radiusOfMaxWindM) / EARTH_RADIUS_M));
-    // what lies farther out is zero
-    if (radiusM >= field.outerRadiusM) break;
+    const fade = taper(radiusM, field.outerRadiusM);
+    if (fade < LEAST_FADE) {
+      // the taper is the kernel's; beyond what can be told of the wind under it, it goes on
+      speed.copyWithin(row * speedStride, (row - 1) * speedStride, row * speedStride);
+      wind.copyWithin(row * windStride, (row - 1) * windStride, row * windStride);
+      continue;
+    }
     field.onCircle(winds, radiusM, directions);
+    if (fade < 1) for (let i = 0; i < 2 * count; i++) winds[i] = winds[i]! / fade;
     fourier(winds, directions, windHarmonics, perWind, s, wind, row * windStride, 0);
     fourier(winds, directions, windHarmonics, perWind, s, wind, row * windStride + part, 1);
     for (let i = 0; i < 2 * count; i += 2) winds[i] = winds[i]! ** 2 + winds[i + 1]! ** 2;

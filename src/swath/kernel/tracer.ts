@@ -130,13 +130,16 @@ export function tracerOf(
       layout.windHarmonics,
       thresholdsMps.length,
       hoursAt,
-      taperFromM(timeline, tables, outerRadiusM),
+      carefulFromM(timeline, tables, outerRadiusM),
     ],
     at.STORM >> 3,
   );
   f32
     .fill(Number.POSITIVE_INFINITY, at.LEVELS >> 2, (at.LEVELS >> 2) + at.MOST_THRESHOLDS)
     .set(thresholdsMps, at.LEVELS >> 2);
+  const taperFromM = (1 - TAPER_SHARE) * outerRadiusM;
+  const flatM = EARTH_RADIUS_M * Math.sin(Math.min(Math.PI / 2, taperFromM / EARTH_RADIUS_M));
+  f32.set([flatM * flatM, outerRadiusM, 1 / (outerRadiusM - taperFromM), 1 / (6 * EARTH_RADIUS_M ** 2)], at.FADE >> 2);
   // how far from a leg's start the storm's wind may reach until the leg ends
   const reachRad = legs.map(
     (leg) => (outerRadiusM + (leg.speedMps * (leg.endMs - leg.startMs)) / 1000) / EARTH_RADIUS_M,
@@ -192,7 +195,7 @@ export function tracerOf(
 }
 
 /** From here on steps follow the taper, m: nowhere, where the wind that is tapered is one of which nothing is promised. */
-function taperFromM({ legs, frames }: Timeline, { layout, legTables }: StormTables, outerRadiusM: number): number {
+function carefulFromM({ legs, frames }: Timeline, { layout, legTables }: StormTables, outerRadiusM: number): number {
   for (const [number, { first }] of legs.entries()) {
     const [radiusM, maxWindMps] = [frames[first * FRAME + 8]!, frames[first * FRAME + 9]!];
     const row = Math.min(layout.rows - 1, rowsBelow(((1 - TAPER_SHARE) * outerRadiusM) / radiusM));

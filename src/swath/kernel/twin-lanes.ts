@@ -1,4 +1,4 @@
-import { BASIS, EXTREMES, LEVELS, NEAR, NEED, QUAD } from './places.js';
+import { BASIS, EXTREMES, FADE, LEVELS, NEAR, NEED, QUAD } from './places.js';
 import { bitsOf, f32At, f64At, setF32 } from './twin-memory.js';
 
 /** Four points at a time, as `assembly/lanes.ts` does them: every operation rounds to single precision, in the same order. */
@@ -33,7 +33,7 @@ export function sampleQuad(
   const [first, second] = [fround(east0), fround(north0)];
   const stride = groups << 4;
   let least = Number.POSITIVE_INFINITY;
-  let most = Number.NEGATIVE_INFINITY;
+  let farthest = 0;
   for (let i = 0; i < 4; i++) {
     const x = f32At(QUAD + 4 * i);
     const y = f32At(QUAD + 16 + 4 * i);
@@ -78,15 +78,31 @@ export function sampleQuad(
       value = 0;
       for (let k = 0; k < stride; k += 4) value = fround(value + fround(column(k) * f32At(BASIS + k)));
     }
-    const wind = fround(fround(Math.sqrt(Math.max(value, 0))) * maxWind);
-    setF32(to + 4 * i, wind);
+    setF32(to + 4 * i, fround(fround(Math.sqrt(Math.max(value, 0))) * maxWind));
     const squared = fround(s2 * rmax2);
+    distances[i] = squared;
     if (squared < f32At(NEAR + 4 * i)) setF32(NEAR + 4 * i, squared);
     least = Math.min(least, squared);
-    most = Math.max(most, wind);
+    farthest = Math.max(farthest, squared);
+  }
+  let most = 0;
+  for (let i = 0; i < 4; i++) {
+    if (farthest > f32At(FADE)) setF32(to + 4 * i, fround(f32At(to + 4 * i) * faded(distances[i]!)));
+    most = Math.max(most, f32At(to + 4 * i));
   }
   setF32(EXTREMES, least);
   setF32(EXTREMES + 4, most);
+  setF32(EXTREMES + 8, farthest);
+}
+
+const distances = new Float32Array(4);
+
+/** The share that the taper leaves. */
+function faded(squared: number): number {
+  const flat = fround(Math.sqrt(squared));
+  const arc = fround(flat + fround(fround(flat * squared) * f32At(FADE + 12)));
+  const t = Math.min(1, Math.max(0, fround(fround(f32At(FADE + 4) - arc) * f32At(FADE + 8))));
+  return fround(fround(t * t) * fround(3 - fround(t + t)));
 }
 
 /** 1, s sin φ, s cos φ, s sin 2φ, s cos 2φ … of a point. */

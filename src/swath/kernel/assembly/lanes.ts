@@ -1,6 +1,6 @@
 // Four points at a time. `../twin-lanes.ts` does the same in plain JavaScript, bit for bit: every operation here is a
 // single-precision one in the same order.
-import { BASIS, EXTREMES, LEVELS, NEAR, NEED, QUAD } from './places';
+import { BASIS, EXTREMES, FADE, LEVELS, NEAR, NEED, QUAD } from './places';
 
 // the rows of a table, as in table.ts
 const CORE_X: f32 = 0.5;
@@ -92,13 +92,23 @@ export function sampleQuad(
       value = f32x4.add(value, f32x4.mul(v128.shuffle<f32>(ab23, cd23, 2, 3, 6, 7), v128.load(from, 48)));
     }
   }
-  const wind = f32x4.mul(f32x4.sqrt(f32x4.max(value, zero)), f32x4.splat(<f32>load<f64>(f, 40)));
-  v128.store(<usize>to, wind);
+  let wind = f32x4.mul(f32x4.sqrt(f32x4.max(value, zero)), f32x4.splat(<f32>load<f64>(f, 40)));
   const rmax = <f32>load<f64>(f, 48);
   const squared = f32x4.mul(s2, f32x4.splat(rmax * rmax));
+  const farthest = highest(squared);
+  // the taper, from the arc that the sine gives: 3t² − 2t³
+  if (farthest > load<f32>(FADE)) {
+    const flat = f32x4.sqrt(squared);
+    const arc = f32x4.add(flat, f32x4.mul(f32x4.mul(flat, squared), v128.load32_splat(FADE, 12)));
+    const t0 = f32x4.mul(f32x4.sub(v128.load32_splat(FADE, 4), arc), v128.load32_splat(FADE, 8));
+    const t = f32x4.min(f32x4.splat(1), f32x4.max(zero, t0));
+    wind = f32x4.mul(wind, f32x4.mul(f32x4.mul(t, t), f32x4.sub(f32x4.splat(3), f32x4.add(t, t))));
+  }
+  v128.store(<usize>to, wind);
   v128.store(NEAR, f32x4.min(v128.load(NEAR), squared));
   store<f32>(EXTREMES, lowest(squared));
   store<f32>(EXTREMES, highest(wind), 4);
+  store<f32>(EXTREMES, farthest, 8);
 }
 
 // @ts-ignore: decorator

@@ -13,12 +13,14 @@ export const WINDS: i32 = 4144;
 export const NEED: i32 = 4192;
 /** least distance from the centre so far, m², f32 × 4 */
 export const NEAR: i32 = 4208;
-/** of the moment sampled last: the least distance, m², and the highest wind, m/s; f32 each */
+/** of the moment sampled last: the least distance, m², the highest wind, m/s, and the greatest distance, m²; f32 each */
 export const EXTREMES: i32 = 4224;
 /** −1 for each point: no moment; f32 × 4 */
 export const NONE: i32 = 4240;
 /** thresholds, m/s, f32 × 8, infinite where there is none */
 export const LEVELS: i32 = 4256;
+/** the taper: distance from which it fades, m²; outer radius, m; one over its width, 1/m; a sixth over the earth's radius squared, 1/m²; f32 each */
+export const FADE: i32 = 4288;
 /** extremes inside a step, moment and wind for each of four points, f64 × 8 each: one that was found at the step's start */
 export const HELD: i32 = 4352;
 /** one that was found at its end */

@@ -3,7 +3,7 @@
 import { bitsOf, f32At, f64At, i32At, root, setF32, setF64, whole, zeros } from './memory';
 import { busy, dips, peaks, sampleQuad, sides } from './lanes';
 import {
-  AHEAD, COLUMN, EAST, EXTREMES, FRAMES, FRESH, GROUPS, HELD, HOURS, LAST_ROW, LEAST, LEGS, LEVELS, LOOKED, MOMENT, MOMENTS,
+  AHEAD, COLUMN, EAST, EXTREMES, FADE, FRAMES, FRESH, GROUPS, HELD, HOURS, LAST_ROW, LEAST, LEGS, LEVELS, LOOKED, MOMENT, MOMENTS,
   NEAR, NEED, NONE, NORTH, OUTER, QUAD, RUNS, RUN_COUNT, STORM, TAPER, THRESHOLDS, TIMES, WIND, WINDS, WIND_HARMONICS, WIND_TABLES, X, Y, Z,
 } from './places';
 
@@ -26,10 +26,14 @@ const LEG_MPS: f64 = 6;
 const LEAST_BUDGET: f64 = 0.25;
 /** What may hide between moments beyond the flanks' slopes, m/s. */
 const MARGIN_MPS: f64 = 0.03;
+/** The same where corners pass between moments. */
+const MARGIN_NEAR_MPS: f64 = 0.35;
 /** A peak this near to its parabola is taken from it, m/s; */
 const ROUGH_MPS: f64 = 0.015;
 /** one farther off than this is no parabola, and is looked for among moments between. */
 const CORNER_MPS: f64 = 0.15;
+/** A vertex is next to the middle moment within this share of the steps beside it. */
+const BESIDE: f64 = 0.15;
 /** (r/R)² at which the inflow stops turning [Sobey1977]. */
 const INFLOW_X: f64 = 1.44;
 /** Places beside a corner at which it is checked, as a share of its bracket. */
@@ -64,6 +68,8 @@ let lowestLevel: f64 = 0;
 // what the last search found
 let foundMoment: f64 = 0;
 let foundMps: f64 = 0;
+// whether the middle moment is near the core, where corners pass
+let nearB: boolean = false;
 // points with an extreme inside a step, a bit each
 let held: i32 = 0;
 let fresh: i32 = 0;
@@ -173,7 +179,19 @@ function speedAt(p: i32, moment: f64): f64 {
   let value = squaredAt(whole(table) + offset, east, north, s2);
   // where two moments have tables of their own the wind lies between
   if (next !== table) value += w * (squaredAt(whole(next) + offset, east, north, s2) - value);
-  return value > 0 ? root(value) * maxWind : 0;
+  if (!(value > 0)) return 0;
+  const wind = root(value) * maxWind;
+  const radiusM = f64At(a + 48) + w * (f64At(b + 48) - f64At(a + 48));
+  const squared = s2 * radiusM * radiusM;
+  return squared > f32At(FADE) ? wind * faded(root(squared)) : wind;
+}
+
+/** The share that the taper leaves at a distance whose sine is given, m: 3t² − 2t³. */
+function faded(flatM: f64): f64 {
+  const arc = flatM + flatM * flatM * flatM * f32At(FADE + 12);
+  const t = (f32At(FADE + 4) - arc) * f32At(FADE + 8);
+  if (t >= 1) return 1;
+  return t <= 0 ? 0 : t * t * (3 - 2 * t);
 }
 
 /** Squared speed over V² from three rows. */
@@ -303,6 +321,7 @@ function traceQuad(p: i32): void {
       mb = <f64>m;
       sidesA = sidesB;
       sidesB = sidesC;
+      nearB = f32At(EXTREMES) < CORNER_X * f64At(frame + 48) * f64At(frame + 48);
       // the next moment: as far as the storm may move and change, over as many legs as that takes
       const distanceM = root(f32At(EXTREMES));
       const outside = distanceM > outerM;
@@ -311,7 +330,7 @@ function traceQuad(p: i32): void {
       let moveM = STEP_SHARE * (distanceM > coreM ? distanceM : coreM);
       const factor = idle ? (wind < IDLE_BELOW * lowestLevel ? IDLE_FACTOR_BELOW : IDLE_FACTOR) : 1;
       moveM *= factor;
-      if (distanceM > taperM) moveM = least(moveM, TAPER_STEP * outerM);
+      if (root(f32At(EXTREMES + 8)) > taperM) moveM = least(moveM, TAPER_STEP * outerM);
       if (outside) moveM = distanceM - outerM + TAPER_STEP * outerM;
       let weight = wind / f64At(frame + 40);
       if (weight < 0.1) weight = 0.1;
@@ -366,8 +385,9 @@ function least(a: f64, b: f64): f64 {
 function passed(p: i32, a: i32, b: i32, c: i32, ma: f64, mb: f64, mc: f64, turns: boolean): void {
   const low = a === NONE ? mb : ma;
   const ratio = a === NONE || c === NONE ? 1 : (mc - mb) / (mb - ma);
-  const high = peaks(a, b, c, ratio, MARGIN_MPS, thresholds);
-  const hollow = thresholds > 0 && a !== NONE && c !== NONE ? dips(a, b, c, ratio, MARGIN_MPS, thresholds) : 0;
+  const margin = nearB ? MARGIN_NEAR_MPS : MARGIN_MPS;
+  const high = peaks(a, b, c, ratio, margin, thresholds);
+  const hollow = thresholds > 0 && a !== NONE && c !== NONE ? dips(a, b, c, ratio, margin, thresholds) : 0;
   if ((high | hollow) === 0) return;
   for (let i = 0; i < 4; i++) {
     const bit = 1 << i;
@@ -432,15 +452,17 @@ function extreme(p: i32, low: f64, fLow: f64, middle: f64, fMiddle: f64, high: f
       const off = value - estimate;
       if (off < ROUGH_MPS && off > -ROUGH_MPS) {
         const cornered = turns || squaredRatio < CORNER_X;
+        // the parabola passes through the middle moment: next to it any wind agrees
+        const near = vertex - middle < BESIDE * (high - middle) && middle - vertex < BESIDE * (middle - low);
         // the parabola through the nearest three is nearer still
         foundMoment = vertexOf(l, fl, m, fm, h, fh);
         if (foundMps > fm + ROUGH_MPS) foundMps = fm + ROUGH_MPS;
-        if (!cornered) return;
+        if (!cornered && !near) return;
         // by chance it may pass through a flank of a corner
-        tried = true;
+        tried = cornered;
         const vertexAt = foundMoment;
         const height = foundMps;
-        if (atCorner(p, low, fLow, middle, fMiddle, high, fHigh, m, fm, sign, turns)) return;
+        if (cornered && atCorner(p, low, fLow, middle, fMiddle, high, fHigh, m, fm, sign, turns)) return;
         foundMoment = vertexAt;
         foundMps = height;
         if (agrees(p, 0.5 * (h - m > m - l ? m + h : l + m), l, fl, m, fm, h, fh, sign)) return;

@@ -12,12 +12,12 @@ const AWAY_SPACINGS = 1.2;
 /** Between points of a block the wind of a parabola must be right to this, m/s: the points checked then stand nearer to each other by half, and are left off by about an eighth of it. */
 const CHECK_MPS = 0.03;
 /** The same for the direction, degrees, and for hours: a share of them and a floor. */
-const CHECK_DEG = 1;
+const CHECK_DEG = 0.8;
 const CHECK_HOURS_SHARE = 0.02;
 const CHECK_HOURS = 0.015;
 /** Times nearer than this are right, s; others are where the wind then is the peak to {@link CHECK_TIME_MPS}. */
 const CHECK_TIME_S = 45;
-const CHECK_TIME_MPS = 0.035;
+const CHECK_TIME_MPS = 0.028;
 /** Peaks below this need not be right, m/s: nothing is promised of them. */
 const CALM_MPS = 6.5;
 /** Less than this is no wind, m/s. */
@@ -101,6 +101,7 @@ export function tileRunner(tracer: Tracer, placing: Placing, thresholdsMps: read
   const timeS = new Float64Array(size);
   const fromDeg = new Float64Array(size);
   const leastM = new Float64Array(size);
+  const crossings = new Float64Array(size);
   const hours = thresholdsMps.map(() => new Float64Array(size));
   const known = new Uint8Array(size);
   const asked = new Int32Array(MOST_POINTS);
@@ -211,6 +212,7 @@ export function tileRunner(tracer: Tracer, placing: Placing, thresholdsMps: read
       const wind = tracer.windMps[k]!;
       windMps[at] = wind;
       leastM[at] = tracer.leastM[k]!;
+      crossings[at] = tracer.crossings[k]!;
       timeS[at] = wind > 0 ? tracer.timeS(k) : Number.NaN;
       fromDeg[at] = wind > 0 ? tracer.fromDeg(k) : Number.NaN;
       for (let h = 0; h < hours.length; h++) hours[h]![at] = wind >= thresholdsMps[h]! ? tracer.hours[h]![k]! : 0;
@@ -226,6 +228,8 @@ export function tileRunner(tracer: Tracer, placing: Placing, thresholdsMps: read
       const at = first + near * (b * EDGE + a);
       // not a number: no place
       if (!(windMps[at]! >= 0)) return false;
+      // a threshold that is passed more often at one than at another: in between hours have an edge
+      if (crossings[at] !== crossings[first]) return false;
       highest = Math.max(highest, windMps[at]!);
       lowest = Math.min(lowest, windMps[at]!);
       least = Math.min(least, leastM[at]!);

@@ -24,6 +24,8 @@ export interface Tracer {
   readonly windMps: Float64Array;
   readonly leastM: Float64Array;
   readonly hours: readonly Float64Array[];
+  /** how often the wind passes any threshold */
+  readonly crossings: Float64Array;
   /** Leaves out the legs in which the storm stays farther from a place than its wind reaches, `radiusM` about it; false where none is left. */
   readonly near: (centre: readonly [number, number, number], radiusM: number) => boolean;
   /** peaks and hours of the first `count` points */
@@ -161,6 +163,7 @@ export function tracerOf(
     z,
     windMps: column(at.WIND),
     leastM: column(at.LEAST),
+    crossings: column(at.CROSSINGS),
     hours: thresholdsMps.map((_, h) => column(at.HOURS + h * at.COLUMN)),
     trace: (points) => engine.trace(quads(points)),
     winds: (points) => engine.winds(quads(points)),

@@ -48,8 +48,10 @@ export const NORTH: i32 = POINTS + 6 * COLUMN;
 export const LEAST: i32 = POINTS + 7 * COLUMN;
 /** columns: hours at or above each threshold */
 export const HOURS: i32 = POINTS + 8 * COLUMN;
+/** column: how often the wind passes any threshold */
+export const CROSSINGS: i32 = POINTS + 16 * COLUMN;
 /** from here on: what a storm needs */
-export const HEAP: i32 = POINTS + 16 * COLUMN;
+export const HEAP: i32 = POINTS + 17 * COLUMN;
 
 /** numbers of {@link STORM} */
 export const FRAMES: i32 = 0;

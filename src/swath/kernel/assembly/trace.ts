@@ -3,7 +3,7 @@
 import { bitsOf, f32At, f64At, i32At, root, setF32, setF64, whole, zeros } from './memory';
 import { busy, dips, peaks, sampleQuad, sides } from './lanes';
 import {
-  AHEAD, COLUMN, EAST, EXTREMES, FADE, FRAMES, FRESH, GROUPS, HELD, HOURS, LAST_ROW, LEAST, LEGS, LEVELS, LOOKED, MOMENT, MOMENTS,
+  AHEAD, COLUMN, CROSSINGS, EAST, EXTREMES, FADE, FRAMES, FRESH, GROUPS, HELD, HOURS, LAST_ROW, LEAST, LEGS, LEVELS, LOOKED, MOMENT, MOMENTS,
   NEAR, NEED, NONE, NORTH, OUTER, QUAD, RUNS, RUN_COUNT, STORM, TAPER, THRESHOLDS, TIMES, WIND, WINDS, WIND_HARMONICS, WIND_TABLES, X, Y, Z,
 } from './places';
 
@@ -30,6 +30,8 @@ const MARGIN_MPS: f64 = 0.03;
 const MARGIN_NEAR_MPS: f64 = 0.35;
 /** A peak this near to its parabola is taken from it, m/s; */
 const ROUGH_MPS: f64 = 0.015;
+/** it is not trusted to rise this far above what was seen, m/s; */
+const TRUSTED_MPS: f64 = 0.01;
 /** one farther off than this is no parabola, and is looked for among moments between. */
 const CORNER_MPS: f64 = 0.15;
 /** A vertex is next to the middle moment within this share of the steps beside it. */
@@ -47,7 +49,7 @@ const RIVAL_MPS: f64 = 0.6;
 /** Parts of a bracket that a search looks at. */
 const PARTS: i32 = 8;
 /** Within this of a level the wind is a straight line in time, m/s. */
-const CROSSED_MPS: f64 = 0.03;
+const CROSSED_MPS: f64 = 0.01;
 
 // what the storm is made of
 let frames: i32 = 0;
@@ -280,6 +282,7 @@ function traceQuad(p: i32): void {
     setF32(NONE + 4 * i, -1);
     setF64(WIND + at, 0);
     setF64(MOMENT + at, 0);
+    setF64(CROSSINGS + at, 0);
     for (let h = 0; h < thresholds; h++) setF64(HOURS + h * COLUMN + at, 0);
   }
   held = 0;
@@ -300,12 +303,25 @@ function traceQuad(p: i32): void {
     const lastLeg = i32At(runs + 8 * r + 4) - 1;
     let leg = legs + (number << 6);
     let m = whole(f64At(leg));
+    // where the last step began, and how far it went over an idle wind
+    let from = m;
+    let fromLeg = number;
+    let skipped = 0;
     for (;;) {
       const frame = frames + (m << 6);
       const east0 = cx * f64At(frame) + cy * f64At(frame + 8);
       const north0 = cx * f64At(frame + 16) + cy * f64At(frame + 24) + cz * f64At(frame + 32);
       sampleQuad(c, frame, east0, north0, whole(f64At(frame + 56)), groups, lastRow);
       const wind = f32At(EXTREMES + 4);
+      if (skipped > 3 && wind >= IDLE_BELOW * lowestLevel) {
+        // too far for a wind that a threshold is near to: once more with a step of the usual length
+        m = from + (skipped >> 2);
+        skipped = 0;
+        number = fromLeg;
+        while (number < lastLeg && m >= whole(f64At(legs + (number << 6) + 8))) number++;
+        leg = legs + (number << 6);
+        continue;
+      }
       const sidesC = wind >= lowestLevel ? sides(c, thresholds) : 0;
       if (b !== NONE) {
         if (strongest > 0) passed(p, a, b, c, ma, mb, <f64>m, turns);
@@ -335,7 +351,8 @@ function traceQuad(p: i32): void {
       let weight = wind / f64At(frame + 40);
       if (weight < 0.1) weight = 0.1;
       const stops = !idle && wind > LEG_MPS;
-      const from = m;
+      from = m;
+      fromLeg = number;
       let budget: f64 = 1;
       let done = false;
       for (;;) {
@@ -365,6 +382,7 @@ function traceQuad(p: i32): void {
         if (m > from && (stops || budget < LEAST_BUDGET)) break;
       }
       if (done) break;
+      skipped = factor > 1 ? m - from : 0;
     }
   }
   if (b !== NONE) {
@@ -388,23 +406,25 @@ function passed(p: i32, a: i32, b: i32, c: i32, ma: f64, mb: f64, mc: f64, turns
   const margin = nearB ? MARGIN_NEAR_MPS : MARGIN_MPS;
   const high = peaks(a, b, c, ratio, margin, thresholds);
   const hollow = thresholds > 0 && a !== NONE && c !== NONE ? dips(a, b, c, ratio, margin, thresholds) : 0;
+  if (turns && c !== NONE) {
+    // a wind that falls up to a turn may rise after it, and fall again before the next moment
+    for (let i = 0; i < 4; i++) {
+      const wind = f32At(b + 4 * i);
+      if ((high & (1 << i)) !== 0 || wind < f32At(c + 4 * i) || wind < f32At(NEED + 4 * i) - RIVAL_MPS) continue;
+      if (speedAt(p + i, mb + CORNER_STEP * (mc - mb)) <= wind) continue;
+      extreme(p + i, mb, wind, mb, wind, mc, f32At(c + 4 * i), 1, false);
+      raise(p, i);
+    }
+  }
   if ((high | hollow) === 0) return;
   for (let i = 0; i < 4; i++) {
     const bit = 1 << i;
     if (((high | hollow) & bit) === 0) continue;
     const sign: f64 = (high & bit) !== 0 ? 1 : -1;
-    const q = p + i;
-    const fa = sign * f32At(a + 4 * i);
-    const fb = sign * f32At(b + 4 * i);
-    const fc = sign * f32At(c + 4 * i);
-    extreme(q, low, fa, mb, fb, mc, fc, sign, turns);
+    extreme(p + i, low, sign * f32At(a + 4 * i), mb, sign * f32At(b + 4 * i), mc, sign * f32At(c + 4 * i), sign, turns);
     const moment = foundMoment;
     const wind = sign * foundMps;
-    if (sign > 0 && wind > f64At(WIND + 8 * q)) {
-      setF64(WIND + 8 * q, wind);
-      setF64(MOMENT + 8 * q, moment);
-      setF32(NEED + 4 * i, wind);
-    }
+    if (sign > 0) raise(p, i);
     if (thresholds === 0 || moment === mb) continue;
     const to = (moment < mb ? FRESH : AHEAD) + 16 * i;
     setF64(to, moment);
@@ -412,6 +432,15 @@ function passed(p: i32, a: i32, b: i32, c: i32, ma: f64, mb: f64, mc: f64, turns
     if (moment < mb) fresh |= bit;
     else ahead |= bit;
   }
+}
+
+/** Keeps what was found for a point if it is its highest wind so far. */
+function raise(p: i32, i: i32): void {
+  const at = 8 * (p + i);
+  if (foundMps <= f64At(WIND + at)) return;
+  setF64(WIND + at, foundMps);
+  setF64(MOMENT + at, foundMoment);
+  setF32(NEED + 4 * i, foundMps);
 }
 
 /** The highest value of `sign` times the wind about the middle of three moments; one beside it may be missing, then `low` or `high` is `middle`. */
@@ -424,7 +453,7 @@ function extreme(p: i32, low: f64, fLow: f64, middle: f64, fMiddle: f64, high: f
     let h = high;
     let fh = fHigh;
     let tried = false;
-    for (let n = 0; n < 2; n++) {
+    for (let n = 0; n < 3; n++) {
       const vertex = vertexOf(l, fl, m, fm, h, fh);
       const estimate = foundMps;
       if (vertex === m) {
@@ -456,7 +485,7 @@ function extreme(p: i32, low: f64, fLow: f64, middle: f64, fMiddle: f64, high: f
         const near = vertex - middle < BESIDE * (high - middle) && middle - vertex < BESIDE * (middle - low);
         // the parabola through the nearest three is nearer still
         foundMoment = vertexOf(l, fl, m, fm, h, fh);
-        if (foundMps > fm + ROUGH_MPS) foundMps = fm + ROUGH_MPS;
+        if (foundMps > fm + TRUSTED_MPS) continue;
         if (!cornered && !near) return;
         // by chance it may pass through a flank of a corner
         tried = cornered;
@@ -759,6 +788,7 @@ function timeOf(moment: f64): f64 {
 function above(p: i32, from: f64, fFrom: f64, to: f64, fTo: f64, level: f64): f64 {
   if (fFrom >= level && fTo >= level) return timeOf(to) - timeOf(from);
   if (fFrom < level && fTo < level) return 0;
+  setF64(CROSSINGS + 8 * p, f64At(CROSSINGS + 8 * p) + 1);
   let low = from;
   let fLow = fFrom - level;
   let high = to;

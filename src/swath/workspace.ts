@@ -15,10 +15,13 @@ export interface Footprint {
   readonly windMps: Float32Array;
 }
 
+/** Winds that are lower than the least one wanted by this need not be right, m/s. */
+const MARGIN_MPS = 1;
+
 /** A grid that many storms are put on, one after another. */
 export interface SwathWorkspace {
   readonly grid: Grid;
-  /** Cells with a peak wind of `leastMps` or more. The same winds as {@link peakSwath} gives; nothing is kept of a storm. */
+  /** Cells with a peak wind of `leastMps` or more, as near to the plain model as those of {@link peakSwath}; nothing is kept of a storm. */
   readonly footprint: (model: WindModel, options: { readonly leastMps: number }) => Footprint;
 }
 
@@ -34,8 +37,10 @@ export function createSwathWorkspace(grid: Grid): SwathWorkspace {
     const tracer = tracerOf(engine, timeline, stormTables(model, timeline), {
       outerRadiusM: model.outerRadiusM,
       thresholdsMps: [],
+      windOnly: true,
     });
-    const { run, fields } = tileRunner(tracer, placing, []);
+    // what lies below the least is thrown away
+    const { run, fields } = tileRunner(tracer, placing, [], { windOnly: true, calmMps: leastMps - MARGIN_MPS });
     const cells: number[] = [];
     const winds: number[] = [];
     for (let row = 0; row < placing.rows; row++) {

@@ -32,6 +32,13 @@ export interface TileFields {
   readonly hours: readonly Float64Array[];
 }
 
+export interface TileOptions {
+  /** without times and directions */
+  readonly windOnly?: boolean;
+  /** peaks below this need not be right, m/s */
+  readonly calmMps?: number;
+}
+
 export interface TileRunner {
   readonly fields: TileFields;
   /** fills the fields for the cells of a tile; false where the storm never comes near */
@@ -95,7 +102,12 @@ const CELLS = Array.from({ length: WIDEST / 2 + 1 }, (_, spacing) =>
  * points tell the wind, the time, the direction and the hours of the points between, the cells in between are
  * interpolated from all of them; elsewhere the lattice is halved, down to the cells themselves.
  */
-export function tileRunner(tracer: Tracer, placing: Placing, thresholdsMps: readonly number[]): TileRunner {
+export function tileRunner(
+  tracer: Tracer,
+  placing: Placing,
+  thresholdsMps: readonly number[],
+  { windOnly = false, calmMps = CALM_MPS }: TileOptions = {},
+): TileRunner {
   const size = EDGE * EDGE;
   const windMps = new Float64Array(size);
   const timeS = new Float64Array(size);
@@ -213,6 +225,7 @@ export function tileRunner(tracer: Tracer, placing: Placing, thresholdsMps: read
       windMps[at] = wind;
       leastM[at] = tracer.leastM[k]!;
       crossings[at] = tracer.crossings[k]!;
+      if (windOnly) continue;
       timeS[at] = wind > 0 ? tracer.timeS(k) : Number.NaN;
       fromDeg[at] = wind > 0 ? tracer.fromDeg(k) : Number.NaN;
       for (let h = 0; h < hours.length; h++) hours[h]![at] = wind >= thresholdsMps[h]! ? tracer.hours[h]![k]! : 0;
@@ -235,17 +248,17 @@ export function tileRunner(tracer: Tracer, placing: Placing, thresholdsMps: read
       least = Math.min(least, leastM[at]!);
     }
     if (least < AWAY_SPACINGS * spacing * cellM) return false;
-    if (highest < CALM_MPS) return true;
+    if (highest < calmMps) return true;
     if (lowest === 0) return false;
     const centreDeg = gather(first, spacing);
-    for (const angle of angles) if (Math.abs(angle) > 60) return false;
+    if (!windOnly) for (const angle of angles) if (Math.abs(angle) > 60) return false;
     const own: Guess[] = [];
     for (const [a, b] of checks) {
       const [across, down] = [HALVES[a]!, HALVES[b]!];
       const at = first + near * (b * EDGE + a);
       const wind = windMps[at]!;
       const off = Math.abs(ofNine(winds, across, down) - wind);
-      if (wind < CALM_MPS) {
+      if (wind < calmMps) {
         if (off > 10 * CHECK_MPS) return false;
         continue;
       }
@@ -258,6 +271,7 @@ export function tileRunner(tracer: Tracer, placing: Placing, thresholdsMps: read
         )
           return false;
       }
+      if (windOnly) continue;
       const guess = centreDeg + ofNine(angles, across, down);
       const time = ofNine(times, across, down);
       if (Math.abs(time - timeS[at]!) > CHECK_TIME_S) own.push({ block, at, timeS: time, fromDeg: guess });
@@ -321,6 +335,7 @@ export function tileRunner(tracer: Tracer, placing: Placing, thresholdsMps: read
       const from = first + j * EDGE;
       along(winds, weights, j);
       spread(windMps, from, weights, right);
+      if (windOnly) continue;
       along(times, weights, j);
       spread(timeS, from, weights, right);
       along(angles, weights, j);

@@ -138,7 +138,8 @@ function isStraight(frames: Float64Array, first: number, end: number): boolean {
   const step = KNOT_MOMENTS * FRAME;
   if (end - first < 2 * KNOT_MOMENTS) return false;
   for (let b = first * FRAME + step; b < end * FRAME; b += step) {
-    const bend = (k: number): number => Math.abs(frames[b - step + k]! - 2 * frames[b + k]! + frames[b + step + k]!) / 8;
+    const bend = (k: number): number =>
+      Math.abs(frames[b - step + k]! - 2 * frames[b + k]! + frames[b + step + k]!) / 8;
     const offM = EARTH_RADIUS_M * Math.max(bend(0), bend(1), bend(2));
     if (offM > STRAIGHT_M || bend(8) > STRAIGHT_M || bend(9) > STRAIGHT_MPS) return false;
   }

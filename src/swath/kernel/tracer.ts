@@ -43,7 +43,12 @@ export function tracerOf(
   engine: Engine,
   timeline: Timeline,
   tables: StormTables,
-  options: { readonly outerRadiusM: number; readonly thresholdsMps: readonly number[] },
+  options: {
+    readonly outerRadiusM: number;
+    readonly thresholdsMps: readonly number[];
+    /** without the time and direction of the peak */
+    readonly windOnly?: boolean;
+  },
 ): Tracer {
   const { outerRadiusM, thresholdsMps } = options;
   const { legs, count, frames } = timeline;
@@ -133,6 +138,7 @@ export function tracerOf(
       thresholdsMps.length,
       hoursAt,
       carefulFromM(timeline, tables, outerRadiusM),
+      options.windOnly ? 0 : 1,
     ],
     at.STORM >> 3,
   );

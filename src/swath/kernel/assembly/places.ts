@@ -67,3 +67,4 @@ export const WIND_HARMONICS: i32 = 9;
 export const THRESHOLDS: i32 = 10;
 export const TIMES: i32 = 11;
 export const TAPER: i32 = 12;
+export const PARTS: i32 = 13;

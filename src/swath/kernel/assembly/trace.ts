@@ -4,7 +4,7 @@ import { bitsOf, f32At, f64At, i32At, root, setF32, setF64, whole, zeros } from 
 import { busy, dips, peaks, sampleQuad, sides } from './lanes';
 import {
   AHEAD, COLUMN, CROSSINGS, EAST, EXTREMES, FADE, FRAMES, FRESH, GROUPS, HELD, HOURS, LAST_ROW, LEAST, LEGS, LEVELS, LOOKED, MOMENT, MOMENTS,
-  NEAR, NEED, NONE, NORTH, OUTER, QUAD, RUNS, RUN_COUNT, STORM, TAPER, THRESHOLDS, TIMES, WIND, WINDS, WIND_HARMONICS, WIND_TABLES, X, Y, Z,
+  NEAR, NEED, NONE, NORTH, OUTER, PARTS, QUAD, RUNS, RUN_COUNT, STORM, TAPER, THRESHOLDS, TIMES, WIND, WINDS, WIND_HARMONICS, WIND_TABLES, X, Y, Z,
 } from './places';
 
 /** A step moves the storm by at most this share of the distance from it (or of its radius of maximum wind). */
@@ -47,7 +47,7 @@ const SEARCHED_MPS: f64 = 0.002;
 /** A second maximum within this of the first is searched too, m/s. */
 const RIVAL_MPS: f64 = 0.6;
 /** Parts of a bracket that a search looks at. */
-const PARTS: i32 = 8;
+const LOOKS: i32 = 8;
 /** Within this of a level the wind is a straight line in time, m/s. */
 const CROSSED_MPS: f64 = 0.01;
 
@@ -65,6 +65,7 @@ let hoursAt: i32 = 0;
 let windTables: i32 = 0;
 let windHarmonics: i32 = 0;
 let thresholds: i32 = 0;
+let parts: boolean = false;
 let lowestLevel: f64 = 0;
 
 // what the last search found
@@ -101,6 +102,7 @@ function begin(): void {
   windTables = whole(storm(WIND_TABLES));
   windHarmonics = whole(storm(WIND_HARMONICS));
   thresholds = whole(storm(THRESHOLDS));
+  parts = storm(PARTS) > 0;
   lowestLevel = 1e30;
   for (let h = 0; h < thresholds; h++) {
     const level = f32At(LEVELS + 4 * h);
@@ -391,7 +393,7 @@ function traceQuad(p: i32): void {
   }
   for (let i = 0; i < 4; i++) {
     setF64(LEAST + 8 * (p + i), root(f32At(NEAR + 4 * i)));
-    if (f64At(WIND + 8 * (p + i)) > 0) partsAt(p + i, f64At(MOMENT + 8 * (p + i)));
+    if (parts && f64At(WIND + 8 * (p + i)) > 0) partsAt(p + i, f64At(MOMENT + 8 * (p + i)));
   }
 }
 
@@ -507,25 +509,25 @@ function extreme(p: i32, low: f64, fLow: f64, middle: f64, fMiddle: f64, high: f
     foundMps = fMiddle;
     return;
   }
-  for (let k = 0; k <= PARTS; k++) {
-    let moment = low + (<f64>k * (high - low)) / <f64>PARTS;
+  for (let k = 0; k <= LOOKS; k++) {
+    let moment = low + (<f64>k * (high - low)) / <f64>LOOKS;
     if (low < middle && middle < high)
-      moment = 2 * k < PARTS ? low + (<f64>(2 * k) * (middle - low)) / <f64>PARTS : middle + (<f64>(2 * k - PARTS) * (high - middle)) / <f64>PARTS;
+      moment = 2 * k < LOOKS ? low + (<f64>(2 * k) * (middle - low)) / <f64>LOOKS : middle + (<f64>(2 * k - LOOKS) * (high - middle)) / <f64>LOOKS;
     setF64(LOOKED + 16 * k, moment);
     setF64(LOOKED + 16 * k + 8, sign * speedAt(p, moment));
   }
   let one = -1;
   let two = -1;
-  for (let k = 0; k <= PARTS; k++) {
+  for (let k = 0; k <= LOOKS; k++) {
     const value = looked(k);
     if (k > 0 && looked(k - 1) > value) continue;
-    if (k < PARTS && looked(k + 1) >= value) continue;
+    if (k < LOOKS && looked(k + 1) >= value) continue;
     if (one < 0 || value > looked(one)) {
       two = one;
       one = k;
     } else if (two < 0 || value > looked(two)) two = k;
   }
-  if (one < 0) one = PARTS;
+  if (one < 0) one = LOOKS;
   around(p, one, sign);
   if (two < 0 || looked(two) < looked(one) - RIVAL_MPS) return;
   const moment = foundMoment;
@@ -641,7 +643,7 @@ function agrees(p: i32, moment: f64, l: f64, fl: f64, m: f64, fm: f64, h: f64, f
 function around(p: i32, k: i32, sign: f64): void {
   const top = looked(k);
   const at = lookedAt(k);
-  if (k > 1 && k < PARTS - 1) {
+  if (k > 1 && k < LOOKS - 1) {
     // where two straight flanks meet, one of which ends at the top
     const before = looked(k - 1);
     const after = looked(k + 1);
@@ -671,7 +673,7 @@ function around(p: i32, k: i32, sign: f64): void {
     }
   }
   const from = k > 0 ? k - 1 : 0;
-  const to = k < PARTS ? k + 1 : PARTS;
+  const to = k < LOOKS ? k + 1 : LOOKS;
   narrow(p, lookedAt(from), looked(from), at, top, lookedAt(to), looked(to), sign);
 }
 

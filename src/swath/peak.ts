@@ -36,9 +36,9 @@ export async function peakSwath(model: WindModel, grid: Grid, options: PeakOptio
   const cells = grid.nx * grid.ny;
   checkMemory(grid, cells);
   options.signal?.throwIfAborted();
-  const plan = swathPlan(model, grid, options);
+  const plan = swathPlan(model, grid, { ...options, fitted: isFitted(model) });
   const threads = options.engine || cells < CELLS_FOR_THREADS ? null : await threadsFor(options.jobs);
-  const fields = newFields(cells, { shared: threads !== null });
+  const fields = newFields(cells, { shared: threads !== null, rivals: plan.rivals });
   const work = swathWork(plan, options.engine);
   const { tiles } = work;
   const helped: Tiles | null = threads?.start(plan, fields, tiles) ?? null;
@@ -67,7 +67,7 @@ export async function peakSwath(model: WindModel, grid: Grid, options: PeakOptio
   if (options.surface?.rowOf.some((row) => row > 0)) cautions.push(OPEN_SEA);
   const own = helped ? unshared(fields) : fields;
   // what the few probes of the tables may miss in a field that was fitted, the plain model knows
-  if (!plan.tables.complete || isFitted(model)) {
+  if (plan.rivals) {
     settlePeaks(model, grid, own, {
       fromMs: options.fromMs ?? model.path.startMs,
       toMs: options.toMs ?? model.path.endMs,
@@ -91,12 +91,13 @@ const INCOMPLETE =
 const OPEN_SEA = 'the winds are those over open sea everywhere: the fast swath does not take a surface map yet';
 
 /** Fields in memory of this thread alone, which every writer takes. */
-function unshared({ windMps, windFromDeg, peakTimeS, hours }: SwathFields): SwathFields {
+function unshared({ windMps, windFromDeg, peakTimeS, hours, rivalTimeS }: SwathFields): SwathFields {
   return {
     windMps: windMps.slice(),
     windFromDeg: windFromDeg.slice(),
     peakTimeS: peakTimeS.slice(),
     hours: hours.map((field) => field.slice()),
+    rivalTimeS,
   };
 }
 

@@ -30,6 +30,8 @@ export interface TileFields {
   readonly timeS: Float64Array;
   readonly fromDeg: Float64Array;
   readonly hours: readonly Float64Array[];
+  /** time of the second highest maximum, where every cell is asked; NaN where there is none */
+  readonly rivalTimeS: Float64Array;
 }
 
 export interface TileOptions {
@@ -37,6 +39,8 @@ export interface TileOptions {
   readonly windOnly?: boolean;
   /** peaks below this need not be right, m/s */
   readonly calmMps?: number;
+  /** nothing is interpolated */
+  readonly everyCell?: boolean;
 }
 
 export interface TileRunner {
@@ -106,12 +110,13 @@ export function tileRunner(
   tracer: Tracer,
   placing: Placing,
   thresholdsMps: readonly number[],
-  { windOnly = false, calmMps = CALM_MPS }: TileOptions = {},
+  { windOnly = false, calmMps = CALM_MPS, everyCell = false }: TileOptions = {},
 ): TileRunner {
   const size = EDGE * EDGE;
   const windMps = new Float64Array(size);
   const timeS = new Float64Array(size);
   const fromDeg = new Float64Array(size);
+  const rivalTimeS = new Float64Array(size);
   const leastM = new Float64Array(size);
   const crossings = new Float64Array(size);
   const hours = thresholdsMps.map(() => new Float64Array(size));
@@ -129,7 +134,7 @@ export function tileRunner(
   const { cellM } = placing;
   let guesses: Guess[] = [];
   let [left, top, width, height] = [0, 0, 0, 0];
-  return { fields: { windMps, timeS, fromDeg, hours }, run };
+  return { fields: { windMps, timeS, fromDeg, hours, rivalTimeS }, run };
 
   function run({ column, row, nx, ny }: Parameters<TileRunner['run']>[0]): boolean {
     [left, top] = [column * TILE_EDGE, row * TILE_EDGE];
@@ -225,6 +230,7 @@ export function tileRunner(
       windMps[at] = wind;
       leastM[at] = tracer.leastM[k]!;
       crossings[at] = tracer.crossings[k]!;
+      if (everyCell) rivalTimeS[at] = tracer.rivalTimeS(k);
       if (windOnly) continue;
       timeS[at] = wind > 0 ? tracer.timeS(k) : Number.NaN;
       fromDeg[at] = wind > 0 ? tracer.fromDeg(k) : Number.NaN;
@@ -234,6 +240,7 @@ export function tileRunner(
 
   /** Whether parabolas through 3 × 3 points tell the others of a pattern; times that are off are put among the guesses. */
   function isSmooth(block: Block, spacing: number, { points, checks, share }: Pattern): boolean {
+    if (everyCell) return false;
     const near = spacing >> 1;
     const first = block.row * EDGE + block.column;
     let [highest, lowest, least] = [0, Number.POSITIVE_INFINITY, Number.POSITIVE_INFINITY];

@@ -33,6 +33,8 @@ export interface Tracer {
   /** winds of the first `count` points, each at the time that {@link Tracer.setTime} gave it */
   readonly winds: (count: number) => void;
   readonly setTime: (point: number, timeS: number) => void;
+  /** time of the second highest maximum that was looked at, s after the timeline's start; NaN where there is none */
+  readonly rivalTimeS: (point: number) => number;
   /** of a point after either: time, s after the timeline's start; where the wind blows from, degrees */
   readonly timeS: (point: number) => number;
   readonly fromDeg: (point: number) => number;
@@ -46,6 +48,8 @@ export function tracerOf(
   options: {
     readonly outerRadiusM: number;
     readonly thresholdsMps: readonly number[];
+    /** maxima in time within this of the highest are looked at too, m/s; none by default */
+    readonly rivalsMps?: number;
     /** without the time and direction of the peak */
     readonly windOnly?: boolean;
   },
@@ -139,6 +143,7 @@ export function tracerOf(
       hoursAt,
       carefulFromM(timeline, tables, outerRadiusM),
       options.windOnly ? 0 : 1,
+      options.rivalsMps ?? 0,
     ],
     at.STORM >> 3,
   );
@@ -160,6 +165,7 @@ export function tracerOf(
     Float64Array,
     Float64Array,
   ];
+  const [rivalMps, rivalMoments] = [column(at.RIVAL), column(at.RIVAL_MOMENT)];
   const originMs = timeMsOf(timeline, 0);
   const quads = (points: number): number => {
     const whole = (points + 3) & ~3;
@@ -181,6 +187,8 @@ export function tracerOf(
     setTime(point, timeS) {
       moments[point] = momentOf(timeline, originMs + timeS * 1000);
     },
+    rivalTimeS: (point) =>
+      rivalMps[point]! > 0 ? (timeMsOf(timeline, rivalMoments[point]!) - originMs) / 1000 : Number.NaN,
     timeS: (point) => (timeMsOf(timeline, moments[point]!) - originMs) / 1000,
     fromDeg: (point) => {
       const k = FRAME * Math.min(count - 1, Math.trunc(moments[point]! + 0.5));

@@ -9,16 +9,24 @@ import { type Timeline, timelineOf } from './timeline.js';
 import { tracerOf } from './tracer.js';
 import { newEngine } from './wasm.js';
 
+/** Other maxima in time within this of the highest are kept, m/s: what tables may be off where fields are fitted to radii. */
+const RIVALS_MPS = 0.4;
+
 /** Fields of a swath while it is made; each nx*ny. */
 export interface SwathFields {
   readonly windMps: Float32Array;
   readonly windFromDeg: Float32Array;
   readonly peakTimeS: Float32Array;
   readonly hours: readonly Float32Array[];
+  /** time of the second highest maximum in time, where it was asked for */
+  readonly rivalTimeS: Float32Array | null;
 }
 
 /** @param shared whether several threads write into them */
-export function newFields(cells: number, { shared }: { shared: boolean }): SwathFields {
+export function newFields(
+  cells: number,
+  { shared, rivals = false }: { shared: boolean; rivals?: boolean },
+): SwathFields {
   const field = (): Float32Array =>
     shared ? new Float32Array(new SharedArrayBuffer(4 * cells)) : new Float32Array(cells);
   return {
@@ -26,6 +34,7 @@ export function newFields(cells: number, { shared }: { shared: boolean }): Swath
     windFromDeg: field().fill(Number.NaN),
     peakTimeS: field().fill(Number.NaN),
     hours: HOURS_THRESHOLDS_MPS.map(field),
+    rivalTimeS: rivals ? field().fill(Number.NaN) : null,
   };
 }
 
@@ -38,19 +47,23 @@ export interface SwathPlan {
   /** from the track's first fix to the timeline's start, s */
   readonly offsetS: number;
   readonly hours: boolean;
+  /** whether other maxima in time than the highest are looked for as well, at every cell */
+  readonly rivals: boolean;
 }
 
 export function swathPlan(
   model: WindModel,
   grid: Grid,
-  options: { readonly fromMs?: number; readonly toMs?: number; readonly peakOnly?: boolean },
+  options: { readonly fromMs?: number; readonly toMs?: number; readonly peakOnly?: boolean; readonly fitted?: boolean },
 ): SwathPlan {
   const fromMs = options.fromMs ?? model.path.startMs;
   const timeline = timelineOf(model, fromMs, options.toMs ?? model.path.endMs);
+  const tables = stormTables(model, timeline);
   return {
     grid,
     timeline,
-    tables: stormTables(model, timeline),
+    tables,
+    rivals: options.fitted === true || !tables.complete,
     outerRadiusM: model.outerRadiusM,
     offsetS: (fromMs - model.path.startMs) / 1000,
     hours: options.peakOnly !== true,
@@ -71,9 +84,13 @@ const idle: Engine[] = [];
 export function swathWork({ grid, timeline, tables, ...plan }: SwathPlan, given?: Engine): SwathWork {
   const engine = given ?? idle.pop() ?? newEngine();
   const thresholdsMps = plan.hours ? HOURS_THRESHOLDS_MPS : [];
-  const tracer = tracerOf(engine, timeline, tables, { outerRadiusM: plan.outerRadiusM, thresholdsMps });
+  const tracer = tracerOf(engine, timeline, tables, {
+    outerRadiusM: plan.outerRadiusM,
+    thresholdsMps,
+    rivalsMps: plan.rivals ? RIVALS_MPS : 0,
+  });
   const placing = placingOf(grid);
-  const runner = tileRunner(tracer, placing, thresholdsMps);
+  const runner = tileRunner(tracer, placing, thresholdsMps, { everyCell: plan.rivals });
   const { nx, ny } = grid;
   return {
     tiles: placing.columns * placing.rows,
@@ -86,7 +103,7 @@ export function swathWork({ grid, timeline, tables, ...plan }: SwathPlan, given?
       if (!runner.run({ column, row, nx, ny })) return;
       const width = Math.min(TILE_EDGE, nx - column * TILE_EDGE);
       const height = Math.min(TILE_EDGE, ny - row * TILE_EDGE);
-      const { windMps, timeS, fromDeg, hours } = runner.fields;
+      const { windMps, timeS, fromDeg, hours, rivalTimeS } = runner.fields;
       for (let j = 0; j < height; j++) {
         let k = (row * TILE_EDGE + j) * nx + column * TILE_EDGE;
         const from = j * (TILE_EDGE + 1);
@@ -95,6 +112,7 @@ export function swathWork({ grid, timeline, tables, ...plan }: SwathPlan, given?
           fields.windMps[k] = windMps[at]!;
           fields.peakTimeS[k] = plan.offsetS + timeS[at]!;
           fields.windFromDeg[k] = fromDeg[at]!;
+          if (fields.rivalTimeS) fields.rivalTimeS[k] = plan.offsetS + rivalTimeS[at]!;
           for (let h = 0; h < hours.length; h++) fields.hours[h]![k] = hours[h]![at]!;
         }
       }

@@ -50,8 +50,11 @@ export const LEAST: i32 = POINTS + 7 * COLUMN;
 export const HOURS: i32 = POINTS + 8 * COLUMN;
 /** column: how often the wind passes any threshold */
 export const CROSSINGS: i32 = POINTS + 16 * COLUMN;
+/** columns: the second highest maximum in time that was looked at, and its moment */
+export const RIVAL: i32 = POINTS + 17 * COLUMN;
+export const RIVAL_MOMENT: i32 = POINTS + 18 * COLUMN;
 /** from here on: what a storm needs */
-export const HEAP: i32 = POINTS + 17 * COLUMN;
+export const HEAP: i32 = POINTS + 19 * COLUMN;
 
 /** numbers of {@link STORM} */
 export const FRAMES: i32 = 0;
@@ -68,3 +71,4 @@ export const THRESHOLDS: i32 = 10;
 export const TIMES: i32 = 11;
 export const TAPER: i32 = 12;
 export const PARTS: i32 = 13;
+export const RIVALS: i32 = 14;

@@ -4,7 +4,7 @@ import { bitsOf, f32At, f64At, i32At, root, setF32, setF64, whole, zeros } from 
 import { busy, dips, peaks, sampleQuad, sides } from './lanes';
 import {
   AHEAD, COLUMN, CROSSINGS, EAST, EXTREMES, FADE, FRAMES, FRESH, GROUPS, HELD, HOURS, LAST_ROW, LEAST, LEGS, LEVELS, LOOKED, MOMENT, MOMENTS,
-  NEAR, NEED, NONE, NORTH, OUTER, PARTS, QUAD, RUNS, RUN_COUNT, STORM, TAPER, THRESHOLDS, TIMES, WIND, WINDS, WIND_HARMONICS, WIND_TABLES, X, Y, Z,
+  NEAR, NEED, NONE, NORTH, OUTER, PARTS, QUAD, RIVAL, RIVALS, RIVAL_MOMENT, RUNS, RUN_COUNT, STORM, TAPER, THRESHOLDS, TIMES, WIND, WINDS, WIND_HARMONICS, WIND_TABLES, X, Y, Z,
 } from './places';
 
 /** A step moves the storm by at most this share of the distance from it (or of its radius of maximum wind). */
@@ -66,6 +66,8 @@ let windTables: i32 = 0;
 let windHarmonics: i32 = 0;
 let thresholds: i32 = 0;
 let parts: boolean = false;
+// maxima within this of the highest are looked at too, m/s
+let rivals: f64 = 0;
 let lowestLevel: f64 = 0;
 
 // what the last search found
@@ -103,6 +105,7 @@ function begin(): void {
   windHarmonics = whole(storm(WIND_HARMONICS));
   thresholds = whole(storm(THRESHOLDS));
   parts = storm(PARTS) > 0;
+  rivals = storm(RIVALS);
   lowestLevel = 1e30;
   for (let h = 0; h < thresholds; h++) {
     const level = f32At(LEVELS + 4 * h);
@@ -285,6 +288,8 @@ function traceQuad(p: i32): void {
     setF64(WIND + at, 0);
     setF64(MOMENT + at, 0);
     setF64(CROSSINGS + at, 0);
+    setF64(RIVAL + at, 0);
+    setF64(RIVAL_MOMENT + at, 0);
     for (let h = 0; h < thresholds; h++) setF64(HOURS + h * COLUMN + at, 0);
   }
   held = 0;
@@ -439,10 +444,16 @@ function passed(p: i32, a: i32, b: i32, c: i32, ma: f64, mb: f64, mc: f64, turns
 /** Keeps what was found for a point if it is its highest wind so far. */
 function raise(p: i32, i: i32): void {
   const at = 8 * (p + i);
-  if (foundMps <= f64At(WIND + at)) return;
-  setF64(WIND + at, foundMps);
-  setF64(MOMENT + at, foundMoment);
-  setF32(NEED + 4 * i, foundMps);
+  if (foundMps > f64At(WIND + at)) {
+    setF64(RIVAL + at, f64At(WIND + at));
+    setF64(RIVAL_MOMENT + at, f64At(MOMENT + at));
+    setF64(WIND + at, foundMps);
+    setF64(MOMENT + at, foundMoment);
+    setF32(NEED + 4 * i, foundMps - rivals);
+  } else if (foundMps > f64At(RIVAL + at)) {
+    setF64(RIVAL + at, foundMps);
+    setF64(RIVAL_MOMENT + at, foundMoment);
+  }
 }
 
 /** The highest value of `sign` times the wind about the middle of three moments; one beside it may be missing, then `low` or `high` is `middle`. */

@@ -70,12 +70,14 @@ export function fieldMethods(recipe: Recipe): FieldMethods {
   };
 }
 
-/** Numbers of single methods: every `vortex.` and `surface.` entry that is a number, by its name after the dot. */
+/** Numbers of single methods: every `vortex.` and `surface.` entry that is a number, by its name after the dot; 1 for a word. */
 function methodNumbers(recipe: Recipe): Record<string, number> {
   const numbers: Record<string, number> = {};
   for (const [key, value] of Object.entries(recipe)) {
     const [group, name] = key.split('.') as [string, string];
-    if (typeof value === 'number' && (group === 'vortex' || group === 'surface')) numbers[name] = value;
+    if (group !== 'vortex' && group !== 'surface') continue;
+    if (typeof value === 'number') numbers[name] = value;
+    else numbers[`${name}=${value}`] = 1;
   }
   return numbers;
 }

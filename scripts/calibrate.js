@@ -72,7 +72,7 @@ const NAMES = [
   'outerWind',
   'stretch',
 ];
-const START = [4.8, 0, -1.5, 1.35, 0.0077, -0.0185, 0.31, 0.6, 0.38, 1.06];
+const START = [4.8, -0.3, -1.2, 1.25, 0.008, -0.014, 0.32, 0.8, 0.4, 0.8];
 const STEPS = [0.01, 0.01, 0.01, 0.01, 0.001, 0.002, 0.01, 0.01, 0.01, 0.02];
 const counts = (part) => SCALE.map((_, t) => part.filter((fix) => fix.means[t] !== null).length);
 const differences = (part, c) => {
@@ -95,7 +95,7 @@ const fitProfile = (part, start) => {
         ...errors.map((e) => e / SCALE[t]),
         errors.reduce((sum, e) => sum + e, 0) / errors.length / SCALE[t],
       ]),
-    weights: n.flatMap((count) => [...Array(count).fill(1 / count), 0.6]),
+    weights: n.flatMap((count) => [...Array(count).fill(1 / count), 0.15]),
   });
 };
 const all = fitProfile(sized, START);

@@ -25,6 +25,8 @@ export const BIBLIOGRAPHY: Readonly<Record<string, string>> = {
   Cunnane1978: 'Cunnane, C., 1978: Unbiased plotting positions: a review. J. Hydrology 37, 205–222',
   DeMariaEtAl1992:
     'DeMaria, M., S. D. Aberson, K. V. Ooyama and S. J. Lord, 1992: A nested spectral model for hurricane track forecasting. Mon. Wea. Rev. 120, 1628–1643',
+  DonelanEtAl2004:
+    'Donelan, M. A., B. K. Haus, N. Reul, W. J. Plant, M. Stiassnie, H. C. Graber, O. B. Brown, and E. S. Saltzman, 2004: On the limiting aerodynamic roughness of the ocean in very strong winds. Geophysical Research Letters 31, L18306. doi:10.1029/2004GL019460',
   Durst1960: 'Durst, C. S., 1960: Wind speeds over short periods of time. Meteorological Magazine 89, 181–186',
   Dvorak1984:
     'Dvorak, V. F., 1984: Tropical cyclone intensity analysis using satellite data. NOAA Technical Report NESDIS 11',

@@ -1,5 +1,6 @@
 // The default vortex with free coefficients, and the mean of its quadrants' radii: what `galewake verify` finds for the
 // default recipe without observed radii, fast enough to be fitted.
+import { MAXIMUM_LIFT } from '../../dist/model/field.js';
 import { backgroundWind, LIN_CHAVAS_2012 } from '../../dist/surface/motion.js';
 import { radius2016M } from '../../dist/track/relations/radius2016.js';
 import { SIZE_BOUNDS_M } from '../../dist/track/relations/size.js';
@@ -28,7 +29,7 @@ export function profileStorm(inputs) {
     const [low, high] = PROFILE_2016.outerBounds;
     const outer = Math.min(high, Math.max(low, c[7] + c[8] * Math.log(fix.windMps / 35)));
     const background = backgroundWind(LIN_CHAVAS_2012, fix.state);
-    const maxWindMps = fix.windMps - Math.hypot(...background);
+    const maxWindMps = MAXIMUM_LIFT * fix.windMps - Math.hypot(...background);
     const shape = stretchedExponential({
       maxWindMps,
       radiusOfMaxWindM,

@@ -70,12 +70,14 @@ export function fieldMethods(recipe: Recipe): FieldMethods {
   };
 }
 
-/** Numbers of single methods: every `vortex.` and `surface.` entry that is a number, by its name after the dot. */
+/** Numbers of single methods: every `vortex.` and `surface.` entry that is a number, by its name after the dot; 1 for a word. */
 function methodNumbers(recipe: Recipe): Record<string, number> {
   const numbers: Record<string, number> = {};
   for (const [key, value] of Object.entries(recipe)) {
     const [group, name] = key.split('.') as [string, string];
-    if (typeof value === 'number' && (group === 'vortex' || group === 'surface')) numbers[name] = value;
+    if (group !== 'vortex' && group !== 'surface') continue;
+    if (typeof value === 'number') numbers[name] = value;
+    else numbers[`${name}=${value}`] = 1;
   }
   return numbers;
 }
@@ -90,9 +92,12 @@ export function taper(radiusM: number, outerRadiusM: number): number {
   return t <= 0 ? 0 : t * t * (3 - 2 * t);
 }
 
+/** The maximum of the field over the state's wind: by so little more that a wind as high as the maximum itself has a place. */
+export const MAXIMUM_LIFT = 1.001;
+
 /**
  * The wind field of a state. With `surface.maximum=kept` the gradient-level maximum is solved so that the maximum of the
- * earth-relative 10-m field is the state's wind (to 10⁻⁴ of it).
+ * earth-relative 10-m field is 1.001 of the state's wind (to 10⁻⁴ of it): a storm of 50 kt has somewhere a wind of 50 kt.
  */
 export function windField(
   state: StormState,
@@ -113,10 +118,11 @@ export function windField(
   if (!methods.keepMaximum) return fieldFor(state.maxWindMps / nominal);
 
   // the maximum grows with the gradient wind at about the reduction's ratio: step by it until the maximum is met
-  let gradientMaxMps = (state.maxWindMps - backgroundMps) / nominal;
+  const soughtMps = MAXIMUM_LIFT * state.maxWindMps;
+  let gradientMaxMps = (soughtMps - backgroundMps) / nominal;
   let field = fieldFor(gradientMaxMps);
   for (let i = 0; i < 12; i++) {
-    const excess = maximumOf(field) - state.maxWindMps;
+    const excess = maximumOf(field) - soughtMps;
     if (Math.abs(excess) <= 1e-4 * state.maxWindMps) break;
     gradientMaxMps = Math.max(0.05, gradientMaxMps - excess / nominal);
     field = fieldFor(gradientMaxMps);

@@ -172,8 +172,9 @@ export const RECIPE_ENTRIES: readonly RecipeEntry[] = [
   {
     key: 'vortex.outer_drag',
     standard: 0.0015,
+    words: ['donelan-2004'],
     range: [0.0003, 0.005],
-    help: 'drag coefficient of its outer solution',
+    help: 'drag coefficient of its outer solution: a number, or by the wind after Donelan et al.',
     source: 'ChavasLinEmanuel2015',
   },
   {

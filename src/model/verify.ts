@@ -149,7 +149,7 @@ const AZIMUTHS = 120;
 const CIRCLE = Float64Array.from({ length: 2 * AZIMUTHS }, (_, i) =>
   (i % 2 === 0 ? Math.sin : Math.cos)(((i >> 1) * 360 * RADIANS) / AZIMUTHS),
 );
-/** Neighbouring circles are this factor apart; between them the wind is taken as a power of the radius. */
+/** Neighbouring circles are at most this factor apart; between them the wind is taken as a power of the radius. */
 const RATIO = 1.04;
 
 /**
@@ -162,7 +162,9 @@ export function quadrantRadiiM(field: WindField, windsMps: readonly number[]): Q
   const outer = new Float64Array(AZIMUTHS);
   let outerRadiusM = field.outerRadiusM;
   const least = 0.3 * field.state.radiusOfMaxWindM;
-  for (let radiusM = outerRadiusM; radiusM > least; radiusM /= RATIO) {
+  const radiiM = [field.state.radiusOfMaxWindM];
+  for (let radiusM = outerRadiusM; radiusM > least; radiusM /= RATIO) radiiM.push(radiusM);
+  for (const radiusM of radiiM.sort((a, b) => b - a)) {
     field.onCircle(winds, radiusM, CIRCLE);
     for (let i = 0; i < AZIMUTHS; i++) {
       const speed = Math.hypot(winds[2 * i]!, winds[2 * i + 1]!);
@@ -170,7 +172,8 @@ export function quadrantRadiiM(field: WindField, windsMps: readonly number[]): Q
         const wind = windsMps[k]!;
         if (farthest[k]![i]! > 0 || speed < wind) continue;
         const beyond = outer[i]!;
-        const share = beyond > 0 && speed > wind ? Math.log(speed / wind) / Math.log(speed / beyond) : 0;
+        const share =
+          beyond > 0 && speed > wind && speed > beyond ? Math.log(speed / wind) / Math.log(speed / beyond) : 0;
         farthest[k]![i] = radiusM * (outerRadiusM / radiusM) ** share;
       }
       outer[i] = speed;

@@ -166,7 +166,12 @@ export function completeTrack(track: Track, options: CompletionOptions): Complet
           };
     let around = ambient[i]!;
     if (pressure.value > around.value - LEAST_DEFICIT_PA) {
-      if (fix.centralPressurePa === null) pressure = { ...pressure, value: around.value - LEAST_DEFICIT_PA };
+      if (fix.centralPressurePa === null)
+        pressure = {
+          ...pressure,
+          value: around.value - LEAST_DEFICIT_PA,
+          by: `${pressure.by}, limited to 1 hPa below the ambient pressure`,
+        };
       else
         around = {
           value: pressure.value + LEAST_DEFICIT_PA,

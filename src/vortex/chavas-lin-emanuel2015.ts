@@ -1,6 +1,7 @@
 import { InputError } from '../errors.js';
 import { coreMomentum, coreProfile } from './emanuel-rotunno2011.js';
 import { GAMMA_BOUNDS, outerSolution, outerWindShare } from './emanuel2004.js';
+import { type DragOfWind, donelanDrag, outerWindByDrag } from './emanuel2004-drag.js';
 import type { ProfileMethod, RadialProfile } from './profile.js';
 
 /** What the merged solution needs besides one of its two radii. */
@@ -9,8 +10,8 @@ export interface MergeParameters {
   readonly coriolisPerS: number;
   /** C_k/C_d of the core */
   readonly exchangeRatio: number;
-  /** C_d of the outer region, constant */
-  readonly outerDrag: number;
+  /** C_d of the outer region: constant, or by the wind */
+  readonly outerDrag: number | DragOfWind;
   /** W_c, speed of the sinking air of the outer region, m/s */
   readonly subsidenceMps: number;
 }
@@ -40,14 +41,17 @@ function none(p: MergeParameters, what: string): InputError {
  */
 export function mergeAt(radiusOfMaxWindM: number, p: MergeParameters): Merge {
   const f = Math.abs(p.coriolisPerS);
-  const drag = p.outerDrag / p.subsidenceMps;
+  const { outerDrag, subsidenceMps } = p;
   const core = coreMomentum({ ...p, radiusOfMaxWindM });
   let outerRadiusM = Number.NaN;
   /** relative excess of the outer over the core's rV at a trial merge radius; NaN where the core has no wind left */
   const excess = (r: number): number => {
     const rv = core.at(r) - 0.5 * f * r * r;
     if (!(rv > 0)) return Number.NaN;
+    const drag = (typeof outerDrag === 'number' ? outerDrag : outerDrag(rv / r)) / subsidenceMps;
     outerRadiusM = Math.sqrt(r * r + (2 * drag * rv * rv) / core.slopeAt(r));
+    if (typeof outerDrag !== 'number')
+      return (outerWindByDrag({ outerRadiusM, coriolisPerS: f, subsidenceMps, dragOf: outerDrag })(r) * r) / rv - 1;
     const gamma = drag * f * outerRadiusM;
     if (!(gamma > GAMMA_BOUNDS[0] && gamma < GAMMA_BOUNDS[1])) return Number.NaN;
     return (outerWindShare(r / outerRadiusM, gamma) * 0.5 * f * outerRadiusM * outerRadiusM) / rv - 1;
@@ -117,17 +121,35 @@ export function mergeWithin(outerRadiusM: number, p: MergeParameters): Merge {
   return merge;
 }
 
+/** The outer wind with a constant drag, from the kept solutions. */
+function constantDragWind(
+  outerRadiusM: number,
+  p: MergeParameters & { readonly outerDrag: number },
+): (radiusM: number) => number {
+  const f = Math.abs(p.coriolisPerS);
+  const share = outerSolution((p.outerDrag * f * outerRadiusM) / p.subsidenceMps);
+  return (radiusM) => Math.max(0, (share(radiusM / outerRadiusM) * 0.5 * f * outerRadiusM * outerRadiusM) / radiusM);
+}
+
 /** The profile of a merge: the core to r_a, the outer solution to r0, calm beyond. */
 export function mergedProfile(merge: Merge, p: MergeParameters): RadialProfile {
   const f = Math.abs(p.coriolisPerS);
   const core = coreMomentum({ ...p, radiusOfMaxWindM: merge.radiusOfMaxWindM });
   const r0 = merge.outerRadiusM;
-  const outer = outerSolution((p.outerDrag * f * r0) / p.subsidenceMps);
+  const outerWind =
+    typeof p.outerDrag === 'number'
+      ? constantDragWind(r0, { ...p, outerDrag: p.outerDrag })
+      : outerWindByDrag({
+          outerRadiusM: r0,
+          coriolisPerS: f,
+          subsidenceMps: p.subsidenceMps,
+          dragOf: p.outerDrag,
+        });
   return {
     windMps: (radiusM) => {
       if (radiusM <= 0 || radiusM >= r0) return 0;
       if (radiusM <= merge.mergeRadiusM) return core.at(radiusM) / radiusM - 0.5 * f * radiusM;
-      return Math.max(0, (outer(radiusM / r0) * 0.5 * f * r0 * r0) / radiusM);
+      return outerWind(radiusM);
     },
     radiusOfMaxWindM: merge.radiusOfMaxWindM,
     kinksM: [merge.mergeRadiusM, r0],
@@ -142,7 +164,7 @@ const NO_MERGE_NOTE =
 
 /**
  * Core of Emanuel & Rotunno (2011), outside of Emanuel (2004), merged   [ChavasLinEmanuel2015; W_c = 2 mm/s, C_d = 0.0015
- * and C_k/C_d = 0.9 from memory]. By default from the radius of maximum wind; with `vortex.r0_km` from the outer radius,
+ * and C_k/C_d = 0.9 from memory; with `vortex.outer_drag=donelan-2004` the drag follows the wind   [DonelanEtAl2004]]. By default from the radius of maximum wind; with `vortex.r0_km` from the outer radius,
  * and the radius of maximum wind follows. Equatorward of 4° the f of 4° is used. A vortex so weak and wide (V below about
  * 0.7|f|R) that no outer solution meets its core keeps the core alone, with a note.
  * @throws InputError `profile.no-merge` where `vortex.r0_km` allows no merge
@@ -157,7 +179,7 @@ export const chavasLinEmanuel2015: ProfileMethod = {
       maxWindMps,
       coriolisPerS: Math.max(LEAST_CORIOLIS_PER_S, Math.abs(coriolisPerS)),
       exchangeRatio: numbers['exchange_ratio'] ?? 0.9,
-      outerDrag: numbers['outer_drag'] ?? 0.0015,
+      outerDrag: numbers['outer_drag=donelan-2004'] === 1 ? donelanDrag : (numbers['outer_drag'] ?? 0.0015),
       subsidenceMps: numbers['subsidence_mps'] ?? 0.002,
     };
     const r0Km = numbers['r0_km'];

@@ -21,7 +21,7 @@ export interface VortexInput {
     readonly ownMaxMps: number;
     readonly fieldMaxMps: number;
   };
-  /** numbers of single profiles, by the recipe: `vortex.exponent` and the like */
+  /** numbers of single profiles, by the recipe: `exponent` and the like; 1 for an entry that is a word: `outer_drag=donelan-2004` */
   readonly numbers: Readonly<Record<string, number>>;
 }
 

@@ -1,8 +1,11 @@
 import { describe, expect, it } from 'vitest';
 import { fieldMethods, windField } from '../../src/model/field.js';
 import { makeRecipe } from '../../src/model/recipe.js';
+import { maximumOf } from '../../src/model/round-trip.js';
+import { quadrantRadiiM } from '../../src/model/verify.js';
 import { windOf } from '../../src/model/wind.js';
 import type { StormState } from '../../src/track/path.js';
+import { knots } from '../../src/units.js';
 
 const storm = (over: Partial<StormState> = {}): StormState => ({
   timeMs: 0,
@@ -56,5 +59,17 @@ describe('wind directions', () => {
     };
     expect(side(storm({ motionNorthMps: 6 }))).toBeGreaterThan(2);
     expect(side(storm({ motionNorthMps: 6, ...south }))).toBeLessThan(-2);
+  });
+});
+
+describe('the maximum of a field', () => {
+  it('is a thousandth above the wind of the state, so that a wind as high as the maximum has a place', () => {
+    for (const maxWindMps of [knots(50), knots(64), knots(100)]) {
+      for (const motionNorthMps of [0, 3, 8]) {
+        const wind = field(storm({ maxWindMps, motionNorthMps }));
+        expect(Math.abs(maximumOf(wind) / maxWindMps - 1.001)).toBeLessThan(2e-4);
+        expect(Math.max(...quadrantRadiiM(wind, [maxWindMps])[0]!)).toBeGreaterThan(30_000);
+      }
+    }
   });
 });

@@ -66,6 +66,14 @@ describe('what fills a value is its origin', () => {
     expect(radiusOfMaxWindM.value).toBe(5_000);
   });
 
+  it('keeps an estimated pressure below the ambient one and says so', () => {
+    const weak = trackOf([{ hours: 0, latDeg: 15, lonDeg: -50, maxWindMps: knots(25) }]);
+    const recipe = makeRecipe(undefined, ['completion.pressure=dvorak-1984', 'completion.ambient_hpa=1008']);
+    const { centralPressurePa } = windModel(weak, recipe).completed.fixes[0]!;
+    expect(centralPressurePa.value).toBe(100_700);
+    expect(centralPressurePa.by).toMatch(/limited to 1 hPa below the ambient pressure$/);
+  });
+
   it.each(HOLLAND_B_RELATIONS.map(({ id }) => id))('B by %s', (id) => {
     for (const { hollandB } of fixesOf(`completion.b=${id}`)) {
       expect(hollandB).toMatchObject({ origin: 'estimated', by: expect.stringMatching(`^${id}`) });

@@ -8,6 +8,7 @@ import {
 } from '../../src/vortex/chavas-lin-emanuel2015.js';
 import { coreMomentum } from '../../src/vortex/emanuel-rotunno2011.js';
 import { integrateOuter, OUTER_STEPS, outerWindShare } from '../../src/vortex/emanuel2004.js';
+import { donelanDrag, outerWindByDrag } from '../../src/vortex/emanuel2004-drag.js';
 
 const usual = { coriolisPerS: 5e-5, exchangeRatio: 0.9, outerDrag: 0.0015, subsidenceMps: 0.002 };
 
@@ -19,6 +20,38 @@ describe('outer solution of Emanuel 2004', () => {
     for (const [km, share] of Object.entries(expected)) {
       const x = Number(km) / 900;
       expect(outerWindShare(x, gamma) + x * x).toBeCloseTo(share, 5);
+    }
+  });
+
+  it('has the winds of an independent integration where the drag follows the wind', () => {
+    // independent: SciPy, adaptive Runge–Kutta with the drag of Donelan et al. 2004 (from memory)
+    const wind = outerWindByDrag({
+      outerRadiusM: 900_000,
+      coriolisPerS: 5e-5,
+      subsidenceMps: 0.002,
+      dragOf: donelanDrag,
+    });
+    for (const [km, mps] of [
+      [800, 3.2308],
+      [600, 7.0954],
+      [400, 10.3185],
+      [200, 16.0551],
+    ] as const)
+      expect(Math.abs(wind(km * 1000) - mps)).toBeLessThan(2e-3);
+    expect([0, 6, 20.7, 35.4, 60].map(donelanDrag).map((c) => Math.round(c * 1e6))).toEqual([
+      620, 620, 1485, 2350, 2350,
+    ]);
+    // identity: with a drag that does not follow it, the solution for constant drag
+    const constant = outerWindByDrag({
+      outerRadiusM: 900_000,
+      coriolisPerS: 5e-5,
+      subsidenceMps: 0.002,
+      dragOf: () => 0.0015,
+    });
+    const gamma = (0.0015 * 5e-5 * 900_000) / 0.002;
+    for (const km of [100, 300, 700]) {
+      const share = outerWindShare(km / 900, gamma);
+      expect(constant(km * 1000)).toBeCloseTo((share * 0.5 * 5e-5 * 900_000 ** 2) / (km * 1000), 4);
     }
   });
 
@@ -85,6 +118,21 @@ describe('Chavas, Lin & Emanuel 2015', () => {
     expect(Math.abs(momentum(at + 1e-3) / core.at(at + 1e-3) - 1)).toBeLessThan(1e-7);
     const outerSlope = ((0.0015 / 0.002) * (2 * (at * windMps(at)) ** 2)) / (back.outerRadiusM ** 2 - at ** 2);
     expect(Math.abs(outerSlope / core.slopeAt(at) - 1)).toBeLessThan(1e-6);
+  });
+
+  it('merges with a drag that follows the wind', () => {
+    const p: MergeParameters = { ...usual, maxWindMps: 50, outerDrag: donelanDrag };
+    const merge = mergeAt(30_000, p);
+    const { windMps } = mergedProfile(merge, p);
+    const at = merge.mergeRadiusM;
+    // identity: wind and slope of the momentum agree at the merge
+    expect(Math.abs(windMps(at + 1) - windMps(at - 1))).toBeLessThan(1e-3);
+    const core = coreMomentum({ ...p, radiusOfMaxWindM: 30_000 });
+    const v = windMps(at);
+    const outerSlope = ((2 * donelanDrag(v)) / 0.002) * ((at * v) ** 2 / (merge.outerRadiusM ** 2 - at ** 2));
+    expect(Math.abs(outerSlope / core.slopeAt(at) - 1)).toBeLessThan(1e-4);
+    const back = mergeWithin(merge.outerRadiusM, p);
+    expect(Math.abs(back.radiusOfMaxWindM / 30_000 - 1)).toBeLessThan(1e-5);
   });
 
   it('says where no merge exists', () => {

@@ -25,19 +25,19 @@ const DAY_MS = 86_400_000;
  * Coefficients of the size relation, from `scripts/calibrate.js` (own calibration): ln r₁₇ (km) = c₀ + Σ cᵢ xᵢ.
  */
 export const SIZE_2016 = {
-  constant: 4.828,
+  constant: 4.824,
   /** ln(V/35 m/s) */
-  wind: -0.286,
+  wind: -0.326,
   /** ln(V̄/35 m/s) */
-  dayMeanWind: -1.185,
+  dayMeanWind: -1.154,
   /** ln(Δp̄/25 hPa) */
   dayMeanDeficit: 1.249,
   /** |φ| − 20° */
-  latitude: 0.009,
+  latitude: 0.0088,
   /** c − 5 m/s */
-  translation: -0.0138,
+  translation: -0.0134,
   /** ln(V_highest/V) */
-  pastPeak: 0.319,
+  pastPeak: 0.314,
 } as const;
 
 /** Bounds of the size, m: beyond those of every storm of the calibration. */

@@ -14,6 +14,8 @@ export const BIBLIOGRAPHY: Readonly<Record<string, string>> = {
     'Atkinson, G. D., and C. R. Holliday, 1977: Tropical cyclone minimum sea level pressure/maximum sustained wind relationship for the western North Pacific. Monthly Weather Review 105, 421–427. doi:10.1175/1520-0493(1977)105<0421:TCMSLP>2.0.CO;2',
   BoM2023:
     'Bureau of Meteorology, 2023: Tropical cyclone categories. Knowledge Centre, Commonwealth of Australia, bom.gov.au',
+  Bretschneider1972:
+    'Bretschneider, C. L., 1972: A non-dimensional stationary hurricane wave model. Proc. Offshore Technology Conference, OTC 1517',
   CIE15: 'Commission Internationale de l’Éclairage, 2004: Colorimetry, 3rd ed. CIE 15:2004',
   ChavasKnaff2022:
     'Chavas, D. R., and J. A. Knaff, 2022: A simple model for predicting the tropical cyclone radius of maximum wind from outer size. Weather and Forecasting 37, 563–579. doi:10.1175/WAF-D-21-0103.1',
@@ -44,9 +46,13 @@ export const BIBLIOGRAPHY: Readonly<Record<string, string>> = {
   FritschCarlson1980:
     'Fritsch, F. N., and R. E. Carlson, 1980: Monotone piecewise cubic interpolation. SIAM Journal on Numerical Analysis 17, 238–246. doi:10.1137/0717021',
   Fujita1952: 'Fujita, T., 1952: Pressure distribution within typhoon. Geophys. Mag. 23, 437–451',
+  Georgiou1985:
+    'Georgiou, P. N., 1985: Design Wind Speeds in Tropical Cyclone-Prone Regions. PhD thesis, University of Western Ontario',
   Gringorten1963:
     'Gringorten, I. I., 1963: A plotting rule for extreme probability paper. J. Geophys. Res. 68, 813–814',
   Gumbel1958: 'Gumbel, E. J., 1958: Statistics of Extremes. Columbia University Press',
+  Harper2001:
+    'Harper, B. A., ed., 2001: Queensland Climate Change and Community Vulnerability to Tropical Cyclones: Ocean Hazards Assessment, Stage 1. Queensland Government',
   HarperHolland1999:
     'Harper, B. A., and G. J. Holland, 1999: An updated parametric model of the tropical cyclone. 23rd Conference on Hurricanes and Tropical Meteorology, American Meteorological Society, Dallas',
   HarperKepertGinger2010:
@@ -80,6 +86,10 @@ export const BIBLIOGRAPHY: Readonly<Record<string, string>> = {
     'Kaplan, J., and M. DeMaria, 1995: A simple empirical model for predicting the decay of tropical cyclone winds after landfall. Journal of Applied Meteorology 34, 2499–2512. doi:10.1175/1520-0450(1995)034<2499:ASEMFP>2.0.CO;2',
   KaplanDeMaria2001:
     'Kaplan, J., and M. DeMaria, 2001: On the decay of tropical cyclone winds after landfall in the New England area. Journal of Applied Meteorology 40, 280–286',
+  Kepert2001:
+    'Kepert, J. D., 2001: The dynamics of boundary layer jets within the tropical cyclone core. Part I: linear theory. J. Atmos. Sci. 58, 2469–2484',
+  KnaffEtAl2011:
+    'Knaff, J. A., M. DeMaria, D. A. Molenar, C. R. Sampson, and M. G. Seybold, 2011: An automated, objective, multiple-satellite-platform tropical cyclone surface wind analysis. J. Appl. Meteor. Climatol. 50, 2149–2166',
   KnaffEtAl2015:
     'Knaff, J. A., S. P. Longmore, R. T. DeMaria, and D. A. Molenar, 2015: Improved tropical-cyclone flight-level wind estimates using routine infrared satellite reconnaissance. Journal of Applied Meteorology and Climatology 54, 463–478',
   KnaffZehr2007:
@@ -153,4 +163,6 @@ export const BIBLIOGRAPHY: Readonly<Record<string, string>> = {
     'Willoughby, H. E., R. W. R. Darling, and M. E. Rahn, 2006: Parametric representation of the primary hurricane vortex. Part II: A new family of sectionally continuous profiles. Monthly Weather Review 134, 1102–1120. doi:10.1175/MWR3106.1',
   WilloughbyRahn2004:
     'Willoughby, H. E., and M. E. Rahn, 2004: Parametric representation of the primary hurricane vortex. Part I: Observations and evaluation of the Holland (1980) model. Monthly Weather Review 132, 3033–3048',
+  ZhangUhlhorn2012:
+    'Zhang, J. A., and E. W. Uhlhorn, 2012: Hurricane sea surface inflow angle and an observation-based parametric model. Mon. Wea. Rev. 140, 3587–3605',
 };

@@ -8,6 +8,9 @@ import { join } from 'node:path';
 import { fileURLToPath } from 'node:url';
 import { makeRecipe } from '../../dist/model/recipe.js';
 import { windModel } from '../../dist/model/wind.js';
+import { INFLOWS } from '../../dist/surface/inflow.js';
+import { MOTIONS } from '../../dist/surface/motion.js';
+import { REDUCTIONS } from '../../dist/surface/reduction.js';
 import { exactSwath } from '../../dist/swath/exact.js';
 import { gridOver } from '../../dist/swath/grid.js';
 import { peakSwath } from '../../dist/swath/peak.js';
@@ -95,9 +98,10 @@ report.swath = {
 const OPTIONS = [
   [],
   ...PROFILES.slice(1).map(({ id }) => [`vortex.profile=${id}`]),
-  ['surface.inflow=none'],
-  ['surface.motion=none'],
-  ['surface.motion=vector'],
+  ...REDUCTIONS.slice(1).map(({ id }) => [`surface.reduction=${id}`]),
+  ...INFLOWS.filter(({ id }) => id !== 'sobey-1977').map(({ id }) => [`surface.inflow=${id}`]),
+  ...MOTIONS.filter(({ id }) => id !== 'lin-chavas-2012').map(({ id }) => [`surface.motion=${id}`]),
+  ['surface.layer=kepert-2001'],
   ['path.interpolation=linear'],
 ];
 const window = gridOver({ crs: 'EPSG:4326', cell: 0.05, bounds: [-71.5, 20.5, -69.5, 22.5] });

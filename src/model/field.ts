@@ -1,12 +1,14 @@
 import { coriolisPerS, RADIANS, wrapBearing } from '../earth.js';
 import { averagingFactor } from '../surface/averaging.js';
 import { INFLOWS, type InflowMethod } from '../surface/inflow.js';
+import { isInertiallyStable, kepert2001, type LayerInput } from '../surface/kepert2001.js';
 import {
   backgroundWind,
-  LIN_CHAVAS_2012,
   MOTION_WEIGHTS,
+  MOTIONS,
   type MotionShare,
   type MotionWeight,
+  movingGradientWind,
 } from '../surface/motion.js';
 import { REDUCTIONS, type ReductionMethod } from '../surface/reduction.js';
 import type { StormState } from '../track/path.js';
@@ -42,6 +44,10 @@ export interface FieldMethods {
   readonly reduction: ReductionMethod;
   readonly inflow: InflowMethod;
   readonly motion: MotionShare | null;
+  /** whether the gradient wind itself holds the motion's asymmetry */
+  readonly movingBalance: boolean;
+  /** whether a boundary layer takes the place of reduction, inflow and motion */
+  readonly layer: boolean;
   readonly keepMaximum: boolean;
   readonly airDensityKgM3: number;
   readonly maximumIs: VortexInput['maximumIs'];
@@ -51,17 +57,28 @@ export interface FieldMethods {
 }
 
 export function fieldMethods(recipe: Recipe): FieldMethods {
-  const motionWord = recipeWord(recipe, 'surface.motion');
+  const layer = recipe['surface.layer'] !== 'none';
+  const motion = MOTIONS.find((method) => method.id === recipe['surface.motion'])!;
+  const fraction = recipeNumber(recipe, 'surface.motion_fraction');
   const own: MotionShare = {
-    fraction: recipeNumber(recipe, 'surface.motion_fraction'),
+    sizeMps: (translationMps) => fraction * translationMps,
     rotationDeg: recipeNumber(recipe, 'surface.motion_rotation_deg'),
     weight: recipeWord(recipe, 'surface.motion_weight') as MotionWeight,
   };
+  const share = motion.kind === 'own' ? own : (motion.share ?? null);
+  const reduction = REDUCTIONS.find((method) => method.id === recipe['surface.reduction'])!;
+  const averagingS = recipeNumber(recipe, 'wind.averaging_s');
+  const convert =
+    reduction.averagingS === null || reduction.averagingS === averagingS
+      ? 1
+      : averagingFactor('at-sea', { fromS: reduction.averagingS, toS: averagingS });
   return {
     profile: profileMethod(recipeWord(recipe, 'vortex.profile'))!,
-    reduction: REDUCTIONS.find((method) => method.id === recipe['surface.reduction'])!,
+    reduction: convert === 1 ? reduction : { ...reduction, ratio: (input) => convert * reduction.ratio(input) },
     inflow: INFLOWS.find((method) => method.id === recipe['surface.inflow'])!,
-    motion: motionWord === 'none' ? null : motionWord === 'vector' ? own : LIN_CHAVAS_2012,
+    motion: layer ? null : share,
+    movingBalance: !layer && motion.kind === 'balance',
+    layer,
     keepMaximum: recipe['surface.maximum'] === 'kept',
     airDensityKgM3: recipeNumber(recipe, 'vortex.density_kgm3'),
     maximumIs: recipeWord(recipe, 'vortex.maximum') as VortexInput['maximumIs'],
@@ -162,6 +179,7 @@ function buildField(
     },
     numbers: methods.numbers,
   });
+  const coriolis = Math.abs(coriolisPerS(state.latDeg));
   const weightOf = methods.motion ? MOTION_WEIGHTS[methods.motion.weight] : () => 0;
   const backgroundMps = Math.hypot(background[0], background[1]);
   const headingRad = Math.atan2(state.motionEastMps, state.motionNorthMps);
@@ -194,20 +212,49 @@ function buildField(
       azimuthFromHeadingDeg,
     }) * RADIANS;
 
+  const azimuthOf = (east: number, north: number): number => h * (Math.atan2(east, north) - headingRad);
+
+  /** speed of a balance that holds the motion over that of one that does not */
+  const movingRatio = (gradient: number, radiusM: number, azimuthFromHeadingDeg: number): number =>
+    gradient > 0
+      ? movingGradientWind(gradient, { radiusM, coriolisPerS: coriolis, translationMps, azimuthFromHeadingDeg }) /
+        gradient
+      : 0;
+
   function onCircle(out: Float64Array, radiusM: number, directions: Float64Array): void {
+    if (methods.layer && radiusM > 0) {
+      const wind = kepert2001(
+        layerInput(profile, { radiusM, coriolisPerS: coriolis, translationMps }, methods.numbers),
+      );
+      if (wind) {
+        const fade = taper(radiusM, outerRadiusM);
+        for (let i = 0; i < directions.length; i += 2) {
+          const e = directions[i]!;
+          const n = directions[i + 1]!;
+          const [outward, along] = fade > 0 ? wind(azimuthOf(e, n)) : [0, 0];
+          out[i] = fade * (e * outward - h * n * along);
+          out[i + 1] = fade * (n * outward + h * e * along);
+        }
+        return;
+      }
+    }
     const [speed, weight] = vortexAndWeight(radiusM);
+    const gradient = methods.movingBalance ? Math.max(0, profile.windMps(radiusM)) : 0;
+    const around = methods.inflow.asymmetric || methods.movingBalance;
     const east0 = weight * background[0];
     const north0 = weight * background[1];
-    let angle = methods.inflow.asymmetric ? 0 : angleAt(radiusM, 0);
+    let angle = around ? 0 : angleAt(radiusM, 0);
     let along = speed * Math.cos(angle);
     let inward = speed * Math.sin(angle);
     for (let i = 0; i < directions.length; i += 2) {
       const e = directions[i]!;
       const n = directions[i + 1]!;
-      if (methods.inflow.asymmetric) {
-        angle = angleAt(radiusM, wrapBearing((h * (Math.atan2(e, n) - headingRad)) / RADIANS));
-        along = speed * Math.cos(angle);
-        inward = speed * Math.sin(angle);
+      if (around) {
+        const azimuthDeg = wrapBearing(azimuthOf(e, n) / RADIANS);
+        angle = angleAt(radiusM, azimuthDeg);
+        const own = methods.movingBalance ? speed * movingRatio(gradient, radiusM, azimuthDeg) : speed;
+        along = own * Math.cos(angle);
+        inward = own * Math.sin(angle);
       }
       // cyclonic direction: h·(−n, e); inward: −(e, n)
       out[i] = -h * n * along - e * inward + east0;
@@ -218,7 +265,7 @@ function buildField(
   /** the vortex wind keeps its speed around the circle, so somewhere it is parallel to the background */
   function strongestOnCircle(radiusM: number): number {
     const [speed, weight] = vortexAndWeight(radiusM);
-    if (!methods.inflow.asymmetric) return speed + weight * backgroundMps;
+    if (!methods.inflow.asymmetric && !methods.movingBalance && !methods.layer) return speed + weight * backgroundMps;
     onCircle(circleWinds, radiusM, CIRCLE);
     let most = 0;
     for (let i = 0; i < circleWinds.length; i += 2)
@@ -227,6 +274,44 @@ function buildField(
   }
 
   return { state, profile, gradientMaxMps, outerRadiusM, onCircle, strongestOnCircle };
+}
+
+/** Step of a profile's slope, as a share of the radius. */
+const SLOPE_STEP = 1e-3;
+
+/** What the boundary layer takes from a vortex at a radius. */
+function layerInput(
+  profile: RadialProfile,
+  at: { radiusM: number; coriolisPerS: number; translationMps: number },
+  numbers: Readonly<Record<string, number>>,
+): LayerInput {
+  const { radiusM } = at;
+  const step = SLOPE_STEP * radiusM;
+  return {
+    ...at,
+    windMps: Math.max(0, profile.windMps(radiusM)),
+    slopePerS: (profile.windMps(radiusM + step) - profile.windMps(radiusM - step)) / (2 * step),
+    diffusivityM2ps: numbers['layer_diffusivity_m2ps']!,
+    dragCoefficient: numbers['layer_drag']!,
+  };
+}
+
+/** Radii at which a vortex is looked at for its stability, as multiples of the radius of maximum wind. */
+const STABILITY_RATIOS = [0.3, 0.6, 0.9, 1.02, 1.1, 1.3, 1.6, 2, 3, 5, 8, 12, 20] as const;
+
+/** Radii of a field, m, at which its vortex is inertially unstable, so that the boundary layer has no solution there. */
+export function unstableRadiiM({ state, profile, outerRadiusM }: WindField, methods: FieldMethods): readonly number[] {
+  const coriolis = Math.abs(coriolisPerS(state.latDeg));
+  return STABILITY_RATIOS.map((ratio) => ratio * state.radiusOfMaxWindM).filter((radiusM) => {
+    const at = { radiusM, coriolisPerS: coriolis, translationMps: 0 };
+    return radiusM < outerRadiusM && !isInertiallyStable(layerInput(profile, at, methods.numbers));
+  });
+}
+
+/** What the motion adds to the maximum of the vortex, for a translation speed, m/s. */
+export function motionSize({ motion, movingBalance }: FieldMethods): (translationMps: number) => number {
+  if (motion) return motion.sizeMps;
+  return movingBalance ? (translationMps) => 0.5 * translationMps : () => 0;
 }
 
 /** 72 unit vectors around a circle: the maximum between two of them is at most 0.1 % above (cos 2.5°). */

@@ -3,7 +3,7 @@ import { nearest } from '../nearest.js';
 import { GUST_METHODS } from '../surface/gust-method.js';
 import { INFLOWS } from '../surface/inflow.js';
 import { DECAY_SETS } from '../surface/inland-decay.js';
-import { MOTION_WEIGHTS } from '../surface/motion.js';
+import { MOTION_WEIGHTS, MOTIONS } from '../surface/motion.js';
 import { REDUCTIONS } from '../surface/reduction.js';
 import { BLENDING_HEIGHT_M } from '../surface/roughness.js';
 import { HOLLAND_B_RELATIONS } from '../track/relations/holland-b.js';
@@ -224,8 +224,8 @@ export const RECIPE_ENTRIES: readonly RecipeEntry[] = [
   {
     key: 'surface.motion',
     standard: 'lin-chavas-2012',
-    words: ['none', 'lin-chavas-2012', 'vector'],
-    help: 'motion asymmetry; vector takes the three entries below',
+    words: ids(MOTIONS),
+    help: 'motion asymmetry: added to the vortex, or within its balance (georgiou-1985); vector takes the three entries below',
     source: 'LinChavas2012',
   },
   {
@@ -248,6 +248,27 @@ export const RECIPE_ENTRIES: readonly RecipeEntry[] = [
     words: Object.keys(MOTION_WEIGHTS),
     help: 'how it fades with radius (vector)',
     source: 'LinChavas2012',
+  },
+  {
+    key: 'surface.layer',
+    standard: 'none',
+    words: ['none', 'kepert-2001'],
+    help: 'boundary layer that gives reduction, inflow and asymmetry of the motion in one, in place of the entries above',
+    source: 'Kepert2001',
+  },
+  {
+    key: 'surface.layer_diffusivity_m2ps',
+    standard: 50,
+    range: [5, 200],
+    help: 'its vertical diffusivity, m²/s',
+    source: 'Kepert2001',
+  },
+  {
+    key: 'surface.layer_drag',
+    standard: 0.002,
+    range: [0.0005, 0.005],
+    help: 'its drag coefficient',
+    source: 'Kepert2001',
   },
   {
     key: 'surface.maximum',
@@ -418,6 +439,17 @@ function refuseCombination(recipe: Recipe, source: string): void {
   const motion = recipeWord(recipe, 'surface.motion');
   if (motion === 'none' && recipe['surface.maximum'] === 'added')
     refuse('surface.maximum=added has nothing to add with surface.motion=none');
+  if (recipe['surface.layer'] === 'none') return;
+  for (const key of ['surface.motion', 'surface.inflow', 'surface.reduction']) {
+    if (recipe[key] === STANDARD_RECIPE[key] || recipe[key] === 'none') continue;
+    refuse(
+      `surface.layer=${recipe['surface.layer']} already holds reduction, inflow and the asymmetry of the motion; ${key}=${recipe[key]} would count one of them twice: leave one of the two out`,
+    );
+  }
+  if (recipe['surface.maximum'] === 'added')
+    refuse(
+      `surface.layer=${recipe['surface.layer']} holds the motion within the wind; surface.maximum=added cannot add it`,
+    );
 }
 
 /** A recipe as the JSON document that `--recipe` reads. */

@@ -6,7 +6,7 @@ import { type CompletedTrack, completeTrack } from '../track/complete.js';
 import { type Path, pathOf } from '../track/path.js';
 import type { Track } from '../track/track.js';
 import { knots } from '../units.js';
-import { type FieldMethods, fieldMethods, type WindField, windField } from './field.js';
+import { type FieldMethods, fieldMethods, motionSize, unstableRadiiM, type WindField, windField } from './field.js';
 import { fieldWithRadii } from './radii-field.js';
 import { fitRadii } from './radii-fit.js';
 import { type Recipe, type RecipeValue, recipeNumber } from './recipe.js';
@@ -71,7 +71,7 @@ export function windModel(
     interpolation,
     surfaceFactor: recipeNumber(recipe, 'surface.factor'),
     airDensityKgM3: methods.airDensityKgM3,
-    motionShare: methods.keepMaximum ? (methods.motion?.fraction ?? 0) : 0,
+    motionMps: methods.keepMaximum ? motionSize(methods) : () => 0,
   });
   const cautions = [...filled.cautions];
   const { completed, marine } = decayed();
@@ -84,6 +84,7 @@ export function windModel(
   const fieldWithin = (timeMs: number, outerRadiusM: number): WindField =>
     radii ? fieldWithRadii(baseFieldAt(timeMs), radii.at(timeMs), { outerRadiusM }) : baseFieldAt(timeMs, outerRadiusM);
   const outerRadiusM = outerRadius();
+  if (methods.layer) cautionOfStability();
   const fieldAt = (timeMs: number): WindField => fieldWithin(timeMs, outerRadiusM);
   return {
     recipe,
@@ -113,6 +114,15 @@ export function windModel(
         `storm ${track.id}: a best track already holds what land did to the storm; with land.decay=on it decays twice`,
       );
     return result;
+  }
+
+  function cautionOfStability(): void {
+    const unstable = path.knotsMs.flatMap((timeMs) => unstableRadiiM(fieldWithin(timeMs, outerRadiusM), methods));
+    if (unstable.length === 0) return;
+    const [least, most] = [Math.min(...unstable) / 1000, Math.max(...unstable) / 1000];
+    cautions.push(
+      `storm ${track.id}: the vortex is inertially unstable at some radii from ${least.toFixed(0)} to ${most.toFixed(0)} km; there the boundary layer has no solution, and the constant reduction and the inflow of the recipe take its place`,
+    );
   }
 
   function outerRadius(): number {

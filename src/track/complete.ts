@@ -68,7 +68,7 @@ export interface CompletionOptions {
   readonly surfaceFactor: number;
   readonly airDensityKgM3: number;
   /** share of the translation speed that is not the vortex's own wind */
-  readonly motionShare: number;
+  readonly motionMps: (translationMps: number) => number;
 }
 
 /** Smallest pressure deficit a wind field is built on, Pa. */
@@ -265,7 +265,7 @@ function hollandB(
 ): Traced {
   if (fix.hollandB !== null) return { value: fix.hollandB, origin: 'given', by: null };
   if (typeof options.b === 'number') return { value: options.b, origin: 'estimated', by: 'recipe' };
-  const own = storm.maxWindMps - Math.min(options.motionShare * storm.translationMps, 0.5 * storm.maxWindMps);
+  const own = storm.maxWindMps - Math.min(options.motionMps(storm.translationMps), 0.5 * storm.maxWindMps);
   const raw =
     options.b === 'gradient-consistent' || options.b === 'cyclostrophic'
       ? gradientConsistentB({

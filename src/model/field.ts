@@ -1,7 +1,7 @@
 import { coriolisPerS, RADIANS, wrapBearing } from '../earth.js';
 import { averagingFactor } from '../surface/averaging.js';
 import { INFLOWS, type InflowMethod } from '../surface/inflow.js';
-import { isInertiallyStable, kepert2001, type LayerInput } from '../surface/kepert2001.js';
+import { isInertiallyStable, kepert2001, type LayerInput, stability } from '../surface/kepert2001.js';
 import {
   backgroundWind,
   MOTION_WEIGHTS,
@@ -221,23 +221,7 @@ function buildField(
         gradient
       : 0;
 
-  function onCircle(out: Float64Array, radiusM: number, directions: Float64Array): void {
-    if (methods.layer && radiusM > 0) {
-      const wind = kepert2001(
-        layerInput(profile, { radiusM, coriolisPerS: coriolis, translationMps }, methods.numbers),
-      );
-      if (wind) {
-        const fade = taper(radiusM, outerRadiusM);
-        for (let i = 0; i < directions.length; i += 2) {
-          const e = directions[i]!;
-          const n = directions[i + 1]!;
-          const [outward, along] = fade > 0 ? wind(azimuthOf(e, n)) : [0, 0];
-          out[i] = fade * (e * outward - h * n * along);
-          out[i + 1] = fade * (n * outward + h * e * along);
-        }
-        return;
-      }
-    }
+  function vortexOnCircle(out: Float64Array, radiusM: number, directions: Float64Array): void {
     const [speed, weight] = vortexAndWeight(radiusM);
     const gradient = methods.movingBalance ? Math.max(0, profile.windMps(radiusM)) : 0;
     const around = methods.inflow.asymmetric || methods.movingBalance;
@@ -261,6 +245,26 @@ function buildField(
       out[i + 1] = h * e * along - n * inward + north0;
     }
   }
+
+  /** the boundary layer's wind, and that of the constant reduction as far as the vortex is not stable */
+  function layerOnCircle(out: Float64Array, radiusM: number, directions: Float64Array): void {
+    const input = layerInput(profile, { radiusM, coriolisPerS: coriolis, translationMps }, methods.numbers);
+    const share = radiusM > 0 ? stability(input) : 0;
+    const fade = share * taper(radiusM, outerRadiusM);
+    if (share < 1) vortexOnCircle(out, radiusM, directions);
+    else out.fill(0);
+    const wind = fade > 0 ? kepert2001(input) : null;
+    if (!wind) return;
+    for (let i = 0; i < directions.length; i += 2) {
+      const e = directions[i]!;
+      const n = directions[i + 1]!;
+      const [outward, along] = wind(azimuthOf(e, n));
+      out[i] = (1 - share) * out[i]! + fade * (e * outward - h * n * along);
+      out[i + 1] = (1 - share) * out[i + 1]! + fade * (n * outward + h * e * along);
+    }
+  }
+
+  const onCircle = methods.layer ? layerOnCircle : vortexOnCircle;
 
   /** the vortex wind keeps its speed around the circle, so somewhere it is parallel to the background */
   function strongestOnCircle(radiusM: number): number {

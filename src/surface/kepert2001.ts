@@ -39,6 +39,17 @@ export function isInertiallyStable({ radiusM, windMps, slopePerS, coriolisPerS }
   return coriolisPerS + windMps / radiusM + slopePerS > 0 && coriolisPerS + (2 * windMps) / radiusM > 0;
 }
 
+/** β over α from which the layer stands alone: toward β = 0 its inflow grows without bound (own choice). */
+const STABLE_SHARE = 0.2;
+
+/** 0 where the vortex is inertially unstable, 1 where it is well stable, smooth between: what the layer counts for. */
+export function stability({ radiusM, windMps, slopePerS, coriolisPerS }: LayerInput): number {
+  const beta = coriolisPerS + windMps / radiusM + slopePerS;
+  const alpha = coriolisPerS + (2 * windMps) / radiusM;
+  const t = Math.min(1, Math.max(0, beta / (STABLE_SHARE * alpha)));
+  return alpha > 0 ? t * t * (3 - 2 * t) : 0;
+}
+
 /** The wind under a vortex at a radius; null where the vortex is inertially unstable. */
 export function kepert2001(input: LayerInput): LayerWind | null {
   if (!isInertiallyStable(input)) return null;

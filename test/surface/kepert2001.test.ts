@@ -1,5 +1,5 @@
 import { describe, expect, it } from 'vitest';
-import { asymmetry, isInertiallyStable, kepert2001 } from '../../src/surface/kepert2001.js';
+import { asymmetry, isInertiallyStable, kepert2001, stability } from '../../src/surface/kepert2001.js';
 
 const input = {
   radiusM: 40_000,
@@ -51,5 +51,9 @@ describe('the linear boundary layer of Kepert', () => {
     const unstable = { ...input, slopePerS: -2e-3 };
     expect(isInertiallyStable(unstable)).toBe(false);
     expect(kepert2001(unstable)).toBeNull();
+    expect(stability(unstable)).toBe(0);
+    expect(stability(input)).toBe(1);
+    expect(stability({ ...input, slopePerS: -1.0e-3 })).toBeGreaterThan(0);
+    expect(stability({ ...input, slopePerS: -1.0e-3 })).toBeLessThan(1);
   });
 });

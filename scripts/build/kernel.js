@@ -1,5 +1,5 @@
 // Before the compiler: the hot loops of the swath, from AssemblyScript to WebAssembly, as a text module, so that the same
-// bytes run in Node.js and in a page.
+// bytes run in Node.js and in a page; and the same source as plain JavaScript, for where there is no WebAssembly.
 import { mkdtempSync, readFileSync, writeFileSync } from 'node:fs';
 import { tmpdir } from 'node:os';
 import { join } from 'node:path';
@@ -34,3 +34,17 @@ writeFileSync(
   `${root}src/swath/kernel/kernel-bytes.ts`,
   `// Made by \`npm run build\` from assembly/kernel.ts.\nexport const KERNEL_BASE64 =\n  '${base64}';\n`,
 );
+
+for (const [from, to] of [
+  ['trace', 'twin-trace'],
+  ['places', 'places'],
+]) {
+  const source = readFileSync(`${root}src/swath/kernel/assembly/${from}.ts`, 'utf8')
+    .replace("'./memory'", "'./twin-memory.js'")
+    .replace("'./lanes'", "'./twin-lanes.js'")
+    .replace("'./places'", "'./places.js'");
+  writeFileSync(
+    `${root}src/swath/kernel/${to}.ts`,
+    `// Made by \`npm run build\` from assembly/${from}.ts.\n${/\bf64\b/.test(source.replace(/\/\*[\s\S]*?\*\//g, '')) ? 'type f64 = number;\n' : ''}type i32 = number;\n${source}`,
+  );
+}

@@ -2,8 +2,8 @@ import { LimitError } from '../errors.js';
 import type { WindModel } from '../model/wind.js';
 import { gustFactorOf, HOURS_THRESHOLDS_MPS, type SwathOptions } from './exact.js';
 import type { Grid } from './grid.js';
-import type { Arithmetic } from './kernel/arithmetic.js';
-import type { Rows } from './kernel/pool.js';
+import type { Engine } from './kernel/engine.js';
+import type { Tiles } from './kernel/pool.js';
 import { newFields, type SwathFields, swathPlan, swathWork } from './kernel/work.js';
 import { settlePeaks } from './settle-peaks.js';
 import type { Swath } from './swath.js';
@@ -14,13 +14,15 @@ export interface PeakOptions extends SwathOptions {
   /** threads; by default one a core. The result is the same for any number */
   readonly jobs?: number;
   /** the hot loops, on this thread alone; WebAssembly where there is any */
-  readonly arithmetic?: Arithmetic;
+  readonly engine?: Engine;
   readonly signal?: AbortSignal;
   readonly onProgress?: (share: number) => void;
 }
 
 /** Cells from which on other threads help: for fewer they are not worth their start. */
 const CELLS_FOR_THREADS = 100_000;
+/** So often others get their turn: progress, an abort. */
+const PAUSE_MS = 40;
 /** Seven fields of single precision. */
 const BYTES_OF_CELL = 28;
 
@@ -34,21 +36,23 @@ export async function peakSwath(model: WindModel, grid: Grid, options: PeakOptio
   const cells = grid.nx * grid.ny;
   checkMemory(grid, cells);
   options.signal?.throwIfAborted();
-  const plan = swathPlan(model, grid, options);
-  const threads = options.arithmetic || cells < CELLS_FOR_THREADS ? null : await threadsFor(options.jobs);
-  const fields = newFields(cells, { shared: threads !== null });
-  const work = swathWork(plan, options.arithmetic);
-  const { rows } = work.tiling;
-  const helped: Rows | null = threads?.start(plan, fields, rows) ?? null;
+  const plan = swathPlan(model, grid, { ...options, fitted: isFitted(model) });
+  const threads = options.engine || cells < CELLS_FOR_THREADS ? null : await threadsFor(options.jobs);
+  const fields = newFields(cells, { shared: threads !== null, rivals: plan.rivals });
+  const work = swathWork(plan, options.engine);
+  const { tiles } = work;
+  const helped: Tiles | null = threads?.start(plan, fields, tiles) ?? null;
   try {
     let next = 0;
     const take = helped ? helped.take : () => next++;
-    for (let row = take(), done = 1; row < rows; row = take(), done++) {
+    let pauseAt = performance.now() + PAUSE_MS;
+    for (let tile = take(); tile < tiles; tile = take()) {
       options.signal?.throwIfAborted();
-      work.runRow(row, fields);
-      if ((done & 15) !== 0) continue;
-      options.onProgress?.(row / rows);
+      work.runTile(tile, fields);
+      if (performance.now() < pauseAt) continue;
+      options.onProgress?.(tile / tiles);
       await new Promise((resolve) => setTimeout(resolve, 0));
+      pauseAt = performance.now() + PAUSE_MS;
     }
     await helped?.finished;
     options.signal?.throwIfAborted();
@@ -63,7 +67,7 @@ export async function peakSwath(model: WindModel, grid: Grid, options: PeakOptio
   if (options.surface?.rowOf.some((row) => row > 0)) cautions.push(OPEN_SEA);
   const own = helped ? unshared(fields) : fields;
   // what the few probes of the tables may miss in a field that was fitted, the plain model knows
-  if (!plan.tables.complete || isFitted(model)) {
+  if (plan.rivals) {
     settlePeaks(model, grid, own, {
       fromMs: options.fromMs ?? model.path.startMs,
       toMs: options.toMs ?? model.path.endMs,
@@ -82,17 +86,18 @@ function isFitted(model: WindModel): boolean {
 }
 
 const INCOMPLETE =
-  'the wind varies more around the centre than the fast tables hold: peaks were taken from the plain model at the times that the tables gave; they may be low by 0.2 m/s where two maxima in time come near each other, and hours may be off by more than 1 %';
+  'the wind varies more around the centre than the fast tables hold: peaks were taken from the plain model at the times that the tables gave, to 0.05 m/s as far as was seen; hours may be off by more than 1 %';
 
 const OPEN_SEA = 'the winds are those over open sea everywhere: the fast swath does not take a surface map yet';
 
 /** Fields in memory of this thread alone, which every writer takes. */
-function unshared({ windMps, windFromDeg, peakTimeS, hours }: SwathFields): SwathFields {
+function unshared({ windMps, windFromDeg, peakTimeS, hours, rivalTimeS }: SwathFields): SwathFields {
   return {
     windMps: windMps.slice(),
     windFromDeg: windFromDeg.slice(),
     peakTimeS: peakTimeS.slice(),
     hours: hours.map((field) => field.slice()),
+    rivalTimeS,
   };
 }
 

@@ -4,6 +4,10 @@ import type { SwathFields } from './kernel/work.js';
 
 /** Minutes from the time that the tables gave at which the plain model is asked: a broad peak may lie off by hours. */
 const AROUND_MIN = [0, -4, 4, -10, 10, -20, 20, -40, 40, -80, 80] as const;
+/** The same for a second maximum. */
+const RIVAL_MIN = [0, -3, 3, -8, 8, -20, 20] as const;
+/** Minutes from the best of these at which it is asked again: a narrow one stands between them. */
+const BESIDE_MIN = [-6, -3, -2, -1, 1, 2, 3, 6] as const;
 const MINUTE_MS = 60_000;
 
 /**
@@ -17,32 +21,40 @@ export function settlePeaks(
   fields: SwathFields,
   period: { fromMs: number; toMs: number },
 ): void {
-  const { windMps, windFromDeg, peakTimeS } = fields;
+  const { windMps, windFromDeg, peakTimeS, rivalTimeS } = fields;
   const originMs = model.path.startMs;
-  const byMinute = new Map<number, number[]>();
   const first = Math.ceil((period.fromMs - originMs) / MINUTE_MS);
   const last = Math.floor((period.toMs - originMs) / MINUTE_MS);
-  for (let k = 0; k < windMps.length; k++) {
-    if (!(windMps[k]! > 0)) continue;
-    for (const around of AROUND_MIN) {
-      const minute = Math.min(last, Math.max(first, Math.round(peakTimeS[k]! / 60) + around));
-      const cells = byMinute.get(minute);
-      if (!cells) byMinute.set(minute, [k]);
-      else if (cells[cells.length - 1] !== k) cells.push(k);
-    }
-  }
   const { inverse } = projection(grid.crs);
   const best = new Float32Array(windMps.length);
-  for (const [minute, cells] of byMinute) {
-    const field = model.fieldAt(originMs + minute * MINUTE_MS);
-    for (const k of cells) {
-      const [lonDeg, latDeg] = inverse(...cellCentre(grid, k % grid.nx, Math.floor(k / grid.nx)));
-      const { speedMps, fromDeg } = windOf(field, { latDeg, lonDeg });
-      if (!(speedMps > best[k]!)) continue;
-      best[k] = speedMps;
-      windFromDeg[k] = fromDeg;
-      peakTimeS[k] = minute * 60;
+  askAround(peakTimeS.slice(), AROUND_MIN);
+  // of two maxima the tables may have taken the lower one for the higher
+  if (rivalTimeS) askAround(rivalTimeS, RIVAL_MIN);
+  askAround(peakTimeS.slice(), BESIDE_MIN);
+  for (let k = 0; k < best.length; k++) if (best[k]! > 0) windMps[k] = best[k]!;
+
+  /** Asks at minutes from each cell's time, and moves the peak's time to the highest wind. */
+  function askAround(timeS: Float32Array, minutes: readonly number[]): void {
+    const byMinute = new Map<number, number[]>();
+    for (let k = 0; k < windMps.length; k++) {
+      if (!(windMps[k]! > 0) || Number.isNaN(timeS[k]!)) continue;
+      for (const around of minutes) {
+        const minute = Math.min(last, Math.max(first, Math.round(timeS[k]! / 60) + around));
+        const cells = byMinute.get(minute);
+        if (!cells) byMinute.set(minute, [k]);
+        else if (cells[cells.length - 1] !== k) cells.push(k);
+      }
+    }
+    for (const [minute, cells] of byMinute) {
+      const field = model.fieldAt(originMs + minute * MINUTE_MS);
+      for (const k of cells) {
+        const [lonDeg, latDeg] = inverse(...cellCentre(grid, k % grid.nx, Math.floor(k / grid.nx)));
+        const { speedMps, fromDeg } = windOf(field, { latDeg, lonDeg });
+        if (!(speedMps > best[k]!)) continue;
+        best[k] = speedMps;
+        windFromDeg[k] = fromDeg;
+        peakTimeS[k] = minute * 60;
+      }
     }
   }
-  for (let k = 0; k < best.length; k++) if (best[k]! > 0) windMps[k] = best[k]!;
 }

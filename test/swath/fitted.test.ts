@@ -27,7 +27,7 @@ it('a storm whose radii were observed at some fixes only keeps the plain modelâ€
   for (const [k, wind] of exact.windMps.entries()) {
     if (wind < 8) continue;
     compared++;
-    expect(Math.abs(fast.windMps[k]! - wind)).toBeLessThan(0.2);
+    expect(Math.abs(fast.windMps[k]! - wind)).toBeLessThan(0.05);
   }
   expect(compared).toBeGreaterThan(50);
 });

@@ -4,27 +4,27 @@ import { Worker } from 'node:worker_threads';
 import { fromPlainError, type PlainError } from '../../errors.js';
 import type { SwathFields, SwathPlan } from './work.js';
 
-/** Rows of tiles that several threads share: each takes the next one that nobody has taken. */
-export interface Rows {
-  /** the next row; as many as there are rows, or more, when none is left */
+/** Tiles that several threads share: each takes the next one that nobody has taken. */
+export interface Tiles {
+  /** the next tile; as many as there are, or more, when none is left */
   readonly take: () => number;
-  /** nobody takes a row any more */
+  /** nobody takes a tile any more */
   readonly stop: () => void;
-  /** resolved when every helper has done its last row; rejected with a helper's error */
+  /** resolved when every helper has done its last tile; rejected with a helper's error */
   readonly finished: Promise<void>;
 }
 
 /** Threads that help this one. */
 export interface Threads {
-  readonly start: (plan: SwathPlan, fields: SwathFields, rows: number) => Rows;
+  readonly start: (plan: SwathPlan, fields: SwathFields, tiles: number) => Tiles;
 }
 
 /** What a helper is given. */
 export interface Task {
   readonly plan: SwathPlan;
   readonly fields: SwathFields;
-  readonly rows: number;
-  /** next row */
+  readonly tiles: number;
+  /** next tile */
   readonly counter: Int32Array;
 }
 
@@ -40,17 +40,17 @@ export function threads(jobs = availableParallelism()): Threads | null {
   const helpers = Math.min(jobs, 64) - 1;
   if (helpers < 1 || !existsSync(ENTRY)) return null;
   return {
-    start(plan, fields, rows) {
+    start(plan, fields, tiles) {
       const counter = new Int32Array(new SharedArrayBuffer(4));
-      const task: Task = { plan, fields, rows, counter };
+      const task: Task = { plan, fields, tiles, counter };
       const answers: Promise<void>[] = [];
       for (let i = 0; i < helpers; i++) answers.push(ask(waiting.pop() ?? new Worker(ENTRY), task));
       const finished = Promise.all(answers).then(() => undefined);
-      // it is awaited when this thread has done its own rows
+      // it is awaited when this thread has done its own tiles
       finished.catch(() => undefined);
       return {
         take: () => Atomics.add(counter, 0, 1),
-        stop: () => Atomics.store(counter, 0, rows),
+        stop: () => Atomics.store(counter, 0, tiles),
         finished,
       };
     },
@@ -74,7 +74,7 @@ function ask(worker: Worker, task: Task): Promise<void> {
     };
     const failed = (error: Error): void => {
       ended();
-      Atomics.store(task.counter, 0, task.rows);
+      Atomics.store(task.counter, 0, task.tiles);
       reject(error);
     };
     const left = (code: number): void => failed(new Error(`a thread of the swath ended with code ${code}`));

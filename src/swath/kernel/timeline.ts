@@ -2,13 +2,17 @@ import { EARTH_RADIUS_M, RADIANS } from '../../earth.js';
 import type { WindModel } from '../../model/wind.js';
 
 /** Moments lie at most this far apart, s, and nearer where the centre moves fast past its radius of maximum wind: */
-const FINE_S = 40;
+const FINE_S = 60;
 /** share of that radius from one moment to the next; down to the bound, s. */
-const FINE_SHARE = 0.04;
-const FINEST_S = 4;
+const FINE_SHARE = 0.06;
+const FINEST_S = 5;
+/** Every so many moments the frame is the path's own; between them frames are straight lines where these are as near as this. */
+const KNOT_MOMENTS = 4;
+const STRAIGHT_M = 2;
+const STRAIGHT_MPS = 0.002;
 /** A step changes the radius of maximum wind by at most this share. */
-const STEP_GROWTH = 0.08;
-/** Numbers in a frame: see {@link Timeline.frame}. */
+const STEP_GROWTH = 0.1;
+/** Numbers in a frame: see {@link Timeline.frames}. */
 export const FRAME = 10;
 
 /** One leg of the timeline: half of the way from a fix to the next, cut into 2^depth fine steps. */
@@ -28,26 +32,40 @@ export interface Leg {
   readonly longestS: number;
 }
 
-/** Moments of a storm between its fixes, each fix being one of them. */
+/** Moments of a storm between its fixes, each fix being one of them: plain data. */
 export interface Timeline {
   readonly legs: readonly Leg[];
   /** moments in all */
   readonly count: number;
-  /** number of the leg that a moment belongs to; the start of a leg belongs to it */
-  readonly legNumber: Uint16Array;
-  readonly timeMs: (index: number) => number;
   /**
-   * The frame of a moment at `index * FRAME`: the centre as a unit vector (3), then its local east (2) and north (3)
-   * times a/R, then R in metres and the maximum wind in m/s. Dot products of a cell with the scaled vectors are its
-   * coordinates in units of R.
+   * count × FRAME: the centre as a unit vector (3), then its local east (2) and north (3) times a/R, then R in metres and
+   * the maximum wind in m/s. Dot products of a cell with the scaled vectors are its coordinates in units of R.
    */
-  readonly frame: (index: number) => Float64Array;
+  readonly frames: Float64Array;
 }
 
-/** A timeline as plain data, its frames filled: what another thread needs of it. */
-export interface TimelineData extends Pick<Timeline, 'legs' | 'count' | 'legNumber'> {
-  /** count × FRAME */
-  readonly frames: Float64Array;
+/** Time of a moment, or of one between two. */
+export function timeMsOf(timeline: Timeline, moment: number): number {
+  const leg = timeline.legs[legOf(timeline, ({ first }) => first <= moment)]!;
+  return leg.startMs + (moment - leg.first) * leg.fineMs;
+}
+
+/** Moment of a time. */
+export function momentOf(timeline: Timeline, timeMs: number): number {
+  const leg = timeline.legs[legOf(timeline, ({ startMs }) => startMs <= timeMs)]!;
+  const moment = leg.first + (leg.fineMs > 0 ? (timeMs - leg.startMs) / leg.fineMs : 0);
+  return Math.min(timeline.count - 1, Math.max(0, moment));
+}
+
+/** Number of the last leg that has begun. */
+function legOf({ legs }: Timeline, begun: (leg: Leg) => boolean): number {
+  let [low, high] = [0, legs.length];
+  while (high - low > 1) {
+    const middle = (low + high) >> 1;
+    if (begun(legs[middle]!)) low = middle;
+    else high = middle;
+  }
+  return low;
 }
 
 /** The timeline of a model between two times. */
@@ -64,7 +82,7 @@ export function timelineOf(model: WindModel, fromMs: number, toMs: number): Time
     const { smallestM, ...bounds } = boundsOf(model, startMs, endMs);
     const fineS = Math.max(FINEST_S, Math.min(FINE_S, (FINE_SHARE * smallestM) / bounds.speedMps));
     const depth = Math.max(2, Math.ceil(Math.log2((endMs - startMs) / 1000 / fineS)));
-    const longestS = Math.min((endMs - startMs) / 1000, STEP_GROWTH / bounds.growthPerS);
+    const longestS = STEP_GROWTH / bounds.growthPerS;
     legs.push({ startMs, endMs, first, depth, ...bounds, fineMs: (endMs - startMs) / (1 << depth), longestS });
     first += 1 << depth;
   }
@@ -81,41 +99,51 @@ export function timelineOf(model: WindModel, fromMs: number, toMs: number): Time
       longestS: 0,
     });
   const count = legs.length === 1 && legs[0]!.depth === 0 ? 1 : first + 1;
-  const legNumber = new Uint16Array(count);
-  for (const [number, leg] of legs.entries())
-    legNumber.fill(number, leg.first, Math.min(count, leg.first + (1 << leg.depth) + 1));
-  return over({ legs, count, legNumber }, (timeMs) => frameOf(model.path.at(timeMs)));
+  return { legs, count, frames: framesOf(model, legs, count) };
 }
 
-/** The timeline of plain data. */
-export function timelineFrom({ frames, ...data }: TimelineData): Timeline {
-  return over(data, (_, index) => frames.subarray(index * FRAME, (index + 1) * FRAME));
-}
-
-/** A timeline as plain data. */
-export function timelineData({ legs, count, legNumber, frame }: Timeline): TimelineData {
+function framesOf(model: WindModel, legs: readonly Leg[], count: number): Float64Array {
   const frames = new Float64Array(count * FRAME);
-  for (let index = 0; index < count; index++) frames.set(frame(index), index * FRAME);
-  return { legs, count, legNumber, frames };
+  const put = (leg: Leg, m: number): void =>
+    frames.set(frameOf(model.path.at(leg.startMs + (m - leg.first) * leg.fineMs)), m * FRAME);
+  for (const leg of legs) {
+    const end = Math.min(count - 1, leg.first + (1 << leg.depth));
+    for (let m = leg.first; m <= end; m += KNOT_MOMENTS) put(leg, m);
+    const straight = isStraight(frames, leg.first, end);
+    for (let m = leg.first; m < end; m++) {
+      const t = ((m - leg.first) % KNOT_MOMENTS) / KNOT_MOMENTS;
+      if (t === 0) continue;
+      if (!straight) {
+        put(leg, m);
+        continue;
+      }
+      const a = (m - t * KNOT_MOMENTS) * FRAME;
+      const b = a + KNOT_MOMENTS * FRAME;
+      const between = (k: number, wa = 1, wb = 1): number => (1 - t) * wa * frames[a + k]! + t * wb * frames[b + k]!;
+      const radiusM = between(8);
+      const to = m * FRAME;
+      for (let k = 0; k < 3; k++) frames[to + k] = between(k);
+      // of unit vectors, so that they stay square to the centre's
+      const [wa, wb] = [frames[a + 8]! / radiusM, frames[b + 8]! / radiusM];
+      for (let k = 3; k < 8; k++) frames[to + k] = between(k, wa, wb);
+      frames[to + 8] = radiusM;
+      frames[to + 9] = between(9);
+    }
+  }
+  return frames;
 }
 
-function over(
-  { legs, count, legNumber }: Pick<Timeline, 'legs' | 'count' | 'legNumber'>,
-  frameAt: (timeMs: number, index: number) => Float64Array,
-): Timeline {
-  const frames: (Float64Array | undefined)[] = new Array(count);
-  const timeMs = (index: number): number => {
-    const leg = legs[legNumber[Math.min(count - 1, Math.max(0, Math.floor(index)))]!]!;
-    return leg.startMs + ((leg.endMs - leg.startMs) * (index - leg.first)) / (1 << leg.depth);
-  };
-  const frame = (index: number): Float64Array => {
-    const known = frames[index];
-    if (known) return known;
-    const made = frameAt(timeMs(index), index);
-    frames[index] = made;
-    return made;
-  };
-  return { legs, count, legNumber, timeMs, frame };
+/** Whether straight lines between the knots of a leg are near enough: an eighth of the second difference is what they are off. */
+function isStraight(frames: Float64Array, first: number, end: number): boolean {
+  const step = KNOT_MOMENTS * FRAME;
+  if (end - first < 2 * KNOT_MOMENTS) return false;
+  for (let b = first * FRAME + step; b < end * FRAME; b += step) {
+    const bend = (k: number): number =>
+      Math.abs(frames[b - step + k]! - 2 * frames[b + k]! + frames[b + step + k]!) / 8;
+    const offM = EARTH_RADIUS_M * Math.max(bend(0), bend(1), bend(2));
+    if (offM > STRAIGHT_M || bend(8) > STRAIGHT_M || bend(9) > STRAIGHT_MPS) return false;
+  }
+  return true;
 }
 
 function frameOf(state: {

@@ -1,14 +1,16 @@
-import { RADIANS } from '../../earth.js';
 import type { WindModel } from '../../model/wind.js';
 import { HOURS_THRESHOLDS_MPS } from '../exact.js';
 import type { Grid } from '../grid.js';
-import type { Arithmetic } from './arithmetic.js';
-import { momentsFrom, type StormTables, stormTables } from './moments.js';
-import { newTile, tileRunner } from './tile.js';
-import { type Tiling, tilingOf } from './tiling.js';
-import { type TimelineData, timelineData, timelineFrom, timelineOf } from './timeline.js';
-import { twinArithmetic } from './twin.js';
-import { wasmArithmetic } from './wasm.js';
+import type { Engine } from './engine.js';
+import { type StormTables, stormTables } from './storm-tables.js';
+import { tileRunner } from './tile.js';
+import { placingOf, TILE_EDGE } from './tiling.js';
+import { type Timeline, timelineOf } from './timeline.js';
+import { tracerOf } from './tracer.js';
+import { newEngine } from './wasm.js';
+
+/** Other maxima in time within this of the highest are kept, m/s: what tables may be off where fields are fitted to radii. */
+const RIVALS_MPS = 0.4;
 
 /** Fields of a swath while it is made; each nx*ny. */
 export interface SwathFields {
@@ -16,10 +18,15 @@ export interface SwathFields {
   readonly windFromDeg: Float32Array;
   readonly peakTimeS: Float32Array;
   readonly hours: readonly Float32Array[];
+  /** time of the second highest maximum in time, where it was asked for */
+  readonly rivalTimeS: Float32Array | null;
 }
 
 /** @param shared whether several threads write into them */
-export function newFields(cells: number, { shared }: { shared: boolean }): SwathFields {
+export function newFields(
+  cells: number,
+  { shared, rivals = false }: { shared: boolean; rivals?: boolean },
+): SwathFields {
   const field = (): Float32Array =>
     shared ? new Float32Array(new SharedArrayBuffer(4 * cells)) : new Float32Array(cells);
   return {
@@ -27,120 +34,88 @@ export function newFields(cells: number, { shared }: { shared: boolean }): Swath
     windFromDeg: field().fill(Number.NaN),
     peakTimeS: field().fill(Number.NaN),
     hours: HOURS_THRESHOLDS_MPS.map(field),
+    rivalTimeS: rivals ? field().fill(Number.NaN) : null,
   };
 }
 
 /** All that is needed to make a swath, as plain data: every thread makes its part from the same tables. */
 export interface SwathPlan {
   readonly grid: Grid;
-  readonly timeline: TimelineData;
+  readonly timeline: Timeline;
   readonly tables: StormTables;
   readonly outerRadiusM: number;
   /** from the track's first fix to the timeline's start, s */
   readonly offsetS: number;
   readonly hours: boolean;
+  /** whether other maxima in time than the highest are looked for as well, at every cell */
+  readonly rivals: boolean;
 }
 
 export function swathPlan(
   model: WindModel,
   grid: Grid,
-  options: { readonly fromMs?: number; readonly toMs?: number; readonly peakOnly?: boolean },
+  options: { readonly fromMs?: number; readonly toMs?: number; readonly peakOnly?: boolean; readonly fitted?: boolean },
 ): SwathPlan {
   const fromMs = options.fromMs ?? model.path.startMs;
   const timeline = timelineOf(model, fromMs, options.toMs ?? model.path.endMs);
+  const tables = stormTables(model, timeline);
   return {
     grid,
-    timeline: timelineData(timeline),
-    tables: stormTables(model, timeline),
+    timeline,
+    tables,
+    rivals: options.fitted === true || !tables.complete,
     outerRadiusM: model.outerRadiusM,
     offsetS: (fromMs - model.path.startMs) / 1000,
     hours: options.peakOnly !== true,
   };
 }
 
-/** A swath cut into rows of tiles that can be done in any order. */
+/** A swath cut into tiles that can be done in any order. */
 export interface SwathWork {
-  readonly tiling: Tiling;
-  readonly runRow: (row: number, fields: SwathFields) => void;
-  /** gives the kernel's memory back for the next swath */
+  readonly tiles: number;
+  readonly runTile: (tile: number, fields: SwathFields) => void;
+  /** gives the engine's memory back for the next swath */
   readonly done: () => void;
 }
 
-/** Kernels that no swath is using: their memory is kept. */
-const idle: Arithmetic[] = [];
+/** Engines that no swath is using: their memory is kept. */
+const idle: Engine[] = [];
 
-export function swathWork(plan: SwathPlan, given?: Arithmetic): SwathWork {
-  const timeline = timelineFrom(plan.timeline);
-  const arithmetic = given ?? idle.pop() ?? wasmArithmetic() ?? twinArithmetic();
-  arithmetic.release();
-  const moments = momentsFrom(plan.tables, timeline, arithmetic);
-  const tiling = tilingOf(plan.grid);
-  const tile = newTile();
-  const runner = tileRunner(timeline, moments, arithmetic, {
+export function swathWork({ grid, timeline, tables, ...plan }: SwathPlan, given?: Engine): SwathWork {
+  const engine = given ?? idle.pop() ?? newEngine();
+  const thresholdsMps = plan.hours ? HOURS_THRESHOLDS_MPS : [];
+  const tracer = tracerOf(engine, timeline, tables, {
     outerRadiusM: plan.outerRadiusM,
-    thresholdsMps: HOURS_THRESHOLDS_MPS,
-    hours: plan.hours,
+    thresholdsMps,
+    rivalsMps: plan.rivals ? RIVALS_MPS : 0,
   });
+  const placing = placingOf(grid);
+  const runner = tileRunner(tracer, placing, thresholdsMps, { everyCell: plan.rivals });
+  const { nx, ny } = grid;
   return {
-    tiling,
+    tiles: placing.columns * placing.rows,
     done: () => {
-      if (!given) idle.push(arithmetic);
+      if (!given) idle.push(engine);
     },
-    runRow(row, fields) {
-      for (let column = 0; column < tiling.columns; column++) {
-        const bounds = tiling.load(tile, arithmetic.arrays, { column, row });
-        if (!runner.run(tile, bounds)) continue;
-        const { cells } = bounds;
-        const { arrays } = arithmetic;
-        if (plan.hours)
-          for (let h = 0; h < fields.hours.length; h++) {
-            const [from, to] = [arrays.hours[h]!, fields.hours[h]!];
-            for (let i = 0; i < tile.count; i++) to[cells[i]!] = from[i]!;
-          }
-        for (let i = 0; i < tile.count; i++) {
-          const k = cells[i]!;
-          const wind = tile.windMps[i]!;
-          if (!(wind > 0)) continue;
-          fields.windMps[k] = wind;
-          fields.peakTimeS[k] = plan.offsetS + tile.peakS[i]!;
-          fields.windFromDeg[k] = directionAt(
-            arrays.x[i]!,
-            arrays.y[i]!,
-            arrays.z[i]!,
-            timeline.frame(tile.peakIndex[i]!),
-            tile.eastMps[i]!,
-            tile.northMps[i]!,
-          );
+    runTile(tile, fields) {
+      const column = tile % placing.columns;
+      const row = Math.trunc(tile / placing.columns);
+      if (!runner.run({ column, row, nx, ny })) return;
+      const width = Math.min(TILE_EDGE, nx - column * TILE_EDGE);
+      const height = Math.min(TILE_EDGE, ny - row * TILE_EDGE);
+      const { windMps, timeS, fromDeg, hours, rivalTimeS } = runner.fields;
+      for (let j = 0; j < height; j++) {
+        let k = (row * TILE_EDGE + j) * nx + column * TILE_EDGE;
+        const from = j * (TILE_EDGE + 1);
+        for (let at = from; at < from + width; at++, k++) {
+          if (!(windMps[at]! > 0)) continue;
+          fields.windMps[k] = windMps[at]!;
+          fields.peakTimeS[k] = plan.offsetS + timeS[at]!;
+          fields.windFromDeg[k] = fromDeg[at]!;
+          if (fields.rivalTimeS) fields.rivalTimeS[k] = plan.offsetS + rivalTimeS[at]!;
+          for (let h = 0; h < hours.length; h++) fields.hours[h]![k] = hours[h]![at]!;
         }
       }
     },
   };
-}
-
-/**
- * Direction that a wind blows from at a cell, degrees, its parts given in the frame at the centre: north turns on the way
- * there by as much as the outward direction does.
- */
-function directionAt(x: number, y: number, z: number, frame: Float64Array, eastMps: number, northMps: number): number {
-  const east = x * frame[3]! + y * frame[4]!;
-  const north = x * frame[5]! + y * frame[6]! + z * frame[7]!;
-  const cosLat = Math.sqrt(x * x + y * y);
-  let u = eastMps;
-  let v = northMps;
-  if (cosLat > 1e-7) {
-    const slo = y / cosLat;
-    const clo = x / cosLat;
-    const outEast = frame[0]! * slo - frame[1]! * clo;
-    const outNorth = frame[0]! * z * clo + frame[1]! * z * slo - frame[2]! * cosLat;
-    // the cosine and sine of the turn, times the lengths of both vectors
-    const cosine = east * outEast + north * outNorth;
-    const sine = east * outNorth - north * outEast;
-    // so near that the direction back drowns in rounding, nothing has turned yet
-    if (outEast * outEast + outNorth * outNorth > 1e-7) {
-      u = cosine * eastMps - sine * northMps;
-      v = sine * eastMps + cosine * northMps;
-    }
-  }
-  const degrees = Math.atan2(-u, -v) / RADIANS;
-  return degrees < 0 ? degrees + 360 : degrees;
 }

@@ -5,8 +5,8 @@ import { LimitError } from '../../../src/errors.js';
 import { makeRecipe } from '../../../src/model/recipe.js';
 import { windModel } from '../../../src/model/wind.js';
 import { type Grid, gridOver } from '../../../src/swath/grid.js';
-import { twinArithmetic } from '../../../src/swath/kernel/twin.js';
-import { wasmArithmetic } from '../../../src/swath/kernel/wasm.js';
+import { twinEngine } from '../../../src/swath/kernel/twin.js';
+import { wasmEngine } from '../../../src/swath/kernel/wasm.js';
 import { peakSwath } from '../../../src/swath/peak.js';
 import type { Swath } from '../../../src/swath/swath.js';
 import { recurving } from '../../storms.js';
@@ -48,8 +48,8 @@ describe('the fast swath', () => {
     for (const seed of [2, 4]) {
       const { track, grid } = harshStorm(seed, { edge: 40 });
       const model = windModel(track, makeRecipe());
-      const wasm = await peakSwath(model, grid, { arithmetic: wasmArithmetic()! });
-      const twin = await peakSwath(model, grid, { arithmetic: twinArithmetic() });
+      const wasm = await peakSwath(model, grid, { engine: wasmEngine()! });
+      const twin = await peakSwath(model, grid, { engine: twinEngine() });
       expect(wasm.windMps.some((wind) => wind > 20)).toBe(true);
       expect(same(wasm, twin)).toBe(true);
     }

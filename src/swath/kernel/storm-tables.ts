@@ -1,6 +1,5 @@
 import { EARTH_RADIUS_M } from '../../earth.js';
 import type { WindModel } from '../../model/wind.js';
-import type { Arithmetic } from './arithmetic.js';
 import {
   type Layout,
   layoutOf,
@@ -11,51 +10,33 @@ import {
   samplingOf,
   tableOf,
 } from './table.js';
-import type { Leg, Timeline } from './timeline.js';
+import { FRAME, type Leg, type Timeline } from './timeline.js';
 
 /** From one table to the next the wind changes by at most this, m/s: between them the nearer one serves, with R and V of the moment. */
-const SLOT_MPS = 0.03;
+const SLOT_MPS = 0.015;
 /** A table is interpolated between two neighbours that explain the one in their middle within this, m/s. */
-const TOLERANCE_MPS = 0.02;
+const TOLERANCE_MPS = [0.02, 0.06] as const;
 /** Tables that differ by more than this, m/s, are not believed to explain the one in their middle. */
 const HIDDEN_MPS = 1;
 /** Winds below this need not be explained, m/s: nothing is promised of them. */
 const LEAST_MPS = 7.5;
 /** Truncation of the harmonics that is left out, m/s. */
 const TRUNCATION_MPS = 0.01;
-const MOST_HARMONICS = 10;
+const MOST_HARMONICS = 14;
 /** Directions in which a field is probed for its harmonics. */
-const PROBES = 32;
-/** A frame in the kernel's memory, padded. */
-const FRAME_FLOATS = 8;
+const PROBES = 64;
 /** Splits of a leg at most, and where many harmonics make tables dear: the tables between are interpolated. */
-const MOST_SPLITS = [6, 3] as const;
+const MOST_SPLITS = [6, 5] as const;
 /** Floats that all tables of a storm may take; beyond it fewer tables serve for longer. */
 const MOST_FLOATS = 80_000_000;
 /** Harmonics of the direction at most: 2° are promised of it. */
 const MOST_WIND_HARMONICS = 5;
-
-/** The tables of a storm in time. */
-export interface Moments {
-  readonly layout: Layout;
-  /** whether the harmonics that were kept explain the field */
-  readonly complete: boolean;
-  /** the table that serves a moment of the timeline */
-  readonly tableAt: (index: number) => Placed;
-  /** points a cell of the kernel to a moment's frame and tables */
-  readonly place: (cell: number, index: number) => void;
-}
 
 /** The tables of a storm as they are built, before any is interpolated: plain data. */
 export interface StormTables {
   readonly layout: Layout;
   readonly complete: boolean;
   readonly legTables: readonly (readonly Built[])[];
-}
-
-/** The tables of a storm in the memory of a kernel. */
-export function momentsOf(model: WindModel, timeline: Timeline, arithmetic: Arithmetic): Moments {
-  return momentsFrom(stormTables(model, timeline), timeline, arithmetic);
 }
 
 /** Builds the tables of a storm. */
@@ -81,9 +62,9 @@ export function stormTables(model: WindModel, timeline: Timeline): StormTables {
     const split = (from: number, a: MomentTable, to: number, b: MomentTable, depth: number): void => {
       const at = 0.5 * (from + to);
       const middle = build(leg.startMs + at * (leg.endMs - leg.startMs));
-      const maxWindMps = timeline.frame(leg.first + Math.round(at * (1 << leg.depth)))[9]!;
+      const maxWindMps = timeline.frames[(leg.first + Math.round(at * (1 << leg.depth))) * FRAME + 9]!;
       // what bends one way first and then the other may pass through the mean in the middle
-      const hidden = depth < 3 && farthestApart(a, b, layout, maxWindMps) * maxWindMps > HIDDEN_MPS;
+      const hidden = depth < 3 && farthestApart(a, b, layout, maxWindMps) > HIDDEN_MPS;
       const fine =
         depth >= Math.min(MOST_SPLITS[layout.harmonics > 2 ? 1 : 0], leg.depth) ||
         (!hidden && explains(a, b, middle, layout, maxWindMps));
@@ -98,90 +79,55 @@ export function stormTables(model: WindModel, timeline: Timeline): StormTables {
   }
 }
 
-/** Puts the tables of a storm into the memory of a kernel, those between two built ones as they are needed. */
-export function momentsFrom(
-  { layout, complete, legTables }: StormTables,
-  timeline: Timeline,
-  arithmetic: Arithmetic,
-): Moments {
-  // slots of the tables that are interpolated: as many between two built ones as the wind changes
+/** Which tables serve the moments of a storm: so many between two built ones that the wind changes little to the next. */
+export function servingTables({ layout, legTables }: StormTables, { legs, count, frames }: Timeline): Serving {
   const wanted = (leg: Leg, a: Built, b: Built): number => {
     const fine = 1 << leg.depth;
-    const maxWindMps = timeline.frame(leg.first + Math.round(0.5 * (a.at + b.at) * fine))[9]!;
-    const parts = Math.ceil((farthestApart(a.table, b.table, layout, maxWindMps) * maxWindMps) / SLOT_MPS) || 1;
-    return Math.min(parts, Math.max(1, Math.round((b.at - a.at) * fine)));
+    const middle = Math.min(count - 1, leg.first + Math.round(0.5 * (a.at + b.at) * fine));
+    const apartMps = farthestApart(a.table, b.table, layout, frames[middle * FRAME + 9]!);
+    return Math.min(Math.ceil(apartMps / SLOT_MPS) || 1, Math.max(1, Math.round((b.at - a.at) * fine)));
   };
-  const partsOf = timeline.legs.map((leg, number) => {
+  const partsOf = legs.map((leg, number) => {
     const list = legTables[number]!;
     return list.slice(1).map((b, i) => wanted(leg, list[i]!, b));
   });
-  const asked =
-    partsOf.flat().reduce((sum, parts) => sum + parts + 1, 1) * layout.rows * (layout.speedStride + layout.windStride);
+  const asked = partsOf.flat().reduce((sum, parts) => sum + parts + 1, 1) * layout.rows * layout.speedStride;
   const thin = Math.max(1, asked / MOST_FLOATS);
-  const slots = new Int32Array(timeline.count);
-  const slotFrom: { readonly a: Built; readonly b: Built; readonly t: number }[] = [];
-  for (const [number, leg] of timeline.legs.entries()) {
+  const slots = new Int32Array(count);
+  const made: Mixture[] = [];
+  for (const [number, leg] of legs.entries()) {
     const list = legTables[number]!;
     const fine = 1 << leg.depth;
     let serving = 0;
     for (let i = 0; i + 1 < list.length; i++) {
       const [a, b] = [list[i]!, list[i + 1]!];
       const parts = Math.max(1, Math.round(partsOf[number]![i]! / thin));
-      const first = slotFrom.length;
-      for (let part = 0; part <= parts; part++) slotFrom.push({ a, b, t: part / parts });
-      for (; serving <= b.at * fine && leg.first + serving < timeline.count; serving++) {
+      const first = made.length;
+      for (let part = 0; part <= parts; part++) made.push({ a: a.table, b: b.table, share: part / parts });
+      for (; serving <= b.at * fine && leg.first + serving < count; serving++) {
         const t = (serving / fine - a.at) / (b.at - a.at);
         slots[leg.first + serving] = first + Math.round(t * parts);
       }
     }
     if (list.length === 1) {
-      slots.fill(slotFrom.length, leg.first, leg.first + 1);
-      slotFrom.push({ a: list[0]!, b: list[0]!, t: 0 });
+      slots.fill(made.length, leg.first, leg.first + 1);
+      made.push({ a: list[0]!.table, b: list[0]!.table, share: 0 });
     }
   }
-  const count = slotFrom.length;
-  const mixed = (p: Float32Array, q: Float32Array, t: number): Float32Array => {
-    const out = arithmetic.allocate(p.length);
-    if (t === 0) out.set(p);
-    else for (let k = 0; k < out.length; k++) out[k] = p[k]! + t * (q[k]! - p[k]!);
-    return out;
-  };
-  const tables: (Placed | undefined)[] = new Array(count);
-  arithmetic.reserve(
-    count * (layout.rows * (layout.speedStride + layout.windStride) + 8) + FRAME_FLOATS * timeline.count + 8,
-  );
-  const frames = arithmetic.allocate(FRAME_FLOATS * timeline.count).fill(0);
-  const windAt = new Int32Array(count);
-  const tableAt = (index: number): Placed => {
-    const slot = slots[index]!;
-    const known = tables[slot];
-    if (known) return known;
-    const { a: from, b: to, t } = slotFrom[slot]!;
-    const bounds = boundsOf(from, to);
-    const [a, b] = [from.table, to.table];
-    const placed: Placed = { ...bounds, speed: mixed(a.speed, b.speed, t), windFrom: { a, b, t } };
-    tables[slot] = placed;
-    return placed;
-  };
+  return { slots, tables: made };
+}
 
-  const place = (cell: number, index: number): void => {
-    const { arrays } = arithmetic;
-    const table = tableAt(index);
-    const slot = slots[index]!;
-    if (windAt[slot] === 0) {
-      const { a, b, t } = table.windFrom;
-      windAt[slot] = mixed(a.wind, b.wind, t).byteOffset + 1;
-    }
-    const at = FRAME_FLOATS * index;
-    if (frames[at + 5] === 0) {
-      const frame = timeline.frame(index);
-      frames.set([frame[3]!, frame[4]!, frame[5]!, frame[6]!, frame[7]!, frame[9]!], at);
-    }
-    arrays.frameAt[cell] = frames.byteOffset + 4 * at;
-    arrays.speedAt[cell] = table.speed.byteOffset;
-    arrays.windAt[cell] = windAt[slot]! - 1;
-  };
-  return { layout, complete, tableAt, place };
+/** A table between two built ones. */
+export interface Mixture {
+  readonly a: MomentTable;
+  readonly b: MomentTable;
+  readonly share: number;
+}
+
+/** The tables of a storm, and for each moment which of them serves it. */
+export interface Serving {
+  readonly slots: Int32Array;
+  readonly tables: readonly Mixture[];
 }
 
 /** How many rows and harmonics the fields of this storm need. */
@@ -191,7 +137,7 @@ function planTables(model: WindModel, timeline: Timeline): { layout: Layout; sam
     const steps = Math.min(8, 1 << leg.depth);
     for (let i = 0; i <= steps; i++) {
       const index = Math.min(timeline.count - 1, leg.first + Math.round((i * (1 << leg.depth)) / steps));
-      smallest = Math.min(smallest, timeline.frame(index)[8]!);
+      smallest = Math.min(smallest, timeline.frames[index * FRAME + 8]!);
     }
   }
   const farthest = (EARTH_RADIUS_M * Math.sin(Math.min(Math.PI / 2, model.outerRadiusM / EARTH_RADIUS_M))) / smallest;
@@ -256,10 +202,10 @@ function harmonicsNeeded(values: readonly number[], bound: number, probe: Sampli
 /** Whether the mean of two tables gives the one in their middle. */
 function explains(a: MomentTable, b: MomentTable, middle: MomentTable, layout: Layout, maxWindMps: number): boolean {
   const mean = a.speed.map((value, k) => 0.5 * (value + b.speed[k]!));
-  return farthestApart({ speed: mean }, middle, layout, maxWindMps) * maxWindMps <= TOLERANCE_MPS;
+  return farthestApart({ speed: mean }, middle, layout, maxWindMps) <= TOLERANCE_MPS[layout.harmonics > 2 ? 1 : 0];
 }
 
-/** The most by which the speeds of two tables differ anywhere, as a share of the maximum wind; calms count for nothing. */
+/** The most by which the speeds of two tables differ anywhere, m/s; calms count for nothing. */
 function farthestApart(
   a: Pick<MomentTable, 'speed'>,
   b: MomentTable,
@@ -278,33 +224,11 @@ function farthestApart(
     off = ratio[row]! * off + Math.abs(a.speed[at]! - b.speed[at]!);
     most = Math.max(most, off / (2 * Math.sqrt(squared)));
   }
-  return most;
+  return most * maxWindMps;
 }
 
-/** A moment's table in the kernel's memory; its wind part is made when it is asked for. */
-export interface Placed extends Bounds {
-  readonly speed: Float32Array;
-  readonly windFrom: { readonly a: MomentTable; readonly b: MomentTable; readonly t: number };
-}
-
-/** Bounds that hold between two tables. */
-export type Bounds = Pick<MomentTable, 'steepest' | 'steepestWithTaper' | 'bent' | 'bentWithTaper'>;
-
-/** A table at a share of its leg, and the bounds from there to the next one. */
+/** A table at a share of its leg. */
 export interface Built {
   readonly at: number;
   readonly table: MomentTable;
-  bounds?: Bounds;
-}
-
-/** The bounds that hold between a table and the next one. */
-function boundsOf(from: Built, to: Built): Bounds {
-  const most = (p: Float32Array, q: Float32Array): Float32Array => p.map((value, k) => Math.max(value, q[k]!));
-  from.bounds ??= {
-    steepest: most(from.table.steepest, to.table.steepest),
-    steepestWithTaper: most(from.table.steepestWithTaper, to.table.steepestWithTaper),
-    bent: most(from.table.bent, to.table.bent),
-    bentWithTaper: most(from.table.bentWithTaper, to.table.bentWithTaper),
-  };
-  return from.bounds;
 }

@@ -6,7 +6,7 @@
 import { readFileSync } from 'node:fs';
 import { averagesOf, offshoreFixes } from './skill/fixes.js';
 import { fitAbsolute, score } from './skill/least-absolute.js';
-import { meanRadii, profileStorm } from './skill/vortex.js';
+import { meanRadii, profileStorm, strongestOf34Kt } from './skill/vortex.js';
 
 const [file] = process.argv.slice(2);
 if (!file) {
@@ -141,3 +141,100 @@ const outerCrossed = Array.from({ length: FOLDS }, (_, k) =>
 ).flat();
 console.log(`\nouter fall (50 and 64 kt from 34 kt): ${outerAll.map((c) => c.toFixed(3)).join(' ')}`);
 console.log(`  in the sample ${score(outerErrors(outer, outerAll))}; cross-validated ${score(outerCrossed)} km`);
+
+// 4. radii that are filled in between and beyond observed ones (src/vortex/radii-state.ts)
+const crossedBy = (rows, solve, errors) =>
+  Array.from({ length: FOLDS }, (_, k) =>
+    errors(
+      rows.filter(({ fold }) => fold === k),
+      solve(rows.filter(({ fold }) => fold !== k)),
+    ),
+  ).flat();
+
+// 4a. 50 kt between 34 and 64 kt of the same quadrant: ln r = ln r34 + (ln r64 − ln r34) t^a
+const share = Math.log(50 / 34) / Math.log(64 / 34);
+const between = fixes.flatMap((fix) =>
+  [0, 1, 2, 3].flatMap((j) => {
+    const [r34, r50, r64] = fix.radiiKm.map((radii) => radii[j]);
+    return r34 > 0 && r50 > 0 && r64 > 0 ? [{ fold: foldOf.get(fix.storm), r34, r50, r64 }] : [];
+  }),
+);
+const betweenErrors = (part, [a]) => part.map(({ r34, r50, r64 }) => r34 * (r64 / r34) ** (share ** a) - r50);
+const fitBetween = (part) =>
+  fitAbsolute({ start: [1.3], steps: [0.01], floor: 1, residuals: (c) => betweenErrors(part, c) });
+const power = fitBetween(between);
+console.log(`\nbetween 34 and 64 kt, single quadrants of 50 kt: power ${power[0].toFixed(3)}`);
+console.log(
+  `  in the sample ${score(betweenErrors(between, power))}; cross-validated ${score(crossedBy(between, fitBetween, betweenErrors))} km`,
+);
+
+// 4b. 50 and 64 kt beyond 34 kt: ln r = ln r34 − s(a + b s − c ln(V/35) − d ln(size/130 km)) − e λ s, not inside the ridge
+const RIDGE = 0.04;
+const beyond = sized.flatMap((fix) => {
+  const known = fix.radiiKm[0].filter((radius) => radius > 0);
+  if (known.length === 0) return [];
+  const vortex = storm(fix, all, 1000 * fix.meanOf34Km);
+  const base = strongestOf34Kt(vortex) / 1000;
+  if (!(base > 0)) return [];
+  const ridgeKm = (Math.min(vortex.radiusOfMaxWindM, 800 * Math.max(...known)) / 1000) * Math.exp(RIDGE);
+  const stronger = Math.log(fix.windMps / 35);
+  const larger = Math.log(vortex.sizeRadiusM / 130_000);
+  return [50, 64].flatMap((kt, i) =>
+    fix.means[i + 1] === null
+      ? []
+      : [
+          {
+            fold: foldOf.get(fix.storm),
+            fix,
+            t: i + 1,
+            s: Math.log(kt / 34),
+            radii: fix.radiiKm[0],
+            base,
+            ridgeKm,
+            stronger,
+            larger,
+          },
+        ],
+  );
+});
+const beyondErrors = (part, c) =>
+  part.map(({ fix, t, s, radii, base, ridgeKm, stronger, larger }) => {
+    const fall = Math.max(0.8, c[0] + c[1] * s - c[2] * stronger - c[3] * larger);
+    let sum = 0;
+    for (const radius of radii) {
+      if (!(radius > 0)) continue;
+      const stretch = Math.max(-2, Math.min(2, Math.log(radius / base)));
+      sum += Math.max(ridgeKm, radius * Math.exp(-s * fall - c[4] * stretch * s));
+    }
+    return sum / 4 - fix.means[t];
+  });
+const fitBeyond = (part) => {
+  const counts = [0, 1, 2].map((t) => part.filter((row) => row.t === t).length);
+  return fitAbsolute({
+    start: [1.6, 1.2, 0.8, 0.2, 0.5],
+    steps: [0.01, 0.01, 0.01, 0.01, 0.01],
+    floor: 0.05,
+    residuals: (c) => beyondErrors(part, c).map((error, i) => error / SCALE[part[i].t]),
+    weights: part.map(({ t }) => 1 / counts[t]),
+  });
+};
+const fallBeyond = fitBeyond(beyond);
+const beyondCrossed = [[], [], []];
+for (let k = 0; k < FOLDS; k++) {
+  const c = fitBeyond(beyond.filter(({ fold }) => fold !== k));
+  const part = beyond.filter(({ fold }) => fold === k);
+  for (const [i, error] of beyondErrors(part, c).entries()) beyondCrossed[part[i].t].push(error);
+}
+console.log(`\nbeyond 34 kt: ${fallBeyond.map((c) => c.toFixed(3)).join(' ')}`);
+for (const [t, kt] of [
+  [1, 50],
+  [2, 64],
+])
+  console.log(
+    `  ${kt} kt: in the sample ${score(
+      beyondErrors(
+        beyond.filter((row) => row.t === t),
+        fallBeyond,
+      ),
+    )}; cross-validated ${score(beyondCrossed[t])} km`,
+  );

@@ -116,6 +116,7 @@ export function offshoreFixes(text, source) {
           highestMps: highest,
           meanOf34Km: meanKm(rows[0], false),
           means: rows.map((row) => meanKm(row, true)),
+          radiiKm: rows.map((row) => [0, 1, 2, 3].map((j) => (row?.radiiM[j] ?? 0) / 1000)),
         },
       ];
     });

@@ -12,9 +12,9 @@ const INFLOW = (25 * Math.PI) / 180;
 const STEPS = 64;
 const FARTHEST_M = 2_500_000;
 
-/** (fix, coefficients) → its vortex; the coefficients are seven of the size, then p's two and k. */
+/** (fix, coefficients, radius of 34 kt where it is known) → its vortex; the coefficients are seven of the size, then p's two and k. */
 export function profileStorm(inputs) {
-  return (fix, c) => {
+  return (fix, c, radiusOf34KtM = null) => {
     const size = inputs.get(fix).reduce((sum, x, i) => sum + x * c[i], 0);
     const sizeRadiusM = Math.min(SIZE_BOUNDS_M[1], Math.max(SIZE_BOUNDS_M[0], 1000 * Math.exp(size)));
     const radiusOfMaxWindM = radius2016M({
@@ -23,7 +23,7 @@ export function profileStorm(inputs) {
       latDeg: fix.latDeg,
       pressureDeficitPa: 100 * (fix.deficitHpa ?? 1),
       translationMps: fix.translationMps,
-      radiusOf34KtM: null,
+      radiusOf34KtM,
       sizeRadiusM,
     });
     const [low, high] = PROFILE_2016.outerBounds;
@@ -37,16 +37,16 @@ export function profileStorm(inputs) {
       outer,
       stretch: c[9],
     });
-    return { shape, maxWindMps, radiusOfMaxWindM, background, hemisphere: fix.state.hemisphere };
+    return { shape, maxWindMps, radiusOfMaxWindM, sizeRadiusM, background, hemisphere: fix.state.hemisphere };
   };
 }
 
-/** Mean over the quadrants of the farthest radius of 34, 50 and 64 kt, km. */
-export function meanRadii({ shape, maxWindMps, radiusOfMaxWindM, background, hemisphere: h }) {
+/** wind of the vortex alone → the radius outside R at which it blows, m; 0 where it does not */
+function radiusOfWind({ shape, maxWindMps, radiusOfMaxWindM }) {
   const step = Math.log(FARTHEST_M / radiusOfMaxWindM) / STEPS;
   const logs = new Float64Array(STEPS + 1);
   for (let i = 0; i <= STEPS; i++) logs[i] = Math.log(maxWindMps * shape(radiusOfMaxWindM * Math.exp(i * step)));
-  const radiusOf = (windMps) => {
+  return (windMps) => {
     const sought = Math.log(windMps);
     if (logs[0] < sought) return 0;
     let low = 0;
@@ -59,6 +59,17 @@ export function meanRadii({ shape, maxWindMps, radiusOfMaxWindM, background, hem
     }
     return radiusOfMaxWindM * Math.exp((low + (logs[low] - sought) / (logs[low] - logs[high])) * step);
   };
+}
+
+/** The radius of 34 kt on the strongest azimuth, m. */
+export function strongestOf34Kt(storm) {
+  return radiusOfWind(storm)(WINDS_MPS[0] - Math.hypot(...storm.background));
+}
+
+/** Mean over the quadrants of the farthest radius of 34, 50 and 64 kt, km. */
+export function meanRadii(storm) {
+  const { background, hemisphere: h } = storm;
+  const radiusOf = radiusOfWind(storm);
   const squared = background[0] ** 2 + background[1] ** 2;
   return WINDS_MPS.map((wind) => {
     const farthest = [0, 0, 0, 0];

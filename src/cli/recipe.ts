@@ -1,4 +1,4 @@
-import { RECIPE_ENTRIES, recipeDocument, recipeJsonSchema, STANDARD_RECIPE } from '../model/recipe.js';
+import { RECIPE_ENTRIES, recipeDocument, recipeJsonSchema, STANDARD_RECIPE, sourceOf } from '../model/recipe.js';
 import { type CommonOptions, type ModelOptions, recipeOf } from './choices.js';
 import { makeConsole, table } from './console.js';
 
@@ -16,12 +16,18 @@ export async function recipe(options: CommonOptions & ModelOptions & { schema?: 
   }
   const rows = RECIPE_ENTRIES.map((entry) => {
     const value = String(inForce[entry.key]);
-    return [inForce[entry.key] === STANDARD_RECIPE[entry.key] ? '' : '*', entry.key, value, entry.source];
+    return [
+      inForce[entry.key] === STANDARD_RECIPE[entry.key] ? '' : '*',
+      entry.key,
+      value,
+      sourceOf(entry, inForce[entry.key]!),
+    ];
   });
   out.print(table([['', 'entry', 'value', 'source'], ...rows]));
   for (const entry of RECIPE_ENTRIES) {
     const may = [...(entry.words ?? []), ...(entry.range ? [`${entry.range[0]} to ${entry.range[1]}`] : [])].join(', ');
     out.print(`\n${entry.key}\n  ${entry.help}\n  may be: ${may}\n`);
+    for (const { id, title } of entry.methods ?? []) out.print(`    ${id}: ${title}\n`);
   }
   out.say('* differs from the built-in recipe. --json prints the document that --recipe reads.');
 }

@@ -14,6 +14,13 @@ import { PROFILES } from '../vortex/profiles.js';
 
 export type RecipeValue = string | number;
 
+/** A method that a recipe may name. */
+export interface RecipeMethod {
+  readonly id: string;
+  readonly title: string;
+  readonly source: string;
+}
+
 /** One modelling choice: its name in a recipe, its default, what else it may be and where it comes from. */
 export interface RecipeEntry {
   readonly key: string;
@@ -23,6 +30,8 @@ export interface RecipeEntry {
   readonly source: string;
   /** words that the value may be */
   readonly words?: readonly string[];
+  /** published methods among the words, each with its own source */
+  readonly methods?: readonly RecipeMethod[];
   /** bounds of a number; an entry may have both words and bounds */
   readonly range?: readonly [number, number];
 }
@@ -56,6 +65,7 @@ export const RECIPE_ENTRIES: readonly RecipeEntry[] = [
     key: 'completion.pressure',
     standard: 'calibrated-pressure-2016',
     words: ids(PRESSURE_WIND_RELATIONS),
+    methods: PRESSURE_WIND_RELATIONS,
     help: 'relation that gives a missing central pressure from the wind, or the wind from the pressure',
     source: 'own calibration',
   },
@@ -63,6 +73,7 @@ export const RECIPE_ENTRIES: readonly RecipeEntry[] = [
     key: 'completion.rmax',
     standard: 'calibrated-rmax-2016',
     words: ids(RADIUS_RELATIONS),
+    methods: RADIUS_RELATIONS,
     help: 'relation that gives a missing radius of maximum wind',
     source: 'ChavasKnaff2022',
   },
@@ -70,6 +81,7 @@ export const RECIPE_ENTRIES: readonly RecipeEntry[] = [
     key: 'completion.size',
     standard: 'calibrated-size-2016',
     words: ids(SIZE_RELATIONS),
+    methods: SIZE_RELATIONS,
     range: [20, 800],
     help: 'relation for the size: the radius of 17.5 m/s of the storm’s own wind; or a number, km',
     source: 'own calibration',
@@ -86,6 +98,7 @@ export const RECIPE_ENTRIES: readonly RecipeEntry[] = [
     key: 'completion.b',
     standard: 'gradient-consistent',
     words: ['gradient-consistent', 'cyclostrophic', ...ids(HOLLAND_B_RELATIONS)],
+    methods: HOLLAND_B_RELATIONS,
     range: [0.5, 3.5],
     help: 'Holland B where the track has none, limited to 0.8–2.5: by an identity or a relation; or a number',
     source: 'Holland1980',
@@ -115,6 +128,7 @@ export const RECIPE_ENTRIES: readonly RecipeEntry[] = [
     key: 'vortex.profile',
     standard: 'calibrated-2016',
     words: ids(PROFILES),
+    methods: PROFILES,
     help: 'radial profile of the gradient-level wind',
     source: 'own calibration',
   },
@@ -336,6 +350,11 @@ export const RECIPE_SCHEMA = 'galewake-recipe/1';
 export const STANDARD_RECIPE: Recipe = Object.freeze(
   Object.fromEntries(RECIPE_ENTRIES.map((entry) => [entry.key, entry.standard])),
 );
+
+/** Where the value of an entry comes from: the source of the method that it names, else the entry's own. */
+export function sourceOf(entry: RecipeEntry, value: RecipeValue): string {
+  return entry.methods?.find(({ id }) => id === value)?.source ?? entry.source;
+}
 
 export function recipeNumber(recipe: Recipe, key: string): number {
   return recipe[key] as number;

@@ -1,4 +1,4 @@
-import { outerFall } from './outer-fall.js';
+import { FALL_2016, fallOfRadii } from './outer-fall.js';
 import { LEAST_FROM_RIDGE, LEAST_GAP, type Quadrants, type RadiiState } from './radii.js';
 
 /** One wind of a fix: what was observed of it and what the base vortex would have. */
@@ -18,10 +18,10 @@ const ABSENT = -0.1;
 const LOWEST = -1;
 /** A wind up to this share of the maximum counts as reached: knots were rounded. */
 const REACHED = 1.0005;
-/** Power of the share of ln V between two observed winds (own calibration, 2004–2016). */
+/** Power of the share of ln V between two observed winds, from `scripts/calibrate.js` (1.32 has as small an error, but a bias of −1.1 km). */
 const BETWEEN_POWER = 1.34;
-/** Share of the stretch against the base vortex that is taken back for each unit of |Δ ln V| (own calibration, 2004–2016). */
-const RETURN_TO_BASE = 0.45;
+/** Size that is taken where none is said, m: about the median of the calibration data. */
+const MIDDLING_SIZE_M = 130_000;
 const QUADRANTS = [0, 1, 2, 3] as const;
 
 /**
@@ -33,9 +33,10 @@ const QUADRANTS = [0, 1, 2, 3] as const;
  */
 export function radiiState(
   levels: readonly ObservedLevel[],
-  storm: { readonly maxWindMps: number; readonly radiusOfMaxWindM: number },
+  storm: { readonly maxWindMps: number; readonly radiusOfMaxWindM: number; readonly sizeRadiusM?: number },
 ): { state: RadiiState; conflicts: RadiiConflict[] } {
   const conflicts: RadiiConflict[] = [];
+  const sizeRadiusM = storm.sizeRadiusM ?? MIDDLING_SIZE_M;
   // from the lowest wind up
   const rising = [...levels].sort((a, b) => a.windMps - b.windMps);
   const seen = rising.map(({ windMps, radiiM }) =>
@@ -74,7 +75,7 @@ export function radiiState(
       const value = known[k]![j] ?? null;
       if (value !== null) return value;
       const estimate = (quadrant: number): number | null =>
-        estimated(rising, { known, reached }, { k, j: quadrant, maxWindMps: highest[quadrant]! });
+        estimated(rising, { known, reached }, { k, j: quadrant, maxWindMps: highest[quadrant]!, sizeRadiusM });
       const elsewhere = (quadrant: number): number | null =>
         reached[k]![quadrant] ? known[k]![quadrant]! : estimate(quadrant);
       return estimate(j) ?? meanOf(QUADRANTS.map(elsewhere)) ?? level.baseLogRatio;
@@ -137,7 +138,7 @@ export function radiiState(
 /**
  * ln(r/R) of one wind in one quadrant from the observed ones there; null for none. Between two observed winds V₁ < V < V₂:
  * ln r = ln r₁ + (ln r₂ − ln r₁) t^1.34, t = ln(V/V₁)/ln(V₂/V₁). Beyond the last one, with Δ = Δ ln V from it and λ its stretch
- * against the base vortex: ln r = ln r₁ − Δ · `outerFall` − 0.45 λ|Δ|, but not inside the ridge. Above the maximum: the base
+ * against the base vortex: ln r = ln r₁ − Δ · `fallOfRadii` − 0.52 λ|Δ|, but not inside the ridge. Above the maximum: the base
  * vortex, stretched as there. The maximum is that of the quadrant: at most a wind that was observed not to blow in it.
  *
  * The curve between two winds is about as good as what is observed of them allows: on the calibration data the radius of 50 kt
@@ -147,7 +148,7 @@ export function radiiState(
 function estimated(
   rising: readonly ObservedLevel[],
   { known, reached }: { known: readonly (readonly (number | null)[])[]; reached: readonly (readonly boolean[])[] },
-  { k, j, maxWindMps }: { k: number; j: number; maxWindMps: number },
+  { k, j, maxWindMps, sizeRadiusM }: { k: number; j: number; maxWindMps: number; sizeRadiusM: number },
 ): number | null {
   const { windMps, baseLogRatio } = rising[k]!;
   let below: number | null = null;
@@ -167,7 +168,8 @@ function estimated(
   const stretch = Math.max(-2, Math.min(2, known[near]![j]! - rising[near]!.baseLogRatio));
   if (windMps > REACHED * maxWindMps) return baseLogRatio + stretch;
   const size = Math.abs(steps);
-  const estimate = known[near]![j]! - steps * outerFall(maxWindMps, size) - RETURN_TO_BASE * stretch * size;
+  const fall = fallOfRadii({ maxWindMps, sizeRadiusM }, size);
+  const estimate = known[near]![j]! - steps * fall - FALL_2016.back * stretch * size;
   return Math.max(LEAST_FROM_RIDGE, estimate);
 }
 

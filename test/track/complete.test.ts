@@ -1,5 +1,5 @@
 import { describe, expect, it } from 'vitest';
-import { makeRecipe } from '../../src/model/recipe.js';
+import { makeRecipe, RECIPE_ENTRIES, recipeJsonSchema, sourceOf } from '../../src/model/recipe.js';
 import { windModel } from '../../src/model/wind.js';
 import { HOLLAND_B_RELATIONS } from '../../src/track/relations/holland-b.js';
 import { PRESSURE_WIND_RELATIONS } from '../../src/track/relations/pressure-wind-relations.js';
@@ -90,5 +90,19 @@ describe('what fills a value is its origin', () => {
     expect(of('1.7')).toEqual({ value: 1.7, origin: 'estimated', by: 'recipe' });
     const cold = makeRecipe(undefined, ['completion.b=vickery-wadhera-2008', 'completion.sea_temperature_c=20']);
     expect(windModel(deep, cold).completed.fixes[0]!.hollandB.value).not.toBe(of('vickery-wadhera-2008').value);
+  });
+});
+
+describe('the recipe', () => {
+  it('names the source of the relation in force, and its schema every relation', () => {
+    const entry = RECIPE_ENTRIES.find(({ key }) => key === 'completion.pressure')!;
+    expect(sourceOf(entry, 'dvorak-1984')).toBe('Dvorak1984');
+    expect(sourceOf(entry, entry.standard)).toBe('own calibration');
+    const schema = JSON.stringify(recipeJsonSchema());
+    for (const { id } of [...PRESSURE_WIND_RELATIONS, ...RADIUS_RELATIONS, ...HOLLAND_B_RELATIONS])
+      expect(schema).toContain(`"${id}"`);
+    expect(() => makeRecipe(undefined, ['completion.rmax=vickery-wadhera-2009'])).toThrow(
+      /did you mean 'vickery-wadhera-2008'/,
+    );
   });
 });

@@ -138,10 +138,14 @@ export function windField(
   const soughtMps = MAXIMUM_LIFT * state.maxWindMps;
   let gradientMaxMps = (soughtMps - backgroundMps) / nominal;
   let field = fieldFor(gradientMaxMps);
+  let [lastMps, lastExcess] = [0, 0];
   for (let i = 0; i < 12; i++) {
     const excess = maximumOf(field) - soughtMps;
     if (Math.abs(excess) <= 1e-4 * state.maxWindMps) break;
-    gradientMaxMps = Math.max(0.05, gradientMaxMps - excess / nominal);
+    // where the ratio is another one than that at the maximum, what the last step did tells it
+    const slope = i > 1 && gradientMaxMps !== lastMps ? (excess - lastExcess) / (gradientMaxMps - lastMps) : nominal;
+    [lastMps, lastExcess] = [gradientMaxMps, excess];
+    gradientMaxMps = Math.max(0.05, gradientMaxMps - excess / (slope > 0.2 ? slope : nominal));
     field = fieldFor(gradientMaxMps);
   }
   return field;
@@ -212,6 +216,7 @@ function buildField(
       azimuthFromHeadingDeg,
     }) * RADIANS;
 
+  const [headingEast, headingNorth] = [Math.sin(headingRad), Math.cos(headingRad)];
   const azimuthOf = (east: number, north: number): number => h * (Math.atan2(east, north) - headingRad);
 
   /** speed of a balance that holds the motion over that of one that does not */
@@ -255,10 +260,15 @@ function buildField(
     else out.fill(0);
     const wind = fade > 0 ? kepert2001(input) : null;
     if (!wind) return;
+    const [o0, oc, os] = wind.outward;
+    const [a0, ac, as] = wind.along;
     for (let i = 0; i < directions.length; i += 2) {
       const e = directions[i]!;
       const n = directions[i + 1]!;
-      const [outward, along] = wind(azimuthOf(e, n));
+      const cosine = e * headingEast + n * headingNorth;
+      const sine = h * (e * headingNorth - n * headingEast);
+      const outward = o0 + oc * cosine + os * sine;
+      const along = a0 + ac * cosine + as * sine;
       out[i] = (1 - share) * out[i]! + fade * (e * outward - h * n * along);
       out[i + 1] = (1 - share) * out[i + 1]! + fade * (n * outward + h * e * along);
     }

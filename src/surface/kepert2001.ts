@@ -22,8 +22,14 @@ export interface LayerInput {
   readonly dragCoefficient: number;
 }
 
-/** The 10-m wind around a circle, earth-relative: outward and along the circle (cyclonic positive), m/s. */
-export type LayerWind = (azimuthFromHeadingRad: number) => readonly [outwardMps: number, alongMps: number];
+/**
+ * The 10-m wind around a circle, earth-relative, m/s: outward and along the circle (cyclonic positive), each its mean and
+ * its parts with the cosine and the sine of the azimuth from the heading (clockwise in the north, mirrored in the south).
+ */
+export interface LayerWind {
+  readonly outward: readonly [mean: number, cosine: number, sine: number];
+  readonly along: readonly [mean: number, cosine: number, sine: number];
+}
 
 /** Complex numbers as pairs. */
 type Complex = readonly [number, number];
@@ -67,13 +73,10 @@ export function kepert2001(input: LayerInput): LayerWind | null {
   const along = v + share * (1 + chi);
   const q = 1 / stretch;
   const { plus, minusOne } = asymmetry({ root, gamma, drag, q, translationMps: ut });
-  return (azimuthFromHeadingRad) => {
-    // λ runs the other way round than the azimuth
-    const c = Math.cos(azimuthFromHeadingRad);
-    const s = -Math.sin(azimuthFromHeadingRad);
-    const real = (plus[0] + minusOne[0]) * c - (plus[1] - minusOne[1]) * s;
-    const imaginary = (plus[0] - minusOne[0]) * s + (plus[1] + minusOne[1]) * c;
-    return [inward + real / q + ut * c, along + imaginary - ut * s];
+  // λ runs the other way round than the azimuth: its sine changes sign
+  return {
+    outward: [inward, (plus[0] + minusOne[0]) / q + ut, (plus[1] - minusOne[1]) / q],
+    along: [along, plus[1] + minusOne[1], ut - (plus[0] - minusOne[0])],
   };
 }
 

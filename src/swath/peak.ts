@@ -38,7 +38,7 @@ export async function peakSwath(model: WindModel, grid: Grid, options: PeakOptio
   options.signal?.throwIfAborted();
   const plan = swathPlan(model, grid, { ...options, fitted: isFitted(model) });
   const threads = options.engine || cells < CELLS_FOR_THREADS ? null : await threadsFor(options.jobs);
-  const fields = newFields(cells, { shared: threads !== null, rivals: plan.rivals });
+  const fields = newFields(cells, { shared: threads !== null, rivals: plan.rivals, gusts: plan.surface !== null });
   const work = swathWork(plan, options.engine);
   const { tiles } = work;
   const helped: Tiles | null = threads?.start(plan, fields, tiles) ?? null;
@@ -64,13 +64,15 @@ export async function peakSwath(model: WindModel, grid: Grid, options: PeakOptio
     work.done();
   }
   const cautions = plan.tables.complete ? [] : [INCOMPLETE];
-  if (options.surface?.rowOf.some((row) => row > 0)) cautions.push(OPEN_SEA);
+  cautions.push(...(options.surface?.cautions ?? []));
+  if (plan.rivals && options.surface?.rowOf.some((row) => row > 0)) cautions.push(LAND_BY_TABLES);
   const own = helped ? unshared(fields) : fields;
   // what the few probes of the tables may miss in a field that was fitted, the plain model knows
   if (plan.rivals) {
     settlePeaks(model, grid, own, {
       fromMs: options.fromMs ?? model.path.startMs,
       toMs: options.toMs ?? model.path.endMs,
+      ...(options.surface ? { surface: options.surface } : {}),
     });
   }
   return swathFrom(model, grid, own, cautions);
@@ -88,15 +90,17 @@ function isFitted(model: WindModel): boolean {
 const INCOMPLETE =
   'the wind varies more around the centre than the fast tables hold: peaks were taken from the plain model at the times that the tables gave, to 0.05 m/s as far as was seen; hours may be off by more than 1 %';
 
-const OPEN_SEA = 'the winds are those over open sea everywhere: the fast swath does not take a surface map yet';
+const LAND_BY_TABLES =
+  'over land and near the coast the winds of this storm, which is fitted to observed radii, come from the fast tables alone; there peaks may be off by more than 0.05 m/s';
 
 /** Fields in memory of this thread alone, which every writer takes. */
-function unshared({ windMps, windFromDeg, peakTimeS, hours, rivalTimeS }: SwathFields): SwathFields {
+function unshared({ windMps, windFromDeg, peakTimeS, hours, gustMps, rivalTimeS }: SwathFields): SwathFields {
   return {
     windMps: windMps.slice(),
     windFromDeg: windFromDeg.slice(),
     peakTimeS: peakTimeS.slice(),
     hours: hours.map((field) => field.slice()),
+    gustMps: gustMps?.slice() ?? null,
     rivalTimeS,
   };
 }
@@ -122,8 +126,7 @@ function checkMemory(grid: Grid, cells: number): void {
 
 function swathFrom(model: WindModel, grid: Grid, fields: SwathFields, cautions: readonly string[]): Swath {
   const gust = gustFactorOf(model, 'at-sea');
-  const gustMps = new Float32Array(fields.windMps.length);
-  for (let k = 0; k < gustMps.length; k++) gustMps[k] = fields.windMps[k]! * gust;
+  const gustMps = fields.gustMps ?? fields.windMps.map((wind) => wind * gust);
   return {
     grid,
     windMps: fields.windMps,

@@ -1,3 +1,4 @@
+import type { SurfaceMap } from '../land/surface-map.js';
 import { type WindModel, windOf } from '../model/wind.js';
 import { cellCentre, type Grid, projection } from './grid.js';
 import type { SwathFields } from './kernel/work.js';
@@ -19,7 +20,7 @@ export function settlePeaks(
   model: WindModel,
   grid: Grid,
   fields: SwathFields,
-  period: { fromMs: number; toMs: number },
+  period: { fromMs: number; toMs: number; surface?: SurfaceMap },
 ): void {
   const { windMps, windFromDeg, peakTimeS, rivalTimeS } = fields;
   const originMs = model.path.startMs;
@@ -31,13 +32,19 @@ export function settlePeaks(
   // of two maxima the tables may have taken the lower one for the higher
   if (rivalTimeS) askAround(rivalTimeS, RIVAL_MIN);
   askAround(peakTimeS.slice(), BESIDE_MIN);
-  for (let k = 0; k < best.length; k++) if (best[k]! > 0) windMps[k] = best[k]!;
+  const { gustMps } = fields;
+  for (let k = 0; k < best.length; k++) {
+    if (!(best[k]! > 0)) continue;
+    if (gustMps) gustMps[k] = (gustMps[k]! * best[k]!) / windMps[k]!;
+    windMps[k] = best[k]!;
+  }
 
   /** Asks at minutes from each cell's time, and moves the peak's time to the highest wind. */
   function askAround(timeS: Float32Array, minutes: readonly number[]): void {
     const byMinute = new Map<number, number[]>();
     for (let k = 0; k < windMps.length; k++) {
-      if (!(windMps[k]! > 0) || Number.isNaN(timeS[k]!)) continue;
+      // over a surface of their own the tables' winds stay
+      if (!(windMps[k]! > 0) || Number.isNaN(timeS[k]!) || (period.surface?.rowOf[k] ?? 0) > 0) continue;
       for (const around of minutes) {
         const minute = Math.min(last, Math.max(first, Math.round(timeS[k]! / 60) + around));
         const cells = byMinute.get(minute);

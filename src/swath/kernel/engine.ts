@@ -14,6 +14,8 @@ export interface Engine {
   readonly release: () => void;
   /** peaks and hours of the first `count` points, whole groups of four: see `assembly/trace.ts` */
   readonly trace: (count: number) => void;
+  /** the same for winds (1) or gusts (2) over the points' own surfaces */
+  readonly traceLocal: (count: number, kind: 1 | 2) => void;
   /** numbers in single precision at a share of the way from those at `a` to those at `b`, whole groups of four */
   readonly mix: (to: number, a: number, b: number, share: number, count: number) => void;
   /** winds of the first `count` points at the moments in their column */

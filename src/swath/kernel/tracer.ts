@@ -30,6 +30,12 @@ export interface Tracer {
   readonly near: (centre: readonly [number, number, number], radiusM: number) => boolean;
   /** peaks and hours of the first `count` points */
   readonly trace: (count: number) => void;
+  /** the same for winds (1) or gusts (2) over the surfaces that {@link Tracer.setSurface} gave; `windMps` holds what each has at least */
+  readonly traceLocal: (count: number, kind: 1 | 2) => void;
+  /** a row of the surface's ratios for a point */
+  readonly setSurface: (point: number, row: number) => void;
+  /** other thresholds, as many as there were */
+  readonly setThresholds: (thresholdsMps: ArrayLike<number>) => void;
   /** winds of the first `count` points, each at the time that {@link Tracer.setTime} gave it */
   readonly winds: (count: number) => void;
   readonly setTime: (point: number, timeS: number) => void;
@@ -50,6 +56,8 @@ export function tracerOf(
     readonly thresholdsMps: readonly number[];
     /** maxima in time within this of the highest are looked at too, m/s; none by default */
     readonly rivalsMps?: number;
+    /** ratios of surfaces over the wind over open sea: rows of eight sectors */
+    readonly surface?: { readonly windRatio: Float64Array; readonly gustRatio: Float64Array };
     /** without the time and direction of the peak */
     readonly windOnly?: boolean;
   },
@@ -68,7 +76,8 @@ export function tracerOf(
       built.size * rounded(windBytes) +
       count * (64 + 24 + 8) +
       legs.length * (64 + 8) +
-      512,
+      16 * (options.surface?.windRatio.length ?? 0) +
+      1024,
   );
   const { f64, f32, i32 } = engine;
 
@@ -111,6 +120,7 @@ export function tracerOf(
     const { a, b, share } = serving.tables[slot]!;
     f64.set([built.get(a)!, built.get(b)!, share], (windTablesAt >> 3) + 3 * m);
   }
+  const surfaceAt = placeSurface();
   const legsAt = engine.allocate(8 * LEG_NUMBERS * legs.length);
   for (const [number, leg] of legs.entries()) {
     const fineS = leg.fineMs / 1000;
@@ -147,9 +157,11 @@ export function tracerOf(
     ],
     at.STORM >> 3,
   );
-  f32
-    .fill(Number.POSITIVE_INFINITY, at.LEVELS >> 2, (at.LEVELS >> 2) + at.MOST_THRESHOLDS)
-    .set(thresholdsMps, at.LEVELS >> 2);
+  const setThresholds = (levels: ArrayLike<number>): void => {
+    const first = at.LEVELS >> 2;
+    f32.fill(Number.POSITIVE_INFINITY, first, first + at.MOST_THRESHOLDS).set(levels, first);
+  };
+  setThresholds(thresholdsMps);
   const taperFromM = (1 - TAPER_SHARE) * outerRadiusM;
   const flatM = EARTH_RADIUS_M * Math.sin(Math.min(Math.PI / 2, taperFromM / EARTH_RADIUS_M));
   f32.set([flatM * flatM, outerRadiusM, 1 / (outerRadiusM - taperFromM), 1 / (6 * EARTH_RADIUS_M ** 2)], at.FADE >> 2);
@@ -165,19 +177,37 @@ export function tracerOf(
     Float64Array,
     Float64Array,
   ];
-  const [rivalMps, rivalMoments] = [column(at.RIVAL), column(at.RIVAL_MOMENT)];
+  const [rivalMps, rivalMoments, surfaces] = [column(at.RIVAL), column(at.RIVAL_MOMENT), column(at.SURFACE)];
   const originMs = timeMsOf(timeline, 0);
   const quads = (points: number): number => {
     const whole = (points + 3) & ~3;
     // the last ones once more
-    for (let i = points; i < whole; i++) for (const part of [x, y, z, moments, windMps]) part[i] = part[points - 1]!;
+    for (let i = points; i < whole; i++)
+      for (const part of [x, y, z, moments, windMps, surfaces]) part[i] = part[points - 1]!;
     return whole;
   };
+
+  /** eight ratios of the wind, then eight of the gust, row after row */
+  function placeSurface(): number {
+    const { surface } = options;
+    if (!surface) return 0;
+    const address = engine.allocate(16 * surface.windRatio.length);
+    for (let i = 0, to = address >> 3; i < surface.windRatio.length; i += 8, to += 16) {
+      f64.set(surface.windRatio.subarray(i, i + 8), to);
+      f64.set(surface.gustRatio.subarray(i, i + 8), to + 8);
+    }
+    return address;
+  }
 
   return {
     x,
     y,
     z,
+    setThresholds,
+    traceLocal: (points, kind) => engine.traceLocal(quads(points), kind),
+    setSurface: (point, row) => {
+      surfaces[point] = surfaceAt + 128 * row;
+    },
     windMps,
     leastM: column(at.LEAST),
     crossings: column(at.CROSSINGS),

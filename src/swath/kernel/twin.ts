@@ -2,7 +2,7 @@ import { allocator, type Engine, viewsOf } from './engine.js';
 import { HEAP } from './places.js';
 import { mix } from './twin-lanes.js';
 import { bind } from './twin-memory.js';
-import { trace, winds } from './twin-trace.js';
+import { trace, traceLocal, winds } from './twin-trace.js';
 
 /** The hot loops in plain JavaScript: the same results as WebAssembly, bit for bit. */
 export function twinEngine(): Engine {
@@ -28,6 +28,10 @@ export function twinEngine(): Engine {
     trace(count) {
       bind(views);
       trace(count);
+    },
+    traceLocal(count, kind) {
+      bind(views);
+      traceLocal(count, kind);
     },
     mix(to, a, b, share, count) {
       bind(views);

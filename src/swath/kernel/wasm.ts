@@ -23,10 +23,8 @@ export function wasmEngine(): Engine | null {
   const module = kernelModule();
   if (!module) return null;
   const memory = new WebAssembly.Memory({ initial: Math.ceil(HEAP / PAGE) + 1, maximum: 65_536 });
-  const { trace, winds, mix } = new WebAssembly.Instance(module, { env: { memory } }).exports as unknown as Pick<
-    Engine,
-    'trace' | 'winds' | 'mix'
-  >;
+  const { trace, traceLocal, winds, mix } = new WebAssembly.Instance(module, { env: { memory } })
+    .exports as unknown as Pick<Engine, 'trace' | 'traceLocal' | 'winds' | 'mix'>;
   let views = viewsOf(memory.buffer);
   return {
     name: 'webassembly',
@@ -47,6 +45,7 @@ export function wasmEngine(): Engine | null {
       views = viewsOf(memory.buffer);
     },
     trace,
+    traceLocal,
     winds,
     mix,
   };

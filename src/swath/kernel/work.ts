@@ -1,10 +1,12 @@
+import type { SurfaceMap } from '../../land/surface-map.js';
 import type { WindModel } from '../../model/wind.js';
-import { HOURS_THRESHOLDS_MPS } from '../exact.js';
+import { gustFactorOf, HOURS_THRESHOLDS_MPS } from '../exact.js';
 import type { Grid } from '../grid.js';
 import type { Engine } from './engine.js';
+import { eachCell, overLand } from './over-land.js';
 import { type StormTables, stormTables } from './storm-tables.js';
 import { tileRunner } from './tile.js';
-import { placingOf, TILE_EDGE } from './tiling.js';
+import { placingOf } from './tiling.js';
 import { type Timeline, timelineOf } from './timeline.js';
 import { tracerOf } from './tracer.js';
 import { newEngine } from './wasm.js';
@@ -18,6 +20,8 @@ export interface SwathFields {
   readonly windFromDeg: Float32Array;
   readonly peakTimeS: Float32Array;
   readonly hours: readonly Float32Array[];
+  /** where a surface is given */
+  readonly gustMps: Float32Array | null;
   /** time of the second highest maximum in time, where it was asked for */
   readonly rivalTimeS: Float32Array | null;
 }
@@ -25,7 +29,7 @@ export interface SwathFields {
 /** @param shared whether several threads write into them */
 export function newFields(
   cells: number,
-  { shared, rivals = false }: { shared: boolean; rivals?: boolean },
+  { shared, rivals = false, gusts = false }: { shared: boolean; rivals?: boolean; gusts?: boolean },
 ): SwathFields {
   const field = (): Float32Array =>
     shared ? new Float32Array(new SharedArrayBuffer(4 * cells)) : new Float32Array(cells);
@@ -34,6 +38,7 @@ export function newFields(
     windFromDeg: field().fill(Number.NaN),
     peakTimeS: field().fill(Number.NaN),
     hours: HOURS_THRESHOLDS_MPS.map(field),
+    gustMps: gusts ? field() : null,
     rivalTimeS: rivals ? field().fill(Number.NaN) : null,
   };
 }
@@ -49,12 +54,21 @@ export interface SwathPlan {
   readonly hours: boolean;
   /** whether other maxima in time than the highest are looked for as well, at every cell */
   readonly rivals: boolean;
+  readonly surface: SurfaceMap | null;
+  /** gust over the mean wind over open sea */
+  readonly gustAtSea: number;
 }
 
 export function swathPlan(
   model: WindModel,
   grid: Grid,
-  options: { readonly fromMs?: number; readonly toMs?: number; readonly peakOnly?: boolean; readonly fitted?: boolean },
+  options: {
+    readonly fromMs?: number;
+    readonly toMs?: number;
+    readonly peakOnly?: boolean;
+    readonly fitted?: boolean;
+    readonly surface?: SurfaceMap;
+  },
 ): SwathPlan {
   const fromMs = options.fromMs ?? model.path.startMs;
   const timeline = timelineOf(model, fromMs, options.toMs ?? model.path.endMs);
@@ -67,6 +81,8 @@ export function swathPlan(
     outerRadiusM: model.outerRadiusM,
     offsetS: (fromMs - model.path.startMs) / 1000,
     hours: options.peakOnly !== true,
+    surface: options.surface ?? null,
+    gustAtSea: gustFactorOf(model, 'at-sea'),
   };
 }
 
@@ -88,34 +104,34 @@ export function swathWork({ grid, timeline, tables, ...plan }: SwathPlan, given?
     outerRadiusM: plan.outerRadiusM,
     thresholdsMps,
     rivalsMps: plan.rivals ? RIVALS_MPS : 0,
+    ...(plan.surface ? { surface: plan.surface } : {}),
   });
   const placing = placingOf(grid);
   const runner = tileRunner(tracer, placing, thresholdsMps, { everyCell: plan.rivals });
+  const onLand = plan.surface
+    ? overLand(tracer, placing, plan.surface, { thresholdsMps, offsetS: plan.offsetS })
+    : null;
   const { nx, ny } = grid;
   return {
     tiles: placing.columns * placing.rows,
     done: () => {
       if (!given) idle.push(engine);
     },
-    runTile(tile, fields) {
-      const column = tile % placing.columns;
-      const row = Math.trunc(tile / placing.columns);
-      if (!runner.run({ column, row, nx, ny })) return;
-      const width = Math.min(TILE_EDGE, nx - column * TILE_EDGE);
-      const height = Math.min(TILE_EDGE, ny - row * TILE_EDGE);
+    runTile(number, fields) {
+      const tile = { column: number % placing.columns, row: Math.trunc(number / placing.columns), nx, ny };
+      if (!runner.run(tile)) return;
       const { windMps, timeS, fromDeg, hours, rivalTimeS } = runner.fields;
-      for (let j = 0; j < height; j++) {
-        let k = (row * TILE_EDGE + j) * nx + column * TILE_EDGE;
-        const from = j * (TILE_EDGE + 1);
-        for (let at = from; at < from + width; at++, k++) {
-          if (!(windMps[at]! > 0)) continue;
-          fields.windMps[k] = windMps[at]!;
-          fields.peakTimeS[k] = plan.offsetS + timeS[at]!;
-          fields.windFromDeg[k] = fromDeg[at]!;
-          if (fields.rivalTimeS) fields.rivalTimeS[k] = plan.offsetS + rivalTimeS[at]!;
-          for (let h = 0; h < hours.length; h++) fields.hours[h]![k] = hours[h]![at]!;
-        }
-      }
+      eachCell(tile, (k, at) => {
+        const wind = windMps[at]!;
+        if (!(wind > 0)) return;
+        fields.windMps[k] = wind;
+        fields.peakTimeS[k] = plan.offsetS + timeS[at]!;
+        fields.windFromDeg[k] = fromDeg[at]!;
+        if (fields.gustMps) fields.gustMps[k] = fields.windMps[k]! * plan.gustAtSea;
+        if (fields.rivalTimeS) fields.rivalTimeS[k] = plan.offsetS + rivalTimeS[at]!;
+        for (let h = 0; h < hours.length; h++) fields.hours[h]![k] = hours[h]![at]!;
+      });
+      onLand?.(tile, runner.fields, fields);
     },
   };
 }

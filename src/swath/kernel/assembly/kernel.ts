@@ -1,3 +1,3 @@
 // What the kernel exports.
-export { trace, winds } from './trace';
+export { trace, traceLocal, winds } from './trace';
 export { mix } from './lanes';

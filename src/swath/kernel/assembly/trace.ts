@@ -4,7 +4,7 @@ import { bitsOf, f32At, f64At, i32At, root, setF32, setF64, whole, zeros } from 
 import { busy, dips, peaks, sampleQuad, sides } from './lanes';
 import {
   AHEAD, COLUMN, CROSSINGS, EAST, EXTREMES, FADE, FRAMES, FRESH, GROUPS, HELD, HOURS, LAST_ROW, LEAST, LEGS, LEVELS, LOOKED, MOMENT, MOMENTS,
-  NEAR, NEED, NONE, NORTH, OUTER, PARTS, QUAD, RIVAL, RIVALS, RIVAL_MOMENT, RUNS, RUN_COUNT, STORM, TAPER, THRESHOLDS, TIMES, WIND, WINDS, WIND_HARMONICS, WIND_TABLES, X, Y, Z,
+  NEAR, NEED, NONE, NORTH, OUTER, PARTS, QUAD, RIVAL, RIVALS, RIVAL_MOMENT, RUNS, RUN_COUNT, STORM, SURFACE, TAPER, THRESHOLDS, TIMES, WIND, WINDS, WIND_HARMONICS, WIND_TABLES, X, Y, Z,
 } from './places';
 
 /** A step moves the storm by at most this share of the distance from it (or of its radius of maximum wind). */
@@ -50,6 +50,11 @@ const RIVAL_MPS: f64 = 0.6;
 const LOOKS: i32 = 8;
 /** Within this of a level the wind is a straight line in time, m/s. */
 const CROSSED_MPS: f64 = 0.01;
+
+/** What is traced: the wind over open sea, over the point's surface, or its gust. */
+const SEA: i32 = 0;
+const GUST: i32 = 2;
+let kind: i32 = SEA;
 
 // what the storm is made of
 let frames: i32 = 0;
@@ -122,6 +127,17 @@ export function trace(count: i32): void {
   for (let p = 0; p < count; p += 4) traceQuad(p);
 }
 
+/**
+ * The same for winds (1) or gusts (2) over the points' own surfaces. The column of winds holds what a point has at least:
+ * nothing below is looked for.
+ */
+export function traceLocal(count: i32, which: i32): void {
+  begin();
+  kind = which;
+  for (let p = 0; p < count; p += 4) traceQuad(p);
+  kind = SEA;
+}
+
 /** Winds of the first `count` points, each at the moment that its column holds: speed and parts. */
 export function winds(count: i32): void {
   begin();
@@ -162,8 +178,72 @@ function column(at: i32, stride: i32): f64 {
   return weight0 * f32At(at) + weight1 * f32At(at + stride) + weight2 * f32At(at + 2 * stride);
 }
 
-/** Wind of a point at a moment or between two. */
+/** What is traced of a point at a moment or between two, m/s. */
 function speedAt(p: i32, moment: f64): f64 {
+  return kind === SEA ? seaAt(p, moment) : localAt(p, moment, seaAt(p, moment));
+}
+
+/** Wind or gust over the surface of a point: that over open sea times the ratio of the sectors that it comes from. */
+function localAt(p: i32, moment: f64, seaMps: f64): f64 {
+  if (!(seaMps > 0)) return 0;
+  windAt(p, moment);
+  turn(p, moment);
+  const row = whole(f64At(SURFACE + 8 * p)) + (kind === GUST ? 64 : 0);
+  // as the surface map has it: between a cardinal sector and the diagonal one beside it
+  const fromEast = -windEast;
+  const fromNorth = -windNorth;
+  const e = fromEast < 0 ? -fromEast : fromEast;
+  const n = fromNorth < 0 ? -fromNorth : fromNorth;
+  const diagonal = fromNorth >= 0 ? (fromEast >= 0 ? 1 : 7) : fromEast >= 0 ? 3 : 5;
+  const cardinal = n >= e ? (fromNorth >= 0 ? 0 : 4) : fromEast >= 0 ? 2 : 6;
+  const most = e > n ? e : n;
+  const share = most > 0 ? (e < n ? e : n) / most : 0;
+  const ratio = f64At(row + 8 * cardinal);
+  return seaMps * (ratio + share * (f64At(row + 8 * diagonal) - ratio));
+}
+
+/** Turns a wind from the frame at the centre to that at the point, as the great circle turns on the way; its size is lost. */
+function turn(p: i32, moment: f64): void {
+  let m = whole(moment);
+  if (m > lastMoment) m = lastMoment;
+  const w = moment - <f64>m;
+  const a = frames + (m << 6);
+  const b = w > 0 ? a + 64 : a;
+  const e0 = f64At(a) + w * (f64At(b) - f64At(a));
+  const e1 = f64At(a + 8) + w * (f64At(b + 8) - f64At(a + 8));
+  const n0 = f64At(a + 16) + w * (f64At(b + 16) - f64At(a + 16));
+  const n1 = f64At(a + 24) + w * (f64At(b + 24) - f64At(a + 24));
+  const n2 = f64At(a + 32) + w * (f64At(b + 32) - f64At(a + 32));
+  // the centre is square to its east and north
+  let cx = e1 * n2;
+  let cy = -e0 * n2;
+  let cz = e0 * n1 - e1 * n0;
+  const size = root(cx * cx + cy * cy + cz * cz);
+  cx /= size;
+  cy /= size;
+  cz /= size;
+  const x = f64At(X + 8 * p);
+  const y = f64At(Y + 8 * p);
+  const z = f64At(Z + 8 * p);
+  const flat = root(x * x + y * y);
+  const centreFlat = root(cx * cx + cy * cy);
+  if (flat < 1e-9 || centreFlat < 1e-9) return;
+  const side = cx * y - cy * x;
+  const along = cx * x + cy * y;
+  const outEast = side / centreFlat;
+  const outNorth = z * centreFlat - (cz * along) / centreFlat;
+  if (outEast * outEast + outNorth * outNorth < 1e-14) return;
+  const onEast = side / flat;
+  const onNorth = (z * along) / flat - cz * flat;
+  // as complex numbers, north real: times the way's direction at the point, divided by that at the centre
+  const real = windNorth * onNorth - windEast * onEast;
+  const imaginary = windNorth * onEast + windEast * onNorth;
+  windNorth = real * outNorth + imaginary * outEast;
+  windEast = imaginary * outNorth - real * outEast;
+}
+
+/** Wind of a point over open sea at a moment or between two. */
+function seaAt(p: i32, moment: f64): f64 {
   let m = whole(moment);
   if (m > lastMoment) m = lastMoment;
   const w = moment - <f64>m;
@@ -221,15 +301,34 @@ function squaredAt(at: i32, east: f64, north: f64, s2: f64): f64 {
   return value;
 }
 
-/** Parts east and north of a point's wind at a moment, in the frame at the centre. */
+// parts of the last wind, in the frame at the centre
+let windEast: f64 = 0;
+let windNorth: f64 = 0;
+
+/** Parts east and north of a point's wind at a moment, into its columns. */
 function partsAt(p: i32, moment: f64): void {
-  let m = whole(moment + 0.5);
-  if (m > lastMoment) m = lastMoment;
-  const frame = frames + (m << 6);
+  windAt(p, moment);
+  setF64(EAST + 8 * p, windEast);
+  setF64(NORTH + 8 * p, windNorth);
+}
+
+/** Parts of a point's wind at a moment or between two, with the table of the nearer one. */
+function windAt(p: i32, moment: f64): void {
+  let lower = whole(moment);
+  if (lower > lastMoment) lower = lastMoment;
+  const between = moment - <f64>lower;
+  const a0 = frames + (lower << 6);
+  const b0 = between > 0 ? a0 + 64 : a0;
   const x = f64At(X + 8 * p);
   const y = f64At(Y + 8 * p);
-  const east = x * f64At(frame) + y * f64At(frame + 8);
-  const north = x * f64At(frame + 16) + y * f64At(frame + 24) + f64At(Z + 8 * p) * f64At(frame + 32);
+  const z = f64At(Z + 8 * p);
+  const east = x * (f64At(a0) + between * (f64At(b0) - f64At(a0))) + y * (f64At(a0 + 8) + between * (f64At(b0 + 8) - f64At(a0 + 8)));
+  const north =
+    x * (f64At(a0 + 16) + between * (f64At(b0 + 16) - f64At(a0 + 16))) +
+    y * (f64At(a0 + 24) + between * (f64At(b0 + 24) - f64At(a0 + 24))) +
+    z * (f64At(a0 + 32) + between * (f64At(b0 + 32) - f64At(a0 + 32)));
+  const maxWind = f64At(a0 + 40) + between * (f64At(b0 + 40) - f64At(a0 + 40));
+  const m = between < 0.5 ? lower : lower + 1;
   const s2 = east * east + north * north;
   const row = rowOf(s2);
   const from = windTables + 24 * m;
@@ -265,9 +364,8 @@ function partsAt(p: i32, moment: f64): void {
     u += product * (ua + w * (column(b + k, stride) - ua));
     v += product * (va + w * (column(b + part + k, stride) - va));
   }
-  const maxWind = f64At(frame + 40);
-  setF64(EAST + 8 * p, u * maxWind);
-  setF64(NORTH + 8 * p, v * maxWind);
+  windEast = u * maxWind;
+  windNorth = v * maxWind;
 }
 
 /** Four points that lie near each other, through the legs of the runs. */
@@ -282,7 +380,7 @@ function traceQuad(p: i32): void {
     setF32(QUAD + 4 * i, f64At(X + at) - cx);
     setF32(QUAD + 16 + 4 * i, f64At(Y + at) - cy);
     setF32(QUAD + 32 + 4 * i, f64At(Z + at) - cz);
-    setF32(NEED + 4 * i, 0);
+    setF32(NEED + 4 * i, kind === SEA ? 0 : f64At(WIND + at));
     setF32(NEAR + 4 * i, 1e30);
     setF32(NONE + 4 * i, -1);
     setF64(WIND + at, 0);
@@ -319,7 +417,7 @@ function traceQuad(p: i32): void {
       const east0 = cx * f64At(frame) + cy * f64At(frame + 8);
       const north0 = cx * f64At(frame + 16) + cy * f64At(frame + 24) + cz * f64At(frame + 32);
       sampleQuad(c, frame, east0, north0, whole(f64At(frame + 56)), groups, lastRow);
-      const wind = f32At(EXTREMES + 4);
+      const wind = kind === SEA ? f32At(EXTREMES + 4) : localQuad(p, c, <f64>m);
       if (skipped > 3 && wind >= IDLE_BELOW * lowestLevel) {
         // too far for a wind that a threshold is near to: once more with a step of the usual length
         m = from + (skipped >> 2);
@@ -400,6 +498,17 @@ function traceQuad(p: i32): void {
     setF64(LEAST + 8 * (p + i), root(f32At(NEAR + 4 * i)));
     if (parts && f64At(WIND + 8 * (p + i)) > 0) partsAt(p + i, f64At(MOMENT + 8 * (p + i)));
   }
+}
+
+/** Puts what is traced over the points' surfaces in the place of their winds over open sea; gives the highest. */
+function localQuad(p: i32, winds: i32, moment: f64): f64 {
+  let most: f64 = 0;
+  for (let i = 0; i < 4; i++) {
+    const local = localAt(p + i, moment, f32At(winds + 4 * i));
+    setF32(winds + 4 * i, local);
+    if (local > most) most = local;
+  }
+  return most;
 }
 
 function least(a: f64, b: f64): f64 {

@@ -1,0 +1,153 @@
+import { RADIANS } from '../../earth.js';
+import { type SurfaceMap, sectorValue } from '../../land/surface-map.js';
+import { SECTORS } from '../../land/upwind.js';
+import { MOST_POINTS } from './places.js';
+import { type TileFields, tileRunner } from './tile.js';
+import { type Placing, TILE_EDGE } from './tiling.js';
+import type { Tracer } from './tracer.js';
+import type { SwathFields } from './work.js';
+
+/** Cells of a tile from which on the hours of one ratio are counted together. */
+const TOGETHER = 48;
+/** Gusts this near to the highest of their surface are not looked for, as a share. */
+const NEAR = 1e-9;
+
+/** A tile's place in the grid. */
+export interface TilePlace {
+  readonly column: number;
+  readonly row: number;
+  readonly nx: number;
+  readonly ny: number;
+}
+
+/**
+ * What the surface makes of a tile over open sea. A wind's ratio that is the same from all sides scales the peak, and the
+ * hours are those above the threshold over the ratio; where ratios differ with the direction the cell is followed through
+ * the storm's life with the direction of each moment, for the wind and for the gust.
+ * @param offsetS from the track's first fix to the timeline's start, s
+ */
+export function overLand(
+  tracer: Tracer,
+  placing: Placing,
+  surface: SurfaceMap,
+  { thresholdsMps, offsetS }: { readonly thresholdsMps: readonly number[]; readonly offsetS: number },
+): (tile: TilePlace, sea: TileFields, fields: SwathFields) => void {
+  const { rowOf, gustRatio } = surface;
+  const winds = evenRatios(surface.windRatio);
+  const gusts = evenRatios(gustRatio);
+  const highest = highestRatios(gustRatio);
+  const ownLevels = [...thresholdsMps];
+  const own = tileRunner(tracer, placing, ownLevels);
+
+  return (tile, sea, fields) => {
+    const gustMps = fields.gustMps!;
+    const windCells: number[] = [];
+    const gustCells: number[] = [];
+    const scaled = new Map<number, number[]>();
+    eachCell(tile, (k, at) => {
+      const row = rowOf[k]!;
+      const peak = sea.windMps[at]!;
+      if (row === 0 || !(peak > 0)) return;
+      const ratio = winds[row]!;
+      if (Number.isNaN(ratio)) {
+        windCells.push(k);
+        gustCells.push(k);
+        gustMps[k] = 0;
+        return;
+      }
+      fields.windMps[k] = peak * ratio;
+      if (ratio !== 1 && thresholdsMps.length > 0) {
+        const list = scaled.get(ratio);
+        if (list) list.push(k);
+        else scaled.set(ratio, [k]);
+      }
+      const from = sea.fromDeg[at]! * RADIANS;
+      const even = gusts[row]!;
+      const here = Number.isNaN(even) ? sectorValue(gustRatio, row, -Math.sin(from), -Math.cos(from)) : even;
+      gustMps[k] = peak * here;
+      if (here < highest[row]! * (1 - NEAR)) gustCells.push(k);
+    });
+    for (const [ratio, cells] of scaled) {
+      if (cells.length < TOGETHER) windCells.push(...cells);
+      else countTogether(tile, ratio, cells, fields);
+    }
+    trace(1, windCells, tile, (i, k) => {
+      const wind = tracer.windMps[i]!;
+      fields.windMps[k] = wind;
+      fields.peakTimeS[k] = wind > 0 ? offsetS + tracer.timeS(i) : Number.NaN;
+      fields.windFromDeg[k] = wind > 0 ? tracer.fromDeg(i) : Number.NaN;
+      for (let h = 0; h < thresholdsMps.length; h++)
+        fields.hours[h]![k] = wind >= thresholdsMps[h]! ? tracer.hours[h]![i]! : 0;
+    });
+    trace(
+      2,
+      gustCells,
+      tile,
+      (i, k) => {
+        gustMps[k] = Math.max(gustMps[k]!, tracer.windMps[i]!);
+      },
+      gustMps,
+    );
+  };
+
+  /** Hours of cells with one ratio: those over open sea above the thresholds over it. */
+  function countTogether(tile: TilePlace, ratio: number, cells: readonly number[], fields: SwathFields): void {
+    for (let h = 0; h < thresholdsMps.length; h++) ownLevels[h] = thresholdsMps[h]! / ratio;
+    tracer.setThresholds(ownLevels);
+    own.run(tile);
+    tracer.setThresholds(thresholdsMps);
+    for (const k of cells) {
+      const at = placeIn(tile, k);
+      for (let h = 0; h < thresholdsMps.length; h++) fields.hours[h]![k] = own.fields.hours[h]![at]!;
+    }
+  }
+
+  /** Follows cells over their surfaces; `atLeast` holds what each has. */
+  function trace(
+    kind: 1 | 2,
+    cells: readonly number[],
+    { nx }: TilePlace,
+    take: (point: number, cell: number) => void,
+    atLeast?: Float32Array,
+  ): void {
+    for (let from = 0; from < cells.length; from += MOST_POINTS) {
+      const some = cells.slice(from, from + MOST_POINTS);
+      for (const [i, k] of some.entries()) {
+        placing.place(tracer, i, k % nx, Math.trunc(k / nx));
+        tracer.setSurface(i, rowOf[k]!);
+        tracer.windMps[i] = atLeast?.[k] ?? 0;
+      }
+      tracer.traceLocal(some.length, kind);
+      for (const [i, k] of some.entries()) take(i, k);
+    }
+  }
+}
+
+/** Visits the cells of a tile: index in the grid, index in the tile's fields. */
+export function eachCell({ column, row, nx, ny }: TilePlace, visit: (cell: number, at: number) => void): void {
+  const width = Math.min(TILE_EDGE, nx - column * TILE_EDGE);
+  const height = Math.min(TILE_EDGE, ny - row * TILE_EDGE);
+  for (let j = 0; j < height; j++) {
+    const k = (row * TILE_EDGE + j) * nx + column * TILE_EDGE;
+    const at = j * (TILE_EDGE + 1);
+    for (let i = 0; i < width; i++) visit(k + i, at + i);
+  }
+}
+
+function placeIn({ column, row, nx }: TilePlace, k: number): number {
+  return (Math.trunc(k / nx) - row * TILE_EDGE) * (TILE_EDGE + 1) + (k % nx) - column * TILE_EDGE;
+}
+
+/** The ratio of each row that is the same from all sides; NaN where it is not. */
+function evenRatios(table: Float64Array): Float64Array {
+  return Float64Array.from({ length: table.length / SECTORS }, (_, row) => {
+    const ratios = table.subarray(row * SECTORS, (row + 1) * SECTORS);
+    return ratios.every((ratio) => ratio === ratios[0]) ? ratios[0]! : Number.NaN;
+  });
+}
+
+function highestRatios(table: Float64Array): Float64Array {
+  return Float64Array.from({ length: table.length / SECTORS }, (_, row) =>
+    Math.max(...table.subarray(row * SECTORS, (row + 1) * SECTORS)),
+  );
+}

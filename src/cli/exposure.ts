@@ -42,11 +42,12 @@ import {
 } from './choices.js';
 import { type Console, makeConsole, table } from './console.js';
 import { curveOf, curveWind, type DamageOptions } from './damage.js';
+import { decayOnly, type LandOptions, landOfRun } from './land.js';
 import { readStorm } from './storm.js';
 
 const FORMATS = ['csv', 'geojson', 'json'] as const;
 
-export interface ExposureOptions extends CommonOptions, ModelOptions, TrackOptions, DamageOptions {
+export interface ExposureOptions extends CommonOptions, ModelOptions, TrackOptions, DamageOptions, LandOptions {
   readonly values?: string;
   readonly zones?: string;
   readonly zoneValues?: string;
@@ -77,7 +78,9 @@ export async function exposure(file: string, assetsFile: string, options: Exposu
   const recipe = await recipeOf(options);
   const gustFactor = gustAtSea(recipe);
   const { track, inputs } = await readStorm(file, options);
-  const model = windModel(track, recipe, {
+  const known = await landOfRun(options, 2000);
+  const model = windModel(track, known ? decayOnly(recipe) : recipe, {
+    ...(known ? { land: known.land } : {}),
     lowestLevelMps: levelsMps[0]! / (options.of === 'gust' ? gustFactor : 1),
   });
   const period = periodOf(options.from, options.to, model.path, ['--from', '--to']);
@@ -153,6 +156,7 @@ export async function exposure(file: string, assetsFile: string, options: Exposu
         recipe: recipeDocument(recipe),
         inputs: [
           ...inputs,
+          ...(known?.inputs ?? []),
           read.record,
           ...(zoneFile ? [zoneFile.record] : []),
           ...(damage?.input ? [damage.input] : []),

@@ -116,6 +116,10 @@ export async function runProgram(argv: readonly string[]): Promise<void> {
     .option('--formats <LIST>', 'geojson, cog, csv, netcdf, kml, flatgeobuf, svg, png, html', 'geojson,cog')
     .option('--force', 'replace existing files')
     .option('--jobs <N>', 'workers (all cores)')
+    .option('--land <LAND>', 'none, natural-earth, or a file of GeoJSON polygons: surface and decay over land', 'none')
+    .option('--roughness <FILE>', 'GeoTIFF of roughness lengths, m, or of classes')
+    .option('--roughness-classes <FILE>', 'CSV that maps the classes: class,z0_m')
+    .option('--surface-bands', 'also land share, exposure class and roughness in peak.tif')
     .option('--places <FILE>', 'places to show on the map (CSV or GeoJSON)')
     .option('--zones <FILE>', 'zones to show on the map (GeoJSON polygons)')
     .action(async (file, options) => (await import('./swath.js')).swath(file, options));
@@ -131,6 +135,7 @@ export async function runProgram(argv: readonly string[]): Promise<void> {
   )
     .option('--levels <LIST>', 'winds whose hours are counted', '34kt,50kt,64kt')
     .option('--every <PERIOD>', 'also the series, at this interval (min)')
+    .option('--land <LAND>', 'none, natural-earth, or a file of GeoJSON polygons: decay of the storm over land', 'none')
     .option('--from <TIME>', 'first time of the track to take')
     .option('--to <TIME>', 'last time of the track to take')
     .option('--strict', 'refuse rows that would otherwise be skipped')
@@ -155,6 +160,7 @@ export async function runProgram(argv: readonly string[]): Promise<void> {
       ),
     ),
   )
+    .option('--land <LAND>', 'none, natural-earth, or a file of GeoJSON polygons: decay of the storm over land', 'none')
     .option('--values <LIST>', 'columns of values (every column whose first cell is a number)')
     .option('--zones <FILE>', 'zones as GeoJSON polygons, with values or without')
     .option('--zone-values <LIST>', 'properties of the zones that are values (every number)')

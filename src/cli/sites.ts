@@ -14,9 +14,10 @@ import { placesBox } from '../write/places-box.js';
 import { CAUTION } from '../write/provenance.js';
 import { type CommonOptions, levelsOf, type ModelOptions, periodOf, recipeOf, type TrackOptions } from './choices.js';
 import { makeConsole, table } from './console.js';
+import { decayOnly, type LandOptions, landOfRun } from './land.js';
 import { readStorm } from './storm.js';
 
-interface SitesOptions extends CommonOptions, ModelOptions, TrackOptions {
+interface SitesOptions extends CommonOptions, ModelOptions, TrackOptions, LandOptions {
   readonly levels: string;
   readonly every?: string;
   readonly from?: string;
@@ -46,7 +47,11 @@ export async function sites(file: string, placesFile: string, options: SitesOpti
     onPoint: (point) => places.push(point),
     ...(options.strict ? { strict: true } : {}),
   });
-  const model = windModel(track, recipe, { lowestLevelMps: levelsMps[0]! });
+  const known = await landOfRun(options, 2000);
+  const model = windModel(track, known ? decayOnly(recipe) : recipe, {
+    lowestLevelMps: levelsMps[0]!,
+    ...(known ? { land: known.land } : {}),
+  });
   const drawn = options.as === 'svg' || options.as === 'png';
   const step = everyS ?? (drawn ? 600 : undefined);
   const records = siteRecords(model, places, {
@@ -79,7 +84,7 @@ export async function sites(file: string, placesFile: string, options: SitesOpti
       schema: 'galewake-sites/1',
       version: VERSION,
       storm: { id: track.id, name: track.name },
-      inputs: [...inputs, read.record],
+      inputs: [...inputs, ...(known?.inputs ?? []), read.record],
       recipe: recipeDocument(recipe),
       averaging_s: model.averagingS,
       gust_duration_s: recipe['gust.duration_s'],

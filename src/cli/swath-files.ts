@@ -2,6 +2,7 @@ import { poolDeflate } from '../io/deflate.js';
 import { OutputFolder } from '../io/output.js';
 import { safeName } from '../io/safe-name.js';
 import type { PolygonCoordinates } from '../isotach/area.js';
+import type { SurfaceMap } from '../land/surface-map.js';
 import type { WindModel } from '../model/wind.js';
 import type { MapInput } from '../picture/map-input.js';
 import type { Swath } from '../swath/swath.js';
@@ -38,6 +39,8 @@ export interface SwathResult {
   /** what the user wants to see on the map */
   readonly places: NonNullable<MapInput['places']>;
   readonly zones: NonNullable<MapInput['zones']>;
+  /** the surface, where its bands are wanted in the raster */
+  readonly surface: SurfaceMap | null;
 }
 
 /**
@@ -111,7 +114,11 @@ async function contentOf(name: string, result: SwathResult): Promise<Iterable<Ui
     case 'track.geojson':
       return [tracksToGeojson([model.completed.track])];
     case 'peak.tif':
-      return peakTif(swath, { provenance, deflate: poolDeflate });
+      return peakTif(swath, {
+        provenance,
+        deflate: poolDeflate,
+        ...(result.surface ? { surface: result.surface } : {}),
+      });
     case 'peak.csv':
       return peakCsv(swath);
     case 'peak.nc':

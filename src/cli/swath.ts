@@ -24,10 +24,12 @@ import {
 } from './choices.js';
 import { type Console, makeConsole, table } from './console.js';
 import { drawnOf } from './drawn.js';
+import { type LandOptions, landNotes, landOfRun, surfaceOfRun, WORLD } from './land.js';
 import { readStorm } from './storm.js';
 import { FORMATS, openFolder, type SwathResult, writeSwath } from './swath-files.js';
 
-export interface SwathCommandOptions extends CommonOptions, ModelOptions, TrackOptions {
+export interface SwathCommandOptions extends CommonOptions, ModelOptions, TrackOptions, LandOptions {
+  readonly surfaceBands?: boolean;
   readonly from?: string;
   readonly to?: string;
   readonly levels: string;
@@ -57,12 +59,16 @@ export async function swath(file: string, options: SwathCommandOptions): Promise
   const drawn = await drawnOf(options);
   const readAt = performance.now();
 
-  const model = windModel(track, recipe, { lowestLevelMps: levels[0]! });
+  const known = await landOfRun(options, cellMOf(options));
+  const model = windModel(track, recipe, { lowestLevelMps: levels[0]!, ...(known ? { land: known.land } : {}) });
   const gust = gustFactor('at-sea', { durationS: recipe['gust.duration_s'] as number, periodS: model.averagingS });
   const period = periodOf(options.from, options.to, model.path, ['--from', '--to']);
   const grid = gridOf(options, (crs, cell) =>
     fitGrid(model, { crs, cell, lowestMps: levels[0]! / (options.of === 'gust' ? gust : 1), ...period }),
   );
+  const over = await surfaceOfRun(model, grid, known);
+  if (options.surfaceBands && !over)
+    throw new UsageError('surface-bands', `--surface-bands needs land: add --land ${WORLD}, or --land FILE`);
   const interrupted = new AbortController();
   const stop = (): void => interrupted.abort();
   process.once('SIGINT', stop);
@@ -77,6 +83,7 @@ export async function swath(file: string, options: SwathCommandOptions): Promise
     const field = await peakSwath(model, grid, {
       ...period,
       ...(jobs === undefined ? {} : { jobs }),
+      ...(over ? { surface: over.surface } : {}),
       signal: interrupted.signal,
       onProgress: (share) => out.progress(`wind ${Math.round(100 * share)} %`),
     });
@@ -88,7 +95,7 @@ export async function swath(file: string, options: SwathCommandOptions): Promise
     });
     const isotachsAt = performance.now();
     out.progress('files …');
-    const cautions = [...new Set([...field.cautions, ...model.cautions, ...drawn.cautions])];
+    const cautions = [...new Set([...field.cautions, ...model.cautions, ...drawn.cautions, ...(over?.cautions ?? [])])];
     if (areas.every((area) => area.polygons.length === 0))
       cautions.push(
         `no ${options.of} reaches the lowest level, ${toKnots(levels[0]!).toFixed(0)} kt: there is no isotach`,
@@ -103,6 +110,7 @@ export async function swath(file: string, options: SwathCommandOptions): Promise
       levels,
       places: drawn.places,
       zones: drawn.zones,
+      surface: options.surfaceBands && over ? over.surface : null,
       classOf: (thresholdMps) =>
         options.of === 'wind' && model.averagingS === 60
           ? windClass(thresholdMps, { scale: 'saffir-simpson' }).name
@@ -113,7 +121,7 @@ export async function swath(file: string, options: SwathCommandOptions): Promise
         ...(track.name === null ? {} : { stormName: track.name }),
         version: await version(),
         recipe: recipeDocument(recipe),
-        inputs,
+        inputs: [...inputs, ...(known?.inputs ?? [])],
         period: { startMs: period.fromMs, endMs: period.toMs },
       },
     };
@@ -124,7 +132,7 @@ export async function swath(file: string, options: SwathCommandOptions): Promise
         ...result,
         completed: model.completed,
         levels: areas,
-        notes: [],
+        notes: landNotes(known, model),
         files,
         timings: {
           read_s: seconds(startedAt, readAt),
@@ -145,8 +153,14 @@ export async function swath(file: string, options: SwathCommandOptions): Promise
   }
 }
 
-/** The grid that is asked for, or one fitted to the storm. */
-function gridOf(options: SwathCommandOptions, fitted: (crs: string, cell: number) => Grid): Grid {
+/** The edge of a cell on the ground, m. */
+function cellMOf(options: SwathCommandOptions): number {
+  const { cell, geographic } = cellOf(options);
+  return geographic ? cell * METRES_PER_DEGREE : cell;
+}
+
+/** The edge of a cell in units of the reference system. */
+function cellOf(options: SwathCommandOptions): { cell: number; geographic: boolean } {
   const { geographic } = projection(options.crs);
   const size = parseQuantity(options.cell ?? (geographic ? '0.02deg' : '2km'), ['angle', 'length'], {
     bareUnit: geographic ? 'deg' : 'm',
@@ -162,6 +176,12 @@ function gridOf(options: SwathCommandOptions, fitted: (crs: string, cell: number
       : geographic
         ? size.value / METRES_PER_DEGREE
         : size.value;
+  return { cell, geographic };
+}
+
+/** The grid that is asked for, or one fitted to the storm. */
+function gridOf(options: SwathCommandOptions, fitted: (crs: string, cell: number) => Grid): Grid {
+  const { cell, geographic } = cellOf(options);
   if (options.bounds === undefined) return fitted(options.crs, cell);
   const edges = list(options.bounds).map(Number);
   if (edges.length !== 4 || edges.some((edge) => !Number.isFinite(edge)))

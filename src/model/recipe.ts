@@ -293,9 +293,9 @@ export const RECIPE_ENTRIES: readonly RecipeEntry[] = [
   },
   {
     key: 'land.surface',
-    standard: 'off',
+    standard: 'on',
     words: ['on', 'off'],
-    help: 'on: roughness and exposure of the land act on wind and gust; off: open sea everywhere',
+    help: 'where land is given (--land): its roughness and exposure act on wind and gust; off: open sea everywhere',
     source: 'common practice',
   },
   {
@@ -328,9 +328,9 @@ export const RECIPE_ENTRIES: readonly RecipeEntry[] = [
   },
   {
     key: 'land.decay',
-    standard: 'off',
+    standard: 'auto',
     words: ['auto', 'on', 'off'],
-    help: 'decay of the storm over land; auto: for drawn, synthetic and forecast tracks, never for best tracks',
+    help: 'where land is given (--land): decay of the storm over it; auto: for drawn, synthetic and forecast tracks, never for best tracks',
     source: 'KaplanDeMaria1995',
   },
   {

@@ -1,4 +1,5 @@
 import { UsageError } from '../errors.js';
+import type { SurfaceMap } from '../land/surface-map.js';
 import type { Grid } from '../swath/grid.js';
 import type { Swath } from '../swath/swath.js';
 import { describeCrs } from './crs.js';
@@ -6,7 +7,7 @@ import { geoKeys } from './crs-geokeys.js';
 import { type Deflate, webDeflate } from './deflate.js';
 import { predictedTile, TILE } from './float-predictor.js';
 import { halved, type Level, type OverviewRule } from './overview.js';
-import { peakBands } from './peak-bands.js';
+import { peakBands, surfaceBands } from './peak-bands.js';
 import { type Provenance, provenanceItems } from './provenance.js';
 import { asciiField, headerBytes, type TiffField, tiffHeader } from './tiff-directory.js';
 import { xmlAscii } from './xml.js';
@@ -108,11 +109,16 @@ export async function cogBytes(input: RasterInput): Promise<Uint8Array> {
 
 /**
  * `peak.tif` in pieces. Bands: peak wind (m/s), peak gust (m/s), direction the wind blows from at the peak (degrees),
- * time of the peak (seconds after the first fix of the track), then hours at or above each wind of the swath.
+ * time of the peak (seconds after the first fix of the track), then hours at or above each wind of the swath; with a
+ * surface also its share of land, its exposure class for the wind at the peak and its roughness length.
  * @throws UsageError `write.crs`
  */
-export function peakTif(swath: Swath, options: { provenance: Provenance; deflate?: Deflate }): Promise<Uint8Array[]> {
-  const bands = peakBands(swath).map(
+export function peakTif(
+  swath: Swath,
+  options: { provenance: Provenance; deflate?: Deflate; surface?: SurfaceMap },
+): Promise<Uint8Array[]> {
+  const fields = [...peakBands(swath), ...(options.surface ? surfaceBands(swath, options.surface) : [])];
+  const bands = fields.map(
     (band): RasterBand => ({
       name: band.name,
       unit: band.unit,

@@ -192,6 +192,8 @@ function fieldAttributes(
         calendar: 'standard',
         cell_methods: 'area: point',
       };
+    case 'surface':
+      return { long_name, units: band.unit, cell_methods: 'area: point' };
     case 'hours':
       return {
         long_name,

@@ -1,10 +1,11 @@
+import { EXPOSURE_CODES, exposureField, type SurfaceMap } from '../land/surface-map.js';
 import type { Swath } from '../swath/swath.js';
 import { toKnots } from '../units.js';
 import type { OverviewRule } from './overview.js';
 
 /** One field of a swath as every raster and table format writes it. */
 export interface PeakBand {
-  readonly kind: 'wind' | 'gust' | 'wind-from' | 'peak-time' | 'hours';
+  readonly kind: 'wind' | 'gust' | 'wind-from' | 'peak-time' | 'hours' | 'surface';
   /** name in a raster, without unit */
   readonly name: string;
   /** heading in a table, with unit */
@@ -91,5 +92,38 @@ export function peakBands(swath: Swath): PeakBand[] {
       items: { time_origin: origin },
     },
     ...hours,
+  ];
+}
+
+/** The fields of a surface: share of land, exposure for the wind at the peak, roughness length. */
+export function surfaceBands(swath: Swath, surface: SurfaceMap): PeakBand[] {
+  const codes = EXPOSURE_CODES.map((exposure, code) => `${code} ${exposure}`).join(', ');
+  const band = (
+    name: string,
+    unit: string,
+    description: string,
+    values: Float32Array,
+    overview: OverviewRule,
+  ): PeakBand => ({
+    kind: 'surface',
+    name,
+    heading: name,
+    unit,
+    decimals: 4,
+    description,
+    values,
+    overview,
+    items: {},
+  });
+  return [
+    band('land_fraction', '1', 'share of the cell that is land', surface.landFraction, 'max'),
+    band(
+      'exposure_class',
+      '1',
+      `exposure for the wind at its peak: ${codes}`,
+      exposureField(surface, swath.windFromDeg),
+      'like-first',
+    ),
+    band('roughness_length', 'm', 'roughness length of the cell, z0', surface.roughnessM, 'max'),
   ];
 }

@@ -132,6 +132,7 @@ export function tileRunner(
   /** squares of hours: toward the edge of where a wind is reached its hours fall as a square root does */
   const counted = thresholdsMps.map(() => new Float64Array(9));
   const { cellM } = placing;
+  const { durationS } = tracer;
   let guesses: Guess[] = [];
   let [left, top, width, height] = [0, 0, 0, 0];
   return { fields: { windMps, timeS, fromDeg, hours, rivalTimeS }, run };
@@ -347,7 +348,13 @@ export function tileRunner(
       spread(timeS, from, weights, right);
       along(angles, weights, j);
       spread(fromDeg, from, weights, right);
-      for (let at = from; at < from + right; at++) if (known[at] === 0) fromDeg[at] = wrapped(centreDeg + fromDeg[at]!);
+      for (let at = from; at < from + right; at++) {
+        if (known[at] !== 0) continue;
+        fromDeg[at] = wrapped(centreDeg + fromDeg[at]!);
+        // a parabola may run past either end of the storm
+        if (timeS[at]! < 0) timeS[at] = 0;
+        else if (timeS[at]! > durationS) timeS[at] = durationS;
+      }
       for (let h = 0; h < hours.length; h++) {
         along(counted[h]!, weights, j);
         spread(hours[h]!, from, weights, right);
@@ -383,7 +390,7 @@ export function tileRunner(
         windMps[at] = 0;
         timeS[at] = Number.NaN;
         fromDeg[at] = Number.NaN;
-      } else if (timeS[at]! < 0) timeS[at] = 0;
+      }
       for (let h = 0; h < hours.length; h++)
         hours[h]![at] = wind >= thresholdsMps[h]! && hours[h]![at]! > 0 ? Math.sqrt(hours[h]![at]!) : 0;
     }

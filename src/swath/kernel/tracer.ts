@@ -13,6 +13,8 @@ const LONGEST_S = 2000;
 /** Winds in a taper that are stepped through with care, m/s. */
 const CALM_MPS = 6.5;
 const LEG_NUMBERS = 8;
+/** Numbers of a row of a surface; eight sectors each of wind and gust, and their highest. */
+const SURFACE_NUMBERS = 18;
 
 /** A storm in an engine's memory, and the points that it is asked about. */
 export interface Tracer {
@@ -20,6 +22,8 @@ export interface Tracer {
   readonly x: Float64Array;
   readonly y: Float64Array;
   readonly z: Float64Array;
+  /** length of the timeline, s */
+  readonly durationS: number;
   /** what the points may expect goes in, 0 where that is not known; the peak wind comes out, m/s, 0 for none; least distance from the centre, m; hours at or above each threshold */
   readonly windMps: Float64Array;
   readonly leastM: Float64Array;
@@ -76,7 +80,7 @@ export function tracerOf(
       built.size * rounded(windBytes) +
       count * (64 + 24 + 8) +
       legs.length * (64 + 8) +
-      16 * (options.surface?.windRatio.length ?? 0) +
+      SURFACE_NUMBERS * (options.surface?.windRatio.length ?? 0) +
       1024,
   );
   const { f64, f32, i32 } = engine;
@@ -187,14 +191,16 @@ export function tracerOf(
     return whole;
   };
 
-  /** eight ratios of the wind, then eight of the gust, row after row */
+  /** eight ratios of the wind, eight of the gust, the highest of each, row after row */
   function placeSurface(): number {
     const { surface } = options;
     if (!surface) return 0;
-    const address = engine.allocate(16 * surface.windRatio.length);
-    for (let i = 0, to = address >> 3; i < surface.windRatio.length; i += 8, to += 16) {
-      f64.set(surface.windRatio.subarray(i, i + 8), to);
-      f64.set(surface.gustRatio.subarray(i, i + 8), to + 8);
+    const address = engine.allocate(SURFACE_NUMBERS * surface.windRatio.length);
+    for (let i = 0, to = address >> 3; i < surface.windRatio.length; i += 8, to += SURFACE_NUMBERS) {
+      const [winds, gusts] = [surface.windRatio.subarray(i, i + 8), surface.gustRatio.subarray(i, i + 8)];
+      f64.set(winds, to);
+      f64.set(gusts, to + 8);
+      f64.set([Math.max(...winds), Math.max(...gusts)], to + 16);
     }
     return address;
   }
@@ -203,10 +209,11 @@ export function tracerOf(
     x,
     y,
     z,
+    durationS: (timeMsOf(timeline, count - 1) - originMs) / 1000,
     setThresholds,
     traceLocal: (points, kind) => engine.traceLocal(quads(points), kind),
     setSurface: (point, row) => {
-      surfaces[point] = surfaceAt + 128 * row;
+      surfaces[point] = surfaceAt + 8 * SURFACE_NUMBERS * row;
     },
     windMps,
     leastM: column(at.LEAST),

@@ -53,7 +53,7 @@ export const CROSSINGS: i32 = POINTS + 16 * COLUMN;
 /** columns: the second highest maximum in time that was looked at, and its moment */
 export const RIVAL: i32 = POINTS + 17 * COLUMN;
 export const RIVAL_MOMENT: i32 = POINTS + 18 * COLUMN;
-/** column: where the ratios of the point's surface stand: 8 of the wind, 8 of the gust, f64 each */
+/** column: where the ratios of the point's surface stand: 8 of the wind, 8 of the gust, the highest of each, f64 each */
 export const SURFACE: i32 = POINTS + 19 * COLUMN;
 /** from here on: what a storm needs */
 export const HEAP: i32 = POINTS + 20 * COLUMN;

@@ -46,6 +46,11 @@ const CORNER_X: f64 = 4;
 const SEARCHED_MPS: f64 = 0.002;
 /** A second maximum within this of the first is searched too, m/s. */
 const RIVAL_MPS: f64 = 0.6;
+/** Winds over a surface that stay below this share of what is needed from any side are not looked at, */
+const BELOW_NEED: f64 = 0.9;
+/** which the highest ratios of the surface's row tell, after its eight of the wind and eight of the gust. */
+const HIGHEST_WIND: i32 = 128;
+const HIGHEST_GUST: i32 = 136;
 /** Parts of a bracket that a search looks at. */
 const LOOKS: i32 = 8;
 /** Within this of a level the wind is a straight line in time, m/s. */
@@ -134,6 +139,11 @@ export function trace(count: i32): void {
 export function traceLocal(count: i32, which: i32): void {
   begin();
   kind = which;
+  if (kind === GUST) {
+    // no hours of gusts
+    thresholds = 0;
+    lowestLevel = 1e30;
+  }
   for (let p = 0; p < count; p += 4) traceQuad(p);
   kind = SEA;
 }
@@ -504,7 +514,10 @@ function traceQuad(p: i32): void {
 function localQuad(p: i32, winds: i32, moment: f64): f64 {
   let most: f64 = 0;
   for (let i = 0; i < 4; i++) {
-    const local = localAt(p + i, moment, f32At(winds + 4 * i));
+    const sea = f32At(winds + 4 * i);
+    // what cannot matter from any side is not asked for its direction
+    const bound = sea * f64At(whole(f64At(SURFACE + 8 * (p + i))) + (kind === GUST ? HIGHEST_GUST : HIGHEST_WIND));
+    const local = bound < BELOW_NEED * least(f32At(NEED + 4 * i), lowestLevel) ? bound : localAt(p + i, moment, sea);
     setF32(winds + 4 * i, local);
     if (local > most) most = local;
   }

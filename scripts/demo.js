@@ -29,6 +29,10 @@ run(
   ...['swath', 'fixtures/demo-quillon.csv', '--out', 'out/quillon', '--formats', formats],
   ...['--zones', 'fixtures/demo-isles.geojson', '--places', 'fixtures/demo-places.csv'],
 );
+run(
+  ...['swath', 'fixtures/demo-quillon.csv', '--land', 'fixtures/demo-isles.geojson', '--surface-bands'],
+  ...['--of', 'gust', '--out', 'out/quillon-over-land', '--formats', formats],
+);
 // the README's picture, kept as fixtures/demo-map.png
 const { svgToPng } = await import('../dist/io/png.js');
 writeFileSync(join(out, 'demo-map.png'), svgToPng(readFileSync(join(out, 'quillon/map.svg'), 'utf8'), { width: 760 }));

@@ -22,6 +22,49 @@ interface Case {
 const swathOf = (...more: string[]): string[] => ['swath', 'bad.csv', ...small, ...more];
 
 const CASES: readonly Case[] = [
+  // land
+  {
+    what: 'land that is not there',
+    file: good,
+    words: swathOf('--land', 'no.geojson'),
+    code: 3,
+    says: /no\.geojson: there is no such file/,
+  },
+  {
+    what: 'land that is no GeoJSON',
+    file: good,
+    words: swathOf('--land', 'bad.csv'),
+    code: 3,
+    says: /bad\.csv: this is no JSON/,
+  },
+  {
+    what: 'roughness without land',
+    file: good,
+    words: swathOf('--roughness', 'z0.tif'),
+    code: 2,
+    says: /--roughness needs land/,
+  },
+  {
+    what: 'classes without a raster',
+    file: good,
+    words: swathOf('--land', 'natural-earth', '--roughness-classes', 'c.csv'),
+    code: 2,
+    says: /--roughness-classes goes with --roughness/,
+  },
+  {
+    what: 'a roughness raster that is none',
+    file: good,
+    words: swathOf('--land', 'natural-earth', '--roughness', 'bad.csv'),
+    code: 3,
+    says: /bad\.csv: this is no GeoTIFF/,
+  },
+  {
+    what: 'bands of a surface without land',
+    file: good,
+    words: swathOf('--surface-bands'),
+    code: 2,
+    says: /needs land/,
+  },
   // files
   { what: 'an empty file', file: '', words: swathOf(), code: 3, says: /bad\.csv: is empty/ },
   { what: 'a header without rows', file: `${HEAD}\n`, words: swathOf(), code: 3, says: /holds no storm/ },

@@ -31,7 +31,7 @@ run(
 );
 run(
   ...['swath', 'fixtures/demo-quillon.csv', '--land', 'fixtures/demo-isles.geojson', '--surface-bands'],
-  ...['--of', 'gust', '--out', 'out/quillon-over-land', '--formats', formats],
+  ...['--of', 'gust', '--zones', 'fixtures/demo-isles.geojson', '--out', 'out/quillon-over-land', '--formats', formats],
 );
 // the README's picture, kept as fixtures/demo-map.png
 const { svgToPng } = await import('../dist/io/png.js');

@@ -22,6 +22,8 @@ warnings.filterwarnings("ignore", category=RuntimeWarning, module="xarray")
 
 NAMES = ["peak_wind", "peak_gust", "wind_from_direction", "peak_time"]
 UNITS = ["m/s", "m/s", "degree", "s"]
+# the bands of a surface, by option, stand in the raster alone: name, unit, least and most
+SURFACE = [("land_fraction", "1", 0, 1), ("exposure_class", "1", 0, 3), ("roughness_length", "m", 1e-6, 9)]
 # heading in the table and its number of decimals
 HEADINGS = [("peak_wind_mps", 3), ("peak_gust_mps", 3), ("wind_from_deg", 2), ("peak_time_s", 1)]
 failures = 0
@@ -44,8 +46,10 @@ def read_tif(path):
     count = data.RasterCount
     bands = [data.GetRasterBand(i + 1) for i in range(count)]
     names = [band.GetDescription() for band in bands]
-    check(names[:4] == NAMES and all(name.startswith("hours_") for name in names[4:]), f"bands {names}")
-    check([band.GetUnitType() for band in bands] == UNITS + ["h"] * (count - 4), "units of the bands")
+    surface = SURFACE if SURFACE[0][0] in names else []
+    hours = names[4 : count - len(surface)]
+    check(names == NAMES + hours + [name for name, *_ in surface] and all(name.startswith("hours_") for name in hours), f"bands {names}")
+    check([band.GetUnitType() for band in bands] == UNITS + ["h"] * len(hours) + [unit for _, unit, *_ in surface], "units of the bands")
     check(all(band.DataType == gdal.GDT_Float32 and np.isnan(band.GetNoDataValue()) for band in bands), "32-bit floats, NaN as no data")
     check(data.GetMetadataItem("AREA_OR_POINT") == "Area", "cells are areas")
     for item in ("recipe", "software", "input_sha256", "caution", "time_origin"):
@@ -160,10 +164,13 @@ def main(folders):
         if not os.path.exists(tif):
             continue
         data, names, values = read_tif(tif)
+        own = names.index(SURFACE[0][0]) if SURFACE[0][0] in names else len(names)
+        for (name, _, least, most), band in zip(SURFACE, values[own:]):
+            check(np.nanmin(band) >= least and np.nanmax(band) <= most, f"{name} lies within {least} and {most}")
         for name, compare in (("peak.csv", compare_csv), ("peak.nc", compare_netcdf)):
             path = os.path.join(folder, name)
             if os.path.exists(path):
-                compare(path, data, names, values)
+                compare(path, data, names[:own], values[:own])
             else:
                 print(f"      no {name} here")
     if failures:

@@ -8,7 +8,7 @@ const EDGE = TILE_EDGE + 1;
 /** First spacing of the lattice, cells. */
 const WIDEST = 16;
 /** A block is left to interpolation only where the storm stays this many spacings away. */
-const AWAY_SPACINGS = 1.2;
+const AWAY_SPACINGS = 1.6;
 /** Between points of a block the wind of a parabola must be right to this, m/s: the points checked then stand nearer to each other by half, and are left off by about an eighth of it. */
 const CHECK_MPS = 0.03;
 /** The same for the direction, degrees, and for hours: a share of them and a floor. */

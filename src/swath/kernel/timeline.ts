@@ -19,7 +19,7 @@ export const FRAME = 10;
 export interface Leg {
   readonly startMs: number;
   readonly endMs: number;
-  /** index of its start; its end is `first + (1 << depth)`, the start of the next leg */
+  /** index of its start; its end is `first + (1 << depth)`, the start of the next leg, or one before it where the motion jumps */
   readonly first: number;
   readonly depth: number;
   /** upper bounds over the leg: speed of the centre, m/s; growth of the radius of maximum wind, 1/s; change of the maximum wind, m/s² */
@@ -75,6 +75,8 @@ export function timelineOf(model: WindModel, fromMs: number, toMs: number): Time
   const middles = knotsMs.slice(1).map((time, i) => Math.round(0.5 * (time + knotsMs[i]!)));
   const inside = [...new Set([...knotsMs, ...middles])].filter((time) => time > fromMs && time < toMs);
   const knots = [fromMs, ...inside.sort((a, b) => a - b), ...(toMs > fromMs ? [toMs] : [])];
+  // where the motion jumps at a fix the fix has two moments: the wind before it and after it
+  const jumps = model.recipe['path.interpolation'] === 'linear';
   const legs: Leg[] = [];
   let first = 0;
   for (let i = 0; i + 1 < knots.length; i++) {
@@ -84,7 +86,7 @@ export function timelineOf(model: WindModel, fromMs: number, toMs: number): Time
     const depth = Math.max(2, Math.ceil(Math.log2((endMs - startMs) / 1000 / fineS)));
     const longestS = STEP_GROWTH / bounds.growthPerS;
     legs.push({ startMs, endMs, first, depth, ...bounds, fineMs: (endMs - startMs) / (1 << depth), longestS });
-    first += 1 << depth;
+    first += (1 << depth) + (jumps ? 1 : 0);
   }
   if (legs.length === 0)
     legs.push({
@@ -98,7 +100,7 @@ export function timelineOf(model: WindModel, fromMs: number, toMs: number): Time
       fineMs: 0,
       longestS: 0,
     });
-  const count = legs.length === 1 && legs[0]!.depth === 0 ? 1 : first + 1;
+  const count = legs.length === 1 && legs[0]!.depth === 0 ? 1 : jumps ? first : first + 1;
   return { legs, count, frames: framesOf(model, legs, count) };
 }
 

@@ -453,6 +453,12 @@ function traceQuad(p: i32): void {
       sidesA = sidesB;
       sidesB = sidesC;
       nearB = f32At(EXTREMES) < CORNER_X * f64At(frame + 48) * f64At(frame + 48);
+      if (m < whole(f64At(leg))) {
+        // the motion jumps: the same time once more, with the wind after it
+        m = whole(f64At(leg));
+        skipped = 0;
+        continue;
+      }
       // the next moment: as far as the storm may move and change, over as many legs as that takes
       const distanceM = root(f32At(EXTREMES));
       const outside = distanceM > outerM;

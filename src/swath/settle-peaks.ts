@@ -10,6 +10,8 @@ const RIVAL_MIN = [0, -3, 3, -8, 8, -20, 20] as const;
 /** Minutes from the best of these at which it is asked again: a narrow one stands between them. */
 const BESIDE_MIN = [-6, -3, -2, -1, 1, 2, 3, 6] as const;
 const MINUTE_MS = 60_000;
+/** Peaks below this are left as they are, m/s: nothing is promised of them. */
+const CALM_MPS = 7;
 
 /**
  * Takes each cell's peak from the plain model, at the time that the tables gave and at moments around it: for fields
@@ -44,7 +46,7 @@ export function settlePeaks(
     const byMinute = new Map<number, number[]>();
     for (let k = 0; k < windMps.length; k++) {
       // over a surface of their own the tables' winds stay
-      if (!(windMps[k]! > 0) || Number.isNaN(timeS[k]!) || (period.surface?.rowOf[k] ?? 0) > 0) continue;
+      if (!(windMps[k]! > CALM_MPS) || Number.isNaN(timeS[k]!) || (period.surface?.rowOf[k] ?? 0) > 0) continue;
       for (const around of minutes) {
         const minute = Math.min(last, Math.max(first, Math.round(timeS[k]! / 60) + around));
         const cells = byMinute.get(minute);

@@ -1,4 +1,4 @@
-import { UsageError } from '../errors.js';
+import { InputError, UsageError } from '../errors.js';
 import type { InputRecord } from '../io/input.js';
 import { coastScaleFor } from '../land/coast.js';
 import type { Land } from '../land/land.js';
@@ -20,6 +20,8 @@ export const WORLD = 'natural-earth';
 export interface KnownLand {
   readonly land: Land;
   readonly roughness?: NonNullable<SurfaceOptions['roughness']>;
+  /** the raster's file */
+  readonly roughnessName?: string;
   readonly inputs: readonly InputRecord[];
 }
 
@@ -46,7 +48,12 @@ export async function landOfRun(options: LandOptions, cellM: number): Promise<Kn
     options.roughness,
     options.roughnessClasses === undefined ? {} : { classes: options.roughnessClasses },
   );
-  return { land, roughness: (grid) => roughnessOn(grid, raster), inputs: [...inputs, ...records] };
+  return {
+    land,
+    roughness: (grid) => roughnessOn(grid, raster),
+    roughnessName: records[0]!.name,
+    inputs: [...inputs, ...records],
+  };
 }
 
 /** The surface of a grid, with a caution where the land or the roughness lies elsewhere; null for open sea everywhere. */
@@ -59,9 +66,9 @@ export async function surfaceOfRun(
   const { landGrid, surfaceOf } = await import('../swath/surface.js');
   const { land, roughness } = known;
   if (roughness && !roughness(landGrid(grid)).known.some((share) => share > 0))
-    throw new UsageError(
+    throw new InputError(
       'roughness.elsewhere',
-      '--roughness: the raster does not overlap the grid; check its coordinate reference system and its bounds',
+      `${known.roughnessName}: the raster does not overlap the grid; check its coordinate reference system and its bounds, or the grid's --bounds`,
     );
   const surface = surfaceOf(model, grid, { land, ...(roughness ? { roughness } : {}) });
   const cautions = surface.landFraction.some((share) => share > 0) ? [] : [`no land of ${land.name} lies on the grid`];

@@ -197,7 +197,7 @@ function speedAt(p: i32, moment: f64): f64 {
 function localAt(p: i32, moment: f64, seaMps: f64): f64 {
   if (!(seaMps > 0)) return 0;
   windAt(p, moment);
-  turn(p, moment);
+  turn(p);
   const row = whole(f64At(SURFACE + 8 * p)) + (kind === GUST ? 64 : 0);
   // as the surface map has it: between a cardinal sector and the diagonal one beside it
   const fromEast = -windEast;
@@ -212,18 +212,13 @@ function localAt(p: i32, moment: f64, seaMps: f64): f64 {
   return seaMps * (ratio + share * (f64At(row + 8 * diagonal) - ratio));
 }
 
-/** Turns a wind from the frame at the centre to that at the point, as the great circle turns on the way; its size is lost. */
-function turn(p: i32, moment: f64): void {
-  let m = whole(moment);
-  if (m > lastMoment) m = lastMoment;
-  const w = moment - <f64>m;
-  const a = frames + (m << 6);
-  const b = w > 0 ? a + 64 : a;
-  const e0 = f64At(a) + w * (f64At(b) - f64At(a));
-  const e1 = f64At(a + 8) + w * (f64At(b + 8) - f64At(a + 8));
-  const n0 = f64At(a + 16) + w * (f64At(b + 16) - f64At(a + 16));
-  const n1 = f64At(a + 24) + w * (f64At(b + 24) - f64At(a + 24));
-  const n2 = f64At(a + 32) + w * (f64At(b + 32) - f64At(a + 32));
+/** Turns the last wind from the frame at the centre to that at the point, as the great circle turns on the way; its size is lost. */
+function turn(p: i32): void {
+  const e0 = inFrame(0);
+  const e1 = inFrame(8);
+  const n0 = inFrame(16);
+  const n1 = inFrame(24);
+  const n2 = inFrame(32);
   // the centre is square to its east and north
   let cx = e1 * n2;
   let cy = -e0 * n2;
@@ -252,33 +247,49 @@ function turn(p: i32, moment: f64): void {
   windEast = imaginary * outNorth - real * outEast;
 }
 
-/** Wind of a point over open sea at a moment or between two. */
-function seaAt(p: i32, moment: f64): f64 {
+// where a point was seen from last: the two frames about the moment, the share of the way between them, its coordinates
+let frameA: i32 = 0;
+let frameB: i32 = 0;
+let between: f64 = 0;
+let seenEast: f64 = 0;
+let seenNorth: f64 = 0;
+
+/** Coordinates of a point in units of R as seen from the centre at a moment or between two. */
+function see(p: i32, moment: f64): void {
   let m = whole(moment);
   if (m > lastMoment) m = lastMoment;
-  const w = moment - <f64>m;
-  const a = frames + (m << 6);
-  const b = w > 0 ? a + 64 : a;
+  between = moment - <f64>m;
+  frameA = frames + (m << 6);
+  frameB = between > 0 ? frameA + 64 : frameA;
   const x = f64At(X + 8 * p);
   const y = f64At(Y + 8 * p);
-  const z = f64At(Z + 8 * p);
-  const east = x * (f64At(a) + w * (f64At(b) - f64At(a))) + y * (f64At(a + 8) + w * (f64At(b + 8) - f64At(a + 8)));
-  const north =
-    x * (f64At(a + 16) + w * (f64At(b + 16) - f64At(a + 16))) +
-    y * (f64At(a + 24) + w * (f64At(b + 24) - f64At(a + 24))) +
-    z * (f64At(a + 32) + w * (f64At(b + 32) - f64At(a + 32)));
-  const maxWind = f64At(a + 40) + w * (f64At(b + 40) - f64At(a + 40));
+  seenEast = x * inFrame(0) + y * inFrame(8);
+  seenNorth = x * inFrame(16) + y * inFrame(24) + f64At(Z + 8 * p) * inFrame(32);
+}
+
+/** A number of the frame between the two that were seen from last. */
+function inFrame(at: i32): f64 {
+  const a = f64At(frameA + at);
+  return between > 0 ? a + between * (f64At(frameB + at) - a) : a;
+}
+
+/** Wind of a point over open sea at a moment or between two. */
+function seaAt(p: i32, moment: f64): f64 {
+  see(p, moment);
+  const east = seenEast;
+  const north = seenNorth;
+  const maxWind = inFrame(40);
   const s2 = east * east + north * north;
   squaredRatio = s2;
   const offset = rowOf(s2) * (groups << 4);
-  const table = f64At(a + 56);
-  const next = f64At(b + 56);
+  const table = f64At(frameA + 56);
+  const next = f64At(frameB + 56);
   let value = squaredAt(whole(table) + offset, east, north, s2);
   // where two moments have tables of their own the wind lies between
-  if (next !== table) value += w * (squaredAt(whole(next) + offset, east, north, s2) - value);
+  if (next !== table) value += between * (squaredAt(whole(next) + offset, east, north, s2) - value);
   if (!(value > 0)) return 0;
   const wind = root(value) * maxWind;
-  const radiusM = f64At(a + 48) + w * (f64At(b + 48) - f64At(a + 48));
+  const radiusM = inFrame(48);
   const squared = s2 * radiusM * radiusM;
   return squared > f32At(FADE) ? wind * faded(root(squared)) : wind;
 }
@@ -324,21 +335,11 @@ function partsAt(p: i32, moment: f64): void {
 
 /** Parts of a point's wind at a moment or between two, with the table of the nearer one. */
 function windAt(p: i32, moment: f64): void {
-  let lower = whole(moment);
-  if (lower > lastMoment) lower = lastMoment;
-  const between = moment - <f64>lower;
-  const a0 = frames + (lower << 6);
-  const b0 = between > 0 ? a0 + 64 : a0;
-  const x = f64At(X + 8 * p);
-  const y = f64At(Y + 8 * p);
-  const z = f64At(Z + 8 * p);
-  const east = x * (f64At(a0) + between * (f64At(b0) - f64At(a0))) + y * (f64At(a0 + 8) + between * (f64At(b0 + 8) - f64At(a0 + 8)));
-  const north =
-    x * (f64At(a0 + 16) + between * (f64At(b0 + 16) - f64At(a0 + 16))) +
-    y * (f64At(a0 + 24) + between * (f64At(b0 + 24) - f64At(a0 + 24))) +
-    z * (f64At(a0 + 32) + between * (f64At(b0 + 32) - f64At(a0 + 32)));
-  const maxWind = f64At(a0 + 40) + between * (f64At(b0 + 40) - f64At(a0 + 40));
-  const m = between < 0.5 ? lower : lower + 1;
+  see(p, moment);
+  const east = seenEast;
+  const north = seenNorth;
+  const maxWind = inFrame(40);
+  const m = whole(moment + 0.5) > lastMoment ? lastMoment : whole(moment + 0.5);
   const s2 = east * east + north * north;
   const row = rowOf(s2);
   const from = windTables + 24 * m;
@@ -687,20 +688,8 @@ function lookedAt(k: i32): f64 {
 
 /** (r/R)² of a point at a moment or between two. */
 function ratioAt(p: i32, moment: f64): f64 {
-  let m = whole(moment);
-  if (m > lastMoment) m = lastMoment;
-  const w = moment - <f64>m;
-  const a = frames + (m << 6);
-  const b = w > 0 ? a + 64 : a;
-  const x = f64At(X + 8 * p);
-  const y = f64At(Y + 8 * p);
-  const z = f64At(Z + 8 * p);
-  const east = x * (f64At(a) + w * (f64At(b) - f64At(a))) + y * (f64At(a + 8) + w * (f64At(b + 8) - f64At(a + 8)));
-  const north =
-    x * (f64At(a + 16) + w * (f64At(b + 16) - f64At(a + 16))) +
-    y * (f64At(a + 24) + w * (f64At(b + 24) - f64At(a + 24))) +
-    z * (f64At(a + 32) + w * (f64At(b + 32) - f64At(a + 32)));
-  return east * east + north * north;
+  see(p, moment);
+  return seenEast * seenEast + seenNorth * seenNorth;
 }
 
 /**

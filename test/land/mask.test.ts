@@ -1,11 +1,12 @@
 import { describe, expect, it } from 'vitest';
 import { EARTH_RADIUS_M, RADIANS } from '../../src/earth.js';
 import { landFraction } from '../../src/land/mask.js';
-import { gridOver } from '../../src/swath/grid.js';
+import { type Grid, gridOver } from '../../src/swath/grid.js';
 import { landGrid } from '../../src/swath/surface.js';
 import { rectangles } from '../land-world.js';
 
-const fractionOn = (grid: Parameters<typeof landGrid>[0], ...boxes: Parameters<typeof rectangles>): Float32Array =>
+type Box = readonly [number, number, number, number];
+const fractionOn = (grid: Grid, ...boxes: readonly Box[]): Float32Array =>
   landFraction(landGrid(grid), rectangles(...boxes));
 
 describe('share of land in cells', () => {

@@ -204,6 +204,42 @@ export async function runProgram(argv: readonly string[]): Promise<void> {
     .option('--force', 'replace an existing file')
     .action(async (files, options) => (await import('./verify.js')).verify(files, options));
 
+  const events = program
+    .command('events')
+    .description('Event sets: many storms on one grid, return-period maps; on one machine or in a batch.')
+    .exitOverride();
+  const planned = (command: Command): Command =>
+    models(common(command))
+      .requiredOption('--out <RUN>', 'folder of the run')
+      .option('--bounds <W,S,E,N>', 'edges of the grid')
+      .option('--crs <CRS>', 'its coordinate reference system', 'EPSG:4326')
+      .option('--cell <SIZE>', 'its cell size', '0.1deg')
+      .option('--least <SPEED>', 'lowest wind that is kept', '34kt')
+      .option('--years <N>', 'years that the set stands for: equal rates, where the table has none')
+      .option('--shards <N>', 'parts that the set is cut into', '16')
+      .addOption(
+        new Option('--bad-events <WHAT>', 'an event that cannot be modelled')
+          .choices(['stop', 'set-aside'])
+          .default('stop'),
+      );
+  planned(events.command('plan <INPUT>').description('Cut an event table into shards.')).action(
+    async (input, options) => {
+      await (await import('./events.js')).plan(input, options);
+    },
+  );
+  planned(events.command('run <INPUT>').description('Plan, all shards on this machine, return-period maps.'))
+    .option('--jobs <N>', 'processes (all cores)')
+    .action(async (input, options) => (await import('./events.js')).run(input, options));
+  common(
+    events.command('shard <RUN> [INDEX]').description('One shard; its index also by SHARD_INDEX or a batch engine.'),
+  ).action(async (folder, index, options) => (await import('./events.js')).shard(folder, index, options));
+  common(events.command('missing <RUN>').description('Shards that are not done, or damaged.')).action(
+    async (folder, options) => (await import('./events.js')).missing(folder, options),
+  );
+  common(events.command('reduce <RUN>').description('Return-period maps of all shards.')).action(
+    async (folder, options) => (await import('./events.js')).reduce(folder, options),
+  );
+
   common(program.command('recipe').description('The recipe in force with its sources; check one.'))
     .option('--recipe <FILE>', 'read and check this recipe')
     .option('--set <KEY=VALUE>', 'one modelling choice; may be repeated', gather)

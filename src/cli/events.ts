@@ -1,0 +1,191 @@
+import { spawn } from 'node:child_process';
+import { availableParallelism } from 'node:os';
+import { fileURLToPath } from 'node:url';
+import { InputError, LimitError, UsageError } from '../errors.js';
+import { taskIndex } from '../events/task-index.js';
+import { EventRun, hashOf, indexEvents, type Manifest } from '../io/event-run.js';
+import { recipeDocument } from '../model/recipe.js';
+import { gridOver } from '../swath/grid.js';
+import { quantityOf } from '../units.js';
+import { CAUTION } from '../write/provenance.js';
+import { type CommonOptions, countOf, list, type ModelOptions, recipeOf } from './choices.js';
+import { type Console, makeConsole } from './console.js';
+
+export interface PlanOptions extends CommonOptions, ModelOptions {
+  readonly out: string;
+  readonly shards?: string;
+  readonly crs: string;
+  readonly bounds?: string;
+  readonly cell: string;
+  readonly least: string;
+  readonly years?: string;
+  readonly badEvents: 'stop' | 'set-aside';
+  readonly jobs?: string;
+}
+
+/** Exit codes of a shard, as batch engines want them: whether to try again. */
+const SHARD_EXIT = { usage: 64, input: 65, model: 70, disk: 74, stopped: 75 } as const;
+/** Exit code of `missing` and `reduce` where shards are missing. */
+const MISSING_EXIT = 3;
+
+/** `galewake events plan`: what a run does, written once. */
+export async function plan(input: string, options: PlanOptions): Promise<EventRun> {
+  const out = makeConsole({ quiet: options.quiet === true });
+  const recipe = recipeDocument(await recipeOf(options));
+  if (options.bounds === undefined)
+    throw new UsageError('grid.bounds', '--bounds W,S,E,N: an event set needs the edges of its grid');
+  const edges = list(options.bounds).map(Number);
+  if (edges.length !== 4 || edges.some((edge) => !Number.isFinite(edge)))
+    throw new UsageError('grid.bounds', `--bounds ${options.bounds}: give four numbers, west,south,east,north`);
+  const cell = quantityOf('angle', options.cell, { bareUnit: 'deg', name: '--cell' });
+  const bounds = edges as [number, number, number, number];
+  // refuses what is no grid now rather than in every shard
+  gridOver({ crs: options.crs, bounds, cell });
+  const { heading, events, sha256 } = await indexEvents(input);
+  const years = options.years === undefined ? null : Number(options.years);
+  if (years !== null && !(years > 0))
+    throw new UsageError('events.years', `--years ${options.years}: a number above zero`);
+  if (heading.rateAt >= 0 && years !== null)
+    throw new UsageError('events.years', '--years: the table has rates of its own; leave out one of the two');
+  const run = await EventRun.create(
+    options.out,
+    {
+      input,
+      inputsSha256: sha256,
+      recipe,
+      recipeSha256: hashOf(JSON.stringify(recipe)),
+      grid: { crs: options.crs, bounds, cell },
+      leastMps: quantityOf('speed', options.least, { bareUnit: 'kt', name: '--least' }),
+      badEvents: options.badEvents,
+      shards: Math.min(events.length, countOf(options.shards ?? '16', { name: '--shards', least: 1 })),
+      years,
+    },
+    { heading, events },
+  );
+  out.print(`${run.plan.events} events in ${run.plan.shards} shards: ${run.folder}/plan.json\n`);
+  return run;
+}
+
+/** `galewake events shard`: one shard of a run; its exit code says whether to try again. */
+export async function shard(folder: string, index: string | undefined, options: CommonOptions): Promise<void> {
+  const out = makeConsole({ quiet: options.quiet === true });
+  process.once('SIGTERM', () => process.exit(SHARD_EXIT.stopped));
+  try {
+    const run = await EventRun.open(folder);
+    const number = taskIndex({ argument: index, env: process.env, shards: run.plan.shards });
+    const { runShard } = await import('../io/event-shard.js');
+    const { manifest, done } = await runShard(run, number);
+    out.say(done ? `shard ${number}: ${manifest.rows} rows in ${manifest.seconds} s` : `shard ${number}: done already`);
+    if (options.json) out.print(`${JSON.stringify(manifest)}\n`);
+  } catch (error) {
+    out.say(`galewake: ${(error as Error).message}`);
+    process.exitCode =
+      error instanceof UsageError
+        ? SHARD_EXIT.usage
+        : error instanceof InputError
+          ? SHARD_EXIT.input
+          : (error as NodeJS.ErrnoException).code?.startsWith('E')
+            ? SHARD_EXIT.disk
+            : SHARD_EXIT.model;
+  }
+}
+
+/** `galewake events missing`: the shards that are not done, checked by their checksums. */
+export async function missing(folder: string, options: CommonOptions): Promise<void> {
+  const out = makeConsole({ quiet: options.quiet === true });
+  const run = await EventRun.open(folder);
+  await run.tidy();
+  const shards = await run.missing();
+  out.print(options.json ? `${JSON.stringify({ schema: 'galewake-missing/1', shards })}\n` : `${shards.join(',')}\n`);
+  if (shards.length > 0) process.exitCode = MISSING_EXIT;
+}
+
+/** `galewake events reduce`: return-period maps of all shards. */
+export async function reduce(folder: string, options: CommonOptions): Promise<void> {
+  const out = makeConsole({ quiet: options.quiet === true });
+  const run = await EventRun.open(folder);
+  const manifests: Manifest[] = [];
+  const absent: number[] = [];
+  for (let number = 0; number < run.plan.shards; number++) {
+    const manifest = await run.manifest(number, { checksum: true });
+    if (manifest) manifests.push(manifest);
+    else absent.push(number);
+  }
+  if (absent.length > 0) {
+    out.print(`${absent.join(',')}\n`);
+    out.say(
+      `galewake: ${absent.length} of ${run.plan.shards} shards are missing; do them with galewake events shard ${folder} N`,
+    );
+    process.exitCode = MISSING_EXIT;
+    return;
+  }
+  const { RETURN_YEARS, returnPeriodMaps } = await import('../io/event-hazard.js');
+  const files = await returnPeriodMaps(run, manifests);
+  const setAside = manifests.flatMap((manifest) => manifest.setAside);
+  // one event more or less decides what is rarer than the rarest of them
+  const longest = 1 / run.events.reduce((least, { rate }) => Math.min(least, rate), Number.POSITIVE_INFINITY);
+  const beyond = RETURN_YEARS.filter((years) => years > longest);
+  if (beyond.length > 0)
+    out.say(
+      `caution: the rarest event comes once in ${longest.toFixed(0)} years; the maps of ${beyond.join(', ')} years show the highest wind of the set`,
+    );
+  for (const { event, row, why } of setAside.slice(0, 20)) out.say(`set aside: event '${event}' (row ${row}): ${why}`);
+  if (options.json)
+    out.print(
+      `${JSON.stringify({ schema: 'galewake-event-run/1', events: run.plan.events, set_aside: setAside, files, caution: CAUTION }, null, 2)}\n`,
+    );
+  else {
+    out.print(`${run.plan.events - setAside.length} events, ${setAside.length} set aside\n`);
+    out.print(`${files.map((name) => `${folder}/${name}`).join('\n')}\n`);
+    out.say(CAUTION);
+  }
+}
+
+/** `galewake events run`: plan, every shard over local processes, reduce. */
+export async function run(input: string, options: PlanOptions): Promise<void> {
+  const out = makeConsole({ quiet: options.quiet === true });
+  const jobs =
+    options.jobs === undefined ? availableParallelism() : countOf(options.jobs, { name: '--jobs', least: 1 });
+  const planned = await plan(input, { ...options, quiet: true });
+  await planned.tidy();
+  const waiting = await planned.missing();
+  const [total, startedAt] = [waiting.length, performance.now()];
+  let done = 0;
+  const worker = async (): Promise<void> => {
+    for (let next = waiting.shift(); next !== undefined; next = waiting.shift()) {
+      await inProcess(options.out, next, out);
+      done++;
+      const perShard = (performance.now() - startedAt) / done / 1000;
+      const rate = planned.plan.events / planned.plan.shards / perShard;
+      out.progress(
+        `shard ${done} of ${total}, ${rate.toFixed(0)} events/s, ${Math.ceil(perShard * (total - done))} s left`,
+      );
+    }
+  };
+  await Promise.all(Array.from({ length: Math.min(jobs, total) }, worker));
+  out.progress('');
+  await reduce(options.out, options);
+}
+
+/** A shard in a process of its own, so that its memory is given back. */
+function inProcess(folder: string, number: number, out: Console): Promise<void> {
+  const command = fileURLToPath(new URL('./main.js', import.meta.url));
+  return new Promise((resolve, reject) => {
+    const child = spawn(process.execPath, [command, 'events', 'shard', folder, String(number)], {
+      stdio: ['ignore', 'ignore', 'pipe'],
+    });
+    let told = '';
+    child.stderr.on('data', (chunk: Buffer) => {
+      told += chunk.toString('utf8');
+    });
+    child.on('error', reject);
+    child.on('close', (code) => {
+      if (code === 0) return resolve();
+      out.progress('');
+      const message = told.replace(/^galewake: /, '').trim() || `shard ${number} ended with code ${code}`;
+      reject(
+        code === SHARD_EXIT.input ? new InputError('events.shard', message) : new LimitError('events.shard', message),
+      );
+    });
+  });
+}

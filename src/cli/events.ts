@@ -1,10 +1,15 @@
-import { spawn } from 'node:child_process';
-import { availableParallelism } from 'node:os';
+import { execFileSync, spawn } from 'node:child_process';
+import { mkdtemp, rm, writeFile } from 'node:fs/promises';
+import { availableParallelism, tmpdir } from 'node:os';
+import { join, resolve } from 'node:path';
 import { fileURLToPath } from 'node:url';
 import { InputError, LimitError, UsageError } from '../errors.js';
+import { trackText } from '../events/event-index.js';
+import { slurmScripts } from '../events/slurm-script.js';
 import { taskIndex } from '../events/task-index.js';
-import { EventRun, hashOf, indexEvents, type Manifest } from '../io/event-run.js';
+import { EventRun, hashOf, indexEvents, type Manifest, readRange } from '../io/event-run.js';
 import { recipeDocument } from '../model/recipe.js';
+import { nearest } from '../nearest.js';
 import { gridOver } from '../swath/grid.js';
 import { quantityOf } from '../units.js';
 import { CAUTION } from '../write/provenance.js';
@@ -170,7 +175,7 @@ export async function run(input: string, options: PlanOptions): Promise<void> {
 /** A shard in a process of its own, so that its memory is given back. */
 function inProcess(folder: string, number: number, out: Console): Promise<void> {
   const command = fileURLToPath(new URL('./main.js', import.meta.url));
-  return new Promise((resolve, reject) => {
+  return new Promise((done, reject) => {
     const child = spawn(process.execPath, [command, 'events', 'shard', folder, String(number)], {
       stdio: ['ignore', 'ignore', 'pipe'],
     });
@@ -180,7 +185,7 @@ function inProcess(folder: string, number: number, out: Console): Promise<void> 
     });
     child.on('error', reject);
     child.on('close', (code) => {
-      if (code === 0) return resolve();
+      if (code === 0) return done();
       out.progress('');
       const message = told.replace(/^galewake: /, '').trim() || `shard ${number} ended with code ${code}`;
       reject(
@@ -188,4 +193,97 @@ function inProcess(folder: string, number: number, out: Console): Promise<void> 
       );
     });
   });
+}
+
+export interface ShowOptions extends CommonOptions {
+  readonly out?: string;
+  readonly formats: string;
+  readonly force?: boolean;
+}
+
+/** `galewake events show`: the full swath of one event, with the recipe and on the grid of the run. */
+export async function show(folder: string, id: string, options: ShowOptions): Promise<void> {
+  const run = await EventRun.open(folder);
+  const event = run.events.find((one) => one.id === id);
+  if (!event) {
+    const near = nearest(
+      id,
+      run.events.slice(0, NAMED).map((one) => one.id),
+    );
+    throw new InputError(
+      'events.unknown',
+      `${folder}: there is no event '${id}'${near ? `; did you mean '${near}'?` : ''}`,
+    );
+  }
+  const rows = (await readRange(run.plan.input, event.start, event.end)).toString('utf8');
+  const work = await mkdtemp(join(tmpdir(), 'galewake-event-'));
+  try {
+    await writeFile(join(work, 'event.csv'), trackText(run.heading, rows));
+    await writeFile(join(work, 'recipe.json'), JSON.stringify(run.plan.recipe));
+    const { swath } = await import('./swath.js');
+    const { crs, bounds, cell } = run.plan.grid;
+    await swath(join(work, 'event.csv'), {
+      ...options,
+      recipe: join(work, 'recipe.json'),
+      levels: '34kt,50kt,64kt,83kt,96kt,113kt,137kt',
+      of: 'wind',
+      crs,
+      bounds: bounds.join(','),
+      cell: `${cell}deg`,
+      land: 'none',
+    });
+  } finally {
+    await rm(work, { recursive: true, force: true });
+  }
+}
+
+/** Events whose ids are looked through for a near miss. */
+const NAMED = 100_000;
+
+export interface SubmitOptions extends CommonOptions {
+  readonly dryRun?: boolean;
+  readonly command: string;
+  readonly tries: string;
+}
+
+/** `galewake events submit slurm`: writes the scripts of a run and submits them, or prints them. */
+export async function submit(engine: string, folder: string, options: SubmitOptions): Promise<void> {
+  const out = makeConsole({ quiet: options.quiet === true });
+  if (engine !== 'slurm')
+    throw new UsageError(
+      'events.engine',
+      `'${engine}': only slurm is submitted to; other engines run galewake events shard ${folder} as an array, the index comes from their environment`,
+    );
+  const run = await EventRun.open(folder);
+  const scripts = slurmScripts({
+    run: resolve(folder),
+    shards: run.plan.shards,
+    command: options.command,
+    tries: countOf(options.tries, { name: '--tries', least: 0 }),
+  });
+  if (options.dryRun) {
+    out.print(`${scripts.array}\n${scripts.reduce}`);
+    return;
+  }
+  const [array, reduceScript] = [join(resolve(folder), 'slurm-shards.sh'), join(resolve(folder), 'slurm-reduce.sh')];
+  await writeFile(array, scripts.array);
+  await writeFile(reduceScript, scripts.reduce);
+  const job = sbatch(['--parsable', array]).trim();
+  const last = sbatch(['--parsable', `--dependency=afterany:${job}`, reduceScript]).trim();
+  out.print(`array ${job}, reduction ${last}\n`);
+}
+
+function sbatch(words: readonly string[]): string {
+  try {
+    return execFileSync('sbatch', words, { encoding: 'utf8' });
+  } catch (cause) {
+    const missing = (cause as NodeJS.ErrnoException).code === 'ENOENT';
+    throw new LimitError(
+      'events.sbatch',
+      missing
+        ? 'sbatch is not on this machine; --dry-run prints the scripts'
+        : `sbatch refused the job: ${(cause as { stderr?: string }).stderr ?? String(cause)}`,
+      { cause },
+    );
+  }
 }

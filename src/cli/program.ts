@@ -240,6 +240,21 @@ export async function runProgram(argv: readonly string[]): Promise<void> {
     async (folder, options) => (await import('./events.js')).reduce(folder, options),
   );
 
+  common(events.command('show <RUN> <EVENT>').description('The full swath of one event.'))
+    .option('--out <DIR>', 'folder of the results (./<event>)')
+    .option('--formats <LIST>', 'as of swath', 'geojson,cog')
+    .option('--force', 'replace existing files')
+    .action(async (folder, id, options) => (await import('./events.js')).show(folder, id, options));
+  common(
+    events
+      .command('submit <ENGINE> <RUN>')
+      .description('Write and submit a run as an array and its reduction (slurm).'),
+  )
+    .option('--dry-run', 'print the scripts instead')
+    .option('--command <COMMAND>', 'how galewake is called on the machines', 'galewake')
+    .option('--tries <N>', 'how often missing shards are submitted once more', '3')
+    .action(async (engine, folder, options) => (await import('./events.js')).submit(engine, folder, options));
+
   common(program.command('recipe').description('The recipe in force with its sources; check one.'))
     .option('--recipe <FILE>', 'read and check this recipe')
     .option('--set <KEY=VALUE>', 'one modelling choice; may be repeated', gather)

@@ -2,7 +2,7 @@ import { coastDetailFor, pictureCoast } from '../io/coast-picture.js';
 import type { MapInput } from '../picture/map-input.js';
 import { recipeText } from '../picture/words.js';
 import { peakOf } from '../write/summary.js';
-import type { SwathResult } from './swath-files.js';
+import type { SwathResult } from './swath-result.js';
 
 /** What the map of a swath is drawn from. */
 export function mapInput(result: SwathResult): MapInput {

@@ -4,7 +4,7 @@ import { mapSvg } from '../picture/map-svg.js';
 import { mapPage } from '../picture/page-html.js';
 import { recipeText } from '../picture/words.js';
 import { mapInput } from './map-input.js';
-import type { SwathResult } from './swath-files.js';
+import type { SwathResult } from './swath-result.js';
 
 /** The content of `map.html`. */
 export async function mapPageOf(result: SwathResult): Promise<string> {

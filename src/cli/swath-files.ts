@@ -1,47 +1,18 @@
 import { poolDeflate } from '../io/deflate.js';
 import { OutputFolder } from '../io/output.js';
 import { safeName } from '../io/safe-name.js';
-import type { PolygonCoordinates } from '../isotach/area.js';
-import type { SurfaceMap } from '../land/surface-map.js';
-import type { WindModel } from '../model/wind.js';
-import type { MapInput } from '../picture/map-input.js';
-import type { Swath } from '../swath/swath.js';
 import { isotachsFlatGeobuf } from '../write/flatgeobuf.js';
 import { peakTif } from '../write/geotiff.js';
 import { isotachsGeojson } from '../write/isotachs-geojson.js';
 import { swathKml } from '../write/kml.js';
 import { peakNetcdf } from '../write/netcdf.js';
 import { peakCsv } from '../write/peak-csv.js';
-import type { Provenance } from '../write/provenance.js';
 import { tracksToGeojson } from '../write/track-geojson.js';
+import type { SwathResult } from './swath-result.js';
 
 /** What `--formats` may name. */
 export const FORMATS = ['geojson', 'cog', 'csv', 'netcdf', 'kml', 'flatgeobuf', 'svg', 'png', 'html'] as const;
 export type Format = (typeof FORMATS)[number];
-
-/** Everything that the files of one run are made from. */
-export interface SwathResult {
-  readonly model: WindModel;
-  readonly swath: Swath;
-  readonly isotachs: readonly {
-    thresholdMps: number;
-    upperMps: number | null;
-    polygons: readonly PolygonCoordinates[];
-    areaM2: number;
-  }[];
-  readonly quantity: 'wind' | 'gust';
-  readonly bands: boolean;
-  readonly levels: readonly number[];
-  readonly classOf: (thresholdMps: number) => string | null;
-  readonly cautions: readonly string[];
-  readonly period: { readonly fromMs: number; readonly toMs: number };
-  readonly provenance: Provenance;
-  /** what the user wants to see on the map */
-  readonly places: NonNullable<MapInput['places']>;
-  readonly zones: NonNullable<MapInput['zones']>;
-  /** the surface, where its bands are wanted in the raster */
-  readonly surface: SurfaceMap | null;
-}
 
 /**
  * The folder of a run, opened before any work is done: what could not be written at the end is refused now.

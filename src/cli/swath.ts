@@ -26,7 +26,8 @@ import { type Console, makeConsole, table } from './console.js';
 import { drawnOf } from './drawn.js';
 import { type LandOptions, landNotes, landOfRun, surfaceOfRun, WORLD } from './land.js';
 import { readStorm } from './storm.js';
-import { FORMATS, openFolder, type SwathResult, writeSwath } from './swath-files.js';
+import { FORMATS, openFolder, writeSwath } from './swath-files.js';
+import type { SwathResult } from './swath-result.js';
 
 export interface SwathCommandOptions extends CommonOptions, ModelOptions, TrackOptions, LandOptions {
   readonly surfaceBands?: boolean;

@@ -3,8 +3,9 @@ import type { WindModel } from '../model/wind.js';
 import { gustFactorOf, HOURS_THRESHOLDS_MPS, type SwathOptions } from './exact.js';
 import type { Grid } from './grid.js';
 import type { Engine } from './kernel/engine.js';
+import { newFields, type SwathFields } from './kernel/fields.js';
 import type { Tiles } from './kernel/pool.js';
-import { newFields, type SwathFields, swathPlan, swathWork } from './kernel/work.js';
+import { swathPlan, swathWork } from './kernel/work.js';
 import { settlePeaks } from './settle-peaks.js';
 import type { Swath } from './swath.js';
 

@@ -1,7 +1,7 @@
 import type { SurfaceMap } from '../land/surface-map.js';
 import { type WindModel, windOf } from '../model/wind.js';
 import { cellCentre, type Grid, projection } from './grid.js';
-import type { SwathFields } from './kernel/work.js';
+import type { SwathFields } from './kernel/fields.js';
 
 /** Minutes from the time that the tables gave at which the plain model is asked: a broad peak may lie off by hours. */
 const AROUND_MIN = [0, -4, 4, -10, 10, -20, 20, -40, 40, -80, 80] as const;

@@ -1,11 +1,11 @@
 import { RADIANS } from '../../earth.js';
 import { type SurfaceMap, sectorValue } from '../../land/surface-map.js';
 import { SECTORS } from '../../land/upwind.js';
+import type { SwathFields } from './fields.js';
 import { MOST_POINTS } from './places.js';
 import { type TileFields, tileRunner } from './tile.js';
 import { type Placing, TILE_EDGE } from './tiling.js';
 import type { Tracer } from './tracer.js';
-import type { SwathFields } from './work.js';
 
 /** Cells of a tile from which on the hours of one ratio are counted together. */
 const TOGETHER = 48;

@@ -2,7 +2,8 @@ import { existsSync } from 'node:fs';
 import { availableParallelism } from 'node:os';
 import { Worker } from 'node:worker_threads';
 import { fromPlainError, type PlainError } from '../../errors.js';
-import type { SwathFields, SwathPlan } from './work.js';
+import type { SwathFields } from './fields.js';
+import type { SwathPlan } from './work.js';
 
 /** Tiles that several threads share: each takes the next one that nobody has taken. */
 export interface Tiles {

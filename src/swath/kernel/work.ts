@@ -3,6 +3,7 @@ import type { WindModel } from '../../model/wind.js';
 import { gustFactorOf, HOURS_THRESHOLDS_MPS } from '../exact.js';
 import type { Grid } from '../grid.js';
 import type { Engine } from './engine.js';
+import type { SwathFields } from './fields.js';
 import { eachCell, overLand } from './over-land.js';
 import { type StormTables, stormTables } from './storm-tables.js';
 import { tileRunner } from './tile.js';
@@ -13,35 +14,6 @@ import { newEngine } from './wasm.js';
 
 /** Other maxima in time within this of the highest are kept, m/s: what tables may be off where fields are fitted to radii. */
 const RIVALS_MPS = 0.4;
-
-/** Fields of a swath while it is made; each nx*ny. */
-export interface SwathFields {
-  readonly windMps: Float32Array;
-  readonly windFromDeg: Float32Array;
-  readonly peakTimeS: Float32Array;
-  readonly hours: readonly Float32Array[];
-  /** where a surface is given */
-  readonly gustMps: Float32Array | null;
-  /** time of the second highest maximum in time, where it was asked for */
-  readonly rivalTimeS: Float32Array | null;
-}
-
-/** @param shared whether several threads write into them */
-export function newFields(
-  cells: number,
-  { shared, rivals = false, gusts = false }: { shared: boolean; rivals?: boolean; gusts?: boolean },
-): SwathFields {
-  const field = (): Float32Array =>
-    shared ? new Float32Array(new SharedArrayBuffer(4 * cells)) : new Float32Array(cells);
-  return {
-    windMps: field(),
-    windFromDeg: field().fill(Number.NaN),
-    peakTimeS: field().fill(Number.NaN),
-    hours: HOURS_THRESHOLDS_MPS.map(field),
-    gustMps: gusts ? field() : null,
-    rivalTimeS: rivals ? field().fill(Number.NaN) : null,
-  };
-}
 
 /** All that is needed to make a swath, as plain data: every thread makes its part from the same tables. */
 export interface SwathPlan {

@@ -111,8 +111,14 @@ describe('the command', () => {
       const child = execFile(process.execPath, [command, 'swath', demo, '--cell', '0.004deg', '--out', 'o'], {
         cwd: folder,
       });
-      setTimeout(() => child.kill('SIGINT'), 1500);
+      // the folder of the results is there before the work begins
+      const watch = setInterval(() => {
+        if (readdirSync(folder).length === 0) return;
+        clearInterval(watch);
+        setTimeout(() => child.kill('SIGINT'), 100);
+      }, 20);
       const code = await new Promise((done) => child.on('close', (exit) => done(exit)));
+      clearInterval(watch);
       expect(code).toBe(130);
       expect(readdirSync(folder)).toEqual([]);
     });

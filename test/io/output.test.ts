@@ -335,7 +335,6 @@ clearInterval(alive);`;
     const body = `import { readdir } from 'node:fs/promises';
 const out = await OutputFolder.open('made', { force: false });
 for (let i = 0; i < 300; i++) await out.write('file' + i, ['x']);
-console.log('ready');
 process.kill(process.pid, 'SIGINT');
 await out.commit();
 await new Promise((done) => setTimeout(done, 20000));`;

@@ -4,7 +4,7 @@ import { availableParallelism, tmpdir } from 'node:os';
 import { join, resolve } from 'node:path';
 import { fileURLToPath } from 'node:url';
 import { InputError, LimitError, UsageError } from '../errors.js';
-import { trackText } from '../events/event-index.js';
+import { trackText, usualShards } from '../events/event-index.js';
 import { slurmScripts } from '../events/slurm-script.js';
 import { taskIndex } from '../events/task-index.js';
 import { EventRun, hashOf, indexEvents, type Manifest, readRange } from '../io/event-run.js';
@@ -62,7 +62,10 @@ export async function plan(input: string, options: PlanOptions): Promise<EventRu
       grid: { crs: options.crs, bounds, cell },
       leastMps: quantityOf('speed', options.least, { bareUnit: 'kt', name: '--least' }),
       badEvents: options.badEvents,
-      shards: Math.min(events.length, countOf(options.shards ?? '16', { name: '--shards', least: 1 })),
+      shards: Math.min(
+        events.length,
+        countOf(options.shards ?? String(usualShards(events.length)), { name: '--shards', least: 1 }),
+      ),
       years,
     },
     { heading, events },

@@ -216,7 +216,7 @@ export async function runProgram(argv: readonly string[]): Promise<void> {
       .option('--cell <SIZE>', 'its cell size', '0.1deg')
       .option('--least <SPEED>', 'lowest wind that is kept', '34kt')
       .option('--years <N>', 'years that the set stands for: equal rates, where the table has none')
-      .option('--shards <N>', 'parts that the set is cut into', '16')
+      .option('--shards <N>', 'parts that the set is cut into (200 events each, 1000 at most)')
       .addOption(
         new Option('--bad-events <WHAT>', 'an event that cannot be modelled')
           .choices(['stop', 'set-aside'])

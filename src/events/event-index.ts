@@ -50,6 +50,11 @@ export function eventIndexer(heading: EventHeading, source: string) {
     /** @param from, to bytes of the line with its end */
     add(line: string, from: number, to: number, number: number): void {
       if (line.trim() === '') return;
+      if (line.includes('"'))
+        throw new InputError(
+          'events.quote',
+          `${source}, row ${number}: a cell is quoted; an event table has plain cells without quotes and commas`,
+        );
       const cells = line.split(',');
       const own = (cells[heading.eventAt] ?? '').trim();
       if (own === '')
@@ -57,7 +62,14 @@ export function eventIndexer(heading: EventHeading, source: string) {
           'events.id',
           `${source}, row ${number}: the event has no id; write one in the column 'event'`,
         );
+      const text = heading.rateAt < 0 ? '' : (cells[heading.rateAt] ?? '').trim();
+      const value = text === '' ? Number.NaN : Number(text);
       if (own === id) {
+        if (text !== '' && value !== rate)
+          throw new InputError(
+            'events.rate',
+            `${source}, row ${number}, event '${own}': the rate '${text}' is not that of its first row ${row}; an event has one rate`,
+          );
         end = to;
         return;
       }
@@ -68,9 +80,7 @@ export function eventIndexer(heading: EventHeading, source: string) {
         );
       close();
       seen.add(own);
-      const text = heading.rateAt < 0 ? '' : (cells[heading.rateAt] ?? '').trim();
-      const value = text === '' ? Number.NaN : Number(text);
-      if (text !== '' && !(value > 0))
+      if (text !== '' && !(value > 0 && Number.isFinite(value)))
         throw new InputError(
           'events.rate',
           `${source}, row ${number}, event '${own}': the rate '${text}' is no number above zero; it is the expected number a year`,
@@ -93,6 +103,14 @@ export function trackText(heading: EventHeading, rows: string): string {
   const without = (cells: string[]): string => cells.filter((_, i) => i !== heading.rateAt).join(',');
   const lines = rows.split(/\r?\n/).filter((line) => line.trim() !== '');
   return `${without(columns)}\n${lines.map((line) => without(line.split(','))).join('\n')}\n`;
+}
+
+/**
+ * Parts that a set is cut into where nobody says: 200 events each, so that a part's memory does not grow with the set; a
+ * thousand at most, as batch engines take no more by default.
+ */
+export function usualShards(events: number): number {
+  return Math.max(1, Math.min(1000, Math.ceil(events / 200)));
 }
 
 /** Events of a shard: ⌊E·i/n⌋ to ⌊E·(i+1)/n⌋ − 1. */

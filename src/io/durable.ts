@@ -1,11 +1,32 @@
-import { randomBytes } from 'node:crypto';
-import { open, rename, rm } from 'node:fs/promises';
-import { dirname, join } from 'node:path';
+import { createHash, randomBytes } from 'node:crypto';
+import { open, rename, rm, stat } from 'node:fs/promises';
+import { hostname } from 'node:os';
+import { basename, dirname, join } from 'node:path';
+
+const HOST = createHash('sha256').update(hostname()).digest('hex').slice(0, 8);
+const TEMPORARY = /^\.([0-9a-f]{8})-(\d+)-[0-9a-f]+\.part$/;
+/** Age from which a temporary file of another machine is no longer being written, ms. */
+const ABANDONED_MS = 3_600_000;
+
+/** Whether a file is a temporary one whose writer has gone: told by its process here, by its age on another machine. */
+export async function isLeftOver(path: string): Promise<boolean> {
+  const [, host, pid] = TEMPORARY.exec(basename(path)) ?? [];
+  if (host === undefined) return false;
+  if (host === HOST) {
+    try {
+      process.kill(Number(pid), 0);
+    } catch (error) {
+      return (error as NodeJS.ErrnoException).code === 'ESRCH';
+    }
+  }
+  const found = await stat(path).catch(() => null);
+  return found !== null && Date.now() - found.mtimeMs > ABANDONED_MS;
+}
 
 /** Writes a file so that it is whole or not there, also after a loss of power: temporary file, fsync, rename, fsync of the folder. */
 export async function writeDurably(path: string, content: Uint8Array | string): Promise<void> {
   const folder = dirname(path);
-  const temporary = join(folder, `.${randomBytes(9).toString('hex')}.part`);
+  const temporary = join(folder, `.${HOST}-${process.pid}-${randomBytes(9).toString('hex')}.part`);
   try {
     const file = await open(temporary, 'wx');
     try {

@@ -16,7 +16,7 @@ const ROUNDING = 1e-9;
 
 /**
  * Return-period maps of a run: for each cell the highest wind whose rate of exceedance is at least 1/T, 0 where events are
- * rarer than that. DuckDB is loaded here and nowhere else; paths go into its statements as quoted text, nothing else does.
+ * rarer than that. DuckDB is loaded here and nowhere else; paths are bound to its statements, never part of their text.
  * @returns names of the files that were written
  */
 export async function returnPeriodMaps(run: EventRun, manifests: readonly Manifest[]): Promise<string[]> {
@@ -33,7 +33,7 @@ export async function returnPeriodMaps(run: EventRun, manifests: readonly Manife
     wind: RETURN_YEARS.map(() => new Float32Array(cells)),
     gust: RETURN_YEARS.map(() => new Float32Array(cells)),
   };
-  const { DuckDBInstance } = await import('@duckdb/node-api');
+  const { DuckDBInstance, listValue } = await import('@duckdb/node-api');
   const instance = await DuckDBInstance.create(':memory:', {
     autoinstall_known_extensions: 'false',
     autoload_known_extensions: 'false',
@@ -49,18 +49,20 @@ export async function returnPeriodMaps(run: EventRun, manifests: readonly Manife
       appender.endRow();
     }
     appender.closeSync();
+    // a name such as run[1] would else be a pattern, and read the files of run1
     const files = manifests
       .filter(({ rows }) => rows > 0)
-      .map((manifest) => `'${run.dataPath(manifest).replaceAll("'", "''")}'`);
+      .map((manifest) => run.dataPath(manifest).replace(/[[*?]/g, '[$&]'));
     const values = (field: string): string =>
       RETURN_YEARS.map((years) => `max(${field}) filter (where exceeding * ${years} >= ${1 - ROUNDING})`).join(', ');
     for (let first = 0; files.length > 0 && first < cells; first += BLOCK_CELLS) {
       const reader = await connection.runAndReadAll(
         `select cell, ${values('wind')}, ${values('gust')} from (
            select cell, wind, gust, sum(rate) over (partition by cell order by wind desc range unbounded preceding) as exceeding
-           from read_parquet([${files.join(', ')}]) join rates using (event)
+           from read_parquet($1) join rates using (event)
            where cell >= ${first} and cell < ${first + BLOCK_CELLS}
          ) group by cell`,
+        [listValue(files)],
       );
       for (const row of reader.getRows()) {
         const cell = Number(row[0]);

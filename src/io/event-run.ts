@@ -5,7 +5,7 @@ import { hostname } from 'node:os';
 import { basename, join, resolve } from 'node:path';
 import { InputError } from '../errors.js';
 import { type EventHeading, type EventRange, eventHeading, eventIndexer } from '../events/event-index.js';
-import { writeDurably } from './durable.js';
+import { isLeftOver, writeDurably } from './durable.js';
 import { unreadable } from './input.js';
 import { VERSION } from './version.js';
 
@@ -228,10 +228,11 @@ export class EventRun {
     return missing;
   }
 
-  /** Removes what unfinished attempts have left. */
+  /** Removes what unfinished attempts have left; what a living one is writing stays. */
   async tidy(): Promise<void> {
-    for (const name of await readdir(join(this.folder, 'shards')))
-      if (name.endsWith('.part')) await rm(this.path(name), { force: true });
+    for (const folder of [this.folder, join(this.folder, 'shards')])
+      for (const name of await readdir(folder))
+        if (await isLeftOver(join(folder, name))) await rm(join(folder, name), { force: true });
   }
 
   dataPath(manifest: Manifest): string {

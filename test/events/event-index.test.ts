@@ -34,6 +34,11 @@ describe('the index of an event table', () => {
     expect(() => index(['A,t,1,2,3,1', 'B,t,1,2,3,1', 'A,t,1,2,3,1'])).toThrow(/row 4: event 'A' comes again.*sort/);
     expect(() => index([',t,1,2,3,1'])).toThrow(/row 2: the event has no id/);
     expect(() => index(['A,t,1,2,3,-1'])).toThrow(/row 2, event 'A': the rate '-1'/);
+    expect(() => index(['A,t,1,2,3,1', 'A,t,1,2,3,2'])).toThrow(
+      /row 3, event 'A': the rate '2' is not that of its first/,
+    );
+    expect(() => index(['"A,B",t,1,2,3,1'])).toThrow(/row 2: a cell is quoted/);
+    expect(() => index(['A,t,1,2,3,Infinity'])).toThrow(/the rate 'Infinity'/);
     expect(() => index([])).toThrow(/holds no event/);
     expect(() => eventHeading('storm,time', 'set.csv')).toThrow(/set\.csv: there is no column 'event'/);
   });

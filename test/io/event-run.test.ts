@@ -1,6 +1,16 @@
-import { execFileSync } from 'node:child_process';
-import { appendFileSync, mkdtempSync, readdirSync, readFileSync, rmSync, truncateSync, writeFileSync } from 'node:fs';
-import { tmpdir } from 'node:os';
+import { execFileSync, spawnSync } from 'node:child_process';
+import { createHash } from 'node:crypto';
+import {
+  cpSync,
+  mkdtempSync,
+  readdirSync,
+  readFileSync,
+  rmSync,
+  truncateSync,
+  utimesSync,
+  writeFileSync,
+} from 'node:fs';
+import { hostname, tmpdir } from 'node:os';
 import { join, resolve } from 'node:path';
 import { fromArrayBuffer } from 'geotiff';
 import { parquetReadObjects } from 'hyparquet';
@@ -89,10 +99,19 @@ describe('the shards of an event set', () => {
       expect(manifest.sha256).toBe(before.sha256);
     }
     rmSync(third);
-    appendFileSync(join(run.folder, 'shards', '.abc.part'), 'half');
     expect(await run.missing()).toEqual([2]);
+  });
+
+  it('leave temporary files only while their writer lives', async () => {
+    const run = await planOf(text, 1);
+    const host = createHash('sha256').update(hostname()).digest('hex').slice(0, 8);
+    const gone = spawnSync(process.execPath, ['-e', '']).pid;
+    const [alive, other, old] = [`.${host}-${process.pid}-bb.part`, '.00000000-1-cc.part', '.00000000-1-dd.part'];
+    for (const name of [`.${host}-${gone}-aa.part`, alive, other, old])
+      writeFileSync(join(run.folder, 'shards', name), 'half');
+    utimesSync(join(run.folder, 'shards', old), 1, 1);
     await run.tidy();
-    expect(readdirSync(join(run.folder, 'shards')).some((name) => name.endsWith('.part'))).toBe(false);
+    expect(readdirSync(join(run.folder, 'shards')).sort()).toEqual([other, alive].sort());
   });
 
   it('never name a file outside their folder', async () => {
@@ -122,11 +141,17 @@ describe('the shards of an event set', () => {
 });
 
 /** A run whose only shard holds given rows. */
-async function runWith(rates: readonly number[], rows: readonly { cell: number; event: number; wind: number }[]) {
+async function runWith(
+  rates: readonly number[],
+  rows: readonly { cell: number; event: number; wind: number }[],
+  at?: string,
+) {
   const text = ['event,time,lat_deg,lon_deg,vmax_mps,rate', ...rates.map((rate, i) => `E${i},t,0,0,20,${rate}`)].join(
     '\n',
   );
-  const run = await planOf(`${text}\n`, 1, { grid: { crs: 'EPSG:4326', bounds: [0, 0, 2, 1], cell: 0.5 } });
+  const planned = await planOf(`${text}\n`, 1, { grid: { crs: 'EPSG:4326', bounds: [0, 0, 2, 1], cell: 0.5 } });
+  if (at !== undefined) cpSync(planned.folder, at, { recursive: true });
+  const run = await EventRun.open(at ?? planned.folder);
   const sorted = rows.toSorted((a, b) => a.cell - b.cell || a.event - b.event);
   const data = parquetWriteBuffer({
     columnData: [
@@ -188,6 +213,23 @@ describe('return-period maps', () => {
       );
       // independent: the curve in memory, ties of winds sharing one point
       for (const [i, years] of RETURN_YEARS.entries()) expect(wind[i]![cell]).toBe(returnValue(curve, years));
+    }
+  });
+
+  it('are of their own folder, whatever its name means as a pattern or in a statement', async () => {
+    const parent = folderOf();
+    const at = (name: string): string => join(parent, name);
+    // the same manifest, other winds: only the folder tells them apart
+    await runWith([0.2], [{ cell: 0, event: 0, wind: 20 }], at('run1'));
+    for (const name of ['run[1]', 'run*', 'run?', "run'; drop table rates; --"]) {
+      const { wind } = await runWith([0.2], [{ cell: 0, event: 0, wind: 40 }], at(name));
+      expect(wind[0]![0]).toBe(40);
+      // once its own file has gone there is nothing to read, though run1 has one of the same name
+      const run = await EventRun.open(at(name));
+      const manifest = (await run.manifest(0, { checksum: true }))!;
+      cpSync(run.dataPath(manifest), join(at('run1'), 'shards', manifest.file));
+      rmSync(run.dataPath(manifest));
+      await expect(returnPeriodMaps(run, [manifest])).rejects.toThrow();
     }
   });
 });

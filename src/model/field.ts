@@ -4,16 +4,18 @@ import { INFLOWS, type InflowMethod } from '../surface/inflow.js';
 import { isInertiallyStable, kepert2001, type LayerInput, stability } from '../surface/kepert2001.js';
 import {
   backgroundWind,
+  heldTranslation,
   MOTION_WEIGHTS,
   MOTIONS,
   type MotionShare,
   type MotionWeight,
   movingGradientWind,
 } from '../surface/motion.js';
-import { REDUCTIONS, type ReductionMethod } from '../surface/reduction.js';
+import { REDUCTIONS, type ReductionMethod, ratioOfSurfaceWind } from '../surface/reduction.js';
 import type { StormState } from '../track/path.js';
 import type { ProfileMethod, RadialProfile, VortexInput } from '../vortex/profile.js';
 import { profileMethod } from '../vortex/profiles.js';
+import { circleDirections } from './circle.js';
 import { type Recipe, recipeNumber, recipeWord } from './recipe.js';
 import { maximumOf } from './round-trip.js';
 
@@ -36,6 +38,8 @@ export interface WindField {
   readonly onCircle: (out: Float64Array, radiusM: number, directions: Float64Array) => void;
   /** highest wind on a circle, m/s */
   readonly strongestOnCircle: (radiusM: number) => number;
+  /** whether the wind may have several maxima next to the radius of maximum wind */
+  readonly severalMaxima?: boolean;
 }
 
 /** The parts of a recipe that make a field, looked up once a storm. */
@@ -124,12 +128,7 @@ export function windField(
   const translationMps = Math.hypot(state.motionEastMps, state.motionNorthMps);
   const background = methods.motion ? backgroundWind(methods.motion, state) : ([0, 0] as const);
   const backgroundMps = Math.hypot(background[0], background[1]);
-  const nominal = methods.reduction.ratio({
-    gradientWindMps: state.maxWindMps,
-    radiusM: state.radiusOfMaxWindM,
-    radiusOfMaxWindM: state.radiusOfMaxWindM,
-    numbers: methods.numbers,
-  });
+  const nominal = surfaceRatio(methods, state);
   const fieldFor = (gradientMaxMps: number): WindField =>
     buildField(state, methods, { gradientMaxMps, ratio: nominal, background, translationMps, outerRadiusM });
   if (!methods.keepMaximum) return fieldFor(state.maxWindMps / nominal);
@@ -149,6 +148,19 @@ export function windField(
     field = fieldFor(gradientMaxMps);
   }
   return field;
+}
+
+/** 10-m over gradient-level wind at the maximum of a vortex whose 10-m wind is given. */
+export function surfaceRatio(
+  { reduction, numbers }: FieldMethods,
+  { maxWindMps, radiusOfMaxWindM }: { maxWindMps: number; radiusOfMaxWindM: number },
+): number {
+  return ratioOfSurfaceWind(reduction, {
+    surfaceWindMps: maxWindMps,
+    radiusM: radiusOfMaxWindM,
+    radiusOfMaxWindM,
+    numbers,
+  });
 }
 
 function buildField(
@@ -181,18 +193,18 @@ function buildField(
       ownMaxMps: methods.toOneMinute * parts.ratio * gradientMaxMps,
       fieldMaxMps: methods.toOneMinute * state.maxWindMps,
     },
-    numbers: methods.numbers,
+    // the reduction in force, whichever it is
+    numbers: { ...methods.numbers, factor: parts.ratio },
   });
   const coriolis = Math.abs(coriolisPerS(state.latDeg));
   const weightOf = methods.motion ? MOTION_WEIGHTS[methods.motion.weight] : () => 0;
   const backgroundMps = Math.hypot(background[0], background[1]);
-  const headingRad = Math.atan2(state.motionEastMps, state.motionNorthMps);
   const h = state.hemisphere;
 
-  /** tangential 10-m wind of the vortex and weight of the background at a radius, both tapered */
-  function vortexAndWeight(radiusM: number): readonly [number, number] {
+  /** tangential 10-m wind of the vortex, weight of the background and the reduction at a radius, all tapered */
+  function vortexAndWeight(radiusM: number): readonly [speed: number, weight: number, reduction: number] {
     const fade = taper(radiusM, outerRadiusM);
-    if (fade === 0) return [0, 0];
+    if (fade === 0) return [0, 0, 0];
     const gradient = Math.max(0, profile.windMps(radiusM));
     const ratio = methods.reduction.ratio({
       gradientWindMps: gradient,
@@ -205,7 +217,7 @@ function buildField(
       radiusOfMaxWindM,
       relativeWind: gradientMaxMps > 0 ? gradient / gradientMaxMps : 0,
     });
-    return [fade * ratio * gradient, fade * weight];
+    return [fade * ratio * gradient, fade * weight, fade * ratio];
   }
 
   const angleAt = (radiusM: number, azimuthFromHeadingDeg: number): number =>
@@ -216,18 +228,24 @@ function buildField(
       azimuthFromHeadingDeg,
     }) * RADIANS;
 
-  const [headingEast, headingNorth] = [Math.sin(headingRad), Math.cos(headingRad)];
-  const azimuthOf = (east: number, north: number): number => h * (Math.atan2(east, north) - headingRad);
+  // a storm at rest heads poleward; the azimuth by its sine and cosine keeps the mirror exact
+  const headingEast = translationMps > 0 ? state.motionEastMps / translationMps : 0;
+  const headingNorth = translationMps > 0 ? state.motionNorthMps / translationMps : h;
+  const cosineOf = (east: number, north: number): number => east * headingEast + north * headingNorth;
+  const sineOf = (east: number, north: number): number => h * (east * headingNorth - north * headingEast);
+  const heldMps = heldTranslation(translationMps, state.maxWindMps);
 
-  /** speed of a balance that holds the motion over that of one that does not */
-  const movingRatio = (gradient: number, radiusM: number, azimuthFromHeadingDeg: number): number =>
-    gradient > 0
-      ? movingGradientWind(gradient, { radiusM, coriolisPerS: coriolis, translationMps, azimuthFromHeadingDeg }) /
-        gradient
-      : 0;
+  /** gradient wind of a balance that holds the motion */
+  const movingWind = (gradient: number, radiusM: number, azimuthFromHeadingDeg: number): number =>
+    movingGradientWind(gradient, {
+      radiusM,
+      coriolisPerS: coriolis,
+      translationMps: heldMps,
+      azimuthFromHeadingDeg,
+    });
 
   function vortexOnCircle(out: Float64Array, radiusM: number, directions: Float64Array): void {
-    const [speed, weight] = vortexAndWeight(radiusM);
+    const [speed, weight, reduction] = vortexAndWeight(radiusM);
     const gradient = methods.movingBalance ? Math.max(0, profile.windMps(radiusM)) : 0;
     const around = methods.inflow.asymmetric || methods.movingBalance;
     const east0 = weight * background[0];
@@ -239,9 +257,9 @@ function buildField(
       const e = directions[i]!;
       const n = directions[i + 1]!;
       if (around) {
-        const azimuthDeg = wrapBearing(azimuthOf(e, n) / RADIANS);
+        const azimuthDeg = wrapBearing(Math.atan2(sineOf(e, n), cosineOf(e, n)) / RADIANS);
         angle = angleAt(radiusM, azimuthDeg);
-        const own = methods.movingBalance ? speed * movingRatio(gradient, radiusM, azimuthDeg) : speed;
+        const own = methods.movingBalance ? reduction * movingWind(gradient, radiusM, azimuthDeg) : speed;
         along = own * Math.cos(angle);
         inward = own * Math.sin(angle);
       }
@@ -253,7 +271,7 @@ function buildField(
 
   /** the boundary layer's wind, and that of the constant reduction as far as the vortex is not stable */
   function layerOnCircle(out: Float64Array, radiusM: number, directions: Float64Array): void {
-    const input = layerInput(profile, { radiusM, coriolisPerS: coriolis, translationMps }, methods.numbers);
+    const input = layerInput(profile, { radiusM, coriolisPerS: coriolis, translationMps: heldMps }, methods.numbers);
     const share = radiusM > 0 ? stability(input) : 0;
     const fade = share * taper(radiusM, outerRadiusM);
     if (share < 1) vortexOnCircle(out, radiusM, directions);
@@ -265,8 +283,8 @@ function buildField(
     for (let i = 0; i < directions.length; i += 2) {
       const e = directions[i]!;
       const n = directions[i + 1]!;
-      const cosine = e * headingEast + n * headingNorth;
-      const sine = h * (e * headingNorth - n * headingEast);
+      const cosine = cosineOf(e, n);
+      const sine = sineOf(e, n);
       const outward = o0 + oc * cosine + os * sine;
       const along = a0 + ac * cosine + as * sine;
       out[i] = (1 - share) * out[i]! + fade * (e * outward - h * n * along);
@@ -287,7 +305,15 @@ function buildField(
     return Math.sqrt(most);
   }
 
-  return { state, profile, gradientMaxMps, outerRadiusM, onCircle, strongestOnCircle };
+  return {
+    state,
+    profile,
+    gradientMaxMps,
+    outerRadiusM,
+    onCircle,
+    strongestOnCircle,
+    severalMaxima: methods.layer,
+  };
 }
 
 /** Step of a profile's slope, as a share of the radius. */
@@ -329,7 +355,5 @@ export function motionSize({ motion, movingBalance }: FieldMethods): (translatio
 }
 
 /** 72 unit vectors around a circle: the maximum between two of them is at most 0.1 % above (cos 2.5°). */
-const CIRCLE = Float64Array.from({ length: 144 }, (_, i) =>
-  (i % 2 === 0 ? Math.sin : Math.cos)((i >> 1) * 5 * RADIANS),
-);
+const CIRCLE = circleDirections(72);
 const circleWinds = new Float64Array(CIRCLE.length);

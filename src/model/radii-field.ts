@@ -1,5 +1,6 @@
 import { RADIANS } from '../earth.js';
 import { type RadiiState, type Stretch, stretchAround } from '../vortex/radii.js';
+import { circleDirections } from './circle.js';
 import { taper, type WindField } from './field.js';
 
 /** How far out the base vortex is tabulated, m, and in how many steps of the logarithm. */
@@ -9,9 +10,7 @@ const STEPS = 256;
 const LIFT = 1.004;
 
 /** 72 unit vectors around a circle. */
-const CIRCLE = Float64Array.from({ length: 144 }, (_, i) =>
-  (i % 2 === 0 ? Math.sin : Math.cos)((i >> 1) * 5 * RADIANS),
-);
+const CIRCLE = circleDirections(72);
 
 /**
  * A field stretched so that its winds reach as far as a set of radii says. Along each azimuth the speed is that of the base

@@ -3,6 +3,7 @@ import { nearest } from '../nearest.js';
 import { GUST_METHODS } from '../surface/gust-method.js';
 import { INFLOWS } from '../surface/inflow.js';
 import { DECAY_SETS } from '../surface/inland-decay.js';
+import { KEPERT_2001 } from '../surface/kepert2001.js';
 import { MOTION_WEIGHTS, MOTIONS } from '../surface/motion.js';
 import { REDUCTIONS } from '../surface/reduction.js';
 import { BLENDING_HEIGHT_M } from '../surface/roughness.js';
@@ -218,6 +219,7 @@ export const RECIPE_ENTRIES: readonly RecipeEntry[] = [
     key: 'surface.reduction',
     standard: 'constant',
     words: ids(REDUCTIONS),
+    methods: REDUCTIONS,
     help: '10-m over gradient-level wind at sea',
     source: 'Franklin2003',
   },
@@ -232,6 +234,7 @@ export const RECIPE_ENTRIES: readonly RecipeEntry[] = [
     key: 'surface.inflow',
     standard: 'sobey-1977',
     words: ids(INFLOWS),
+    methods: INFLOWS,
     help: 'angle by which the 10-m wind is turned toward the centre',
     source: 'Sobey1977',
   },
@@ -239,6 +242,7 @@ export const RECIPE_ENTRIES: readonly RecipeEntry[] = [
     key: 'surface.motion',
     standard: 'lin-chavas-2012',
     words: ids(MOTIONS),
+    methods: MOTIONS,
     help: 'motion asymmetry: added to the vortex, or within its balance (georgiou-1985); vector takes the three entries below',
     source: 'LinChavas2012',
   },
@@ -266,7 +270,8 @@ export const RECIPE_ENTRIES: readonly RecipeEntry[] = [
   {
     key: 'surface.layer',
     standard: 'none',
-    words: ['none', 'kepert-2001'],
+    words: ['none', KEPERT_2001.id],
+    methods: [KEPERT_2001],
     help: 'boundary layer that gives reduction, inflow and asymmetry of the motion in one, in place of the entries above',
     source: 'Kepert2001',
   },
@@ -428,6 +433,7 @@ export function makeRecipe(document?: unknown, settings: readonly string[] = [],
       }
     }
   }
+  const asked = new Set<string>();
   for (const setting of settings) {
     const at = setting.indexOf('=');
     if (at < 1)
@@ -437,13 +443,17 @@ export function makeRecipe(document?: unknown, settings: readonly string[] = [],
       );
     const entry = entryOf(setting.slice(0, at).trim(), '--set');
     recipe[entry.key] = checkedValue(entry, setting.slice(at + 1).trim(), '--set');
+    asked.add(entry.key);
   }
-  refuseCombination(recipe, source);
+  refuseCombination(recipe, { source, asked });
   return Object.freeze(recipe);
 }
 
-/** Combinations that would say the same thing twice or nothing at all. */
-function refuseCombination(recipe: Recipe, source: string): void {
+/**
+ * Combinations that would say the same thing twice or nothing at all. A built-in choice counts only where it was `asked` for:
+ * a whole document names every entry.
+ */
+function refuseCombination(recipe: Recipe, { source, asked }: { source: string; asked: ReadonlySet<string> }): void {
   const refuse = (reason: string): never => {
     throw new InputError('recipe.refused', `${source}: ${reason}`);
   };
@@ -460,7 +470,7 @@ function refuseCombination(recipe: Recipe, source: string): void {
     refuse('surface.maximum=added has nothing to add with surface.motion=none');
   if (recipe['surface.layer'] === 'none') return;
   for (const key of ['surface.motion', 'surface.inflow', 'surface.reduction']) {
-    if (recipe[key] === STANDARD_RECIPE[key] || recipe[key] === 'none') continue;
+    if ((recipe[key] === STANDARD_RECIPE[key] && !asked.has(key)) || recipe[key] === 'none') continue;
     refuse(
       `surface.layer=${recipe['surface.layer']} already holds reduction, inflow and the asymmetry of the motion; ${key}=${recipe[key]} would count one of them twice: leave one of the two out`,
     );

@@ -3,17 +3,24 @@ interface Searchable {
   readonly state: { readonly radiusOfMaxWindM: number };
   readonly outerRadiusM: number;
   readonly strongestOnCircle: (radiusM: number) => number;
+  readonly severalMaxima?: boolean;
 }
 
 /** Radii at which the search starts, as multiples of the radius of maximum wind. */
 const RATIOS = [0.4, 0.6, 0.8, 0.9, 1, 1.1, 1.25, 1.5, 2, 3, 5];
+/** The same for a field that may have several maxima: close together about R, where a boundary layer makes them. */
+const DENSE_RATIOS = [
+  ...[0.2, 0.3, 0.4, 0.5, 0.6, 0.7],
+  ...Array.from({ length: 26 }, (_, i) => 0.75 + 0.02 * i),
+  ...[1.3, 1.4, 1.5, 1.7, 2, 2.4, 3, 4, 5],
+];
 const GOLDEN = (Math.sqrt(5) - 1) / 2;
 
 /** The radius of the strongest 10-m wind of a field, m: bracketed on a few circles, then golden section. */
 export function radiusOfStrongest(field: Searchable): number {
-  const radii = RATIOS.map((ratio) => ratio * field.state.radiusOfMaxWindM).filter(
-    (radius) => radius < field.outerRadiusM,
-  );
+  const radii = (field.severalMaxima ? DENSE_RATIOS : RATIOS)
+    .map((ratio) => ratio * field.state.radiusOfMaxWindM)
+    .filter((radius) => radius < field.outerRadiusM);
   const speeds = radii.map(field.strongestOnCircle);
   let best = 0;
   for (let i = 1; i < radii.length; i++) if (speeds[i]! > speeds[best]!) best = i;

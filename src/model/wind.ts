@@ -6,7 +6,15 @@ import { type CompletedTrack, completeTrack } from '../track/complete.js';
 import { type Path, pathOf } from '../track/path.js';
 import type { Track } from '../track/track.js';
 import { knots } from '../units.js';
-import { type FieldMethods, fieldMethods, motionSize, unstableRadiiM, type WindField, windField } from './field.js';
+import {
+  type FieldMethods,
+  fieldMethods,
+  motionSize,
+  surfaceRatio,
+  unstableRadiiM,
+  type WindField,
+  windField,
+} from './field.js';
 import { fieldWithRadii } from './radii-field.js';
 import { fitRadii } from './radii-fit.js';
 import { type Recipe, type RecipeValue, recipeNumber } from './recipe.js';
@@ -43,6 +51,8 @@ function sizeOf(value: RecipeValue): string | number {
   return typeof value === 'number' ? value * 1000 : value;
 }
 
+/** Where the reduction is taken for the completion, when the radius of maximum wind may be unknown, m. */
+const COMPLETION_RADIUS_M = 40_000;
 const OUTER_RADIUS_BOUNDS_M = [200_000, 1_000_000] as const;
 
 /**
@@ -69,7 +79,7 @@ export function windModel(
     seaTemperatureC: recipeNumber(recipe, 'completion.sea_temperature_c'),
     maxGapH: recipeNumber(recipe, 'completion.max_gap_h'),
     interpolation,
-    surfaceFactor: recipeNumber(recipe, 'surface.factor'),
+    surfaceFactor: (maxWindMps) => surfaceRatio(methods, { maxWindMps, radiusOfMaxWindM: COMPLETION_RADIUS_M }),
     airDensityKgM3: methods.airDensityKgM3,
     motionMps: methods.keepMaximum ? motionSize(methods) : () => 0,
   });

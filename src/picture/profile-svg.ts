@@ -1,6 +1,6 @@
 import type { WindField } from '../model/field.js';
 import { type RadialRow, radialTable } from '../model/radial.js';
-import { type Recipe, recipeNumber, recipeWord } from '../model/recipe.js';
+import { type Recipe, recipeNumber } from '../model/recipe.js';
 import type { StormState } from '../track/path.js';
 import { toKnots } from '../units.js';
 import type { BalanceRegime } from '../vortex/balance.js';
@@ -9,6 +9,7 @@ import { PAPER } from './colours.js';
 import { sheet } from './sheet.js';
 import { element, textAt } from './svg.js';
 import { cutText, textWidth } from './text.js';
+import { reductionText } from './words.js';
 
 /** One vortex of a drawing. */
 export interface DrawnVortex {
@@ -72,7 +73,7 @@ export function profileSvg(
     title: vortices.length > 1 ? 'Radial profiles' : 'Radial profile',
     subtitle,
     notes: [
-      `Shaded: the balance that rules by the local Rossby number (cyclostrophic above ${regimeBounds.above}, geostrophic below ${regimeBounds.below}; common practice). ${first ? `Reduction to 10 m: ${recipeWord(first.recipe, 'surface.reduction')}.` : ''}`,
+      `Shaded: the balance that rules by the local Rossby number (cyclostrophic above ${regimeBounds.above}, geostrophic below ${regimeBounds.below}; common practice). ${first ? `Reduction to 10 m: ${reductionText(first.recipe)}.` : ''}`,
     ],
     content: (top) => {
       const key = lineKey(LINES, { x: SIDE, y: top + 16, width: width - 2 * SIDE });

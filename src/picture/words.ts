@@ -64,14 +64,26 @@ export function latitudeLongitudeText({
   return `${Math.abs(latDeg).toFixed(2)}°${latDeg < 0 ? 'S' : 'N'} ${Math.abs(lon).toFixed(2)}°${lon < 0 ? 'W' : 'E'}`;
 }
 
+/** `constant 0.9`, `harper-2001`, or the boundary layer that takes its place. */
+export function reductionText(recipe: Recipe): string {
+  if (recipe['surface.layer'] !== 'none') return String(recipe['surface.layer']);
+  return `${recipe['surface.reduction']}${recipe['surface.reduction'] === 'constant' ? ` ${recipe['surface.factor']}` : ''}`;
+}
+
 /** The choices of a recipe that shape the wind, in one line. */
 export function recipeText(recipe: Recipe): string {
   const motion = recipe['surface.motion'];
+  const surface =
+    recipe['surface.layer'] === 'none'
+      ? [
+          `reduction ${reductionText(recipe)}`,
+          `inflow ${recipe['surface.inflow']}`,
+          `motion ${motion}${motion === 'none' ? '' : `, maximum ${recipe['surface.maximum']}`}`,
+        ]
+      : [`boundary layer ${recipe['surface.layer']}`];
   return [
     `profile ${recipe['vortex.profile']}`,
-    `reduction ${recipe['surface.reduction']}${recipe['surface.reduction'] === 'constant' ? ` ${recipe['surface.factor']}` : ''}`,
-    `inflow ${recipe['surface.inflow']}`,
-    `motion ${motion}${motion === 'none' ? '' : `, maximum ${recipe['surface.maximum']}`}`,
+    ...surface,
     `missing pressure ${recipe['completion.pressure']}`,
     `missing radius ${recipe['completion.rmax']}`,
   ].join('; ');

@@ -7,6 +7,13 @@
  * The wind at the surface is the slip of the solution that decays upward. It needs β > 0: a vortex that is inertially stable.
  */
 
+/** The layer as a recipe names it. */
+export const KEPERT_2001 = {
+  id: 'kepert-2001',
+  title: 'Kepert 2001: linear boundary layer with constant diffusivity',
+  source: 'Kepert2001',
+} as const;
+
 /** What the layer needs to know of the vortex at a radius. */
 export interface LayerInput {
   readonly radiusM: number;
@@ -17,8 +24,9 @@ export interface LayerInput {
   /** size of the Coriolis parameter, 1/s */
   readonly coriolisPerS: number;
   readonly translationMps: number;
-  /** vertical diffusivity, m²/s */
+  /** vertical diffusivity, m²/s; about 50 [Kepert2001, from memory] */
   readonly diffusivityM2ps: number;
+  /** about 0.002 [Kepert2001, from memory] */
   readonly dragCoefficient: number;
 }
 

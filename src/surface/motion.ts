@@ -41,7 +41,7 @@ export interface MotionMethod {
   readonly share?: MotionShare;
 }
 
-/** Background 10-m wind 0.55 of the translation, turned 20° cyclonically, the same everywhere   [LinChavas2012]. */
+/** Background 10-m wind 0.55 of the translation, turned 20° cyclonically, the same everywhere   [LinChavas2012, from memory]. */
 export const LIN_CHAVAS_2012: MotionShare = {
   sizeMps: (translationMps) => 0.55 * translationMps,
   rotationDeg: 20,
@@ -126,6 +126,17 @@ export function movingGradientWind(
   // of the two forms of the root the one in which nothing cancels
   const root = Math.sqrt(half * half + driving);
   return half >= 0 ? half + root : driving / (root - half);
+}
+
+/** Translation that a wind field can hold within it, as a share of its maximum. */
+const HELD_SHARE = 0.8;
+
+/**
+ * The translation that a moving balance or a boundary layer is given, m/s: at most 0.8 of the maximum wind. Their wind at the
+ * centre is the translation itself, so that beyond it no vortex could have that maximum (own choice).
+ */
+export function heldTranslation(translationMps: number, maxWindMps: number): number {
+  return Math.min(translationMps, HELD_SHARE * maxWindMps);
 }
 
 /** Wind that the motion leaves on the weak side, m/s, and least share of the maximum that it may have; own calibration. */

@@ -14,6 +14,26 @@ export interface ReductionMethod {
   }) => number;
 }
 
+/**
+ * The 10-m over the gradient-level wind where the 10-m wind is known: K with K(V/K) = V, by iteration (the ratios fall with
+ * the wind by so little that each step cuts the error at least to a third).
+ */
+export function ratioOfSurfaceWind(
+  { ratio }: Pick<ReductionMethod, 'ratio'>,
+  {
+    surfaceWindMps,
+    ...at
+  }: { surfaceWindMps: number } & Omit<Parameters<ReductionMethod['ratio']>[0], 'gradientWindMps'>,
+): number {
+  let found = ratio({ ...at, gradientWindMps: surfaceWindMps });
+  for (let i = 0; i < 24; i++) {
+    const next = ratio({ ...at, gradientWindMps: surfaceWindMps / found });
+    if (next === found) break;
+    found = next;
+  }
+  return found;
+}
+
 /** One ratio everywhere; 0.9 is the ratio of the surface to the 700-hPa wind in the eyewall   [Franklin2003]. */
 const constant: ReductionMethod = {
   id: 'constant',

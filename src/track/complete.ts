@@ -65,7 +65,7 @@ export interface CompletionOptions {
   readonly maxGapH: number;
   readonly interpolation: 'monotone-cubic' | 'linear';
   /** 10-m over gradient-level wind near the maximum */
-  readonly surfaceFactor: number;
+  readonly surfaceFactor: (surfaceWindMps: number) => number;
   readonly airDensityKgM3: number;
   /** share of the translation speed that is not the vortex's own wind */
   readonly motionMps: (translationMps: number) => number;
@@ -212,7 +212,7 @@ export function completeTrack(track: Track, options: CompletionOptions): Complet
         ? { value: fix.radiusOfMaxWindM, origin: 'given', by: null }
         : estimatedRadius({
             maxWindMps: oneMinute,
-            surfaceFactor: options.surfaceFactor,
+            surfaceFactor: options.surfaceFactor(oneMinute),
             latDeg: fix.latDeg,
             pressureDeficitPa: deficit,
             translationMps: translation[i]!,
@@ -269,14 +269,14 @@ function hollandB(
   const raw =
     options.b === 'gradient-consistent' || options.b === 'cyclostrophic'
       ? gradientConsistentB({
-          maxWindMps: own / options.surfaceFactor,
+          maxWindMps: own / options.surfaceFactor(own),
           pressureDeficitPa: storm.deficitPa,
           airDensityKgM3: options.airDensityKgM3,
           coriolisPerS: options.b === 'cyclostrophic' ? 0 : coriolisPerS(fix.latDeg),
           radiusOfMaxWindM: storm.rmaxM,
         })
       : named(HOLLAND_B_RELATIONS, options.b).hollandB({
-          gradientWindMps: (storm.oneMinuteFactor * own) / options.surfaceFactor,
+          gradientWindMps: (storm.oneMinuteFactor * own) / options.surfaceFactor(own),
           radiusOfMaxWindM: storm.rmaxM,
           pressureDeficitPa: storm.deficitPa,
           centralPressurePa: storm.centralPressurePa,

@@ -31,7 +31,7 @@ export function surfaceShape(input: SurfaceShapeInput): number {
 
 /**
  * Holland's profile with B from b_s. With the same air density at both levels a 10-m wind of g times the gradient wind
- * has b_s = g²B, so the gradient level takes B = b_s/g², g = `surface.factor`   [Holland2008]; limited to 0.8–2.5.
+ * has b_s = g²B, so the gradient level takes B = b_s/g², g the reduction at the maximum   [Holland2008]; limited to 0.8–2.5.
  */
 export const holland2008: ProfileMethod = {
   id: 'holland-2008',

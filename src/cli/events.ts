@@ -36,7 +36,13 @@ const MISSING_EXIT = 3;
 /** `galewake events plan`: what a run does, written once. */
 export async function plan(input: string, options: PlanOptions): Promise<EventRun> {
   const out = makeConsole({ quiet: options.quiet === true });
-  const recipe = recipeDocument(await recipeOf(options));
+  const chosen = await recipeOf(options);
+  if (chosen['surface.layer'] !== 'none' || chosen['surface.motion'] === 'georgiou-1985')
+    throw new UsageError(
+      'events.recipe',
+      'event sets take every wind from the fast tables, which blur the edges of surface.layer=kepert-2001 and surface.motion=georgiou-1985; choose another method, or run such storms singly with galewake swath',
+    );
+  const recipe = recipeDocument(chosen);
   if (options.bounds === undefined)
     throw new UsageError('grid.bounds', '--bounds W,S,E,N: an event set needs the edges of its grid');
   const edges = list(options.bounds).map(Number);

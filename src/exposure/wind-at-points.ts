@@ -6,6 +6,7 @@ import { stormTables } from '../swath/kernel/storm-tables.js';
 import { timelineOf } from '../swath/kernel/timeline.js';
 import { type Tracer, tracerOf } from '../swath/kernel/tracer.js';
 import { newEngine } from '../swath/kernel/wasm.js';
+import { isSharp } from '../swath/peak.js';
 import { spaceOrder } from './space-order.js';
 
 /** Places in columns, degrees. */
@@ -98,9 +99,10 @@ export async function windAtPoints(
     peakTimeS,
     hours,
     originMs,
-    cautions: tables.complete
-      ? []
-      : ['the wind varies more around the centre than the fast tables hold; peaks may be off by more than 0.05 m/s'],
+    cautions:
+      tables.complete && !isSharp(model)
+        ? []
+        : ['the wind varies more around the centre than the fast tables hold; peaks may be off by more than 0.05 m/s'],
   };
 }
 

@@ -37,7 +37,7 @@ export async function peakSwath(model: WindModel, grid: Grid, options: PeakOptio
   const cells = grid.nx * grid.ny;
   checkMemory(grid, cells);
   options.signal?.throwIfAborted();
-  const plan = swathPlan(model, grid, { ...options, fitted: isFitted(model) });
+  const plan = swathPlan(model, grid, { ...options, fitted: isFitted(model) || isSharp(model) });
   const threads = options.engine || cells < CELLS_FOR_THREADS ? null : await threadsFor(options.jobs);
   const fields = newFields(cells, { shared: threads !== null, rivals: plan.rivals, gusts: plan.surface !== null });
   const work = swathWork(plan, options.engine);
@@ -64,7 +64,7 @@ export async function peakSwath(model: WindModel, grid: Grid, options: PeakOptio
   } finally {
     work.done();
   }
-  const cautions = plan.tables.complete ? [] : [INCOMPLETE];
+  const cautions = plan.tables.complete && !isSharp(model) ? [] : [INCOMPLETE];
   cautions.push(...(options.surface?.cautions ?? []));
   if (plan.rivals && options.surface?.rowOf.some((row) => row > 0)) cautions.push(LAND_BY_TABLES);
   const own = helped ? unshared(fields) : fields;
@@ -79,6 +79,14 @@ export async function peakSwath(model: WindModel, grid: Grid, options: PeakOptio
   return swathFrom(model, grid, own, cautions);
 }
 
+/**
+ * Whether a model's wind has edges that tables blur: a boundary layer beside the radius of maximum wind, and a balance that
+ * holds the motion at the centre.
+ */
+export function isSharp({ methods }: WindModel): boolean {
+  return methods.layer || methods.movingBalance;
+}
+
 /** Whether observed wind radii shape the field of a model. */
 function isFitted(model: WindModel): boolean {
   const observed = ({ radiiM }: { radiiM: readonly (number | null)[] }): boolean =>
@@ -89,7 +97,7 @@ function isFitted(model: WindModel): boolean {
 }
 
 const INCOMPLETE =
-  'the wind varies more around the centre than the fast tables hold: peaks were taken from the plain model at the times that the tables gave, to 0.05 m/s as far as was seen; hours may be off by more than 1 %';
+  'the wind varies more sharply than the fast tables hold: peaks were taken from the plain model at the times that the tables gave, mostly to 0.05 m/s; hours may be off by more than 1 %';
 
 const LAND_BY_TABLES =
   'over land and near the coast the winds of this storm, which is fitted to observed radii, come from the fast tables alone; there peaks may be off by more than 0.05 m/s';

@@ -43,6 +43,7 @@ describe('galewake events', () => {
         [['plan', 'set.csv', '--out', 'run'], 2, /--bounds W,S,E,N/],
         [['plan', 'no.csv', '--out', 'run', ...grid], 3, /no\.csv: there is no such file/],
         [['plan', 'set.csv', '--out', 'run', ...grid, '--years', '10'], 2, /rates of its own/],
+        [['plan', 'set.csv', '--out', 'run', ...grid, '--set', 'surface.motion=georgiou-1985'], 2, /fast tables/],
         [['shard', 'run', '0'], 65, /there is no plan\.json/],
         [['plan', 'set.csv', '--out', 'run', ...grid], 0, /^$/],
         [['shard', 'run', '7'], 64, /shard 7.*not in this plan/],

@@ -97,10 +97,10 @@ function isFitted(model: WindModel): boolean {
 }
 
 const INCOMPLETE =
-  'the wind varies more sharply than the fast tables hold: peaks were taken from the plain model at the times that the tables gave, mostly to 0.05 m/s; hours may be off by more than 1 %';
+  'the wind varies more sharply than the fast tables hold: peaks were taken from the plain model at the times that the tables gave, mostly to 0.05 m/s, but up to 2 m/s low where the wind changes abruptly in time; hours may be off by more than 1 %';
 
 const LAND_BY_TABLES =
-  'over land and near the coast the winds of this storm, which is fitted to observed radii, come from the fast tables alone; there peaks may be off by more than 0.05 m/s';
+  'over land and near the coast the winds of this storm, which is fitted to observed radii, come from the fast tables alone; there peaks may be off by metres per second';
 
 /** Fields in memory of this thread alone, which every writer takes. */
 function unshared({ windMps, windFromDeg, peakTimeS, hours, gustMps, rivalTimeS }: SwathFields): SwathFields {

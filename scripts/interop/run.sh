@@ -1,5 +1,5 @@
 #!/usr/bin/env bash
-# Reads what the product writes with the readers that people use. usage: run.sh OUT, the folder that the demo filled.
+# Reads what the product writes with the readers that people use, and runs an event set under Slurm. usage: run.sh OUT, the folder that the demo filled.
 set -euo pipefail
 out=${1:-out}
 here=$(dirname "$0")
@@ -21,4 +21,5 @@ node "$root/dist/cli/main.js" swath "$root/fixtures/steady-curve.csv" --bounds=-
   --set surface.motion_weight=relative --set surface.maximum=added --set vortex.radius_km=500 \
   --formats cog --out "$work/opinion" --quiet >/dev/null
 $python "$here/second_opinion.py" "$root/fixtures/steady-curve.csv" "$work/opinion/peak.tif"
+bash "$here/check_slurm.sh"
 echo "interoperability checks passed"

@@ -1,11 +1,10 @@
-import { execFileSync, spawn } from 'node:child_process';
+import { spawn } from 'node:child_process';
 import { mkdtemp, rm, writeFile } from 'node:fs/promises';
 import { availableParallelism, tmpdir } from 'node:os';
-import { join, resolve } from 'node:path';
+import { join } from 'node:path';
 import { fileURLToPath } from 'node:url';
 import { InputError, LimitError, UsageError } from '../errors.js';
 import { trackText, usualShards } from '../events/event-index.js';
-import { slurmScripts } from '../events/slurm-script.js';
 import { taskIndex } from '../events/task-index.js';
 import { EventRun, hashOf, indexEvents, type Manifest, readRange } from '../io/event-run.js';
 import { recipeDocument } from '../model/recipe.js';
@@ -29,7 +28,7 @@ export interface PlanOptions extends CommonOptions, ModelOptions {
 }
 
 /** Exit codes of a shard, as batch engines want them: whether to try again. */
-const SHARD_EXIT = { usage: 64, input: 65, model: 70, disk: 74, stopped: 75 } as const;
+export const SHARD_EXIT = { usage: 64, input: 65, model: 70, disk: 74, stopped: 75 } as const;
 /** Exit code of `missing` and `reduce` where shards are missing. */
 const MISSING_EXIT = 3;
 
@@ -248,51 +247,3 @@ export async function show(folder: string, id: string, options: ShowOptions): Pr
 
 /** Events whose ids are looked through for a near miss. */
 const NAMED = 100_000;
-
-export interface SubmitOptions extends CommonOptions {
-  readonly dryRun?: boolean;
-  readonly command: string;
-  readonly tries: string;
-}
-
-/** `galewake events submit slurm`: writes the scripts of a run and submits them, or prints them. */
-export async function submit(engine: string, folder: string, options: SubmitOptions): Promise<void> {
-  const out = makeConsole({ quiet: options.quiet === true });
-  if (engine !== 'slurm')
-    throw new UsageError(
-      'events.engine',
-      `'${engine}': only slurm is submitted to; other engines run galewake events shard ${folder} as an array, the index comes from their environment`,
-    );
-  const run = await EventRun.open(folder);
-  const scripts = slurmScripts({
-    run: resolve(folder),
-    shards: run.plan.shards,
-    command: options.command,
-    tries: countOf(options.tries, { name: '--tries', least: 0 }),
-  });
-  if (options.dryRun) {
-    out.print(`${scripts.array}\n${scripts.reduce}`);
-    return;
-  }
-  const [array, reduceScript] = [join(resolve(folder), 'slurm-shards.sh'), join(resolve(folder), 'slurm-reduce.sh')];
-  await writeFile(array, scripts.array);
-  await writeFile(reduceScript, scripts.reduce);
-  const job = sbatch(['--parsable', array]).trim();
-  const last = sbatch(['--parsable', `--dependency=afterany:${job}`, reduceScript]).trim();
-  out.print(`array ${job}, reduction ${last}\n`);
-}
-
-function sbatch(words: readonly string[]): string {
-  try {
-    return execFileSync('sbatch', words, { encoding: 'utf8' });
-  } catch (cause) {
-    const missing = (cause as NodeJS.ErrnoException).code === 'ENOENT';
-    throw new LimitError(
-      'events.sbatch',
-      missing
-        ? 'sbatch is not on this machine; --dry-run prints the scripts'
-        : `sbatch refused the job: ${(cause as { stderr?: string }).stderr ?? String(cause)}`,
-      { cause },
-    );
-  }
-}

@@ -248,12 +248,15 @@ export async function runProgram(argv: readonly string[]): Promise<void> {
   common(
     events
       .command('submit <ENGINE> <RUN>')
-      .description('Write and submit a run as an array and its reduction (slurm).'),
+      .description('A run as an array and its reduction: slurm submits it, kubernetes prints a manifest.'),
   )
     .option('--dry-run', 'print the scripts instead')
     .option('--command <COMMAND>', 'how galewake is called on the machines', 'galewake')
     .option('--tries <N>', 'how often missing shards are submitted once more', '3')
-    .action(async (engine, folder, options) => (await import('./events.js')).submit(engine, folder, options));
+    .option('--image <IMAGE>', 'kubernetes: an image with galewake in it', 'registry.example/galewake')
+    .option('--claim <NAME>', 'kubernetes: claim of a volume that all pods may write to', 'galewake')
+    .option('--mount <DIR>', 'kubernetes: where that volume stands (the folder that holds run and input)')
+    .action(async (engine, folder, options) => (await import('./event-submit.js')).submit(engine, folder, options));
 
   common(program.command('recipe').description('The recipe in force with its sources; check one.'))
     .option('--recipe <FILE>', 'read and check this recipe')

@@ -1,12 +1,11 @@
-/** A word for a shell: quoted so that nothing in it is taken for more than itself. */
-function quoted(word: string): string {
-  return `'${word.replaceAll("'", `'\\''`)}'`;
-}
+import { UsageError } from '../errors.js';
+import { quoted } from './shell-word.js';
 
 /**
  * The two batch scripts of a run for Slurm: an array with one task a shard, and the reduction after it. The reduction waits
  * for the array's end, not for its success: it finds what is missing, and submits that once more, `tries` times at most.
  * @param command how galewake is called on the cluster's machines
+ * @throws UsageError `events.run-name` for a folder whose name breaks the line: what follows would be a directive
  */
 export function slurmScripts({
   run,
@@ -19,12 +18,16 @@ export function slurmScripts({
   command: string;
   tries: number;
 }): { array: string; reduce: string } {
-  const log = quoted(`${run}/slurm-%A_%a.log`);
+  if (/[\r\n]/.test(run))
+    throw new UsageError('events.run-name', `${JSON.stringify(run)}: a script cannot name a folder with a line break`);
+  // the engine writes the job's number for %A and the like
+  const plain = run.replaceAll('%', '%%');
+  const log = quoted(`${plain}/slurm-%A_%a.log`);
   const head = (name: string): string =>
     `#!/bin/sh\n#SBATCH --job-name=${name}\n#SBATCH --requeue\n#SBATCH --open-mode=append\n#SBATCH --cpus-per-task=1\n`;
   return {
     array: `${head('galewake-shards')}#SBATCH --array=0-${shards - 1}\n#SBATCH --output=${log}\nexec ${command} events shard ${quoted(run)} --quiet\n`,
-    reduce: `${head('galewake-reduce')}#SBATCH --output=${quoted(`${run}/slurm-reduce.log`)}
+    reduce: `${head('galewake-reduce')}#SBATCH --output=${quoted(`${plain}/slurm-reduce.log`)}
 missing=$(${command} events missing ${quoted(run)})
 if [ -n "$missing" ]; then
   tries=\${GALEWAKE_TRIES:-0}

@@ -51,7 +51,9 @@ describe('galewake events', () => {
         [['plan', 'set.csv', '--out', 'run', ...grid, '--least', '50kt'], 3, /another plan/],
         [['run', 'bad.csv', '--out', 'bad', ...grid], 3, /event 'E1' \(from row 19\).*95/],
         [['show', 'run', 'E9'], 3, /no event 'E9'; did you mean/],
-        [['submit', 'pbs', 'run'], 2, /only slurm/],
+        [['submit', 'pbs', 'run'], 2, /slurm and kubernetes; other engines/],
+        [['submit', 'kubernetes', 'run'], 2, /add --dry-run/],
+        [['submit', 'kubernetes', 'run', '--dry-run'], 0, /^$/],
       ];
       for (const [words, code, says] of cases) {
         const { code: ended, stderr } = await galewake(['events', ...words], { cwd });

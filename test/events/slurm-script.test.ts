@@ -15,4 +15,14 @@ describe('scripts for Slurm', () => {
     expect(reduce).toMatch(/--dependency=afterany:/);
     expect(reduce).toMatch(/-ge 3/);
   });
+
+  it('name their logs so that the engine reads nothing into them', () => {
+    const { array, reduce } = slurmScripts({ run: '/data/100%A', shards: 2, command: 'galewake', tries: 3 });
+    expect(array).toMatch(/^#SBATCH --output='\/data\/100%%A\/slurm-%A_%a\.log'$/m);
+    expect(reduce).toMatch(/^#SBATCH --output='\/data\/100%%A\/slurm-reduce\.log'$/m);
+    expect(array).toMatch(/events shard '\/data\/100%A' /);
+    expect(() => slurmScripts({ run: '/data/a\n#SBATCH --uid=0', shards: 2, command: 'galewake', tries: 3 })).toThrow(
+      expect.objectContaining({ code: 'events.run-name' }),
+    );
+  });
 });

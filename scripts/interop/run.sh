@@ -21,5 +21,8 @@ node "$root/dist/cli/main.js" swath "$root/fixtures/steady-curve.csv" --bounds=-
   --set surface.motion_weight=relative --set surface.maximum=added --set vortex.radius_km=500 \
   --formats cog --out "$work/opinion" --quiet >/dev/null
 $python "$here/second_opinion.py" "$root/fixtures/steady-curve.csv" "$work/opinion/peak.tif"
+node "$root/scripts/make-events.js" --events 60 --years 1200 >"$work/set.csv"
+node "$root/dist/cli/main.js" events run "$work/set.csv" --out "$work/run" --bounds=-90,5,-30,45 --cell 0.5 --quiet >/dev/null
+$python "$here/check_return_periods.py" "$work/run"
 bash "$here/check_slurm.sh"
 echo "interoperability checks passed"

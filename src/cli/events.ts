@@ -5,6 +5,7 @@ import { join } from 'node:path';
 import { fileURLToPath } from 'node:url';
 import { InputError, LimitError, UsageError } from '../errors.js';
 import { trackText, usualShards } from '../events/event-index.js';
+import { OPEN_SEA } from '../events/open-sea.js';
 import { taskIndex } from '../events/task-index.js';
 import { EventRun, hashOf, indexEvents, type Manifest, readRange } from '../io/event-run.js';
 import { recipeDocument } from '../model/recipe.js';
@@ -133,23 +134,25 @@ export async function reduce(folder: string, options: CommonOptions): Promise<vo
     return;
   }
   const { RETURN_YEARS, returnPeriodMaps } = await import('../io/event-hazard.js');
-  const files = await returnPeriodMaps(run, manifests);
+  const { files, cautions } = await returnPeriodMaps(run, manifests);
   const setAside = manifests.flatMap((manifest) => manifest.setAside);
   // one event more or less decides what is rarer than the rarest of them
   const longest = 1 / run.events.reduce((least, { rate }) => Math.min(least, rate), Number.POSITIVE_INFINITY);
   const beyond = RETURN_YEARS.filter((years) => years > longest);
   if (beyond.length > 0)
-    out.say(
-      `caution: the rarest event comes once in ${longest.toFixed(0)} years; the maps of ${beyond.join(', ')} years show the highest wind of the set`,
+    cautions.push(
+      `the rarest event comes once in ${longest.toFixed(0)} years; the maps of ${beyond.join(', ')} years show the highest wind of the set`,
     );
+  for (const caution of cautions) out.say(`caution: ${caution}`);
   for (const { event, row, why } of setAside.slice(0, 20)) out.say(`set aside: event '${event}' (row ${row}): ${why}`);
   if (options.json)
     out.print(
-      `${JSON.stringify({ schema: 'galewake-event-run/1', events: run.plan.events, set_aside: setAside, files, caution: CAUTION }, null, 2)}\n`,
+      `${JSON.stringify({ schema: 'galewake-event-run/1', events: run.plan.events, set_aside: setAside, files, cautions, surface: OPEN_SEA, caution: CAUTION }, null, 2)}\n`,
     );
   else {
     out.print(`${run.plan.events - setAside.length} events, ${setAside.length} set aside\n`);
     out.print(`${files.map((name) => `${folder}/${name}`).join('\n')}\n`);
+    out.say(OPEN_SEA);
     out.say(CAUTION);
   }
 }
@@ -240,6 +243,7 @@ export async function show(folder: string, id: string, options: ShowOptions): Pr
       cell: `${cell}deg`,
       land: 'none',
     });
+    makeConsole({ quiet: options.quiet === true }).say(OPEN_SEA);
   } finally {
     await rm(work, { recursive: true, force: true });
   }

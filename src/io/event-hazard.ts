@@ -1,11 +1,16 @@
 import { join } from 'node:path';
 import { LimitError } from '../errors.js';
+import { OPEN_SEA } from '../events/open-sea.js';
+import { makeRecipe, recipeNumber } from '../model/recipe.js';
 import { gridOver } from '../swath/grid.js';
 import { cogChunks } from '../write/geotiff.js';
 import { CAUTION } from '../write/provenance.js';
+import { returnNetcdf } from '../write/return-netcdf.js';
 import { poolDeflate } from './deflate.js';
 import { writeDurably } from './durable.js';
+import { footprintFiles, ratesOf, withDuckDb } from './event-query.js';
 import type { EventRun, Manifest } from './event-run.js';
+import { VERSION } from './version.js';
 
 /** Return periods of the maps, years. */
 export const RETURN_YEARS = [10, 25, 50, 100, 250, 500, 1000] as const;
@@ -13,48 +18,108 @@ export const RETURN_YEARS = [10, 25, 50, 100, 250, 500, 1000] as const;
 const BLOCK_CELLS = 65_536;
 /** What a sum of equal rates may miss a rate by. */
 const ROUNDING = 1e-9;
+const MEANING = 'mean years between exceedances, 1/λ of a Poisson process; 0 where events are rarer';
 
 /**
  * Return-period maps of a run: for each cell the highest wind whose rate of exceedance is at least 1/T, 0 where events are
- * rarer than that. DuckDB is loaded here and nowhere else; paths are bound to its statements, never part of their text.
- * @returns names of the files that were written
+ * rarer than that. As GeoTIFF, wind and gust apart, and both as netCDF.
+ * @returns names of the files that were written, and what is to be said of them
  */
-export async function returnPeriodMaps(run: EventRun, manifests: readonly Manifest[]): Promise<string[]> {
-  const { plan, events } = run;
-  if (events.some(({ rate }) => Number.isNaN(rate)))
-    throw new LimitError(
-      'events.rates',
-      'the events have no rates: give them in the column `rate`, or the years that the set stands for with --years',
-    );
+export async function returnPeriodMaps(
+  run: EventRun,
+  manifests: readonly Manifest[],
+): Promise<{ files: string[]; cautions: string[] }> {
+  const { plan } = run;
   const bounds = plan.grid.bounds as unknown as readonly [number, number, number, number];
   const grid = gridOver({ crs: plan.grid.crs, cell: plan.grid.cell, bounds });
-  const cells = grid.nx * grid.ny;
+  const maps = await mapsOf(run, { manifests, cells: grid.nx * grid.ny });
+  const recipe = makeRecipe(plan.recipe);
+  const [averagingS, gustDurationS] = [
+    recipeNumber(recipe, 'wind.averaging_s'),
+    recipeNumber(recipe, 'gust.duration_s'),
+  ];
+  const files: string[] = [];
+  const write = async (name: string, content: Uint8Array): Promise<void> => {
+    await writeDurably(join(run.folder, name), content);
+    files.push(name);
+  };
+  const metadata = {
+    plan: plan.planHash,
+    events: String(plan.events),
+    return_period: MEANING,
+    surface: OPEN_SEA,
+    caution: CAUTION,
+  };
+  for (const quantity of ['wind', 'gust'] as const) {
+    const chunks = await cogChunks({
+      grid,
+      bands: RETURN_YEARS.map((years, i) => ({
+        name: `${quantity}_${years}y`,
+        unit: 'm/s',
+        values: maps[quantity][i]!,
+        overview: 'max' as const,
+        description: `${quantity} that is exceeded once in ${years} years on average`,
+        items: {
+          return_period_years: String(years),
+          averaging_period_s: String(quantity === 'wind' ? averagingS : gustDurationS),
+        },
+      })),
+      metadata,
+      deflate: poolDeflate,
+    });
+    await write(`return-${quantity}.tif`, Buffer.concat(chunks));
+  }
+  try {
+    const netcdf = await returnNetcdf({
+      grid,
+      years: RETURN_YEARS,
+      windMps: maps.wind,
+      gustMps: maps.gust,
+      averagingS,
+      gustDurationS,
+      attributes: {
+        source: `Galewake ${VERSION}, parametric wind model`,
+        history: `Galewake ${VERSION}: return-period maps of an event set`,
+        references: 'see the recipe',
+        surface: OPEN_SEA,
+        return_period: MEANING,
+        events: plan.events,
+        plan: plan.planHash,
+        recipe: JSON.stringify(plan.recipe),
+        input_sha256: plan.inputsSha256,
+      },
+    });
+    await write('return-periods.nc', netcdf);
+  } catch (error) {
+    if (!(error instanceof LimitError)) throw error;
+    return { files, cautions: [`return-periods.nc is not written: ${error.message}`] };
+  }
+  return { files, cautions: [] };
+}
+
+/** The maps in memory, by period: 0 where events are rarer. */
+async function mapsOf(
+  run: EventRun,
+  { manifests, cells }: { manifests: readonly Manifest[]; cells: number },
+): Promise<{ wind: Float32Array[]; gust: Float32Array[] }> {
+  const rates = ratesOf(run);
   const maps = {
     wind: RETURN_YEARS.map(() => new Float32Array(cells)),
     gust: RETURN_YEARS.map(() => new Float32Array(cells)),
   };
-  const { DuckDBInstance, listValue } = await import('@duckdb/node-api');
-  const instance = await DuckDBInstance.create(':memory:', {
-    autoinstall_known_extensions: 'false',
-    autoload_known_extensions: 'false',
-    threads: '2',
-  });
-  const connection = await instance.connect();
-  try {
+  const files = footprintFiles(run, manifests);
+  const values = (field: string): string =>
+    RETURN_YEARS.map((years) => `max(${field}) filter (where exceeding * ${years} >= ${1 - ROUNDING})`).join(', ');
+  await withDuckDb(async (connection) => {
+    const { listValue } = await import('@duckdb/node-api');
     await connection.run('create table rates (event integer, rate double)');
     const appender = await connection.createAppender('rates');
-    for (const [event, { rate }] of events.entries()) {
+    for (const [event, rate] of rates.entries()) {
       appender.appendInteger(event);
       appender.appendDouble(rate);
       appender.endRow();
     }
     appender.closeSync();
-    // a name such as run[1] would else be a pattern, and read the files of run1
-    const files = manifests
-      .filter(({ rows }) => rows > 0)
-      .map((manifest) => run.dataPath(manifest).replace(/[[*?]/g, '[$&]'));
-    const values = (field: string): string =>
-      RETURN_YEARS.map((years) => `max(${field}) filter (where exceeding * ${years} >= ${1 - ROUNDING})`).join(', ');
     for (let first = 0; files.length > 0 && first < cells; first += BLOCK_CELLS) {
       const reader = await connection.runAndReadAll(
         `select cell, ${values('wind')}, ${values('gust')} from (
@@ -72,34 +137,6 @@ export async function returnPeriodMaps(run: EventRun, manifests: readonly Manife
         }
       }
     }
-  } finally {
-    connection.closeSync();
-    instance.closeSync();
-  }
-  const metadata = {
-    plan: plan.planHash,
-    events: String(plan.events),
-    return_period: 'mean years between exceedances, 1/λ of a Poisson process; 0 where events are rarer',
-    caution: CAUTION,
-  };
-  const names: string[] = [];
-  for (const quantity of ['wind', 'gust'] as const) {
-    const chunks = await cogChunks({
-      grid,
-      bands: RETURN_YEARS.map((years, i) => ({
-        name: `${quantity}_${years}y`,
-        unit: 'm/s',
-        values: maps[quantity][i]!,
-        overview: 'max' as const,
-        description: `${quantity} that is exceeded once in ${years} years on average`,
-        items: { return_period_years: String(years) },
-      })),
-      metadata,
-      deflate: poolDeflate,
-    });
-    const name = `return-${quantity}.tif`;
-    await writeDurably(join(run.folder, name), Buffer.concat(chunks));
-    names.push(name);
-  }
-  return names;
+  });
+  return maps;
 }

@@ -10,7 +10,8 @@ import { CAUTION, type Provenance } from './provenance.js';
 /** Cells that a file may have: the HDF5 library holds a whole field and the whole file in its 32-bit memory. */
 export const MOST_NETCDF_CELLS = 60_000_000;
 
-const FILL = new Float32Array([Number.NaN]);
+/** What stands for no data. */
+export const FILL = new Float32Array([Number.NaN]);
 
 /**
  * `peak.nc`: netCDF-4 by the CF conventions, version 1.11 [EatonEtAl2023]. Fields as in `peak.tif`, row 0 = north; the
@@ -75,7 +76,8 @@ function edges(start: number, { cell, count }: { cell: number; count: number }):
   return out;
 }
 
-function horizontalCoordinates(grid: Grid): NetcdfVariable[] {
+/** Coordinates of the cells with their bounds; longitude and latitude too on a projected grid. */
+export function horizontalCoordinates(grid: Grid): NetcdfVariable[] {
   const { nx, ny, cell, bounds } = grid;
   const x = Float64Array.from({ length: nx }, (_, i) => cellCentre(grid, i, 0)[0]);
   const y = Float64Array.from({ length: ny }, (_, j) => cellCentre(grid, 0, j)[1]);
@@ -115,6 +117,20 @@ function horizontalCoordinates(grid: Grid): NetcdfVariable[] {
 const LATITUDE = { standard_name: 'latitude', long_name: 'latitude of the cell centre', units: 'degrees_north' };
 const LONGITUDE = { standard_name: 'longitude', long_name: 'longitude of the cell centre', units: 'degrees_east' };
 
+/** 10 m above the surface, where every wind of a file holds. */
+export const HEIGHT: NetcdfVariable = {
+  name: 'height',
+  dimensions: [],
+  data: new Float64Array([10]),
+  attributes: {
+    standard_name: 'height',
+    long_name: 'height above the surface',
+    units: 'm',
+    positive: 'up',
+    axis: 'Z',
+  },
+};
+
 function timeAndHeight(
   swath: Swath,
   { since, period }: { since: string; period: Provenance['period'] },
@@ -140,18 +156,7 @@ function timeAndHeight(
       data: new Float64Array([seconds(period.startMs), seconds(period.endMs)]),
       attributes: {},
     },
-    {
-      name: 'height',
-      dimensions: [],
-      data: new Float64Array([10]),
-      attributes: {
-        standard_name: 'height',
-        long_name: 'height above the surface',
-        units: 'm',
-        positive: 'up',
-        axis: 'Z',
-      },
-    },
+    HEIGHT,
   ];
 }
 

@@ -20,8 +20,11 @@ describe('galewake events', () => {
         { cwd },
       );
       expect(ran.code).toBe(0);
-      expect(ran.stdout).toMatch(/3 events, 0 set aside\nrun\/return-wind\.tif\nrun\/return-gust\.tif/);
+      expect(ran.stdout).toMatch(
+        /3 events, 0 set aside\nrun\/return-wind\.tif\nrun\/return-gust\.tif\nrun\/return-periods\.nc/,
+      );
       expect(ran.stderr).toMatch(/once in 30 years; the maps of 50, 100/);
+      expect(ran.stderr).toMatch(/Event sets ignore land/);
       expect((await galewake(['events', 'missing', 'run'], { cwd })).code).toBe(0);
       writeFileSync(join(cwd, 'run/shards/000001.json'), '{');
       const missing = await galewake(['events', 'missing', 'run'], { cwd });
@@ -32,6 +35,7 @@ describe('galewake events', () => {
       expect((await galewake(['events', 'reduce', 'run'], { cwd })).code).toBe(0);
       const shown = await galewake(['events', 'show', 'run', 'E1', '--out', 'one', '--formats', 'geojson'], { cwd });
       expect(shown.code).toBe(0);
+      expect(shown.stderr).toMatch(/Event sets ignore land/);
       expect(existsSync(join(cwd, 'one/isotachs.geojson'))).toBe(true);
     }));
 

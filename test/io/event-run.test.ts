@@ -21,6 +21,7 @@ import { RETURN_YEARS, returnPeriodMaps } from '../../src/io/event-hazard.js';
 import { EventRun, indexEvents, type Manifest } from '../../src/io/event-run.js';
 import { runShard } from '../../src/io/event-shard.js';
 import { makeRecipe, recipeDocument } from '../../src/model/recipe.js';
+import { cfFaults, readNetcdf } from '../write/cf-check.js';
 
 const make = (events: number): string =>
   execFileSync(
@@ -163,7 +164,8 @@ async function runWith(
   });
   const parts = { shard: 0, first: 0, end: rates.length, rows: rows.length, setAside: [], seconds: 0 };
   const manifests: Manifest[] = [await run.commit(parts, new Uint8Array(data))];
-  const [windFile, gustFile] = await returnPeriodMaps(run, manifests);
+  const { files } = await returnPeriodMaps(run, manifests);
+  const [windFile, gustFile, netcdfFile] = files;
   const read = async (name: string): Promise<Float32Array[]> => {
     const bytes = readFileSync(join(run.folder, name));
     const tiff = await fromArrayBuffer(
@@ -171,7 +173,8 @@ async function runWith(
     );
     return (await (await tiff.getImage()).readRasters()) as unknown as Float32Array[];
   };
-  return { wind: await read(windFile!), gust: await read(gustFile!) };
+  const netcdf = await readNetcdf(readFileSync(join(run.folder, netcdfFile!)));
+  return { wind: await read(windFile!), gust: await read(gustFile!), netcdf };
 }
 
 describe('return-period maps', () => {
@@ -182,7 +185,7 @@ describe('return-period maps', () => {
       { cell: 0, event, wind: 70 - 5 * event },
       { cell: 5, event, wind: 15 + 5 * event },
     ]);
-    const { wind, gust } = await runWith(rates, rows);
+    const { wind, gust, netcdf } = await runWith(rates, rows);
     // by hand, cell 0: running rates .001 .003 .007 .012 .022 .042 .072 .112 .162 …
     // 10 y: .112 → 35; 25: .042 → 45; 50: .022 → 50; 100: .012 → 55; 250: .007 → 60; 500: .003 → 65; 1000: .001 → 70
     expect(wind.map((band) => band[0])).toEqual([35, 45, 50, 55, 60, 65, 70]);
@@ -190,6 +193,18 @@ describe('return-period maps', () => {
     // by hand, cell 5: the strongest event comes every other year
     expect(wind.map((band) => band[5])).toEqual([70, 70, 70, 70, 70, 70, 70]);
     expect(wind.map((band) => band[1])).toEqual([0, 0, 0, 0, 0, 0, 0]);
+    // identity: the netCDF holds the same fields to the last bit, and keeps the conventions
+    expect(cfFaults(netcdf)).toEqual([]);
+    for (const [name, bands] of [
+      ['return_wind', wind],
+      ['return_gust', gust],
+    ] as const) {
+      const { values, shape } = netcdf.variables.find((one) => one.name === name)!;
+      expect(shape).toEqual([7, 2, 4]);
+      expect([...(values as Float32Array)]).toEqual(bands.flatMap((band) => [...band]));
+    }
+    expect([...netcdf.variables.find((one) => one.name === 'return_period')!.values]).toEqual([...RETURN_YEARS]);
+    expect(netcdf.attributes['surface']!.value).toMatch(/ignore land/);
   });
 
   it('of 2,000 random events are those of a plain computation', async () => {

@@ -12,7 +12,7 @@ const STANDARD_NAMES: Readonly<Record<string, readonly string[]>> = {
   wind_speed_of_gust: ['m s-1'],
   wind_from_direction: ['degree'],
 };
-const UNITS = /^(degrees_north|degrees_east|degree|m|m s-1|s|h|1|seconds since \d{4}-\d\d-\d\d \d\d:\d\d:\d\d)$/;
+const UNITS = /^(degrees_north|degrees_east|degree|m|m s-1|s|h|1|year|seconds since \d{4}-\d\d-\d\d \d\d:\d\d:\d\d)$/;
 const NAME = /^[A-Za-z][A-Za-z0-9_]*$/;
 const METHOD = '(?:point|sum|maximum|mean|minimum)';
 
@@ -216,7 +216,8 @@ export function cfFaults(file: CfFile): string[] {
         /^(standard|gregorian|proleptic_gregorian|utc)$/.test(text(one, 'calendar') ?? ''),
         `${name}: time without calendar`,
       );
-    if (one.dimensions[0] === name) say(axis !== undefined, `${name}: a coordinate without axis`);
+    // an axis of neither space nor time has no letter
+    if (one.dimensions[0] === name) say(axis !== undefined || units === 'year', `${name}: a coordinate without axis`);
 
     // 5: auxiliary coordinates and grid mapping
     for (const other of text(one, 'coordinates')?.split(' ') ?? []) {

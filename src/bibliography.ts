@@ -39,6 +39,8 @@ export const BIBLIOGRAPHY: Readonly<Record<string, string>> = {
     'Emanuel, K., 2011: Global warming effects on U.S. hurricane damage. Weather, Climate, and Society 3, 261–268. doi:10.1175/WCAS-D-11-00007.1',
   EmanuelRotunno2011:
     'Emanuel, K., and R. Rotunno, 2011: Self-stratification of tropical cyclone outflow. Part I: implications for storm structure. J. Atmos. Sci. 68, 2236–2249',
+  FayFeuer1997:
+    'Fay, M. P., and E. J. Feuer, 1997: Confidence intervals for directly standardized rates: a method based on the gamma distribution. Statistics in Medicine 16, 791–801',
   Franklin2003:
     'Franklin, J. L., M. L. Black, and K. Valde, 2003: GPS dropwindsonde wind profiles in hurricanes and their operational implications. Weather and Forecasting 18, 32–44. doi:10.1175/1520-0434(2003)018<0032:GDWPIH>2.0.CO;2',
   FritschButland1984:
@@ -46,6 +48,7 @@ export const BIBLIOGRAPHY: Readonly<Record<string, string>> = {
   FritschCarlson1980:
     'Fritsch, F. N., and R. E. Carlson, 1980: Monotone piecewise cubic interpolation. SIAM Journal on Numerical Analysis 17, 238–246. doi:10.1137/0717021',
   Fujita1952: 'Fujita, T., 1952: Pressure distribution within typhoon. Geophys. Mag. 23, 437–451',
+  Garwood1936: 'Garwood, F., 1936: Fiducial limits for the Poisson distribution. Biometrika 28, 437–442',
   Georgiou1985:
     'Georgiou, P. N., 1985: Design Wind Speeds in Tropical Cyclone-Prone Regions. PhD thesis, University of Western Ontario',
   Gringorten1963:
@@ -67,6 +70,8 @@ export const BIBLIOGRAPHY: Readonly<Record<string, string>> = {
   HollandBelangerFritz2010:
     'Holland, G. J., J. I. Belanger and A. Fritz, 2010: A revised model for radial profiles of hurricane winds. Mon. Wea. Rev. 138, 4393–4401',
   Holton2004: 'Holton, J. R., 2004: An Introduction to Dynamic Meteorology, 4th ed. Elsevier Academic Press',
+  HoskingWallis1987:
+    'Hosking, J. R. M., and J. R. Wallis, 1987: Parameter and quantile estimation for the generalized Pareto distribution. Technometrics 29, 339–349',
   HubbertEtAl1991:
     'Hubbert, G. D., G. J. Holland, L. M. Leslie, and M. J. Manton, 1991: A real-time system for forecasting tropical cyclone storm surges. Weather and Forecasting 6, 86–97',
   Hughes1952:
@@ -98,6 +103,8 @@ export const BIBLIOGRAPHY: Readonly<Record<string, string>> = {
     'Knapp, K. R., M. C. Kruk, D. H. Levinson, H. J. Diamond, and C. J. Neumann, 2010: The International Best Track Archive for Climate Stewardship (IBTrACS): unifying tropical cyclone data. Bulletin of the American Meteorological Society 91, 363–376. doi:10.1175/2009BAMS2755.1',
   KrayerMarshall1992:
     'Krayer, W. R., and R. D. Marshall, 1992: Gust factors applied to hurricane winds. Bulletin of the American Meteorological Society 73, 613–617',
+  Lanczos1964:
+    'Lanczos, C., 1964: A precision approximation of the gamma function. Journal of the Society for Industrial and Applied Mathematics, Series B: Numerical Analysis 1, 86–96',
   LandseaFranklin2013:
     'Landsea, C. W., and J. L. Franklin, 2013: Atlantic hurricane database uncertainty and presentation of a new database format. Monthly Weather Review 141, 3576–3592. doi:10.1175/MWR-D-12-00254.1',
   LinChavas2012:

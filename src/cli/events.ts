@@ -114,10 +114,8 @@ export async function missing(folder: string, options: CommonOptions): Promise<v
   if (shards.length > 0) process.exitCode = MISSING_EXIT;
 }
 
-/** `galewake events reduce`: return-period maps of all shards. */
-export async function reduce(folder: string, options: CommonOptions): Promise<void> {
-  const out = makeConsole({ quiet: options.quiet === true });
-  const run = await EventRun.open(folder);
+/** The manifests of a run whose shards are all done; else null: what is missing has been said and the exit code set. */
+export async function manifestsOf(run: EventRun, out: Console): Promise<Manifest[] | null> {
   const manifests: Manifest[] = [];
   const absent: number[] = [];
   for (let number = 0; number < run.plan.shards; number++) {
@@ -125,14 +123,21 @@ export async function reduce(folder: string, options: CommonOptions): Promise<vo
     if (manifest) manifests.push(manifest);
     else absent.push(number);
   }
-  if (absent.length > 0) {
-    out.print(`${absent.join(',')}\n`);
-    out.say(
-      `galewake: ${absent.length} of ${run.plan.shards} shards are missing; do them with galewake events shard ${folder} N`,
-    );
-    process.exitCode = MISSING_EXIT;
-    return;
-  }
+  if (absent.length === 0) return manifests;
+  out.print(`${absent.join(',')}\n`);
+  out.say(
+    `galewake: ${absent.length} of ${run.plan.shards} shards are missing; do them with galewake events shard ${run.folder} N`,
+  );
+  process.exitCode = MISSING_EXIT;
+  return null;
+}
+
+/** `galewake events reduce`: return-period maps of all shards. */
+export async function reduce(folder: string, options: CommonOptions): Promise<void> {
+  const out = makeConsole({ quiet: options.quiet === true });
+  const run = await EventRun.open(folder);
+  const manifests = await manifestsOf(run, out);
+  if (!manifests) return;
   const { RETURN_YEARS, returnPeriodMaps } = await import('../io/event-hazard.js');
   const { files, cautions } = await returnPeriodMaps(run, manifests);
   const setAside = manifests.flatMap((manifest) => manifest.setAside);

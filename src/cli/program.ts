@@ -240,6 +240,27 @@ export async function runProgram(argv: readonly string[]): Promise<void> {
     async (folder, options) => (await import('./events.js')).reduce(folder, options),
   );
 
+  common(
+    events
+      .command('curves <RUN>')
+      .description('How often which wind comes to places: curves of exceedance with their sampling interval.'),
+  )
+    .requiredOption('--places <FILE>', 'places (CSV or GeoJSON), as of sites; each takes the wind of its cell')
+    .addOption(new Option('--of <QUANTITY>', 'which wind').choices(['wind', 'gust']).default('wind'))
+    .option('--confidence <PERCENT>', 'of the sampling interval, two-sided', '95')
+    .addOption(
+      new Option('--tail <FORM>', 'gpd: a generalised Pareto tail as well').choices(['none', 'gpd']).default('none'),
+    )
+    .option('--threshold <SPEED>', 'what the tail begins above (m/s; the highest tenth of events, 50 at least)')
+    .option('--strict', 'refuse rows, and places outside the grid, that would otherwise be skipped')
+    .option('--out <DIR>', 'folder of the results; without it they are only shown')
+    .option('--formats <LIST>', 'csv, json, svg, png (csv,json,svg)')
+    .option('--force', 'replace existing files')
+    .addHelpText(
+      'after',
+      '\nWinds are those of the place’s cell over open sea. The interval is the exact one of a Poisson count for equal\nrates (Garwood 1936), a gamma interval for unequal ones (Fay & Feuer 1997): the chance of the set, not the error\nof set or model. A tail is fitted by probability-weighted moments (Hosking & Wallis 1987); beyond the length of\nthe set it is extrapolated.\n',
+    )
+    .action(async (folder, options) => (await import('./event-curves.js')).curves(folder, options));
   common(events.command('show <RUN> <EVENT>').description('The full swath of one event.'))
     .option('--out <DIR>', 'folder of the results (./<event>)')
     .option('--formats <LIST>', 'as of swath', 'geojson,cog')

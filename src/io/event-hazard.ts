@@ -8,7 +8,7 @@ import { CAUTION } from '../write/provenance.js';
 import { returnNetcdf } from '../write/return-netcdf.js';
 import { poolDeflate } from './deflate.js';
 import { writeDurably } from './durable.js';
-import { footprintFiles, ratesOf, withDuckDb } from './event-query.js';
+import { fillTable, footprintFiles, ratesOf, withDuckDb } from './event-query.js';
 import type { EventRun, Manifest } from './event-run.js';
 import { VERSION } from './version.js';
 
@@ -112,14 +112,7 @@ async function mapsOf(
     RETURN_YEARS.map((years) => `max(${field}) filter (where exceeding * ${years} >= ${1 - ROUNDING})`).join(', ');
   await withDuckDb(async (connection) => {
     const { listValue } = await import('@duckdb/node-api');
-    await connection.run('create table rates (event integer, rate double)');
-    const appender = await connection.createAppender('rates');
-    for (const [event, rate] of rates.entries()) {
-      appender.appendInteger(event);
-      appender.appendDouble(rate);
-      appender.endRow();
-    }
-    appender.closeSync();
+    await fillTable(connection, 'rates', { event: Int32Array.from(rates.keys()), rate: rates });
     for (let first = 0; files.length > 0 && first < cells; first += BLOCK_CELLS) {
       const reader = await connection.runAndReadAll(
         `select cell, ${values('wind')}, ${values('gust')} from (

@@ -1,4 +1,4 @@
-import type { DuckDBConnection } from '@duckdb/node-api';
+import type { DuckDBConnection, DuckDBValue } from '@duckdb/node-api';
 import { LimitError } from '../errors.js';
 import type { EventRun, Manifest } from './event-run.js';
 
@@ -41,4 +41,40 @@ export function ratesOf(run: EventRun): Float64Array {
       'the events have no rates: give them in the column `rate`, or the years that the set stands for with --years',
     );
   return rates;
+}
+
+/** Rows of a query, some thousand at a time, column by column: they are never held together. */
+export async function* chunksOf(
+  connection: DuckDBConnection,
+  statement: string,
+  values: DuckDBValue[],
+): AsyncGenerator<readonly (readonly DuckDBValue[])[]> {
+  const result = await connection.stream(statement, values);
+  for (;;) {
+    const chunk = await result.fetchChunk();
+    if (!chunk || chunk.rowCount === 0) return;
+    yield Array.from({ length: chunk.columnCount }, (_, i) => chunk.getColumnValues(i));
+  }
+}
+
+/** A table of numbers by columns of the same length; names are those of this program, never of a file. */
+export async function fillTable(
+  connection: DuckDBConnection,
+  name: 'asked' | 'rates' | 'assets',
+  columns: Readonly<Record<string, Int32Array | Float64Array>>,
+): Promise<void> {
+  const kinds = Object.entries(columns).map(
+    ([column, data]) => `${column} ${data instanceof Int32Array ? 'integer' : 'double'}`,
+  );
+  await connection.run(`create or replace table ${name} (${kinds.join(', ')})`);
+  const appender = await connection.createAppender(name);
+  const data = Object.values(columns);
+  for (let i = 0; i < (data[0]?.length ?? 0); i++) {
+    for (const column of data) {
+      if (column instanceof Int32Array) appender.appendInteger(column[i]!);
+      else appender.appendDouble(column[i]!);
+    }
+    appender.endRow();
+  }
+  appender.closeSync();
 }

@@ -12,6 +12,8 @@ export const BIBLIOGRAPHY: Readonly<Record<string, string>> = {
     'Adobe Systems, 2005: Adobe Photoshop TIFF technical note 3: floating point values and the floating point predictor',
   AtkinsonHolliday1977:
     'Atkinson, G. D., and C. R. Holliday, 1977: Tropical cyclone minimum sea level pressure/maximum sustained wind relationship for the western North Pacific. Monthly Weather Review 105, 421–427. doi:10.1175/1520-0493(1977)105<0421:TCMSLP>2.0.CO;2',
+  BlackmanVigna2021:
+    'Blackman, D., and S. Vigna, 2021: Scrambled linear pseudorandom number generators. ACM Transactions on Mathematical Software 47, 36',
   BoM2023:
     'Bureau of Meteorology, 2023: Tropical cyclone categories. Knowledge Centre, Commonwealth of Australia, bom.gov.au',
   Bretschneider1972:

@@ -91,7 +91,7 @@ export async function curveOf(
  */
 export function curveWind(
   curve: DamageCurve,
-  model: WindModel,
+  model: Pick<WindModel, 'averagingS' | 'recipe'>,
 ): { windOf: (windMps: number, gustMps: number) => number; conversion: string } {
   const gustDurationS = model.recipe['gust.duration_s'] as number;
   if (curve.of === 'wind') {

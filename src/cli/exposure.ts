@@ -251,7 +251,7 @@ function filesOf(formats: readonly string[], zones: boolean): string[] {
 }
 
 /** The gust factor of a recipe at sea. */
-function gustAtSea(recipe: Recipe): number {
+export function gustAtSea(recipe: Recipe): number {
   return gustMethod(recipe['gust.method']).factor({
     exposure: 'at-sea',
     z0M: SEA_Z0_M,
@@ -286,7 +286,8 @@ function classesOf(scale: WindScale, model: WindModel): { of: 'wind' | 'gust'; b
   return { of: 'wind', boundsMps: scale.classes.map((one) => one.fromMps / factor) };
 }
 
-function lossColumns(text: string | undefined, valueNames: readonly string[]): number[] {
+/** Columns of values that a curve is applied to: those that are named, or all. */
+export function lossColumns(text: string | undefined, valueNames: readonly string[]): number[] {
   if (text === undefined) return valueNames.map((_, c) => c);
   return list(text).map((name) => {
     const column = valueNames.findIndex((one) => one.toLowerCase() === name.toLowerCase());

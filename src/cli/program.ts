@@ -261,6 +261,31 @@ export async function runProgram(argv: readonly string[]): Promise<void> {
       '\nWinds are those of the place’s cell over open sea. The interval is the exact one of a Poisson count for equal\nrates (Garwood 1936), a gamma interval for unequal ones (Fay & Feuer 1997): the chance of the set, not the error\nof set or model. A tail is fitted by probability-weighted moments (Hosking & Wallis 1987); beyond the length of\nthe set it is extrapolated.\n',
     )
     .action(async (folder, options) => (await import('./event-curves.js')).curves(folder, options));
+  common(
+    events
+      .command('losses <RUN>')
+      .description('What a portfolio loses: event losses, annual average, occurrence and aggregate exceedance.'),
+  )
+    .requiredOption('--assets <FILE>', 'assets (CSV or GeoJSON), as of exposure; each takes the wind of its cell')
+    .option('--values <LIST>', 'columns of values (every column whose first cell is a number)')
+    .option('--curve <FILE>', 'damage curve as CSV: wind_mps, wind_kt, wind_kmh or wind_mph (or gust_…), and ratio')
+    .addOption(new Option('--curve-of <QUANTITY>', 'which wind the curve takes').choices(['wind', 'gust']))
+    .option('--curve-averaging <PERIOD>', 'averaging period of the curve’s wind')
+    .option('--cubic <THRESHOLD,HALF>', 'cubic curve of Emanuel 2011 (m/s); no built-in speeds')
+    .option('--power <THRESHOLD,TOTAL,EXPONENT>', 'power of the wind above a threshold (m/s)')
+    .option('--loss-of <LIST>', 'columns of values that the curve is applied to (all)')
+    .option('--currency <WORDS>', 'what the values are in, in your words')
+    .option('--simulate <YEARS>', 'years of the simulation of aggregate losses', '100000')
+    .option('--seed <N>', 'of its random numbers', '1')
+    .option('--strict', 'refuse rows, and assets outside the grid, that would otherwise be skipped')
+    .option('--out <DIR>', 'folder of the results; without it they are only shown')
+    .option('--formats <LIST>', 'csv, parquet, json (csv,json)')
+    .option('--force', 'replace existing files')
+    .addHelpText(
+      'after',
+      '\nOccurrence: the largest loss of a year, exact from the rates; aggregate: the sum of a year, by simulation with\nrandom numbers that the seed fixes. A return period here is one over the annual probability.\nDamage figures are indicative: they defer to licensed engineers and local codes. Event sets ignore land.\n',
+    )
+    .action(async (folder, options) => (await import('./event-losses.js')).losses(folder, options));
   common(events.command('show <RUN> <EVENT>').description('The full swath of one event.'))
     .option('--out <DIR>', 'folder of the results (./<event>)')
     .option('--formats <LIST>', 'as of swath', 'geojson,cog')

@@ -3,7 +3,7 @@ import { mkdtemp, rm, writeFile } from 'node:fs/promises';
 import { availableParallelism, tmpdir } from 'node:os';
 import { join } from 'node:path';
 import { fileURLToPath } from 'node:url';
-import { InputError, LimitError, UsageError } from '../errors.js';
+import { GalewakeError, InputError, LimitError, UsageError } from '../errors.js';
 import { trackText, usualShards } from '../events/event-index.js';
 import { OPEN_SEA } from '../events/open-sea.js';
 import { taskIndex } from '../events/task-index.js';
@@ -93,15 +93,24 @@ export async function shard(folder: string, index: string | undefined, options: 
     if (options.json) out.print(`${JSON.stringify(manifest)}\n`);
   } catch (error) {
     out.say(`galewake: ${(error as Error).message}`);
-    process.exitCode =
-      error instanceof UsageError
-        ? SHARD_EXIT.usage
-        : error instanceof InputError
-          ? SHARD_EXIT.input
-          : (error as NodeJS.ErrnoException).code?.startsWith('E')
-            ? SHARD_EXIT.disk
-            : SHARD_EXIT.model;
+    process.exitCode = shardExit(error);
   }
+}
+
+/** What a failure of a shard tells a batch engine. */
+function shardExit(error: unknown): number {
+  const { code } = error as { code?: string };
+  // a full disk or a lost file system may be mended by another try, elsewhere or later
+  if (code?.startsWith('io.') || (code?.startsWith('E') && !(error instanceof GalewakeError))) return SHARD_EXIT.disk;
+  if (error instanceof UsageError) return SHARD_EXIT.usage;
+  return error instanceof InputError ? SHARD_EXIT.input : SHARD_EXIT.model;
+}
+
+/** Says why shards that had been done are missing. */
+function sayFaults(run: EventRun, out: Console): void {
+  for (const [shard, fault] of [...run.faults].slice(0, 20))
+    out.say(`shard ${shard}: ${fault}; it is to be done again`);
+  if (run.faults.size > 20) out.say(`and ${run.faults.size - 20} more shards`);
 }
 
 /** `galewake events missing`: the shards that are not done, checked by their checksums. */
@@ -110,7 +119,11 @@ export async function missing(folder: string, options: CommonOptions): Promise<v
   const run = await EventRun.open(folder);
   await run.tidy();
   const shards = await run.missing();
-  out.print(options.json ? `${JSON.stringify({ schema: 'galewake-missing/1', shards })}\n` : `${shards.join(',')}\n`);
+  sayFaults(run, out);
+  const faults = Object.fromEntries(run.faults);
+  out.print(
+    options.json ? `${JSON.stringify({ schema: 'galewake-missing/1', shards, faults })}\n` : `${shards.join(',')}\n`,
+  );
   if (shards.length > 0) process.exitCode = MISSING_EXIT;
 }
 
@@ -124,6 +137,7 @@ export async function manifestsOf(run: EventRun, out: Console): Promise<Manifest
     else absent.push(number);
   }
   if (absent.length === 0) return manifests;
+  sayFaults(run, out);
   out.print(`${absent.join(',')}\n`);
   out.say(
     `galewake: ${absent.length} of ${run.plan.shards} shards are missing; do them with galewake events shard ${run.folder} N`,
@@ -170,6 +184,7 @@ export async function run(input: string, options: PlanOptions): Promise<void> {
   const planned = await plan(input, { ...options, quiet: true });
   await planned.tidy();
   const waiting = await planned.missing();
+  sayFaults(planned, out);
   const [total, startedAt] = [waiting.length, performance.now()];
   let done = 0;
   const worker = async (): Promise<void> => {

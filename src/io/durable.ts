@@ -2,6 +2,7 @@ import { createHash, randomBytes } from 'node:crypto';
 import { open, rename, rm, stat } from 'node:fs/promises';
 import { hostname } from 'node:os';
 import { basename, dirname, join } from 'node:path';
+import { unwritable } from './unwritable.js';
 
 const HOST = createHash('sha256').update(hostname()).digest('hex').slice(0, 8);
 const TEMPORARY = /^\.([0-9a-f]{8})-(\d+)-[0-9a-f]+\.part$/;
@@ -23,7 +24,10 @@ export async function isLeftOver(path: string): Promise<boolean> {
   return found !== null && Date.now() - found.mtimeMs > ABANDONED_MS;
 }
 
-/** Writes a file so that it is whole or not there, also after a loss of power: temporary file, fsync, rename, fsync of the folder. */
+/**
+ * Writes a file so that it is whole or not there, also after a loss of power: temporary file, fsync, rename, fsync of the folder.
+ * @throws InputError `io.*`: disk full, no permission …
+ */
 export async function writeDurably(path: string, content: Uint8Array | string): Promise<void> {
   const folder = dirname(path);
   const temporary = join(folder, `.${HOST}-${process.pid}-${randomBytes(9).toString('hex')}.part`);
@@ -38,7 +42,7 @@ export async function writeDurably(path: string, content: Uint8Array | string): 
     await rename(temporary, path);
   } catch (error) {
     await rm(temporary, { force: true });
-    throw error;
+    throw unwritable(path, error);
   }
   const handle = await open(folder, 'r');
   try {

@@ -7,6 +7,7 @@ import { InputError } from '../errors.js';
 import { type EventHeading, type EventRange, eventHeading, eventIndexer } from '../events/event-index.js';
 import { isLeftOver, writeDurably } from './durable.js';
 import { unreadable } from './input.js';
+import { unwritable } from './unwritable.js';
 import { VERSION } from './version.js';
 
 export const PLAN_SCHEMA = 'galewake-event-plan/1';
@@ -140,7 +141,9 @@ export class EventRun {
       events: events.length,
     } as const;
     const plan: Plan = { ...body, planHash: hashOf(JSON.stringify({ ...body, input: basename(body.input) })) };
-    await mkdir(join(folder, 'shards'), { recursive: true });
+    await mkdir(join(folder, 'shards'), { recursive: true }).catch((error: unknown) => {
+      throw unwritable(join(folder, 'shards'), error);
+    });
     const existing = await readFile(join(folder, 'plan.json'), 'utf8').catch(() => null);
     if (existing !== null && (JSON.parse(existing) as Plan).planHash !== plan.planHash)
       throw new InputError(
@@ -179,6 +182,9 @@ export class EventRun {
     return new EventRun(folder, plan, JSON.parse(first!) as EventHeading, events);
   }
 
+  /** Why shards that had a manifest count as missing, by number: found since the run was opened. */
+  readonly faults = new Map<number, string>();
+
   private path(name: string): string {
     return join(this.folder, 'shards', name);
   }
@@ -202,22 +208,29 @@ export class EventRun {
     const path = this.path(`${shardName(shard)}.json`);
     const text = await readFile(path, 'utf8').catch(() => null);
     if (text === null) return null;
-    if (await this.holds(shard, text, checksum)) return JSON.parse(text) as Manifest;
+    const fault = await this.faultOf(shard, text, checksum);
+    if (fault === null) return JSON.parse(text) as Manifest;
+    this.faults.set(shard, fault);
     await rm(path, { force: true });
     return null;
   }
 
-  private async holds(shard: number, text: string, checksum: boolean): Promise<boolean> {
+  /** What is wrong with a shard and its manifest, in words; null for nothing. */
+  private async faultOf(shard: number, text: string, checksum: boolean): Promise<string | null> {
     let manifest: Manifest;
     try {
       manifest = JSON.parse(text) as Manifest;
     } catch {
-      return false;
+      return 'its manifest is no JSON';
     }
-    if (manifest.planHash !== this.plan.planHash || manifest.shard !== shard || !DATA.test(manifest.file)) return false;
+    if (manifest.planHash !== this.plan.planHash) return 'its manifest is of another plan';
+    if (manifest.shard !== shard || !DATA.test(manifest.file)) return 'its manifest is not one of this shard';
     const found = await stat(this.path(manifest.file)).catch(() => null);
-    if (!found || found.size !== manifest.bytes) return false;
-    return !checksum || hashOf(await readFile(this.path(manifest.file))) === manifest.sha256;
+    if (!found) return `${manifest.file} is not there`;
+    if (found.size !== manifest.bytes) return `${manifest.file} has ${found.size} bytes instead of ${manifest.bytes}`;
+    if (checksum && hashOf(await readFile(this.path(manifest.file))) !== manifest.sha256)
+      return `${manifest.file} has changed since it was written: its SHA-256 is another one`;
+    return null;
   }
 
   /** Shards that are not done. */

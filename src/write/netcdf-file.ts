@@ -33,8 +33,20 @@ export async function netcdfBytes(file: NetcdfFile): Promise<Uint8Array> {
   const library = await import('h5wasm');
   await library.ready;
   const path = `galewake-${++files}.nc`;
-  const hdf5 = new library.File(path, 'w', { track_order: true });
-  let open = true;
+  const clock = Date.now;
+  // the library stamps the time of writing on every object: a fixed one, so that the same content gives the same bytes.
+  // Nothing else runs until the clock is back
+  Date.now = () => 0;
+  try {
+    writeHdf5(new library.File(path, 'w', { track_order: true }), file);
+    return library.FS!.readFile(path) as Uint8Array;
+  } finally {
+    Date.now = clock;
+    library.FS!.unlink(path);
+  }
+}
+
+function writeHdf5(hdf5: Hdf5File, file: NetcdfFile): void {
   try {
     for (const [name, value] of Object.entries(file.attributes)) putAttribute(hdf5, { name, value });
     const coordinates = new Set(file.variables.filter((one) => one.dimensions[0] === one.name).map((one) => one.name));
@@ -52,12 +64,8 @@ export async function netcdfBytes(file: NetcdfFile): Promise<Uint8Array> {
         dataset.attach_scale(index, dimension);
       });
     }
-    hdf5.close();
-    open = false;
-    return library.FS!.readFile(path) as Uint8Array;
   } finally {
-    if (open) hdf5.close();
-    library.FS!.unlink(path);
+    hdf5.close();
   }
 }
 

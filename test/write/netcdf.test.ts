@@ -60,6 +60,15 @@ describe('peak.nc', () => {
     expect(item('cautions')).toBe('made up');
   });
 
+  it('is the same whenever it is written', async () => {
+    const first = await peakNetcdf(exampleSwath(), options);
+    // times in the file count seconds
+    await new Promise((done) => setTimeout(done, 1100));
+    const second = await peakNetcdf(exampleSwath(), options);
+    expect(Buffer.from(first).equals(Buffer.from(second))).toBe(true);
+    expect(Date.now()).toBeGreaterThan(1e12);
+  });
+
   it('is refused when it would not fit, before anything is made', async () => {
     const swath = exampleSwath();
     const huge = { ...swath, grid: { ...swath.grid, nx: MOST_NETCDF_CELLS, ny: 2 } };

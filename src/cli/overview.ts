@@ -9,8 +9,8 @@ Usage: galewake COMMAND [options]
   sites FILE PLACES        wind against time at places
   exposure FILE ASSETS     what stands in the wind
   verify FILE...           modelled against observed wind radii
-  events run INPUT         many storms: return-period maps; plan, shard, missing,
-                           reduce for a batch
+  events run INPUT         many storms: return-period maps; curves, losses, show;
+                           plan, shard, missing, reduce, submit for a batch
   recipe                   the modelling choices in force, with their sources
 
 galewake COMMAND --help tells the options of a command; --version the version.

@@ -8,13 +8,15 @@ import { CAUTION } from '../write/provenance.js';
 import { returnNetcdf } from '../write/return-netcdf.js';
 import { poolDeflate } from './deflate.js';
 import { writeDurably } from './durable.js';
-import { fillTable, footprintFiles, ratesOf, withDuckDb } from './event-query.js';
+import { chunksOf, fillTable, footprintFiles, ratesOf, withDuckDb } from './event-query.js';
 import type { EventRun, Manifest } from './event-run.js';
 import { VERSION } from './version.js';
 
 /** Return periods of the maps, years. */
 export const RETURN_YEARS = [10, 25, 50, 100, 250, 500, 1000] as const;
-/** Cells that are worked on at once. */
+/** Rows of footprints that are sorted at once, about: cells are worked on in blocks, so that memory does not grow with the set. */
+const BLOCK_ROWS = 4_000_000;
+/** Cells of a block at most. */
 const BLOCK_CELLS = 65_536;
 /** What a sum of equal rates may miss a rate by. */
 const ROUNDING = 1e-9;
@@ -113,20 +115,25 @@ async function mapsOf(
   await withDuckDb(async (connection) => {
     const { listValue } = await import('@duckdb/node-api');
     await fillTable(connection, 'rates', { event: Int32Array.from(rates.keys()), rate: rates });
-    for (let first = 0; files.length > 0 && first < cells; first += BLOCK_CELLS) {
-      const reader = await connection.runAndReadAll(
+    const rows = manifests.reduce((sum, manifest) => sum + manifest.rows, 0);
+    const block = Math.max(1, Math.min(BLOCK_CELLS, Math.ceil((cells * BLOCK_ROWS) / Math.max(1, rows))));
+    for (let first = 0; files.length > 0 && first < cells; first += block) {
+      const found = chunksOf(
+        connection,
         `select cell, ${values('wind')}, ${values('gust')} from (
-           select cell, wind, gust, sum(rate) over (partition by cell order by wind desc range unbounded preceding) as exceeding
+           select cell, wind, gust, sum(rate) over (partition by cell order by wind desc, event rows unbounded preceding) as exceeding
            from read_parquet($1) join rates using (event)
-           where cell >= ${first} and cell < ${first + BLOCK_CELLS}
+           where cell >= ${first} and cell < ${first + block}
          ) group by cell`,
         [listValue(files)],
       );
-      for (const row of reader.getRows()) {
-        const cell = Number(row[0]);
-        for (let i = 0; i < RETURN_YEARS.length; i++) {
-          maps.wind[i]![cell] = Number(row[1 + i] ?? 0);
-          maps.gust[i]![cell] = Number(row[1 + RETURN_YEARS.length + i] ?? 0);
+      for await (const [cellColumn, ...columns] of found) {
+        for (const [k, at] of cellColumn!.entries()) {
+          const cell = Number(at);
+          for (let i = 0; i < RETURN_YEARS.length; i++) {
+            maps.wind[i]![cell] = Number(columns[i]![k] ?? 0);
+            maps.gust[i]![cell] = Number(columns[RETURN_YEARS.length + i]![k] ?? 0);
+          }
         }
       }
     }

@@ -100,7 +100,16 @@ const INCOMPLETE =
   'the wind varies more sharply than the fast tables hold: peaks were taken from the plain model at the times that the tables gave, mostly to 0.05 m/s, but up to 2 m/s low where the wind changes abruptly in time; hours may be off by more than 1 %';
 
 /** Fields in memory of this thread alone, which every writer takes. */
-function unshared({ windMps, windFromDeg, peakTimeS, hours, gustMps, rivalTimeS, gustTimeS, gustRivalTimeS }: SwathFields): SwathFields {
+function unshared({
+  windMps,
+  windFromDeg,
+  peakTimeS,
+  hours,
+  gustMps,
+  rivalTimeS,
+  gustTimeS,
+  gustRivalTimeS,
+}: SwathFields): SwathFields {
   return {
     windMps: windMps.slice(),
     windFromDeg: windFromDeg.slice(),

@@ -12,6 +12,8 @@ const TOGETHER = 48;
 const BLOCK_EDGE = 16;
 /** What is left out of the winds that matter, for parabolas between rows. */
 const SPARE_SHARE = 0.97;
+/** Gusts below this need not be right, m/s: nothing is promised of them. */
+const CALM_MPS = 7;
 /** Gusts this near to the highest of their surface are not looked for, as a share. */
 const NEAR = 1e-9;
 
@@ -81,15 +83,14 @@ export function overLand(
       const even = gusts[row]!;
       const here = Number.isNaN(even) ? sectorValue(gustRatio, row, -Math.sin(from), -Math.cos(from)) : even;
       gustMps[k] = peak * here;
-      if (here < gustRange.highest[row]! * (1 - NEAR)) gustCells.push(k);
+      if (peak * gustRange.highest[row]! > CALM_MPS && here < gustRange.highest[row]! * (1 - NEAR)) gustCells.push(k);
     });
     for (const [ratio, cells] of scaled) {
       if (cells.length < TOGETHER) windCells.push(...cells);
       else countTogether(tile, ratio, cells, fields);
     }
     // the highest wind over the surface is no lower than that over open sea times its lowest ratio
-    const lowestOf = (k: number): number =>
-      SPARE_SHARE * sea.windMps[placeIn(tile, k)]! * windRange.lowest[rowOf[k]!]!;
+    const lowestOf = (k: number): number => SPARE_SHARE * sea.windMps[placeIn(tile, k)]! * windRange.lowest[rowOf[k]!]!;
     trace(1, windCells, tile, {
       atLeastMps: lowestOf,
       leastMps: (k) => Math.min(lowestOf(k), lowestMps) / windRange.highest[rowOf[k]!]!,

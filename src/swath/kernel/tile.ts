@@ -224,7 +224,9 @@ export function tileRunner(
     };
     for (const { column, row } of blocks) {
       const mps =
-        near === WIDEST / 2 ? 0 : Math.max(0, EXPECTED_SHARE * expectedMps(row * EDGE + column, 2 * near) - EXPECTED_MPS);
+        near === WIDEST / 2
+          ? 0
+          : Math.max(0, EXPECTED_SHARE * expectedMps(row * EDGE + column, 2 * near) - EXPECTED_MPS);
       if (count > 0 && (mps > ALIKE * leastMps || leastMps > ALIKE * mps)) answerAll();
       for (const [a, b] of pattern.points) {
         const [i, j] = [column + near * a, row + near * b];

@@ -175,8 +175,8 @@ export function tracerOf(
   // of each leg the moment in its middle, and how far the centre is from there at most, m
   const middles = legs.map(({ first, depth }) => FRAME * (first + (depth > 0 ? 1 << (depth - 1) : 0)));
   const halfM = legs.map((leg) => (leg.speedMps * (leg.endMs - leg.startMs)) / 2000);
-  let place: readonly [number, number, number] = [1, 0, 0];
-  let placeRadiusM = Number.POSITIVE_INFINITY;
+  /** of each leg how far its middle is from the edge of the last place, less the half of its way, m */
+  const apartM = new Float64Array(legs.length);
   const column = (address: number): Float64Array => f64.subarray(address >> 3, (address + at.COLUMN) >> 3);
   const [x, y, z] = [column(at.X), column(at.Y), column(at.Z)];
   const [east, north, moments, windMps] = [at.EAST, at.NORTH, at.MOMENT, at.WIND].map(column) as [
@@ -235,24 +235,22 @@ export function tracerOf(
       const k = FRAME * Math.min(count - 1, Math.trunc(moments[point]! + 0.5));
       return fromDirection(x[point]!, y[point]!, z[point]!, frames, k, east[point]!, north[point]!);
     },
-    near(centre, radiusM, leastMps = 0) {
-      place = centre;
-      placeRadiusM = radiusM;
+    near([cx, cy, cz], radiusM, leastMps = 0) {
+      for (let number = 0; number < legs.length; number++) {
+        const k = middles[number]!;
+        const dot = frames[k]! * cx + frames[k + 1]! * cy + frames[k + 2]! * cz;
+        apartM[number] = EARTH_RADIUS_M * Math.acos(Math.min(1, Math.max(-1, dot))) - halfM[number]! - radiusM;
+      }
       return select(leastMps);
     },
     reaching: select,
   };
 
   function select(leastMps: number): boolean {
-    const [cx, cy, cz] = place;
     let runs = 0;
     let last = -1;
     for (let number = 0; number < legs.length; number++) {
-      const k = middles[number]!;
-      const angle = (reachM(number, leastMps) + halfM[number]! + placeRadiusM) / EARTH_RADIUS_M;
-      const inside =
-        angle >= Math.PI || frames[k]! * cx + frames[k + 1]! * cy + frames[k + 2]! * cz > Math.cos(angle);
-      if (!inside) continue;
+      if (apartM[number]! > outerRadiusM || apartM[number]! > reachM(number, leastMps)) continue;
       if (number !== last) {
         i32[(runsAt >> 2) + 2 * runs] = number;
         runs++;

@@ -92,6 +92,7 @@ let bendLow: f64 = 0;
 let fBendLow: f64 = 0;
 let bendHigh: f64 = 0;
 let fBendHigh: f64 = 0;
+let laterMps: f64 = 0;
 let laterEast: f64 = 0;
 let laterNorth: f64 = 0;
 // whether the middle moment is near the core, where corners pass
@@ -600,7 +601,7 @@ function extreme(p: i32, first: f64, fFirst: f64, middle: f64, fMiddle: f64, las
   let high = last;
   let fHigh = fLast;
   if (kind !== SEA && low < high) {
-    if (atBend(p, low, fLow, middle, fMiddle, high, fHigh, sign)) return;
+    if (atBend(p, low, middle, fMiddle, high, sign)) return;
     low = bendLow;
     fLow = fBendLow;
     high = bendHigh;
@@ -789,7 +790,7 @@ function sideOf(line: i32): f64 {
  * `foundMps`. The wind at the earlier one is given; that at the later one is left behind.
  */
 function bendBetween(p: i32, from: f64, east0: f64, north0: f64, to: f64): f64 {
-  speedAt(p, to);
+  laterMps = speedAt(p, to);
   laterEast = windEast;
   laterNorth = windNorth;
   let line: i32 = 0;
@@ -838,12 +839,13 @@ function bendBetween(p: i32, from: f64, east0: f64, north0: f64, to: f64): f64 {
  * Looks for bends of the surface's ratio between three moments. True where the peak stands at one; otherwise
  * `bendLow` and `bendHigh` are the moments between which the ratio is smooth about the middle.
  */
-function atBend(p: i32, low: f64, fLow: f64, middle: f64, fMiddle: f64, high: f64, fHigh: f64, sign: f64): boolean {
+function atBend(p: i32, low: f64, middle: f64, fMiddle: f64, high: f64, sign: f64): boolean {
   bendLow = low;
-  fBendLow = fLow;
   bendHigh = high;
-  fBendHigh = fHigh;
-  speedAt(p, low);
+  // those beside the middle may have been bounds
+  const fLow = sign * speedAt(p, low);
+  let fHigh = fMiddle;
+  fBendLow = fLow;
   laterEast = windEast;
   laterNorth = windNorth;
   if (low < middle) {
@@ -855,11 +857,12 @@ function atBend(p: i32, low: f64, fLow: f64, middle: f64, fMiddle: f64, high: f6
   }
   if (middle < high) {
     const bend = bendBetween(p, middle, laterEast, laterNorth, high);
+    fHigh = sign * laterMps;
     if (bend >= 0) {
       bendHigh = bend;
       fBendHigh = sign * foundMps;
-    }
-  }
+    } else fBendHigh = fHigh;
+  } else fBendHigh = fMiddle;
   const first = bendLow > low && fBendLow >= fMiddle && (bendHigh === high || fBendLow >= fBendHigh);
   if (!first && !(bendHigh < high && fBendHigh >= fMiddle)) return false;
   const at = first ? bendLow : bendHigh;

@@ -66,13 +66,13 @@ export async function peakSwath(model: WindModel, grid: Grid, options: PeakOptio
   }
   const cautions = plan.tables.complete && !isSharp(model) ? [] : [INCOMPLETE];
   cautions.push(...(options.surface?.cautions ?? []));
-  if (plan.rivals && options.surface?.rowOf.some((row) => row > 0)) cautions.push(LAND_BY_TABLES);
   const own = helped ? unshared(fields) : fields;
   // what the few probes of the tables may miss in a field that was fitted, the plain model knows
   if (plan.rivals) {
     settlePeaks(model, grid, own, {
       fromMs: options.fromMs ?? model.path.startMs,
       toMs: options.toMs ?? model.path.endMs,
+      gustAtSea: plan.gustAtSea,
       ...(options.surface ? { surface: options.surface } : {}),
     });
   }
@@ -99,11 +99,17 @@ function isFitted(model: WindModel): boolean {
 const INCOMPLETE =
   'the wind varies more sharply than the fast tables hold: peaks were taken from the plain model at the times that the tables gave, mostly to 0.05 m/s, but up to 2 m/s low where the wind changes abruptly in time; hours may be off by more than 1 %';
 
-const LAND_BY_TABLES =
-  'over land and near the coast the winds of this storm, which is fitted to observed radii, come from the fast tables alone; there peaks may be off by metres per second';
-
 /** Fields in memory of this thread alone, which every writer takes. */
-function unshared({ windMps, windFromDeg, peakTimeS, hours, gustMps, rivalTimeS }: SwathFields): SwathFields {
+function unshared({
+  windMps,
+  windFromDeg,
+  peakTimeS,
+  hours,
+  gustMps,
+  rivalTimeS,
+  gustTimeS,
+  gustRivalTimeS,
+}: SwathFields): SwathFields {
   return {
     windMps: windMps.slice(),
     windFromDeg: windFromDeg.slice(),
@@ -111,6 +117,8 @@ function unshared({ windMps, windFromDeg, peakTimeS, hours, gustMps, rivalTimeS 
     hours: hours.map((field) => field.slice()),
     gustMps: gustMps?.slice() ?? null,
     rivalTimeS,
+    gustTimeS,
+    gustRivalTimeS,
   };
 }
 

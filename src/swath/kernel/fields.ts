@@ -10,6 +10,10 @@ export interface SwathFields {
   readonly gustMps: Float32Array | null;
   /** time of the second highest maximum in time, where it was asked for */
   readonly rivalTimeS: Float32Array | null;
+  /** time of the highest gust, where rivals are asked for and a surface is given; NaN where it is that of the wind */
+  readonly gustTimeS: Float32Array | null;
+  /** that of the second highest maximum of the gust */
+  readonly gustRivalTimeS: Float32Array | null;
 }
 
 /** @param shared whether several threads write into them */
@@ -26,5 +30,7 @@ export function newFields(
     hours: HOURS_THRESHOLDS_MPS.map(field),
     gustMps: gusts ? field() : null,
     rivalTimeS: rivals ? field().fill(Number.NaN) : null,
+    gustTimeS: rivals && gusts ? field().fill(Number.NaN) : null,
+    gustRivalTimeS: rivals && gusts ? field().fill(Number.NaN) : null,
   };
 }

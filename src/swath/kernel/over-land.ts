@@ -2,13 +2,18 @@ import { RADIANS } from '../../earth.js';
 import { type SurfaceMap, sectorValue } from '../../land/surface-map.js';
 import { SECTORS } from '../../land/upwind.js';
 import type { SwathFields } from './fields.js';
-import { MOST_POINTS } from './places.js';
 import { type TileFields, tileRunner } from './tile.js';
 import { type Placing, TILE_EDGE } from './tiling.js';
 import type { Tracer } from './tracer.js';
 
 /** Cells of a tile from which on the hours of one ratio are counted together. */
 const TOGETHER = 48;
+/** Edge of the blocks of cells that are followed together; no more cells than an engine has places for. */
+const BLOCK_EDGE = 16;
+/** What is left out of the winds that matter, for parabolas between rows. */
+const SPARE_SHARE = 0.97;
+/** Gusts below this need not be right, m/s: nothing is promised of them. */
+const CALM_MPS = 7;
 /** Gusts this near to the highest of their surface are not looked for, as a share. */
 const NEAR = 1e-9;
 
@@ -24,22 +29,35 @@ export interface TilePlace {
  * What the surface makes of a tile over open sea. A wind's ratio that is the same from all sides scales the peak, and the
  * hours are those above the threshold over the ratio; where ratios differ with the direction the cell is followed through
  * the storm's life with the direction of each moment, for the wind and for the gust.
- * @param offsetS from the track's first fix to the timeline's start, s
+ * @param options.offsetS from the track's first fix to the timeline's start, s
+ * @param options.sea what was found of the last tile over open sea
+ * @param options.slackMps gusts are looked for from this much below what a cell has, m/s
  */
 export function overLand(
   tracer: Tracer,
   placing: Placing,
   surface: SurfaceMap,
-  { thresholdsMps, offsetS }: { readonly thresholdsMps: readonly number[]; readonly offsetS: number },
-): (tile: TilePlace, sea: TileFields, fields: SwathFields) => void {
+  {
+    thresholdsMps,
+    offsetS,
+    slackMps,
+    sea,
+  }: {
+    readonly thresholdsMps: readonly number[];
+    readonly offsetS: number;
+    readonly slackMps: number;
+    readonly sea: TileFields;
+  },
+): (tile: TilePlace, fields: SwathFields) => void {
   const { rowOf, gustRatio } = surface;
   const winds = evenRatios(surface.windRatio);
   const gusts = evenRatios(gustRatio);
-  const highest = highestRatios(gustRatio);
+  const [windRange, gustRange] = [rangeOf(surface.windRatio), rangeOf(gustRatio)];
+  const lowestMps = Math.min(...thresholdsMps);
   const ownLevels = [...thresholdsMps];
-  const own = tileRunner(tracer, placing, ownLevels);
+  const own = tileRunner(tracer, placing, ownLevels, { given: sea, windOnly: true });
 
-  return (tile, sea, fields) => {
+  return (tile, fields) => {
     const gustMps = fields.gustMps!;
     const windCells: number[] = [];
     const gustCells: number[] = [];
@@ -65,29 +83,40 @@ export function overLand(
       const even = gusts[row]!;
       const here = Number.isNaN(even) ? sectorValue(gustRatio, row, -Math.sin(from), -Math.cos(from)) : even;
       gustMps[k] = peak * here;
-      if (here < highest[row]! * (1 - NEAR)) gustCells.push(k);
+      if (peak * gustRange.highest[row]! > CALM_MPS && here < gustRange.highest[row]! * (1 - NEAR)) gustCells.push(k);
     });
     for (const [ratio, cells] of scaled) {
       if (cells.length < TOGETHER) windCells.push(...cells);
       else countTogether(tile, ratio, cells, fields);
     }
-    trace(1, windCells, tile, (i, k) => {
-      const wind = tracer.windMps[i]!;
-      fields.windMps[k] = wind;
-      fields.peakTimeS[k] = wind > 0 ? offsetS + tracer.timeS(i) : Number.NaN;
-      fields.windFromDeg[k] = wind > 0 ? tracer.fromDeg(i) : Number.NaN;
-      for (let h = 0; h < thresholdsMps.length; h++)
-        fields.hours[h]![k] = wind >= thresholdsMps[h]! ? tracer.hours[h]![i]! : 0;
-    });
-    trace(
-      2,
-      gustCells,
-      tile,
-      (i, k) => {
-        gustMps[k] = Math.max(gustMps[k]!, tracer.windMps[i]!);
+    // the highest wind over the surface is no lower than that over open sea times its lowest ratio
+    const lowestOf = (k: number): number => SPARE_SHARE * sea.windMps[placeIn(tile, k)]! * windRange.lowest[rowOf[k]!]!;
+    trace(1, windCells, tile, {
+      atLeastMps: lowestOf,
+      leastMps: (k) => Math.min(lowestOf(k), lowestMps) / windRange.highest[rowOf[k]!]!,
+      take: (i, k) => {
+        const wind = tracer.windMps[i]!;
+        fields.windMps[k] = wind;
+        fields.peakTimeS[k] = wind > 0 ? offsetS + tracer.timeS(i) : Number.NaN;
+        fields.windFromDeg[k] = wind > 0 ? tracer.fromDeg(i) : Number.NaN;
+        if (fields.rivalTimeS) fields.rivalTimeS[k] = offsetS + tracer.rivalTimeS(i);
+        for (let h = 0; h < thresholdsMps.length; h++)
+          fields.hours[h]![k] = wind >= thresholdsMps[h]! ? tracer.hours[h]![i]! : 0;
       },
-      gustMps,
-    );
+    });
+    const atLeastMps = (k: number): number => Math.max(0, gustMps[k]! - slackMps);
+    trace(2, gustCells, tile, {
+      atLeastMps,
+      leastMps: (k) => atLeastMps(k) / gustRange.highest[rowOf[k]!]!,
+      take: (i, k) => {
+        const gust = tracer.windMps[i]!;
+        if (fields.gustTimeS && gust > 0) {
+          fields.gustTimeS[k] = offsetS + tracer.timeS(i);
+          fields.gustRivalTimeS![k] = offsetS + tracer.rivalTimeS(i);
+        }
+        gustMps[k] = Math.max(gustMps[k]!, gust);
+      },
+    });
   };
 
   /** Hours of cells with one ratio: those over open sea above the thresholds over it. */
@@ -102,23 +131,39 @@ export function overLand(
     }
   }
 
-  /** Follows cells over their surfaces; `atLeast` holds what each has. */
+  /** Follows cells over their surfaces, block by block, where the storm's wind over open sea comes to what matters of a block. */
   function trace(
     kind: 1 | 2,
     cells: readonly number[],
     { nx }: TilePlace,
-    take: (point: number, cell: number) => void,
-    atLeast?: Float32Array,
+    {
+      leastMps,
+      atLeastMps,
+      take,
+    }: {
+      readonly leastMps: (cell: number) => number;
+      /** what a cell has */
+      readonly atLeastMps: (cell: number) => number;
+      readonly take: (point: number, cell: number) => void;
+    },
   ): void {
-    for (let from = 0; from < cells.length; from += MOST_POINTS) {
-      const some = cells.slice(from, from + MOST_POINTS);
-      for (const [i, k] of some.entries()) {
+    const blocks = new Map<number, number[]>();
+    for (const k of cells) {
+      const block = Math.trunc(Math.trunc(k / nx) / BLOCK_EDGE) * nx + Math.trunc((k % nx) / BLOCK_EDGE);
+      const list = blocks.get(block);
+      if (list) list.push(k);
+      else blocks.set(block, [k]);
+    }
+    for (const block of blocks.values()) {
+      const least = block.reduce((lowest, k) => Math.min(lowest, leastMps(k)), Number.POSITIVE_INFINITY);
+      if (!tracer.reaching(SPARE_SHARE * least)) tracer.reaching(0);
+      for (const [i, k] of block.entries()) {
         placing.place(tracer, i, k % nx, Math.trunc(k / nx));
         tracer.setSurface(i, rowOf[k]!);
-        tracer.windMps[i] = atLeast?.[k] ?? 0;
+        tracer.windMps[i] = atLeastMps(k);
       }
-      tracer.traceLocal(some.length, kind);
-      for (const [i, k] of some.entries()) take(i, k);
+      tracer.traceLocal(block.length, kind);
+      for (const [i, k] of block.entries()) take(i, k);
     }
   }
 }
@@ -146,8 +191,11 @@ function evenRatios(table: Float64Array): Float64Array {
   });
 }
 
-function highestRatios(table: Float64Array): Float64Array {
-  return Float64Array.from({ length: table.length / SECTORS }, (_, row) =>
-    Math.max(...table.subarray(row * SECTORS, (row + 1) * SECTORS)),
-  );
+/** The lowest and the highest ratio of each row. */
+function rangeOf(table: Float64Array): { readonly lowest: Float64Array; readonly highest: Float64Array } {
+  const of = (pick: (...ratios: number[]) => number): Float64Array =>
+    Float64Array.from({ length: table.length / SECTORS }, (_, row) =>
+      pick(...table.subarray(row * SECTORS, (row + 1) * SECTORS)),
+    );
+  return { lowest: of(Math.min), highest: of(Math.max) };
 }

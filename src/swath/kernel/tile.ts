@@ -20,6 +20,13 @@ const CHECK_TIME_S = 45;
 const CHECK_TIME_MPS = 0.028;
 /** Peaks below this need not be right, m/s: nothing is promised of them. */
 const CALM_MPS = 6.5;
+/** A point between others expects this share of the lowest of them, less this, m/s; what comes out lower is looked at again. */
+const EXPECTED_SHARE = 0.98;
+const EXPECTED_MPS = 0.1;
+/** A peak that is known is not looked for again: this much more is expected, m/s. */
+const ABOVE_PEAK_MPS = 0.5;
+/** Points are asked together while the winds that they expect differ by no more than this factor. */
+const ALIKE = 1.25;
 /** Less than this is no wind, m/s. */
 const LEAST_MPS = 0.01;
 
@@ -32,6 +39,8 @@ export interface TileFields {
   readonly hours: readonly Float64Array[];
   /** time of the second highest maximum, where every cell is asked; NaN where there is none */
   readonly rivalTimeS: Float64Array;
+  /** whether a place has its wind: beside the cells those of the lattice that were asked */
+  readonly known: Uint8Array;
 }
 
 export interface TileOptions {
@@ -41,6 +50,8 @@ export interface TileOptions {
   readonly calmMps?: number;
   /** nothing is interpolated */
   readonly everyCell?: boolean;
+  /** for hours alone: the fields of the tile's last run with other thresholds, whose winds hold */
+  readonly given?: TileFields;
 }
 
 export interface TileRunner {
@@ -110,7 +121,7 @@ export function tileRunner(
   tracer: Tracer,
   placing: Placing,
   thresholdsMps: readonly number[],
-  { windOnly = false, calmMps = CALM_MPS, everyCell = false }: TileOptions = {},
+  { windOnly = false, calmMps = CALM_MPS, everyCell = false, given }: TileOptions = {},
 ): TileRunner {
   const size = EDGE * EDGE;
   const windMps = new Float64Array(size);
@@ -122,6 +133,7 @@ export function tileRunner(
   const hours = thresholdsMps.map(() => new Float64Array(size));
   const known = new Uint8Array(size);
   const asked = new Int32Array(MOST_POINTS);
+  const expected = new Float64Array(MOST_POINTS);
   // values of 3 × 3 points
   const winds = new Float64Array(9);
   const times = new Float64Array(9);
@@ -132,10 +144,12 @@ export function tileRunner(
   /** squares of hours: toward the edge of where a wind is reached its hours fall as a square root does */
   const counted = thresholdsMps.map(() => new Float64Array(9));
   const { cellM } = placing;
+  const lowestMps = (): number => Math.min(...thresholdsMps);
+  const isGiven = new Uint8Array(size);
   const { durationS } = tracer;
   let guesses: Guess[] = [];
   let [left, top, width, height] = [0, 0, 0, 0];
-  return { fields: { windMps, timeS, fromDeg, hours, rivalTimeS }, run };
+  return { fields: { windMps, timeS, fromDeg, hours, rivalTimeS, known }, run };
 
   function run({ column, row, nx, ny }: Parameters<TileRunner['run']>[0]): boolean {
     [left, top] = [column * TILE_EDGE, row * TILE_EDGE];
@@ -143,6 +157,12 @@ export function tileRunner(
     height = Math.min(TILE_EDGE, ny - top);
     if (!isNear()) return false;
     known.fill(0);
+    if (given) {
+      windMps.set(given.windMps);
+      isGiven.set(given.known);
+      for (let j = 0; j < height; j++) isGiven.fill(1, j * EDGE, j * EDGE + width);
+      for (const field of hours) field.fill(0);
+    }
     let blocks: Block[] = [];
     for (let j = 0; j < height; j += 2 * WIDEST)
       for (let i = 0; i < width; i += 2 * WIDEST) blocks.push({ column: i, row: j });
@@ -195,23 +215,35 @@ export function tileRunner(
     // at last the cells themselves, and none beyond them
     const [right, bottom] = near === 1 && pattern === ALL ? [width, height] : [EDGE, EDGE];
     let count = 0;
+    let leastMps = Number.POSITIVE_INFINITY;
+    const answerAll = (): void => {
+      tracer.reaching(Math.min(leastMps, lowestMps()));
+      answer(count);
+      count = 0;
+      leastMps = Number.POSITIVE_INFINITY;
+    };
     for (const { column, row } of blocks) {
-      const expected = near === WIDEST / 2 ? 0 : expectedMps(row * EDGE + column, 2 * near);
+      const mps =
+        near === WIDEST / 2
+          ? 0
+          : Math.max(0, EXPECTED_SHARE * expectedMps(row * EDGE + column, 2 * near) - EXPECTED_MPS);
+      if (count > 0 && (mps > ALIKE * leastMps || leastMps > ALIKE * mps)) answerAll();
       for (const [a, b] of pattern.points) {
         const [i, j] = [column + near * a, row + near * b];
         const at = j * EDGE + i;
         if (i >= right || j >= bottom || known[at] !== 0) continue;
         known[at] = 1;
-        windMps[at] = Number.NaN;
+        if (isGiven[at] === 0) windMps[at] = Number.NaN;
         if (!placing.place(tracer, count, left + i, top + j)) continue;
         asked[count] = at;
-        tracer.windMps[count] = expected;
-        if (++count < MOST_POINTS) continue;
-        answer(count);
-        count = 0;
+        // where the peak is known nothing is looked for but what passes a threshold
+        expected[count] = isGiven[at] !== 0 ? 0 : mps;
+        tracer.windMps[count] = isGiven[at] !== 0 ? windMps[at]! + ABOVE_PEAK_MPS : mps;
+        if (isGiven[at] === 0) leastMps = Math.min(leastMps, mps);
+        if (++count === MOST_POINTS) answerAll();
       }
     }
-    if (count > 0) answer(count);
+    if (count > 0) answerAll();
   }
 
   /** A lower bound of what the points between 3 × 3 have, as far as these tell. */
@@ -225,18 +257,32 @@ export function tileRunner(
 
   function answer(count: number): void {
     tracer.trace(count);
+    let wrong = 0;
     for (let k = 0; k < count; k++) {
-      const at = asked[k]!;
-      const wind = tracer.windMps[k]!;
-      windMps[at] = wind;
-      leastM[at] = tracer.leastM[k]!;
-      crossings[at] = tracer.crossings[k]!;
-      if (everyCell) rivalTimeS[at] = tracer.rivalTimeS(k);
-      if (windOnly) continue;
-      timeS[at] = wind > 0 ? tracer.timeS(k) : Number.NaN;
-      fromDeg[at] = wind > 0 ? tracer.fromDeg(k) : Number.NaN;
-      for (let h = 0; h < hours.length; h++) hours[h]![at] = wind >= thresholdsMps[h]! ? tracer.hours[h]![k]! : 0;
+      if (tracer.windMps[k]! < expected[k]!) asked[wrong++] = asked[k]!;
+      else take(k, asked[k]!);
     }
+    if (wrong === 0) return;
+    // what was expected is not there: once more, expecting nothing
+    tracer.reaching(0);
+    for (let k = 0; k < wrong; k++) {
+      placing.place(tracer, k, left + (asked[k]! % EDGE), top + Math.trunc(asked[k]! / EDGE));
+      tracer.windMps[k] = 0;
+    }
+    tracer.trace(wrong);
+    for (let k = 0; k < wrong; k++) take(k, asked[k]!);
+  }
+
+  function take(k: number, at: number): void {
+    const wind = isGiven[at] !== 0 ? windMps[at]! : tracer.windMps[k]!;
+    windMps[at] = wind;
+    leastM[at] = tracer.leastM[k]!;
+    crossings[at] = tracer.crossings[k]!;
+    if (everyCell) rivalTimeS[at] = tracer.rivalTimeS(k);
+    for (let h = 0; h < hours.length; h++) hours[h]![at] = wind >= thresholdsMps[h]! ? tracer.hours[h]![k]! : 0;
+    if (windOnly) return;
+    timeS[at] = wind > 0 ? tracer.timeS(k) : Number.NaN;
+    fromDeg[at] = wind > 0 ? tracer.fromDeg(k) : Number.NaN;
   }
 
   /** Whether parabolas through 3 × 3 points tell the others of a pattern; times that are off are put among the guesses. */
@@ -256,7 +302,7 @@ export function tileRunner(
       least = Math.min(least, leastM[at]!);
     }
     if (least < AWAY_SPACINGS * spacing * cellM) return false;
-    if (highest < calmMps) return true;
+    if (highest < (given ? lowestMps() : calmMps)) return true;
     if (lowest === 0) return false;
     const centreDeg = gather(first, spacing);
     if (!windOnly) for (const angle of angles) if (Math.abs(angle) > 60) return false;
@@ -266,11 +312,11 @@ export function tileRunner(
       const at = first + near * (b * EDGE + a);
       const wind = windMps[at]!;
       const off = Math.abs(ofNine(winds, across, down) - wind);
-      if (wind < calmMps) {
+      if (!given && wind < calmMps) {
         if (off > 10 * CHECK_MPS) return false;
         continue;
       }
-      if (off > share * CHECK_MPS) return false;
+      if (!given && off > share * CHECK_MPS) return false;
       for (let h = 0; h < hours.length; h++) {
         const real = hours[h]![at]!;
         if (
@@ -341,19 +387,22 @@ export function tileRunner(
     for (let k = 0; k < 9; k++) calm ||= !(winds[k]! > CALM_MPS);
     for (let j = 0; j < bottom; j++) {
       const from = first + j * EDGE;
-      along(winds, weights, j);
-      spread(windMps, from, weights, right);
-      if (windOnly) continue;
-      along(times, weights, j);
-      spread(timeS, from, weights, right);
-      along(angles, weights, j);
-      spread(fromDeg, from, weights, right);
-      for (let at = from; at < from + right; at++) {
-        if (known[at] !== 0) continue;
-        fromDeg[at] = wrapped(centreDeg + fromDeg[at]!);
-        // a parabola may run past either end of the storm
-        if (timeS[at]! < 0) timeS[at] = 0;
-        else if (timeS[at]! > durationS) timeS[at] = durationS;
+      if (!given) {
+        along(winds, weights, j);
+        spread(windMps, from, weights, right);
+      }
+      if (!windOnly) {
+        along(times, weights, j);
+        spread(timeS, from, weights, right);
+        along(angles, weights, j);
+        spread(fromDeg, from, weights, right);
+        for (let at = from; at < from + right; at++) {
+          if (known[at] !== 0) continue;
+          fromDeg[at] = wrapped(centreDeg + fromDeg[at]!);
+          // a parabola may run past either end of the storm
+          if (timeS[at]! < 0) timeS[at] = 0;
+          else if (timeS[at]! > durationS) timeS[at] = durationS;
+        }
       }
       for (let h = 0; h < hours.length; h++) {
         along(counted[h]!, weights, j);
@@ -386,7 +435,7 @@ export function tileRunner(
     for (let at = from; at < from + count; at++) {
       if (known[at] !== 0) continue;
       const wind = windMps[at]!;
-      if (!(wind >= LEAST_MPS)) {
+      if (!given && !(wind >= LEAST_MPS)) {
         windMps[at] = 0;
         timeS[at] = Number.NaN;
         fromDeg[at] = Number.NaN;

@@ -3,8 +3,8 @@ import { TAPER_SHARE } from '../../model/field.js';
 import type { Engine } from './engine.js';
 import * as at from './places.js';
 import { type StormTables, servingTables } from './storm-tables.js';
-import { type MomentTable, rowsBelow } from './table.js';
-import { FRAME, momentOf, type Timeline, timeMsOf } from './timeline.js';
+import { type MomentTable, rowRatios, rowsBelow } from './table.js';
+import { FRAME, type Leg, momentOf, type Timeline, timeMsOf } from './timeline.js';
 
 /** A step changes a point's wind by at most this where the maximum wind changes, m/s. */
 const STEP_CHANGE_MPS = 2;
@@ -24,14 +24,16 @@ export interface Tracer {
   readonly z: Float64Array;
   /** length of the timeline, s */
   readonly durationS: number;
-  /** what the points may expect goes in, 0 where that is not known; the peak wind comes out, m/s, 0 for none; least distance from the centre, m; hours at or above each threshold */
+  /** what the points may expect at least goes in, 0 where that is not known; the peak wind comes out, one below that is none, m/s, 0 for none; least distance from the centre, m; hours at or above each threshold */
   readonly windMps: Float64Array;
   readonly leastM: Float64Array;
   readonly hours: readonly Float64Array[];
   /** how often the wind passes any threshold */
   readonly crossings: Float64Array;
   /** Leaves out the legs in which the storm stays farther from a place than its wind reaches, `radiusM` about it; false where none is left. */
-  readonly near: (centre: readonly [number, number, number], radiusM: number) => boolean;
+  readonly near: (centre: readonly [number, number, number], radiusM: number, leastMps?: number) => boolean;
+  /** Leaves out those as well in which no wind of `leastMps` over open sea reaches the last place; 0 takes them back; false where none is left. */
+  readonly reaching: (leastMps: number) => boolean;
   /** peaks and hours of the first `count` points */
   readonly trace: (count: number) => void;
   /** the same for winds (1) or gusts (2) over the surfaces that {@link Tracer.setSurface} gave; `windMps` holds what each has at least */
@@ -169,10 +171,12 @@ export function tracerOf(
   const taperFromM = (1 - TAPER_SHARE) * outerRadiusM;
   const flatM = EARTH_RADIUS_M * Math.sin(Math.min(Math.PI / 2, taperFromM / EARTH_RADIUS_M));
   f32.set([flatM * flatM, outerRadiusM, 1 / (outerRadiusM - taperFromM), 1 / (6 * EARTH_RADIUS_M ** 2)], at.FADE >> 2);
-  // how far from a leg's start the storm's wind may reach until the leg ends
-  const reachRad = legs.map(
-    (leg) => (outerRadiusM + (leg.speedMps * (leg.endMs - leg.startMs)) / 1000) / EARTH_RADIUS_M,
-  );
+  const reachM = reachOf(timeline, tables, outerRadiusM);
+  // of each leg the moment in its middle, and how far the centre is from there at most, m
+  const middles = legs.map(({ first, depth }) => FRAME * (first + (depth > 0 ? 1 << (depth - 1) : 0)));
+  const halfM = legs.map((leg) => (leg.speedMps * (leg.endMs - leg.startMs)) / 2000);
+  /** of each leg how far its middle is from the edge of the last place, less the half of its way, m */
+  const apartM = new Float64Array(legs.length);
   const column = (address: number): Float64Array => f64.subarray(address >> 3, (address + at.COLUMN) >> 3);
   const [x, y, z] = [column(at.X), column(at.Y), column(at.Z)];
   const [east, north, moments, windMps] = [at.EAST, at.NORTH, at.MOMENT, at.WIND].map(column) as [
@@ -231,25 +235,93 @@ export function tracerOf(
       const k = FRAME * Math.min(count - 1, Math.trunc(moments[point]! + 0.5));
       return fromDirection(x[point]!, y[point]!, z[point]!, frames, k, east[point]!, north[point]!);
     },
-    near([cx, cy, cz], radiusM) {
-      const own = radiusM / EARTH_RADIUS_M;
-      let runs = 0;
-      let last = -1;
+    near([cx, cy, cz], radiusM, leastMps = 0) {
       for (let number = 0; number < legs.length; number++) {
-        const k = legs[number]!.first * FRAME;
-        const angle = reachRad[number]! + own;
-        const inside = angle > Math.PI || frames[k]! * cx + frames[k + 1]! * cy + frames[k + 2]! * cz > Math.cos(angle);
-        if (!inside) continue;
-        if (number !== last) {
-          i32[(runsAt >> 2) + 2 * runs] = number;
-          runs++;
-        }
-        last = number + 1;
-        i32[(runsAt >> 2) + 2 * runs - 1] = last;
+        const k = middles[number]!;
+        const dot = frames[k]! * cx + frames[k + 1]! * cy + frames[k + 2]! * cz;
+        apartM[number] = EARTH_RADIUS_M * Math.acos(Math.min(1, Math.max(-1, dot))) - halfM[number]! - radiusM;
       }
-      f64[(at.STORM >> 3) + at.RUN_COUNT] = runs;
-      return runs > 0;
+      return select(leastMps);
     },
+    reaching: select,
+  };
+
+  function select(leastMps: number): boolean {
+    let runs = 0;
+    let last = -1;
+    for (let number = 0; number < legs.length; number++) {
+      if (apartM[number]! > outerRadiusM || apartM[number]! > reachM(number, leastMps)) continue;
+      if (number !== last) {
+        i32[(runsAt >> 2) + 2 * runs] = number;
+        runs++;
+      }
+      last = number + 1;
+      i32[(runsAt >> 2) + 2 * runs - 1] = last;
+    }
+    f64[(at.STORM >> 3) + at.RUN_COUNT] = runs;
+    return runs > 0;
+  }
+}
+
+/** Rows beyond the last one with a wind, within which a parabola may still show some of it. */
+const SPARE_ROWS = 2;
+
+/**
+ * How far from the centre a wind of `leastMps` reaches in a leg at most, m: the harmonics of each row of its tables add up
+ * to no more than the sum of their amplitudes, and V and R are the highest of the leg.
+ */
+function reachOf(
+  { legs, count, frames }: Timeline,
+  { layout, legTables }: StormTables,
+  outerRadiusM: number,
+): (leg: number, leastMps: number) => number {
+  const { rows, speedStride } = layout;
+  const ratio = rowRatios(rows);
+  const known = new Map<MomentTable, Float64Array>();
+  const boundsOf = (table: MomentTable): Float64Array => {
+    let bounds = known.get(table);
+    if (bounds) return bounds;
+    bounds = new Float64Array(rows);
+    let beyond = 0;
+    for (let row = rows - 1; row >= 0; row--) {
+      const at = row * speedStride;
+      let waves = 0;
+      for (let c = 1; c < speedStride; c++) waves += Math.abs(table.speed[at + c]!);
+      beyond = Math.max(beyond, table.speed[at]! + ratio[row]! * waves);
+      bounds[row] = beyond;
+    }
+    known.set(table, bounds);
+    return bounds;
+  };
+  const envelopes = legs.map((_, number) => {
+    let most: Float64Array | null = null;
+    for (const { table } of legTables[number]!) {
+      const bounds = boundsOf(table);
+      most = most === null ? bounds : most.map((value, row) => Math.max(value, bounds[row]!));
+    }
+    return most!;
+  });
+  const highest = (leg: Leg, part: number): number => {
+    let most = 0;
+    for (let m = leg.first; m <= leg.first + (1 << leg.depth) && m < count; m++)
+      most = Math.max(most, frames[m * FRAME + part]!);
+    return most;
+  };
+  const radii = legs.map((leg) => highest(leg, 8));
+  const winds = legs.map((leg) => highest(leg, 9));
+  return (number, leastMps) => {
+    if (!(leastMps > 0)) return outerRadiusM;
+    const envelope = envelopes[number]!;
+    const least = (leastMps / winds[number]!) ** 2;
+    let [low, high] = [-1, rows];
+    while (high - low > 1) {
+      const middle = (low + high) >> 1;
+      if (envelope[middle]! >= least) low = middle;
+      else high = middle;
+    }
+    if (low < 0) return 0;
+    const sine = ((ratio[Math.min(rows - 1, low + SPARE_ROWS)] ?? 0) * radii[number]!) / EARTH_RADIUS_M;
+    return sine >= 1 ? outerRadiusM : Math.min(outerRadiusM, EARTH_RADIUS_M * Math.asin(sine));
   };
 }
 

@@ -13,7 +13,9 @@ import { tracerOf } from './tracer.js';
 import { newEngine } from './wasm.js';
 
 /** Other maxima in time within this of the highest are kept, m/s: what tables may be off where fields are fitted to radii. */
-const RIVALS_MPS = 0.4;
+const RIVALS_MPS = 1.5;
+/** The same for gusts over a surface, m/s. */
+const GUST_SLACK_MPS = 2;
 
 /** All that is needed to make a swath, as plain data: every thread makes its part from the same tables. */
 export interface SwathPlan {
@@ -81,7 +83,12 @@ export function swathWork({ grid, timeline, tables, ...plan }: SwathPlan, given?
   const placing = placingOf(grid);
   const runner = tileRunner(tracer, placing, thresholdsMps, { everyCell: plan.rivals });
   const onLand = plan.surface
-    ? overLand(tracer, placing, plan.surface, { thresholdsMps, offsetS: plan.offsetS })
+    ? overLand(tracer, placing, plan.surface, {
+        thresholdsMps,
+        offsetS: plan.offsetS,
+        slackMps: plan.rivals ? GUST_SLACK_MPS : 0,
+        sea: runner.fields,
+      })
     : null;
   const { nx, ny } = grid;
   return {
@@ -103,7 +110,7 @@ export function swathWork({ grid, timeline, tables, ...plan }: SwathPlan, given?
         if (fields.rivalTimeS) fields.rivalTimeS[k] = plan.offsetS + rivalTimeS[at]!;
         for (let h = 0; h < hours.length; h++) fields.hours[h]![k] = hours[h]![at]!;
       });
-      onLand?.(tile, runner.fields, fields);
+      onLand?.(tile, fields);
     },
   };
 }

@@ -43,14 +43,18 @@ const CORNER_STEP: f64 = 0.06;
 /** Within this (r/R)² the wind has corners: at the radius of maximum wind and where the inflow stops turning. */
 const CORNER_X: f64 = 4;
 /** A search ends when a peak's neighbours are this near, m/s. */
-const SEARCHED_MPS: f64 = 0.002;
+const SEARCHED_MPS: f64 = 0.006;
 /** A second maximum within this of the first is searched too, m/s. */
 const RIVAL_MPS: f64 = 0.6;
+/** After a turn of the motion a wind that fell before may rise by this, m/s. */
+const TURN_MPS: f64 = 0.15;
 /** Winds over a surface that stay below this share of what is needed from any side are not looked at, */
 const BELOW_NEED: f64 = 0.9;
 /** which the highest ratios of the surface's row tell, after its eight of the wind and eight of the gust. */
 const HIGHEST_WIND: i32 = 128;
 const HIGHEST_GUST: i32 = 136;
+/** A bend is found to this share of the wind, across the sector. */
+const BEND_SHARE: f64 = 0.0005;
 /** Parts of a bracket that a search looks at. */
 const LOOKS: i32 = 8;
 /** Within this of a level the wind is a straight line in time, m/s. */
@@ -83,6 +87,14 @@ let lowestLevel: f64 = 0;
 // what the last search found
 let foundMoment: f64 = 0;
 let foundMps: f64 = 0;
+// where a surface's ratio bends about the middle of three moments, and the wind at the later of two
+let bendLow: f64 = 0;
+let fBendLow: f64 = 0;
+let bendHigh: f64 = 0;
+let fBendHigh: f64 = 0;
+let laterMps: f64 = 0;
+let laterEast: f64 = 0;
+let laterNorth: f64 = 0;
 // whether the middle moment is near the core, where corners pass
 let nearB: boolean = false;
 // points with an extreme inside a step, a bit each
@@ -124,8 +136,9 @@ function begin(): void {
 }
 
 /**
- * Peaks and hours of the first `count` points, whole groups of four. The column of winds holds what a point may expect,
- * 0 where that is not known: steps are longer while the wind is far below it.
+ * Peaks and hours of the first `count` points, whole groups of four. The column of winds holds what a point may expect at
+ * least, 0 where that is not known: steps are longer while the wind is far below it, and no peak below it is looked for.
+ * A peak that comes out below it was none.
  */
 export function trace(count: i32): void {
   begin();
@@ -193,10 +206,10 @@ function speedAt(p: i32, moment: f64): f64 {
   return kind === SEA ? seaAt(p, moment) : localAt(p, moment, seaAt(p, moment));
 }
 
-/** Wind or gust over the surface of a point: that over open sea times the ratio of the sectors that it comes from. */
+/** Wind or gust over the surface of a point that was seen: that over open sea times the ratio of the sectors that it comes from. */
 function localAt(p: i32, moment: f64, seaMps: f64): f64 {
   if (!(seaMps > 0)) return 0;
-  windAt(p, moment);
+  windSeen(moment);
   turn(p);
   const row = whole(f64At(SURFACE + 8 * p)) + (kind === GUST ? 64 : 0);
   // as the surface map has it: between a cardinal sector and the diagonal one beside it
@@ -212,39 +225,31 @@ function localAt(p: i32, moment: f64, seaMps: f64): f64 {
   return seaMps * (ratio + share * (f64At(row + 8 * diagonal) - ratio));
 }
 
-/** Turns the last wind from the frame at the centre to that at the point, as the great circle turns on the way; its size is lost. */
+/**
+ * Turns the last wind from the frame at the centre to that at the point, as the great circle turns on the way; its size is
+ * lost. Carried along from c to p a vector v becomes v − (v·p)/(1 + c·p) (c + p): here all of it times the frame's scale.
+ */
 function turn(p: i32): void {
   const e0 = inFrame(0);
   const e1 = inFrame(8);
   const n0 = inFrame(16);
   const n1 = inFrame(24);
   const n2 = inFrame(32);
-  // the centre is square to its east and north
-  let cx = e1 * n2;
-  let cy = -e0 * n2;
-  let cz = e0 * n1 - e1 * n0;
-  const size = root(cx * cx + cy * cy + cz * cz);
-  cx /= size;
-  cy /= size;
-  cz /= size;
   const x = f64At(X + 8 * p);
   const y = f64At(Y + 8 * p);
   const z = f64At(Z + 8 * p);
-  const flat = root(x * x + y * y);
-  const centreFlat = root(cx * cx + cy * cy);
-  if (flat < 1e-9 || centreFlat < 1e-9) return;
-  const side = cx * y - cy * x;
-  const along = cx * x + cy * y;
-  const outEast = side / centreFlat;
-  const outNorth = z * centreFlat - (cz * along) / centreFlat;
-  if (outEast * outEast + outNorth * outNorth < 1e-14) return;
-  const onEast = side / flat;
-  const onNorth = (z * along) / flat - cz * flat;
-  // as complex numbers, north real: times the way's direction at the point, divided by that at the centre
-  const real = windNorth * onNorth - windEast * onEast;
-  const imaginary = windNorth * onEast + windEast * onNorth;
-  windNorth = real * outNorth + imaginary * outEast;
-  windEast = imaginary * outNorth - real * outEast;
+  // the centre is square to its east and north
+  const cx = e1 * n2;
+  const cy = -e0 * n2;
+  const cz = e0 * n1 - e1 * n0;
+  const vx = windEast * e0 + windNorth * n0;
+  const vy = windEast * e1 + windNorth * n1;
+  const vz = windNorth * n2;
+  const share = (vx * x + vy * y + vz * z) / (e0 * e0 + e1 * e1 + cx * x + cy * y + cz * z);
+  const wx = vx - share * cx;
+  const wy = vy - share * cy;
+  windEast = wy * x - wx * y;
+  windNorth = (vz - share * cz) * (x * x + y * y) - z * (wx * x + wy * y);
 }
 
 // where a point was seen from last: the two frames about the moment, the share of the way between them, its coordinates
@@ -328,14 +333,14 @@ let windNorth: f64 = 0;
 
 /** Parts east and north of a point's wind at a moment, into its columns. */
 function partsAt(p: i32, moment: f64): void {
-  windAt(p, moment);
+  see(p, moment);
+  windSeen(moment);
   setF64(EAST + 8 * p, windEast);
   setF64(NORTH + 8 * p, windNorth);
 }
 
-/** Parts of a point's wind at a moment or between two, with the table of the nearer one. */
-function windAt(p: i32, moment: f64): void {
-  see(p, moment);
+/** Parts of the wind at the point that was seen, with the table of the nearer moment. */
+function windSeen(moment: f64): void {
   const east = seenEast;
   const north = seenNorth;
   const maxWind = inFrame(40);
@@ -391,7 +396,7 @@ function traceQuad(p: i32): void {
     setF32(QUAD + 4 * i, f64At(X + at) - cx);
     setF32(QUAD + 16 + 4 * i, f64At(Y + at) - cy);
     setF32(QUAD + 32 + 4 * i, f64At(Z + at) - cz);
-    setF32(NEED + 4 * i, kind === SEA ? 0 : f64At(WIND + at));
+    setF32(NEED + 4 * i, f64At(WIND + at) - rivals);
     setF32(NEAR + 4 * i, 1e30);
     setF32(NONE + 4 * i, -1);
     setF64(WIND + at, 0);
@@ -524,7 +529,11 @@ function localQuad(p: i32, winds: i32, moment: f64): f64 {
     const sea = f32At(winds + 4 * i);
     // what cannot matter from any side is not asked for its direction
     const bound = sea * f64At(whole(f64At(SURFACE + 8 * (p + i))) + (kind === GUST ? HIGHEST_GUST : HIGHEST_WIND));
-    const local = bound < BELOW_NEED * least(f32At(NEED + 4 * i), lowestLevel) ? bound : localAt(p + i, moment, sea);
+    let local = bound;
+    if (bound >= BELOW_NEED * least(f32At(NEED + 4 * i), lowestLevel)) {
+      see(p + i, moment);
+      local = localAt(p + i, moment, sea);
+    }
     setF32(winds + 4 * i, local);
     if (local > most) most = local;
   }
@@ -546,7 +555,7 @@ function passed(p: i32, a: i32, b: i32, c: i32, ma: f64, mb: f64, mc: f64, turns
     // a wind that falls up to a turn may rise after it, and fall again before the next moment
     for (let i = 0; i < 4; i++) {
       const wind = f32At(b + 4 * i);
-      if ((high & (1 << i)) !== 0 || wind < f32At(c + 4 * i) || wind < f32At(NEED + 4 * i) - RIVAL_MPS) continue;
+      if ((high & (1 << i)) !== 0 || wind < f32At(c + 4 * i) || wind < f32At(NEED + 4 * i) - TURN_MPS) continue;
       if (speedAt(p + i, mb + CORNER_STEP * (mc - mb)) <= wind) continue;
       extreme(p + i, mb, wind, mb, wind, mc, f32At(c + 4 * i), 1, false);
       raise(p, i);
@@ -578,15 +587,26 @@ function raise(p: i32, i: i32): void {
     setF64(RIVAL_MOMENT + at, f64At(MOMENT + at));
     setF64(WIND + at, foundMps);
     setF64(MOMENT + at, foundMoment);
-    setF32(NEED + 4 * i, foundMps - rivals);
+    if (foundMps - rivals > f32At(NEED + 4 * i)) setF32(NEED + 4 * i, foundMps - rivals);
   } else if (foundMps > f64At(RIVAL + at)) {
     setF64(RIVAL + at, foundMps);
     setF64(RIVAL_MOMENT + at, foundMoment);
   }
 }
 
-/** The highest value of `sign` times the wind about the middle of three moments; one beside it may be missing, then `low` or `high` is `middle`. */
-function extreme(p: i32, low: f64, fLow: f64, middle: f64, fMiddle: f64, high: f64, fHigh: f64, sign: f64, turns: boolean): void {
+/** The highest value of `sign` times the wind about the middle of three moments; one beside it may be missing, then `first` or `last` is `middle`. */
+function extreme(p: i32, first: f64, fFirst: f64, middle: f64, fMiddle: f64, last: f64, fLast: f64, sign: f64, turns: boolean): void {
+  let low = first;
+  let fLow = fFirst;
+  let high = last;
+  let fHigh = fLast;
+  if (kind !== SEA && low < high) {
+    if (atBend(p, low, middle, fMiddle, high, sign)) return;
+    low = bendLow;
+    fLow = fBendLow;
+    high = bendHigh;
+    fHigh = fBendHigh;
+  }
   if (low < middle && middle < high) {
     let l = low;
     let fl = fLow;
@@ -756,6 +776,112 @@ function atCorner(
   foundMoment = corner;
   foundMps = top;
   return before <= top && behind <= top;
+}
+
+/** One of four lines that part the sectors' pairs: what tells on which side of it the last wind blows from. */
+function sideOf(line: i32): f64 {
+  if (line === 0) return -windEast;
+  if (line === 1) return -windNorth;
+  return line === 2 ? windNorth - windEast : -windNorth - windEast;
+}
+
+/**
+ * Moment between two at which a point's wind turns across a sector where the ratio bends; −1 for none. Its value is
+ * `foundMps`. The wind at the earlier one is given; that at the later one is left behind.
+ */
+function bendBetween(p: i32, from: f64, east0: f64, north0: f64, to: f64): f64 {
+  laterMps = speedAt(p, to);
+  laterEast = windEast;
+  laterNorth = windNorth;
+  let line: i32 = 0;
+  let before: f64 = 0;
+  let after: f64 = 0;
+  for (; line < 4; line++) {
+    after = sideOf(line);
+    before = line === 0 ? -east0 : line === 1 ? -north0 : line === 2 ? north0 - east0 : -north0 - east0;
+    if ((before < 0) !== (after < 0)) break;
+  }
+  if (line === 4) return -1;
+  const fromEast = -east0 - windEast;
+  const fromNorth = -north0 - windNorth;
+  const sector: i32 =
+    line === 0 ? (fromNorth > 0 ? 0 : 4) : line === 1 ? (fromEast > 0 ? 2 : 6) : line === 2 ? (fromNorth > 0 ? 1 : 5) : fromEast > 0 ? 3 : 7;
+  const row = whole(f64At(SURFACE + 8 * p)) + (kind === GUST ? 64 : 0);
+  const ratio = f64At(row + 8 * sector);
+  if (f64At(row + 8 * ((sector + 7) & 7)) === ratio && f64At(row + 8 * ((sector + 1) & 7)) === ratio) return -1;
+  let low = from;
+  let high = to;
+  let at = low;
+  // regula falsi; an end that stays counts half
+  let stayed: i32 = 0;
+  for (let n = 0; n < 12; n++) {
+    at = low - (before * (high - low)) / (after - before);
+    foundMps = speedAt(p, at);
+    const value = sideOf(line);
+    const size = (windEast < 0 ? -windEast : windEast) + (windNorth < 0 ? -windNorth : windNorth);
+    if (value < BEND_SHARE * size && value > -BEND_SHARE * size) break;
+    if ((value < 0) === (before < 0)) {
+      low = at;
+      before = value;
+      if (stayed === 1) after *= 0.5;
+      stayed = 1;
+    } else {
+      high = at;
+      after = value;
+      if (stayed === -1) before *= 0.5;
+      stayed = -1;
+    }
+  }
+  return at;
+}
+
+/**
+ * Looks for bends of the surface's ratio between three moments. True where the peak stands at one; otherwise
+ * `bendLow` and `bendHigh` are the moments between which the ratio is smooth about the middle.
+ */
+function atBend(p: i32, low: f64, middle: f64, fMiddle: f64, high: f64, sign: f64): boolean {
+  bendLow = low;
+  bendHigh = high;
+  // those beside the middle may have been bounds
+  const fLow = sign * speedAt(p, low);
+  let fHigh = fMiddle;
+  fBendLow = fLow;
+  laterEast = windEast;
+  laterNorth = windNorth;
+  if (low < middle) {
+    const bend = bendBetween(p, low, laterEast, laterNorth, middle);
+    if (bend >= 0) {
+      bendLow = bend;
+      fBendLow = sign * foundMps;
+    }
+  }
+  if (middle < high) {
+    const bend = bendBetween(p, middle, laterEast, laterNorth, high);
+    fHigh = sign * laterMps;
+    if (bend >= 0) {
+      bendHigh = bend;
+      fBendHigh = sign * foundMps;
+    } else fBendHigh = fHigh;
+  } else fBendHigh = fMiddle;
+  const first = bendLow > low && fBendLow >= fMiddle && (bendHigh === high || fBendLow >= fBendHigh);
+  if (!first && !(bendHigh < high && fBendHigh >= fMiddle)) return false;
+  const at = first ? bendLow : bendHigh;
+  const top = first ? fBendLow : fBendHigh;
+  const left = first ? low : middle;
+  const right = first ? middle : high;
+  const fLeft = first ? fLow : fMiddle;
+  const fRight = first ? fMiddle : fHigh;
+  const before = at - CORNER_STEP * (at - left);
+  const behind = at + CORNER_STEP * (right - at);
+  const fBefore = sign * speedAt(p, before);
+  const fBehind = sign * speedAt(p, behind);
+  if (fBefore > top && fBefore >= fBehind) narrow(p, left, fLeft, before, fBefore, at, top, sign);
+  else if (fBehind > top) narrow(p, at, top, behind, fBehind, right, fRight, sign);
+  else {
+    foundMoment = at;
+    foundMps = top;
+  }
+  return true;
 }
 
 /** Whether the parabola through three moments tells the wind at another one. */

@@ -1,4 +1,4 @@
-import { readFileSync, writeFileSync } from 'node:fs';
+import { readFileSync, renameSync, writeFileSync } from 'node:fs';
 import { join } from 'node:path';
 import { parquetReadObjects } from 'hyparquet';
 import { describe, expect, it } from 'vitest';
@@ -89,7 +89,7 @@ describe('galewake events losses', () => {
       expect(again.stdout).toMatch(/average annual loss +0\.12/);
     }));
 
-  it('is the same for any number of shards', () =>
+  it('is the same for any number of shards, and whatever the folder’s name means elsewhere', () =>
     inFolder(async (cwd) => {
       const rows = Array.from({ length: 400 }, (_, i) => ({
         cell: i % 8,
@@ -102,8 +102,10 @@ describe('galewake events losses', () => {
       for (const shards of [1, 7]) {
         await inFolder(async (at) => {
           await handMadeRun(at, { rates, rows, shards });
+          const name = join(at, shards === 1 ? 'run' : "r[1]*?'; drop table assets; --");
+          renameSync(join(at, 'run'), name);
           const { stdout } = await galewake(
-            ['events', 'losses', join(at, 'run'), '--assets', 'assets.csv', '--cubic', '25,60', '--json', '--quiet'],
+            ['events', 'losses', name, '--assets', 'assets.csv', '--cubic', '25,60', '--json', '--quiet'],
             { cwd },
           );
           const { plan: _, ...document } = JSON.parse(stdout);

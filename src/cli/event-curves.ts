@@ -24,6 +24,7 @@ import { CAUTION } from '../write/provenance.js';
 import { type CommonOptions, list, oneOf } from './choices.js';
 import { makeConsole, table } from './console.js';
 import { manifestsOf } from './events.js';
+import { gustAtSea } from './exposure.js';
 
 export interface CurvesOptions extends CommonOptions {
   readonly places: string;
@@ -85,10 +86,13 @@ export async function curves(folder: string, options: CurvesOptions): Promise<vo
       : quantityOf('speed', options.threshold, { bareUnit: 'm/s', name: '--threshold' });
   const run = await EventRun.open(folder);
   const rates = ratesOf(run);
-  if (threshold !== null && threshold < run.plan.leastMps)
+  const recipe = makeRecipe(run.plan.recipe);
+  // the least that is complete
+  const leastMps = run.plan.leastMps * (options.of === 'gust' ? gustAtSea(recipe) : 1);
+  if (threshold !== null && threshold < leastMps)
     throw new UsageError(
       'curves.threshold',
-      `--threshold ${options.threshold}: the run keeps no wind below ${run.plan.leastMps.toFixed(2)} m/s; take a higher one`,
+      `--threshold ${options.threshold}: the run keeps no ${options.of} below ${leastMps.toFixed(2)} m/s; take a higher one`,
     );
   const grid = gridOver({
     crs: run.plan.grid.crs,
@@ -116,7 +120,6 @@ export async function curves(folder: string, options: CurvesOptions): Promise<vo
     if (output && formats.includes('csv')) await output.write('curves.csv', rows);
     else for await (const _ of rows);
     cautions.push(...cautionsOf(results, years));
-    const recipe = makeRecipe(run.plan.recipe);
     const periodS = recipeNumber(recipe, options.of === 'gust' ? 'gust.duration_s' : 'wind.averaging_s');
     const quantity = averagingText(periodS, options.of === 'gust' ? 'gust' : 'mean');
     const document = {
@@ -130,7 +133,7 @@ export async function curves(folder: string, options: CurvesOptions): Promise<vo
       set_years_meaning: equal
         ? 'equal rates of one in so many years'
         : 'unequal rates: the rarest event comes once in so many years',
-      least_mps: run.plan.leastMps,
+      least_mps: digits(leastMps),
       confidence,
       interval: equal ? INTERVAL_METHODS.exact : INTERVAL_METHODS.gamma,
       inputs: [record],
@@ -155,7 +158,7 @@ export async function curves(folder: string, options: CurvesOptions): Promise<vo
               longestYears,
               confidence,
               notes: [
-                `${run.plan.events} events, the rarest once in ${years.toFixed(0)} years; winds below ${run.plan.leastMps.toFixed(1)} m/s are not kept. The interval is the set's own chance, not the error of set or model.`,
+                `${run.plan.events} events, the rarest once in ${years.toFixed(0)} years; ${options.of}s below ${leastMps.toFixed(1)} m/s are not kept. The interval is the set's own chance, not the error of set or model.`,
                 OPEN_SEA,
               ],
             },

@@ -76,7 +76,8 @@ export async function plan(input: string, options: PlanOptions): Promise<EventRu
     },
     { heading, events },
   );
-  out.print(`${run.plan.events} events in ${run.plan.shards} shards: ${run.folder}/plan.json\n`);
+  if (options.quiet !== true)
+    out.print(`${run.plan.events} events in ${run.plan.shards} shards: ${run.folder}/plan.json\n`);
   return run;
 }
 

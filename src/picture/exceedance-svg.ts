@@ -34,6 +34,7 @@ export interface ExceedanceOptions {
   readonly notes: readonly string[];
 }
 
+const TAIL_LINE = { name: 'generalised Pareto tail', colour: PAPER.lines[1], width: 1.8, dash: '6 3' };
 const WIDTH = 720;
 const SIDE = 56;
 const HEIGHT = 230;
@@ -62,8 +63,10 @@ export function exceedanceSvg(curves: readonly DrawnCurve[], options: Exceedance
   const lines = [
     { name: options.quantity, colour: PAPER.lines[0], width: 2.4 },
     { name: `sampling interval of ${percent} %`, colour: PAPER.rule, width: 9 },
-    ...(hasTail ? [{ name: 'generalised Pareto tail', colour: PAPER.lines[1], width: 1.8, dash: '6 3' }] : []),
-    { name: 'the rarest event', colour: PAPER.quiet, width: 1.2, dash: '2 3' },
+    ...(hasTail ? [TAIL_LINE] : []),
+    ...(options.longestYears > 1.001 * options.setYears
+      ? [{ name: 'return period of the rarest event', colour: PAPER.quiet, width: 1.2, dash: '2 3' }]
+      : []),
   ];
   const missing = curves.length - drawn.length;
   return sheet({
@@ -77,7 +80,7 @@ export function exceedanceSvg(curves: readonly DrawnCurve[], options: Exceedance
       const parts = [key.svg];
       let at = top + 14 + key.height + 24;
       for (const curve of drawn) {
-        parts.push(panelOf(curve, { top: at, x, y, xTicks, yTicks, setYears: options.setYears, tailLine: lines[2]! }));
+        parts.push(panelOf(curve, { top: at, x, y, xTicks, yTicks, setYears: options.setYears }));
         at += HEIGHT + 62;
       }
       return { svg: parts.join('\n'), bottom: at - 28 };
@@ -126,12 +129,6 @@ function panelOf(
     readonly xTicks: readonly Tick[];
     readonly yTicks: readonly Tick[];
     readonly setYears: number;
-    readonly tailLine: {
-      readonly name: string;
-      readonly colour: string;
-      readonly width: number;
-      readonly dash?: string;
-    };
   },
 ): string {
   const width = WIDTH - 2 * SIDE;
@@ -175,7 +172,7 @@ function panelOf(
       ...(curve.tail.length > 0
         ? [
             {
-              ...at.tailLine,
+              ...TAIL_LINE,
               points: curve.tail
                 .map(([years, value]) => [Math.log10(years), value] as const)
                 .filter(([px, py]) => px >= at.x[0] && px <= at.x[1] + 1e-9 && py >= at.y[0] && py <= at.y[1]),

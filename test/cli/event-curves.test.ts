@@ -120,6 +120,7 @@ describe('galewake events curves', () => {
         [['--places', 'places.csv', '--confidence', '20'], 2, /50 to 99\.9/],
         [['--places', 'places.csv', '--threshold', '30'], 2, /--tail gpd/],
         [['--places', 'places.csv', '--tail', 'gpd', '--threshold', '10'], 2, /keeps no wind below 17\.50/],
+        [['--places', 'places.csv', '--tail', 'gpd', '--threshold', '18', '--of', 'gust'], 2, /no gust below 19\.4/],
         [['--places', 'places.csv', '--tail', 'gpd'], 0, /1 events lie above|have no tail/],
         [['--places', 'places.csv', '--formats', 'csv'], 2, /go with --out/],
       ];

@@ -23,7 +23,7 @@ import { csvLine } from '../write/csv-cell.js';
 import { CAUTION } from '../write/provenance.js';
 import { type CommonOptions, list, oneOf } from './choices.js';
 import { makeConsole, table } from './console.js';
-import { manifestsOf } from './events.js';
+import { manifestsOf, setAsideCautions } from './events.js';
 import { gustAtSea } from './exposure.js';
 
 export interface CurvesOptions extends CommonOptions {
@@ -119,7 +119,7 @@ export async function curves(folder: string, options: CurvesOptions): Promise<vo
     await output?.check(files);
     if (output && formats.includes('csv')) await output.write('curves.csv', rows);
     else for await (const _ of rows);
-    cautions.push(...cautionsOf(results, years));
+    cautions.push(...setAsideCautions(manifests), ...cautionsOf(results, years));
     const periodS = recipeNumber(recipe, options.of === 'gust' ? 'gust.duration_s' : 'wind.averaging_s');
     const quantity = averagingText(periodS, options.of === 'gust' ? 'gust' : 'mean');
     const document = {

@@ -27,7 +27,7 @@ import { CAUTION } from '../write/provenance.js';
 import { type CommonOptions, countOf, list, oneOf } from './choices.js';
 import { makeConsole, table } from './console.js';
 import { curveOf, curveWind, type DamageOptions } from './damage.js';
-import { manifestsOf } from './events.js';
+import { manifestsOf, setAsideCautions } from './events.js';
 import { gustAtSea, lossColumns } from './exposure.js';
 
 export interface LossesOptions extends CommonOptions, DamageOptions {
@@ -101,6 +101,7 @@ export async function losses(folder: string, options: LossesOptions): Promise<vo
   const least = run.plan.leastMps;
   const cautions = [
     ...read.cautions,
+    ...setAsideCautions(manifests),
     ...(damage.curve.ratio(windOf(least, least * gustAtSea(recipe))) > 0
       ? [
           `the curve has losses at winds that the run does not keep (below ${least.toFixed(1)} m/s): they are left out; plan a run with a lower --least`,

@@ -147,6 +147,17 @@ export async function manifestsOf(run: EventRun, out: Console): Promise<Manifest
   return null;
 }
 
+/** What is to be said of events that were set aside: they count as if they had no wind. */
+export function setAsideCautions(manifests: readonly Manifest[]): string[] {
+  const count = manifests.reduce((sum, { setAside }) => sum + setAside.length, 0);
+  const first = manifests.find(({ setAside }) => setAside.length > 0)?.setAside[0];
+  return first
+    ? [
+        `${count} ${count === 1 ? 'event was' : 'events were'} set aside, such as '${first.event}' (row ${first.row}): no wind of theirs counts`,
+      ]
+    : [];
+}
+
 /** `galewake events reduce`: return-period maps of all shards. */
 export async function reduce(folder: string, options: CommonOptions): Promise<void> {
   const out = makeConsole({ quiet: options.quiet === true });

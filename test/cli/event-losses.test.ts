@@ -117,7 +117,8 @@ describe('galewake events losses', () => {
 
   it('says what is wrong', () =>
     inFolder(async (cwd) => {
-      await handMadeRun(cwd, { rates: RATES, rows: ROWS });
+      const setAside = [{ event: 'E3', row: 5, why: 'odd' }];
+      await handMadeRun(cwd, { rates: RATES, rows: ROWS, setAside });
       writeFileSync(join(cwd, 'assets.csv'), ASSETS);
       writeFileSync(join(cwd, 'bare.csv'), 'name,lat_deg,lon_deg\nHouse,0.8,0.1\n');
       writeFileSync(join(cwd, 'away.csv'), 'name,lat_deg,lon_deg,sum\nAway,40,40,7\n');
@@ -131,6 +132,7 @@ describe('galewake events losses', () => {
         [['--assets', 'assets.csv', ...curve, '--strict'], 3, /lie outside/],
         [['--assets', 'assets.csv', ...curve, '--loss-of', 'sums'], 2, /did you mean sum/],
         [['--assets', 'assets.csv', ...curve, '--simulate', '10'], 2, /--simulate.*at least 1000/],
+        [['--assets', 'assets.csv', ...curve], 0, /1 event was set aside, such as 'E3' \(row 5\)/],
         [['--assets', 'assets.csv', '--cubic', '10,60'], 0, /losses at winds that the run does not keep \(below 17\.5/],
       ];
       for (const [words, code, says] of cases) {

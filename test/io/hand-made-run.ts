@@ -18,11 +18,13 @@ export async function handMadeRun(
     rows,
     grid = { crs: 'EPSG:4326', bounds: [0, 0, 2, 1], cell: 0.5 },
     shards = 1,
+    setAside = [],
   }: {
     rates: readonly number[];
     rows: readonly HandMadeRow[];
     grid?: { crs: string; bounds: readonly number[]; cell: number };
     shards?: number;
+    setAside?: Manifest['setAside'];
   },
 ): Promise<{ run: EventRun; manifests: Manifest[] }> {
   const input = join(folder, 'set.csv');
@@ -57,7 +59,10 @@ export async function handMadeRun(
       ],
     });
     manifests.push(
-      await run.commit({ shard, first, end, rows: own.length, setAside: [], seconds: 0 }, new Uint8Array(bytes)),
+      await run.commit(
+        { shard, first, end, rows: own.length, setAside: shard === 0 ? setAside : [], seconds: 0 },
+        new Uint8Array(bytes),
+      ),
     );
   }
   return { run, manifests };

@@ -15,7 +15,7 @@ import { VERSION } from './version.js';
 /** Return periods of the maps, years. */
 export const RETURN_YEARS = [10, 25, 50, 100, 250, 500, 1000] as const;
 /** Rows of footprints that are sorted at once, about: cells are worked on in blocks, so that memory does not grow with the set. */
-const BLOCK_ROWS = 4_000_000;
+const BLOCK_ROWS = 2_000_000;
 /** Cells of a block at most. */
 const BLOCK_CELLS = 65_536;
 /** What a sum of equal rates may miss a rate by. */

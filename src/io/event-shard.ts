@@ -9,6 +9,9 @@ import { createSwathWorkspace } from '../swath/workspace.js';
 import { readTracksFromText } from '../track/read/read.js';
 import { type EventRun, type Manifest, readRange } from './event-run.js';
 
+/** Rows of a group of the Parquet file, which is the least that a reader takes. */
+const ROWS_OF_A_GROUP = 20_000;
+
 /** Winds of a shard's events at the cells that they reach, by cell and then event. */
 interface ShardRows {
   readonly cells: Int32Array;
@@ -56,6 +59,8 @@ export async function runShard(run: EventRun, shard: number): Promise<{ manifest
   const rows = ordered(parts);
   const data = new Uint8Array(
     parquetWriteBuffer({
+      // small groups: a block of cells reads little more than its own rows
+      rowGroupSize: ROWS_OF_A_GROUP,
       columnData: [
         { name: 'cell', data: rows.cells, type: 'INT32' },
         { name: 'event', data: rows.events, type: 'INT32' },

@@ -3,6 +3,10 @@ export { bearingDeg, coriolisPerS, destination, distanceM, EARTH_RADIUS_M, type 
 export { GalewakeError, InputError, LimitError, UsageError } from './errors.js';
 export { type SiteRecord, siteRecords } from './exposure/sites.js';
 export { type Isotach, isotachs } from './isotach/isotachs.js';
+export { coastScaleFor, landFromTopology } from './land/coast.js';
+export { type Land, landOf } from './land/land.js';
+export { landFromGeoJson } from './land/polygons.js';
+export type { SurfaceMap } from './land/surface-map.js';
 export type { WindField } from './model/field.js';
 export { type RadialRow, radialTable } from './model/radial.js';
 export {
@@ -21,6 +25,7 @@ export { exactSwath } from './swath/exact.js';
 export { fitGrid } from './swath/fit.js';
 export { cellCentre, type Grid, gridOver } from './swath/grid.js';
 export { peakSwath } from './swath/peak.js';
+export { surfaceOf } from './swath/surface.js';
 export type { Swath } from './swath/swath.js';
 export type { CompletedFix, CompletedTrack, Traced } from './track/complete.js';
 export type { StormState } from './track/path.js';

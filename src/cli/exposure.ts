@@ -42,7 +42,7 @@ import {
 } from './choices.js';
 import { type Console, makeConsole, table } from './console.js';
 import { curveOf, curveWind, type DamageOptions } from './damage.js';
-import { decayOnly, type LandOptions, landOfRun } from './land.js';
+import { decayOnly, type LandOptions, landOfRun, refuseElsewhere } from './land.js';
 import { readStorm } from './storm.js';
 
 const FORMATS = ['csv', 'geojson', 'json'] as const;
@@ -83,6 +83,7 @@ export async function exposure(file: string, assetsFile: string, options: Exposu
     ...(known ? { land: known.land } : {}),
     lowestLevelMps: levelsMps[0]! / (options.of === 'gust' ? gustFactor : 1),
   });
+  refuseElsewhere(known, model);
   const period = periodOf(options.from, options.to, model.path, ['--from', '--to']);
   const scale = scaleOf(options.scale, model);
   const gustDurationS = recipeNumber(recipe, 'gust.duration_s');

@@ -2,7 +2,6 @@ import { poolDeflate } from '../io/deflate.js';
 import { pageAssets, pageCoast } from '../io/page-assets.js';
 import { mapSvg } from '../picture/map-svg.js';
 import { mapPage } from '../picture/page-html.js';
-import { recipeText } from '../picture/words.js';
 import { mapInput } from './map-input.js';
 import type { SwathResult } from './swath-result.js';
 
@@ -16,7 +15,7 @@ export async function mapPageOf(result: SwathResult): Promise<string> {
       storm: map.storm,
       track: model.completed.track,
       recipe: model.recipe,
-      recipeText: recipeText(model.recipe),
+      recipeText: map.recipe,
       lowestLevelMps: result.levels[0] ?? 0,
       fromMs: period.fromMs,
       toMs: period.toMs,
@@ -28,7 +27,8 @@ export async function mapPageOf(result: SwathResult): Promise<string> {
       cautions: result.cautions,
       swath,
       mapSvg: mapSvg(map),
-      coastTopology: pageCoast(),
+      coast: result.land?.shape ? JSON.stringify(result.land.shape) : pageCoast(),
+      coastCredit: map.coastCredit ?? 'Natural Earth',
     },
     { deflate: poolDeflate, assets: pageAssets() },
   );

@@ -14,7 +14,7 @@ import { placesBox } from '../write/places-box.js';
 import { CAUTION } from '../write/provenance.js';
 import { type CommonOptions, levelsOf, type ModelOptions, periodOf, recipeOf, type TrackOptions } from './choices.js';
 import { makeConsole, table } from './console.js';
-import { decayOnly, type LandOptions, landOfRun } from './land.js';
+import { decayOnly, type LandOptions, landOfRun, refuseElsewhere } from './land.js';
 import { readStorm } from './storm.js';
 
 interface SitesOptions extends CommonOptions, ModelOptions, TrackOptions, LandOptions {
@@ -52,6 +52,7 @@ export async function sites(file: string, placesFile: string, options: SitesOpti
     lowestLevelMps: levelsMps[0]!,
     ...(known ? { land: known.land } : {}),
   });
+  refuseElsewhere(known, model);
   const drawn = options.as === 'svg' || options.as === 'png';
   const step = everyS ?? (drawn ? 600 : undefined);
   const records = siteRecords(model, places, {

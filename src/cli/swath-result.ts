@@ -1,7 +1,7 @@
 import type { PolygonCoordinates } from '../isotach/area.js';
 import type { SurfaceMap } from '../land/surface-map.js';
 import type { WindModel } from '../model/wind.js';
-import type { MapInput } from '../picture/map-input.js';
+import type { Coast, MapInput } from '../picture/map-input.js';
 import type { Swath } from '../swath/swath.js';
 import type { Provenance } from '../write/provenance.js';
 
@@ -25,6 +25,8 @@ export interface SwathResult {
   /** what the user wants to see on the map */
   readonly places: NonNullable<MapInput['places']>;
   readonly zones: NonNullable<MapInput['zones']>;
+  /** the land that was used; its shape where it is the user's own */
+  readonly land: { readonly name: string; readonly text: string; readonly shape: Coast | null } | null;
   /** the surface, where its bands are wanted in the raster */
   readonly surface: SurfaceMap | null;
 }

@@ -24,7 +24,7 @@ import {
 } from './choices.js';
 import { type Console, makeConsole, table } from './console.js';
 import { drawnOf } from './drawn.js';
-import { type LandOptions, landNotes, landOfRun, surfaceOfRun, WORLD } from './land.js';
+import { type LandOptions, landNotes, landOfRun, landOnMap, refuseElsewhere, surfaceOfRun, WORLD } from './land.js';
 import { readStorm } from './storm.js';
 import { FORMATS, openFolder, writeSwath } from './swath-files.js';
 import type { SwathResult } from './swath-result.js';
@@ -67,6 +67,7 @@ export async function swath(file: string, options: SwathCommandOptions): Promise
   const grid = gridOf(options, (crs, cell) =>
     fitGrid(model, { crs, cell, lowestMps: levels[0]! / (options.of === 'gust' ? gust : 1), ...period }),
   );
+  refuseElsewhere(known, model, grid);
   const over = await surfaceOfRun(model, grid, known);
   if (options.surfaceBands && !over)
     throw new UsageError('surface-bands', `--surface-bands needs land: add --land ${WORLD}, or --land FILE`);
@@ -111,6 +112,7 @@ export async function swath(file: string, options: SwathCommandOptions): Promise
       levels,
       places: drawn.places,
       zones: drawn.zones,
+      land: landOnMap(known, recipe),
       surface: options.surfaceBands && over ? over.surface : null,
       classOf: (thresholdMps) =>
         options.of === 'wind' && model.averagingS === 60
@@ -207,7 +209,7 @@ function report(
   out.print(`${name}: ${time(result.period.fromMs)} to ${time(result.period.toMs)}\n`);
   if (peak.time !== null) {
     out.print(
-      `peak wind ${peak.wind_mps.toFixed(1)} m/s (${toKnots(peak.wind_mps).toFixed(0)} kt, mean over ${result.swath.averagingS} s), gust ${peak.gust_mps.toFixed(1)} m/s (${result.swath.gustDurationS} s), at ${place(peak.lat_deg!, peak.lon_deg!)}, ${time(Date.parse(peak.time))}\n`,
+      `peak wind ${peak.wind_mps.toFixed(1)} m/s (${toKnots(peak.wind_mps).toFixed(0)} kt, mean over ${result.swath.averagingS} s) at ${place(peak.lat_deg!, peak.lon_deg!)}, ${time(Date.parse(peak.time))}; highest gust ${peak.gust_mps.toFixed(1)} m/s (${result.swath.gustDurationS} s)\n`,
     );
   }
   out.print(`grid ${grid.nx} × ${grid.ny} cells, ${grid.crs}\n\n`);

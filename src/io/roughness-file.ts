@@ -84,9 +84,15 @@ export async function readRoughness(
   function boundsOf(): [number, number, number, number] {
     const box = image.getBoundingBox() as [number, number, number, number];
     if (box.some((edge) => !Number.isFinite(edge)) || box[0] === box[2])
-      wrong('place', 'it does not say where it lies; write its georeference');
+      wrong(
+        'place',
+        'it does not say where it lies; write its georeference, for instance with gdal_translate -a_ullr W N E S',
+      );
     if (geographic && (box[1] < -90.5 || box[3] > 90.5))
-      wrong('place', `its latitudes run from ${box[1]} to ${box[3]}; its coordinates are not degrees as it says`);
+      wrong(
+        'place',
+        `its latitudes run from ${box[1]} to ${box[3]}; its coordinates are not degrees as it says; write the reference system that they are in, for instance with gdal_translate -a_srs EPSG:32617`,
+      );
     return box;
   }
 }

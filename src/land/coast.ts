@@ -110,8 +110,8 @@ export function orientedRing(flat: readonly number[], { hole }: { hole: boolean 
   return ring;
 }
 
-/** Twice the area in square degrees; positive when the ring runs anticlockwise. */
-function signedArea(ring: Float64Array): number {
+/** Twice the area of a closed ring in square degrees; positive when it runs anticlockwise. */
+export function signedArea(ring: Float64Array): number {
   let sum = 0;
   for (let i = 0; i + 3 < ring.length; i += 2) {
     sum += (ring[i]! - ring[0]!) * (ring[i + 3]! - ring[1]!) - (ring[i + 2]! - ring[0]!) * (ring[i + 1]! - ring[1]!);

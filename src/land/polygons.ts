@@ -35,7 +35,7 @@ export function landFromGeoJson(document: unknown, { source }: { source: string 
       'land.empty',
       polygons === 0
         ? `${source}: no polygon in it; give land as GeoJSON polygons`
-        : `${source}: its polygons have no area; give rings of at least three different places`,
+        : `${source}: its rings enclose no area: their places are all in a line, or the ring crosses itself and its parts cancel; give rings of at least three different places that do not cross themselves`,
     );
   }
   return { name: source, rings, detailM: null };

@@ -49,6 +49,8 @@ export interface MapInput {
   readonly recipe: string;
   readonly version: string;
   readonly coast: Coast | null;
+  /** whose coast it is; Natural Earth by default */
+  readonly coastCredit?: string;
   /** the user's own places and zones, in this order of drawing: zones, places */
   readonly zones?: readonly MapZone[];
   readonly places?: readonly MapPlace[];

@@ -79,14 +79,14 @@ export function mapPicture(given: MapInput): MapPicture {
     bands: input.isotachs.some((i) => i.upperMps != null),
   });
   const peakLine = input.peak
-    ? `Strongest: ${windText(input.peak.windMps)}, gust ${windText(input.peak.gustMps)}, at ${latitudeLongitudeText(input.peak)}, ${momentText(input.peak.timeMs)} UTC`
+    ? `Strongest: ${windText(input.peak.windMps)} at ${latitudeLongitudeText(input.peak)}, ${momentText(input.peak.timeMs)} UTC; highest gust ${windText(input.peak.gustMps)}`
     : 'No wind on this map.';
   const notes = [
     { text: peakLine, fill: PAPER.ink, bold: false },
     { text: CAUTION, fill: PAPER.ink, bold: true },
     { text: `Recipe: ${input.recipe}`, fill: PAPER.quiet, bold: false },
     {
-      text: `Galewake ${input.version} · ${PROJECTION_NAMES[frame.kind]} projection · times in UTC${input.coast ? ' · coast: Natural Earth' : ''}`,
+      text: `Galewake ${input.version} · ${PROJECTION_NAMES[frame.kind]} projection · times in UTC${input.coast ? ` · coast: ${input.coastCredit ?? 'Natural Earth'}` : ''}`,
       fill: PAPER.quiet,
       bold: false,
     },

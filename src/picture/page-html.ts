@@ -20,8 +20,10 @@ export interface PageInput
   readonly swath: Swath;
   /** the map of {@link mapSvg}: what is printed, and what is seen without scripts */
   readonly mapSvg: string;
-  /** a TopoJSON document with the object `land`; null without a coast */
-  readonly coastTopology: string | null;
+  /** GeoJSON polygons as a sphere wants them, or a TopoJSON document with the object `land`; null without a coast */
+  readonly coast: string | null;
+  /** whose coast it is */
+  readonly coastCredit: string;
 }
 
 /** Characters of a whole page at most. */
@@ -40,7 +42,7 @@ export async function mapPage(
   input: PageInput,
   { deflate, assets }: { readonly deflate: Deflate; readonly assets: PageAssets },
 ): Promise<string> {
-  const { swath, mapSvg, coastTopology, ...rest } = input;
+  const { swath, mapSvg, coast: coastDocument, coastCredit: _credit, ...rest } = input;
   const own = { ...rest, peak: knownPeak(rest.peak) };
   const encoder = new TextEncoder();
   const packed = async (cells: number) => {
@@ -59,7 +61,7 @@ export async function mapPage(
     };
     return deflate(encoder.encode(JSON.stringify(facts)));
   };
-  const coast = coastTopology === null ? '' : toBase64(await deflate(encoder.encode(coastTopology)));
+  const coast = coastDocument === null ? '' : toBase64(await deflate(encoder.encode(coastDocument)));
   let cells = FIRST_CELLS;
   let small = await packed(cells);
   let least = small.grid.cell * 0.2;
@@ -97,7 +99,7 @@ function htmlOf(
     .join('');
   const peak = input.peak
     ? `<p class="figure"><strong id="peak-wind" data-mps="${input.peak.windMps}">${input.peak.windMps.toFixed(1)} m/s</strong> <span>${escapeXml(windText(input.peak.windMps).replace(/^.*\(|\)$/g, ''))}, ${averagingText(swath.averagingS)}</span></p>
-<p>Gust ${escapeXml(windText(input.peak.gustMps))}<br>${escapeXml(latitudeLongitudeText(input.peak))}, ${momentText(input.peak.timeMs)} UTC</p>
+<p>${escapeXml(latitudeLongitudeText(input.peak))}, ${momentText(input.peak.timeMs)} UTC<br>Highest gust ${escapeXml(windText(input.peak.gustMps))}</p>
 <button type="button" id="to-peak">Go there</button>`
     : '<p id="peak-wind">No wind on these cells.</p>';
   return `<!doctype html>
@@ -167,7 +169,7 @@ ${radio('wind', 'Peak wind', true)}${radio('gust', 'Peak gust')}${radio('directi
 <fieldset id="isotachs"><legend>Isotachs, peak ${input.quantity === 'wind' ? 'wind' : 'gust'}</legend></fieldset>
 <fieldset id="own" hidden><legend>Places and zones</legend></fieldset>
 <section class="about"><h2>How this was made</h2><p id="cells"></p><p>${escapeXml(input.recipeText)}</p><ul id="cautions"></ul>
-<p>Galewake ${escapeXml(input.version)}. Coast: Natural Earth. Times in UTC. 10 m, ${averagingText(swath.averagingS)}, ${averagingText(swath.gustDurationS, 'gust')}.</p></section>
+<p>Galewake ${escapeXml(input.version)}. Coast: ${escapeXml(input.coastCredit)}. Times in UTC. 10 m, ${averagingText(swath.averagingS)}, ${averagingText(swath.gustDurationS, 'gust')}.</p></section>
 </div>
 </main>
 </div>

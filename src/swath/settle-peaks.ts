@@ -4,7 +4,7 @@ import { cellCentre, type Grid, projection } from './grid.js';
 import type { SwathFields } from './kernel/fields.js';
 
 /** Minutes from the time that the tables gave at which the plain model is asked: a broad peak may lie off by hours. */
-const AROUND_MIN = [0, -4, 4, -10, 10, -20, 20, -40, 40, -80, 80] as const;
+const AROUND_MIN = [0, -4, 4, -10, 10, -18, 18, -28, 28, -40, 40, -55, 55, -80, 80] as const;
 /** The same for a second maximum. */
 const RIVAL_MIN = [0, -3, 3, -8, 8, -20, 20] as const;
 /** Minutes from the best of these at which it is asked again: a narrow one stands between them. */

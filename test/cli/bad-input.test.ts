@@ -1,5 +1,6 @@
 import { chmodSync, mkdirSync, readdirSync, symlinkSync, writeFileSync } from 'node:fs';
 import { join } from 'node:path';
+import { writeArrayBuffer } from 'geotiff';
 import { describe, expect, it } from 'vitest';
 import { FIXTURES, galewake, inFolder } from './run.js';
 
@@ -19,6 +20,26 @@ interface Case {
   readonly before?: (folder: string) => void;
 }
 
+const farLand = (folder: string): void => {
+  const ring = '[[100,0],[101,0],[101,1],[100,0]]';
+  writeFileSync(join(folder, 'far.geojson'), `{"type":"Polygon","coordinates":[${ring}]}`);
+  writeFileSync(join(folder, 'places.csv'), 'name,lat_deg,lon_deg\nA,20.5,-60.5\n');
+};
+
+const farRoughness = (folder: string): void => {
+  const raster = writeArrayBuffer(Float32Array.of(0.1, 0.1, 0.1, 0.1), {
+    height: 2,
+    width: 2,
+    GeographicTypeGeoKey: 4326,
+    GTModelTypeGeoKey: 2,
+    ModelPixelScale: [1, 1, 0],
+    ModelTiepoint: [0, 0, 0, 100, 2, 0],
+    BitsPerSample: [32],
+    SampleFormat: [3],
+  }) as ArrayBuffer;
+  writeFileSync(join(folder, 'far.tif'), new Uint8Array(raster));
+};
+
 const swathOf = (...more: string[]): string[] => ['swath', 'bad.csv', ...small, ...more];
 
 const CASES: readonly Case[] = [
@@ -36,6 +57,38 @@ const CASES: readonly Case[] = [
     words: swathOf('--land', 'bad.csv'),
     code: 3,
     says: /bad\.csv: this is no JSON/,
+  },
+  {
+    what: 'land that lies elsewhere',
+    file: good,
+    before: farLand,
+    words: swathOf('--land', 'far.geojson'),
+    code: 3,
+    says: /far\.geojson: its polygons \(longitudes 100\.0 to 101\.0.*nowhere near the track.*leave out --land/,
+  },
+  {
+    what: 'land that lies elsewhere, for places',
+    file: good,
+    before: farLand,
+    words: ['sites', 'bad.csv', 'places.csv', '--land', 'far.geojson'],
+    code: 3,
+    says: /far\.geojson: .*nowhere near the track/,
+  },
+  {
+    what: 'land that lies elsewhere, for assets',
+    file: good,
+    before: farLand,
+    words: ['exposure', 'bad.csv', 'places.csv', '--land', 'far.geojson'],
+    code: 3,
+    says: /far\.geojson: .*nowhere near the track/,
+  },
+  {
+    what: 'a roughness raster that lies elsewhere',
+    file: good,
+    before: farRoughness,
+    words: swathOf('--land', 'natural-earth', '--roughness', 'far.tif'),
+    code: 3,
+    says: /far\.tif: the raster does not overlap the grid; check its coordinate reference system/,
   },
   {
     what: 'roughness without land',

@@ -63,6 +63,11 @@ describe('land files', () => {
       '{"type":"FeatureCollection","crs":{"type":"name","properties":{"name":"urn:ogc:def:crs:EPSG::32617"}},"features":[]}',
       /crs\.geojson.*32617/,
     ],
+    [
+      'crossed.geojson',
+      '{"type":"Polygon","coordinates":[[[-45,28],[-44,29],[-44,28],[-45,29],[-45,28]]]}',
+      /crossed\.geojson: its rings enclose no area.*crosses itself/,
+    ],
     ['empty.geojson', '{"type":"FeatureCollection","features":[]}', /empty\.geojson: no polygon in it/],
   ])('%s is refused with its name and the remedy', async (name, content, message) => {
     const path = content === null ? join(folder, name) : await file(name, content);
@@ -106,6 +111,15 @@ describe('roughness files', () => {
     await expect(readRoughness(await file('classes.tif', tiff([41, 42, 41, 42])))).rejects.toThrow(
       /classes\.tif: a roughness length of 41 m in row 1, column 1.*--roughness-classes/,
     );
+    await expect(
+      readRoughness(await file('nowhere.tif', tiff([1, 1, 1, 1], { GeographicTypeGeoKey: 32767 }))),
+    ).rejects.toThrow(/nowhere\.tif: it does not say its coordinate reference system.*gdal_translate/);
+    await expect(
+      readRoughness(await file('odd.tif', tiff([1, 1, 1, 1], { GeographicTypeGeoKey: 4999 }))),
+    ).rejects.toThrow(/odd\.tif: its coordinate reference system EPSG:4999 is not known here; reproject/);
+    await expect(
+      readRoughness(await file('metres.tif', tiff([1, 1, 1, 1], { ModelTiepoint: [0, 0, 0, 500_000, 3_000_000, 0] }))),
+    ).rejects.toThrow(/metres\.tif: its latitudes run from .* not degrees as it says; write the reference system/);
     await expect(readRoughness(await file('sea.tif', tiff([0, 0, 0, 0])))).rejects.toThrow(
       /sea\.tif: it holds no roughness/,
     );

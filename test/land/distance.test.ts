@@ -39,6 +39,46 @@ describe('distance to the shore', () => {
     expect(inland).toBeLessThan(900);
   });
 
+  it('is that of another library at 1,000 places about a real coast', () => {
+    const land = worldLand('50m');
+    const { at } = shoreDistance(land);
+    const random = generator(11);
+    const [west, south, east, north] = [-88, 22, -72, 32];
+    // the coast within 4° of the places, as lines
+    const lines: number[][][] = [];
+    for (const ring of land.rings) {
+      let line: number[][] = [];
+      for (let i = 0; i < ring.length; i += 2) {
+        const [lon, lat] = [ring[i]!, ring[i + 1]!];
+        if (lon > west - 4 && lon < east + 4 && lat > south - 4 && lat < north + 4) line.push([lon, lat]);
+        else {
+          if (line.length > 1) lines.push(line);
+          line = [];
+        }
+      }
+      if (line.length > 1) lines.push(line);
+    }
+    const shore = lines.map((line) => lineString(line));
+    let [compared, inland] = [0, 0];
+    while (compared < 1000) {
+      const [lonDeg, latDeg] = [west + (east - west) * random(), south + (north - south) * random()];
+      const distance = at({ lonDeg, latDeg });
+      // what is farther off may be nearer to a coast that was left out
+      if (Math.abs(distance) > 150_000) continue;
+      compared++;
+      if (distance > 0) inland++;
+      // independent: turf on the Natural Earth coast, whose longer edges bow more as great circles
+      const other = Math.min(
+        ...shore.map((line) =>
+          pointToLineDistance(point([lonDeg, latDeg]), line, { units: 'meters', method: 'geodesic' }),
+        ),
+      );
+      expect(Math.abs(Math.abs(distance) - other)).toBeLessThan(Math.max(120, 0.003 * other));
+    }
+    expect(inland).toBeGreaterThan(200);
+    expect(inland).toBeLessThan(900);
+  }, 30_000);
+
   it('knows the coasts of the world', () => {
     const land = worldLand('50m');
     const { at } = shoreDistance(land);

@@ -40,6 +40,7 @@ export function pageInputOf({ track, model, swath, input }: Made): PageInput {
     cautions: ['a caution with <i>markup</i>'],
     swath,
     mapSvg: mapSvg(input),
-    coastTopology: pageCoast(),
+    coast: pageCoast(),
+    coastCredit: 'Natural Earth',
   };
 }

@@ -21,8 +21,11 @@ export async function pageContent(): Promise<{ facts: PageFacts; fields: PageFie
   const facts = JSON.parse(new TextDecoder().decode(factBytes!)) as PageFacts;
   let coast: Coast | null = null;
   if (coastBytes) {
-    const topology = JSON.parse(new TextDecoder().decode(coastBytes));
-    coast = feature(topology, topology.objects.land) as unknown as Coast;
+    const document = JSON.parse(new TextDecoder().decode(coastBytes));
+    coast =
+      document.type === 'Topology'
+        ? (feature(document, document.objects.land) as unknown as Coast)
+        : (document as Coast);
   }
   return { facts, fields: unpackFields(fieldBytes!, facts.grid), coast };
 }

@@ -157,13 +157,27 @@ export function overLand(
     for (const block of blocks.values()) {
       const least = block.reduce((lowest, k) => Math.min(lowest, leastMps(k)), Number.POSITIVE_INFINITY);
       if (!tracer.reaching(SPARE_SHARE * least)) tracer.reaching(0);
+      const again = follow(block, atLeastMps);
+      if (kind !== 1 || again.length === 0) continue;
+      // a wind that is sharper than the moments show: once more, expecting nothing
+      tracer.reaching(0);
+      follow(again, () => 0);
+    }
+
+    /** Gives the cells in which nothing was found of what they have. */
+    function follow(block: readonly number[], atLeast: (cell: number) => number): number[] {
       for (const [i, k] of block.entries()) {
         placing.place(tracer, i, k % nx, Math.trunc(k / nx));
         tracer.setSurface(i, rowOf[k]!);
-        tracer.windMps[i] = atLeastMps(k);
+        tracer.windMps[i] = atLeast(k);
       }
       tracer.traceLocal(block.length, kind);
-      for (const [i, k] of block.entries()) take(i, k);
+      const less: number[] = [];
+      for (const [i, k] of block.entries()) {
+        if (tracer.windMps[i]! < atLeast(k)) less.push(k);
+        take(i, k);
+      }
+      return less;
     }
   }
 }

@@ -2,8 +2,13 @@ import type { DuckDBConnection, DuckDBValue } from '@duckdb/node-api';
 import { LimitError } from '../errors.js';
 import type { EventRun, Manifest } from './event-run.js';
 
-/** Nothing is fetched from anywhere; two threads, so that memory does not grow with the machine. */
-const SETTINGS = { autoinstall_known_extensions: 'false', autoload_known_extensions: 'false', threads: '2' };
+/** Nothing is fetched from anywhere; two threads and no cache of files, so that memory grows neither with machine nor set. */
+const SETTINGS = {
+  autoinstall_known_extensions: 'false',
+  autoload_known_extensions: 'false',
+  threads: '2',
+  enable_external_file_cache: 'false',
+};
 
 /**
  * Work with DuckDB in memory; it is loaded here and nowhere else. Paths and ids are bound to statements as values, never

@@ -50,12 +50,11 @@ export function overLand(
   },
 ): (tile: TilePlace, fields: SwathFields) => void {
   const { rowOf, gustRatio } = surface;
-  const winds = evenRatios(surface.windRatio);
-  const gusts = evenRatios(gustRatio);
   const [windRange, gustRange] = [rangeOf(surface.windRatio), rangeOf(gustRatio)];
   const lowestMps = Math.min(...thresholdsMps);
   const ownLevels = [...thresholdsMps];
-  const own = tileRunner(tracer, placing, ownLevels, { given: sea, windOnly: true });
+  const wanted = new Uint8Array(sea.windMps.length);
+  const own = tileRunner(tracer, placing, ownLevels, { given: sea, wanted, windOnly: true });
 
   return (tile, fields) => {
     const gustMps = fields.gustMps!;
@@ -66,7 +65,7 @@ export function overLand(
       const row = rowOf[k]!;
       const peak = sea.windMps[at]!;
       if (row === 0 || !(peak > 0)) return;
-      const ratio = winds[row]!;
+      const ratio = windRange.even[row]!;
       if (Number.isNaN(ratio)) {
         windCells.push(k);
         gustCells.push(k);
@@ -80,7 +79,7 @@ export function overLand(
         else scaled.set(ratio, [k]);
       }
       const from = sea.fromDeg[at]! * RADIANS;
-      const even = gusts[row]!;
+      const even = gustRange.even[row]!;
       const here = Number.isNaN(even) ? sectorValue(gustRatio, row, -Math.sin(from), -Math.cos(from)) : even;
       gustMps[k] = peak * here;
       if (peak * gustRange.highest[row]! > CALM_MPS && here < gustRange.highest[row]! * (1 - NEAR)) gustCells.push(k);
@@ -123,6 +122,8 @@ export function overLand(
   function countTogether(tile: TilePlace, ratio: number, cells: readonly number[], fields: SwathFields): void {
     for (let h = 0; h < thresholdsMps.length; h++) ownLevels[h] = thresholdsMps[h]! / ratio;
     tracer.setThresholds(ownLevels);
+    wanted.fill(0);
+    for (const k of cells) wanted[placeIn(tile, k)] = 1;
     own.run(tile);
     tracer.setThresholds(thresholdsMps);
     for (const k of cells) {
@@ -197,19 +198,23 @@ function placeIn({ column, row, nx }: TilePlace, k: number): number {
   return (Math.trunc(k / nx) - row * TILE_EDGE) * (TILE_EDGE + 1) + (k % nx) - column * TILE_EDGE;
 }
 
-/** The ratio of each row that is the same from all sides; NaN where it is not. */
-function evenRatios(table: Float64Array): Float64Array {
-  return Float64Array.from({ length: table.length / SECTORS }, (_, row) => {
-    const ratios = table.subarray(row * SECTORS, (row + 1) * SECTORS);
-    return ratios.every((ratio) => ratio === ratios[0]) ? ratios[0]! : Number.NaN;
-  });
-}
-
-/** The lowest and the highest ratio of each row. */
-function rangeOf(table: Float64Array): { readonly lowest: Float64Array; readonly highest: Float64Array } {
-  const of = (pick: (...ratios: number[]) => number): Float64Array =>
-    Float64Array.from({ length: table.length / SECTORS }, (_, row) =>
-      pick(...table.subarray(row * SECTORS, (row + 1) * SECTORS)),
-    );
-  return { lowest: of(Math.min), highest: of(Math.max) };
+/** Of each row the lowest and the highest ratio, and the one that is the same from all sides; NaN where it is not. */
+function rangeOf(table: Float64Array): {
+  readonly lowest: Float64Array;
+  readonly highest: Float64Array;
+  readonly even: Float64Array;
+} {
+  const rows = table.length / SECTORS;
+  const [lowest, highest, even] = [new Float64Array(rows), new Float64Array(rows), new Float64Array(rows)];
+  for (let row = 0, i = 0; row < rows; row++) {
+    let [low, high] = [Number.POSITIVE_INFINITY, 0];
+    for (const end = i + SECTORS; i < end; i++) {
+      low = Math.min(low, table[i]!);
+      high = Math.max(high, table[i]!);
+    }
+    lowest[row] = low;
+    highest[row] = high;
+    even[row] = low === high ? low : Number.NaN;
+  }
+  return { lowest, highest, even };
 }

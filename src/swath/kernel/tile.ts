@@ -52,6 +52,8 @@ export interface TileOptions {
   readonly everyCell?: boolean;
   /** for hours alone: the fields of the tile's last run with other thresholds, whose winds hold */
   readonly given?: TileFields;
+  /** cells that are asked for, all by default; index as in the fields */
+  readonly wanted?: Uint8Array;
 }
 
 export interface TileRunner {
@@ -121,7 +123,7 @@ export function tileRunner(
   tracer: Tracer,
   placing: Placing,
   thresholdsMps: readonly number[],
-  { windOnly = false, calmMps = CALM_MPS, everyCell = false, given }: TileOptions = {},
+  { windOnly = false, calmMps = CALM_MPS, everyCell = false, given, wanted }: TileOptions = {},
 ): TileRunner {
   const size = EDGE * EDGE;
   const windMps = new Float64Array(size);
@@ -166,6 +168,7 @@ export function tileRunner(
     let blocks: Block[] = [];
     for (let j = 0; j < height; j += 2 * WIDEST)
       for (let i = 0; i < width; i += 2 * WIDEST) blocks.push({ column: i, row: j });
+    blocks = blocks.filter((block) => isWanted(block, 2 * WIDEST));
     for (let spacing = WIDEST; blocks.length > 0; spacing >>= 1) {
       const near = spacing >> 1;
       const pattern = near > 1 ? ALL : CENTRES;
@@ -182,9 +185,18 @@ export function tileRunner(
         ask(blocks, near, ALL);
         break;
       }
-      blocks = blocks.flatMap((block) => quarters(block, spacing));
+      blocks = blocks.flatMap((block) => quarters(block, spacing)).filter((block) => isWanted(block, spacing));
     }
     return true;
+  }
+
+  /** Whether any cell of a block is asked for. */
+  function isWanted({ column, row }: Block, edge: number): boolean {
+    if (!wanted) return true;
+    const right = Math.min(column + edge, width);
+    for (let j = row; j < row + edge && j < height; j++)
+      for (let at = j * EDGE + column; at < j * EDGE + right; at++) if (wanted[at] !== 0) return true;
+    return false;
   }
 
   /** Whether the storm's wind reaches the tile. */

@@ -200,11 +200,17 @@ export function tracerOf(
     const { surface } = options;
     if (!surface) return 0;
     const address = engine.allocate(SURFACE_NUMBERS * surface.windRatio.length);
-    for (let i = 0, to = address >> 3; i < surface.windRatio.length; i += 8, to += SURFACE_NUMBERS) {
-      const [winds, gusts] = [surface.windRatio.subarray(i, i + 8), surface.gustRatio.subarray(i, i + 8)];
-      f64.set(winds, to);
-      f64.set(gusts, to + 8);
-      f64.set([Math.max(...winds), Math.max(...gusts)], to + 16);
+    const { windRatio, gustRatio } = surface;
+    for (let i = 0, to = address >> 3; i < windRatio.length; i += 8, to += SURFACE_NUMBERS) {
+      let [wind, gust] = [0, 0];
+      for (let k = 0; k < 8; k++) {
+        wind = Math.max(wind, windRatio[i + k]!);
+        gust = Math.max(gust, gustRatio[i + k]!);
+        f64[to + k] = windRatio[i + k]!;
+        f64[to + 8 + k] = gustRatio[i + k]!;
+      }
+      f64[to + 16] = wind;
+      f64[to + 17] = gust;
     }
     return address;
   }

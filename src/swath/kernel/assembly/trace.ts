@@ -49,7 +49,7 @@ const RIVAL_MPS: f64 = 0.6;
 /** After a turn of the motion a wind that fell before may rise by this, m/s. */
 const TURN_MPS: f64 = 0.15;
 /** Winds over a surface that stay below this share of what is needed from any side are not looked at, */
-const BELOW_NEED: f64 = 0.9;
+const BELOW_NEED: f64 = 0.96;
 /** which the highest ratios of the surface's row tell, after its eight of the wind and eight of the gust. */
 const HIGHEST_WIND: i32 = 128;
 const HIGHEST_GUST: i32 = 136;
@@ -565,6 +565,8 @@ function passed(p: i32, a: i32, b: i32, c: i32, ma: f64, mb: f64, mc: f64, turns
   for (let i = 0; i < 4; i++) {
     const bit = 1 << i;
     if (((high | hollow) & bit) === 0) continue;
+    // a bound is no peak
+    if (kind !== SEA && f32At(b + 4 * i) < BELOW_NEED * least(f32At(NEED + 4 * i), lowestLevel)) continue;
     const sign: f64 = (high & bit) !== 0 ? 1 : -1;
     extreme(p + i, low, sign * f32At(a + 4 * i), mb, sign * f32At(b + 4 * i), mc, sign * f32At(c + 4 * i), sign, turns);
     const moment = foundMoment;

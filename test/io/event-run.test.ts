@@ -203,7 +203,7 @@ describe('return-period maps', () => {
       expect(shape).toEqual([7, 2, 4]);
       expect([...(values as Float32Array)]).toEqual(bands.flatMap((band) => [...band]));
     }
-    expect([...netcdf.variables.find((one) => one.name === 'return_period')!.values]).toEqual([...RETURN_YEARS]);
+    expect(Array.from(netcdf.variables.find((one) => one.name === 'return_period')!.values)).toEqual([...RETURN_YEARS]);
     expect(netcdf.attributes['surface']!.value).toMatch(/ignore land/);
   });
 

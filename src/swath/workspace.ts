@@ -18,6 +18,9 @@ export interface Footprint {
 /** Winds that are lower than the least one wanted by this need not be right, m/s. */
 const MARGIN_MPS = 1;
 
+/** Winds below this share of the least one are left out altogether. */
+const LEFT_OUT_SHARE = 0.7;
+
 /** A grid that many storms are put on, one after another. */
 export interface SwathWorkspace {
   readonly grid: Grid;
@@ -34,13 +37,17 @@ export function createSwathWorkspace(grid: Grid): SwathWorkspace {
 
   function footprint(model: WindModel, { leastMps }: { readonly leastMps: number }): Footprint {
     const timeline = timelineOf(model, model.path.startMs, model.path.endMs);
-    const tracer = tracerOf(engine, timeline, stormTables(model, timeline), {
+    const tracer = tracerOf(engine, timeline, stormTables(model, timeline, { leastMps }), {
       outerRadiusM: model.outerRadiusM,
       thresholdsMps: [],
       windOnly: true,
     });
     // what lies below the least is thrown away
-    const { run, fields } = tileRunner(tracer, placing, [], { windOnly: true, calmMps: leastMps - MARGIN_MPS });
+    const { run, fields } = tileRunner(tracer, placing, [], {
+      windOnly: true,
+      calmMps: leastMps - MARGIN_MPS,
+      leastMps: LEFT_OUT_SHARE * leastMps,
+    });
     const cells: number[] = [];
     const winds: number[] = [];
     for (let row = 0; row < placing.rows; row++) {

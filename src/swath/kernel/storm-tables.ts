@@ -1,4 +1,5 @@
 import { EARTH_RADIUS_M } from '../../earth.js';
+import type { WindField } from '../../model/field.js';
 import type { WindModel } from '../../model/wind.js';
 import {
   type Layout,
@@ -25,6 +26,9 @@ const TRUNCATION_MPS = 0.01;
 const MOST_HARMONICS = 14;
 /** Directions in which a field is probed for its harmonics. */
 const PROBES = 64;
+/** Where a lowest wind is given, tables reach to this share of it, and farther by this factor: they are probed at some moments only. */
+const WEAK_SHARE = 0.5;
+const WEAK_MARGIN = 1.3;
 /** Splits of a leg at most, and where many harmonics make tables dear: the tables between are interpolated. */
 const MOST_SPLITS = [6, 5] as const;
 /** Floats that all tables of a storm may take; beyond it fewer tables serve for longer. */
@@ -39,9 +43,16 @@ export interface StormTables {
   readonly legTables: readonly (readonly Built[])[];
 }
 
-/** Builds the tables of a storm. */
-export function stormTables(model: WindModel, timeline: Timeline): StormTables {
-  const { layout, sampling, complete } = planTables(model, timeline);
+/**
+ * Builds the tables of a storm.
+ * @param options.leastMps for peak winds of at least this alone: tables end where the wind is well below it, and hold no parts of the wind
+ */
+export function stormTables(
+  model: WindModel,
+  timeline: Timeline,
+  options: { readonly leastMps?: number } = {},
+): StormTables {
+  const { layout, sampling, complete } = planTables(model, timeline, options.leastMps ?? null);
   const build = (timeMs: number): MomentTable => tableOf(model.fieldAt(timeMs), layout, sampling);
   // where the model is continuous a fix serves the legs on both sides
   const continuous = model.recipe['path.interpolation'] !== 'linear';
@@ -131,7 +142,11 @@ export interface Serving {
 }
 
 /** How many rows and harmonics the fields of this storm need. */
-function planTables(model: WindModel, timeline: Timeline): { layout: Layout; sampling: Sampling; complete: boolean } {
+function planTables(
+  model: WindModel,
+  timeline: Timeline,
+  leastMps: number | null,
+): { layout: Layout; sampling: Sampling; complete: boolean } {
   let smallest = Number.POSITIVE_INFINITY;
   for (const leg of timeline.legs) {
     const steps = Math.min(8, 1 << leg.depth);
@@ -141,7 +156,8 @@ function planTables(model: WindModel, timeline: Timeline): { layout: Layout; sam
     }
   }
   const farthest = (EARTH_RADIUS_M * Math.sin(Math.min(Math.PI / 2, model.outerRadiusM / EARTH_RADIUS_M))) / smallest;
-  const rows = rowsBeyond(farthest * farthest * 1.02);
+  let rows = rowsBeyond(farthest * farthest * 1.02);
+  let weakRatio = 0;
   // probe a few moments with many directions
   const probe = samplingOf(PROBES);
   const winds = new Float64Array(2 * PROBES);
@@ -153,6 +169,7 @@ function planTables(model: WindModel, timeline: Timeline): { layout: Layout; sam
     const leg = legs[number]!;
     for (const share of [0, 0.4]) {
       const field = model.fieldAt(leg.startMs + share * (leg.endMs - leg.startMs));
+      if (leastMps !== null) weakRatio = Math.max(weakRatio, reachedRatio(field, WEAK_SHARE * leastMps));
       for (const ratio of [0.5, 0.9, 1, 1.1, 1.5, 2, 3, 5, 8, 12]) {
         const radiusM = ratio * field.state.radiusOfMaxWindM;
         if (radiusM > 0.95 * field.outerRadiusM) continue;
@@ -173,12 +190,24 @@ function planTables(model: WindModel, timeline: Timeline): { layout: Layout; sam
       }
     }
   }
+  if (leastMps !== null) {
+    windHarmonics = 0;
+    rows = Math.min(rows, rowsBeyond((WEAK_MARGIN * weakRatio) ** 2));
+  }
   const most = Math.max(harmonics, windHarmonics);
   return {
     layout: layoutOf(harmonics, windHarmonics, rows),
     sampling: samplingOf(most === 1 ? 4 : 2 * most + 4),
     complete,
   };
+}
+
+/** How far from the centre a field has a wind, in units of its radius of maximum wind. */
+function reachedRatio(field: WindField, windMps: number): number {
+  const radiusM = field.state.radiusOfMaxWindM;
+  let ratio = 1;
+  while (ratio * radiusM < field.outerRadiusM && field.strongestOnCircle(ratio * radiusM) >= windMps) ratio *= 1.2;
+  return ratio;
 }
 
 /** The harmonic beyond which the sum of amplitudes falls below a bound. */

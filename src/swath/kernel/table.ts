@@ -64,13 +64,14 @@ export function rowsBeyond(x: number): number {
   return CORE_ROWS + (Math.max(2, Math.ceil(Math.log2(x / CORE_X))) << OUTER_BITS) + 2;
 }
 
+/** @param windHarmonics 0 without parts of the wind */
 export function layoutOf(harmonics: number, windHarmonics: number, rows: number): Layout {
   return {
     harmonics,
     windHarmonics,
     rows,
     speedStride: (1 + 2 * harmonics + 3) & ~3,
-    windStride: 2 * (1 + 2 * windHarmonics),
+    windStride: windHarmonics === 0 ? 0 : 2 * (1 + 2 * windHarmonics),
   };
 }
 
@@ -98,7 +99,7 @@ export function samplingOf(count: number): Sampling {
   return { count, directions, waves };
 }
 
-/** The table of a field. */
+/** The table of a field; without parts of the wind where the layout has none. */
 export function tableOf(field: WindField, layout: Layout, { count, directions, waves }: Sampling): MomentTable {
   const { rows, speedStride, windStride, harmonics, windHarmonics } = layout;
   const { radiusOfMaxWindM, maxWindMps } = field.state;
@@ -120,8 +121,10 @@ export function tableOf(field: WindField, layout: Layout, { count, directions, w
     }
     field.onCircle(winds, radiusM, directions);
     if (fade < 1) for (let i = 0; i < 2 * count; i++) winds[i] = winds[i]! / fade;
-    fourier(winds, waves, windHarmonics, perWind, s, wind, row * windStride, 0);
-    fourier(winds, waves, windHarmonics, perWind, s, wind, row * windStride + part, 1);
+    if (windStride > 0) {
+      fourier(winds, waves, windHarmonics, perWind, s, wind, row * windStride, 0);
+      fourier(winds, waves, windHarmonics, perWind, s, wind, row * windStride + part, 1);
+    }
     for (let i = 0; i < 2 * count; i += 2) winds[i] = winds[i]! ** 2 + winds[i + 1]! ** 2;
     fourier(winds, waves, harmonics, perWind * perWind, s, speed, row * speedStride, 0);
   }

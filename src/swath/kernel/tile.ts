@@ -48,6 +48,8 @@ export interface TileOptions {
   readonly windOnly?: boolean;
   /** peaks below this need not be right, m/s */
   readonly calmMps?: number;
+  /** legs and tiles without a wind of this are left out, m/s */
+  readonly leastMps?: number;
   /** nothing is interpolated */
   readonly everyCell?: boolean;
   /** for hours alone: the fields of the tile's last run with other thresholds, whose winds hold */
@@ -123,7 +125,7 @@ export function tileRunner(
   tracer: Tracer,
   placing: Placing,
   thresholdsMps: readonly number[],
-  { windOnly = false, calmMps = CALM_MPS, everyCell = false, given, wanted }: TileOptions = {},
+  { windOnly = false, calmMps = CALM_MPS, leastMps = 0, everyCell = false, given, wanted }: TileOptions = {},
 ): TileRunner {
   const size = EDGE * EDGE;
   const windMps = new Float64Array(size);
@@ -210,7 +212,7 @@ export function tileRunner(
     const [cx, cy, cz] = [x[4]!, y[4]!, z[4]!];
     let least = 1;
     for (let k = 0; k < 9; k++) least = Math.min(least, x[k]! * cx + y[k]! * cy + z[k]! * cz);
-    return tracer.near([cx, cy, cz], 1.1 * Math.acos(Math.max(-1, least)) * EARTH_RADIUS_M + cellM);
+    return tracer.near([cx, cy, cz], 1.1 * Math.acos(Math.max(-1, least)) * EARTH_RADIUS_M + cellM, leastMps);
   }
 
   function quarters({ column, row }: Block, size: number): Block[] {
@@ -227,19 +229,19 @@ export function tileRunner(
     // at last the cells themselves, and none beyond them
     const [right, bottom] = near === 1 && pattern === ALL ? [width, height] : [EDGE, EDGE];
     let count = 0;
-    let leastMps = Number.POSITIVE_INFINITY;
+    let lowest = Number.POSITIVE_INFINITY;
     const answerAll = (): void => {
-      tracer.reaching(Math.min(leastMps, lowestMps()));
+      tracer.reaching(Math.max(leastMps, Math.min(lowest, lowestMps())));
       answer(count);
       count = 0;
-      leastMps = Number.POSITIVE_INFINITY;
+      lowest = Number.POSITIVE_INFINITY;
     };
     for (const { column, row } of blocks) {
       const mps =
         near === WIDEST / 2
           ? 0
           : Math.max(0, EXPECTED_SHARE * expectedMps(row * EDGE + column, 2 * near) - EXPECTED_MPS);
-      if (count > 0 && (mps > ALIKE * leastMps || leastMps > ALIKE * mps)) answerAll();
+      if (count > 0 && (mps > ALIKE * lowest || lowest > ALIKE * mps)) answerAll();
       for (const [a, b] of pattern.points) {
         const [i, j] = [column + near * a, row + near * b];
         const at = j * EDGE + i;
@@ -251,7 +253,7 @@ export function tileRunner(
         // where the peak is known nothing is looked for but what passes a threshold
         expected[count] = isGiven[at] !== 0 ? 0 : mps;
         tracer.windMps[count] = isGiven[at] !== 0 ? windMps[at]! + ABOVE_PEAK_MPS : mps;
-        if (isGiven[at] === 0) leastMps = Math.min(leastMps, mps);
+        if (isGiven[at] === 0) lowest = Math.min(lowest, mps);
         if (++count === MOST_POINTS) answerAll();
       }
     }
@@ -276,7 +278,7 @@ export function tileRunner(
     }
     if (wrong === 0) return;
     // what was expected is not there: once more, expecting nothing
-    tracer.reaching(0);
+    tracer.reaching(leastMps);
     for (let k = 0; k < wrong; k++) {
       placing.place(tracer, k, left + (asked[k]! % EDGE), top + Math.trunc(asked[k]! / EDGE));
       tracer.windMps[k] = 0;

@@ -1,20 +1,25 @@
 import { spawn } from 'node:child_process';
 import { mkdtemp, rm, writeFile } from 'node:fs/promises';
 import { availableParallelism, tmpdir } from 'node:os';
-import { join } from 'node:path';
+import { basename, join, resolve } from 'node:path';
 import { fileURLToPath } from 'node:url';
 import { GalewakeError, InputError, LimitError, UsageError } from '../errors.js';
-import { trackText, usualShards } from '../events/event-index.js';
+import { trackText, usualShards, withRates } from '../events/event-index.js';
+import type { NamedPlace } from '../events/event-row.js';
 import { OPEN_SEA } from '../events/open-sea.js';
 import { taskIndex } from '../events/task-index.js';
+import { eventTableOf, readRates } from '../io/event-input.js';
 import { EventRun, hashOf, indexEvents, type Manifest, readRange } from '../io/event-run.js';
+import { readInputBytes } from '../io/input.js';
+import { readPoints } from '../io/points.js';
 import { recipeDocument } from '../model/recipe.js';
 import { nearest } from '../nearest.js';
 import { gridOver } from '../swath/grid.js';
-import { quantityOf } from '../units.js';
+import { knots, quantityOf } from '../units.js';
 import { CAUTION } from '../write/provenance.js';
-import { type CommonOptions, countOf, list, type ModelOptions, recipeOf } from './choices.js';
+import { type CommonOptions, countOf, list, type ModelOptions, readOptionsOf, recipeOf } from './choices.js';
 import { type Console, makeConsole } from './console.js';
+import { WORLD } from './land.js';
 
 export interface PlanOptions extends CommonOptions, ModelOptions {
   readonly out: string;
@@ -24,6 +29,10 @@ export interface PlanOptions extends CommonOptions, ModelOptions {
   readonly cell: string;
   readonly least: string;
   readonly years?: string;
+  readonly rates?: string;
+  readonly columns?: string;
+  readonly places?: string;
+  readonly landfalls?: string;
   readonly badEvents: 'stop' | 'set-aside';
   readonly jobs?: string;
 }
@@ -52,33 +61,77 @@ export async function plan(input: string, options: PlanOptions): Promise<EventRu
   const bounds = edges as [number, number, number, number];
   // refuses what is no grid now rather than in every shard
   gridOver({ crs: options.crs, bounds, cell });
-  const { heading, events, sha256 } = await indexEvents(input);
+  const leastMps = quantityOf('speed', options.least, { bareUnit: 'kt', name: '--least' });
+  const places = options.places === undefined ? [] : await placesOf(options.places);
+  const land = await landOfLandfalls(options.landfalls);
+  const table = await eventTableOf(input, options.out);
+  const { heading, events: listed, sha256 } = await indexEvents(table, readOptionsOf(options).columns);
   const years = options.years === undefined ? null : Number(options.years);
   if (years !== null && !(years > 0))
     throw new UsageError('events.years', `--years ${options.years}: a number above zero`);
-  if (heading.rateAt >= 0 && years !== null)
-    throw new UsageError('events.years', '--years: the table has rates of its own; leave out one of the two');
+  const given = [
+    heading.rateAt >= 0 && "the set's column rate",
+    years !== null && '--years',
+    options.rates !== undefined && '--rates',
+  ];
+  const twice = given.filter((one) => one !== false);
+  if (twice.length > 1)
+    throw new UsageError('events.years', `${twice.join(' and ')}: an event has one rate; leave out all but one`);
+  const events =
+    options.rates === undefined ? listed : withRates(listed, await readRates(options.rates), basename(options.rates));
   const run = await EventRun.create(
     options.out,
     {
-      input,
+      input: table,
       inputsSha256: sha256,
       recipe,
       recipeSha256: hashOf(JSON.stringify(recipe)),
       grid: { crs: options.crs, bounds, cell },
-      leastMps: quantityOf('speed', options.least, { bareUnit: 'kt', name: '--least' }),
+      leastMps,
       badEvents: options.badEvents,
       shards: Math.min(
         events.length,
         countOf(options.shards ?? String(usualShards(events.length)), { name: '--shards', least: 1 }),
       ),
       years,
+      ...(options.rates === undefined ? {} : { ratesSha256: hashOf(await readInputBytes(options.rates)) }),
+      table: {
+        levelsMps: LEVELS_KT.map(knots).filter((level) => level >= leastMps - 1e-9),
+        places,
+        landfalls: land !== null,
+        ...land,
+      },
     },
     { heading, events },
   );
   if (options.quiet !== true)
     out.print(`${run.plan.events} events in ${run.plan.shards} shards: ${run.folder}/plan.json\n`);
   return run;
+}
+
+/** Levels of the event table and of `show`, kt. */
+const LEVELS_KT = [34, 50, 64, 83, 96, 113, 137];
+
+async function placesOf(path: string): Promise<NamedPlace[]> {
+  const places: NamedPlace[] = [];
+  await readPoints(path, {
+    values: [],
+    strict: true,
+    onPoint: ({ name, latDeg, lonDeg }) => places.push({ name, latDeg, lonDeg }),
+  });
+  if (places.length === 0)
+    throw new InputError('events.places', `${basename(path)}: holds no place; give name,lat_deg,lon_deg`);
+  return places;
+}
+
+/** The land of landfalls as a plan holds it; null where nobody asks for them. */
+async function landOfLandfalls(
+  land: string | undefined,
+): Promise<{ readonly land: string; readonly landSha256?: string } | null> {
+  if (land === undefined || land === 'none') return null;
+  if (land === WORLD) return { land };
+  const { record } = await (await import('../io/land-file.js')).readLand(land);
+  return { land: resolve(land), landSha256: record.sha256 };
 }
 
 /** `galewake events shard`: one shard of a run; its exit code says whether to try again. */
@@ -165,7 +218,9 @@ export async function reduce(folder: string, options: CommonOptions): Promise<vo
   const manifests = await manifestsOf(run, out);
   if (!manifests) return;
   const { RETURN_YEARS, returnPeriodMaps } = await import('../io/event-hazard.js');
-  const { files, cautions } = await returnPeriodMaps(run, manifests);
+  const { files: maps, cautions } = await returnPeriodMaps(run, manifests);
+  const { joinEventTables } = await import('../io/event-table.js');
+  const files = [...maps, ...(await joinEventTables(run, manifests))];
   const setAside = manifests.flatMap((manifest) => manifest.setAside);
   // one event more or less decides what is rarer than the rarest of them
   const longest = 1 / run.events.reduce((least, { rate }) => Math.min(least, rate), Number.POSITIVE_INFINITY);
@@ -268,7 +323,7 @@ export async function show(folder: string, id: string, options: ShowOptions): Pr
     await swath(join(work, 'event.csv'), {
       ...options,
       recipe: join(work, 'recipe.json'),
-      levels: '34kt,50kt,64kt,83kt,96kt,113kt,137kt',
+      levels: LEVELS_KT.map((kt) => `${kt}kt`).join(','),
       of: 'wind',
       crs,
       bounds: bounds.join(','),

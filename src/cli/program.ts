@@ -215,18 +215,27 @@ export async function runProgram(argv: readonly string[]): Promise<void> {
       .option('--crs <CRS>', 'its coordinate reference system', 'EPSG:4326')
       .option('--cell <SIZE>', 'its cell size', '0.1deg')
       .option('--least <SPEED>', 'lowest wind that is kept', '34kt')
+      .option('--columns <KEY=HEADING,...>', 'which heading of the table holds event, rate, time, lat_deg, …')
       .option('--years <N>', 'years that the set stands for: equal rates, where the table has none')
+      .option('--rates <FILE>', 'rates a year in a second table: event,rate (CSV or Parquet)')
+      .option('--places <FILE>', 'places whose closest approach the event table tells (CSV or GeoJSON)')
+      .option(
+        '--landfalls <LAND>',
+        'natural-earth or GeoJSON polygons: first landfall in the event table; winds ignore it',
+      )
       .option('--shards <N>', 'parts that the set is cut into (200 events each, 1000 at most)')
       .addOption(
         new Option('--bad-events <WHAT>', 'an event that cannot be modelled')
           .choices(['stop', 'set-aside'])
           .default('stop'),
       );
-  planned(events.command('plan <INPUT>').description('Cut an event table into shards.')).action(
-    async (input, options) => {
-      await (await import('./events.js')).plan(input, options);
-    },
-  );
+  planned(
+    events
+      .command('plan <INPUT>')
+      .description('Cut an event set (CSV, Parquet, or a folder of track files) into shards.'),
+  ).action(async (input, options) => {
+    await (await import('./events.js')).plan(input, options);
+  });
   planned(events.command('run <INPUT>').description('Plan, all shards on this machine, return-period maps.'))
     .option('--jobs <N>', 'processes (all cores)')
     .action(async (input, options) => (await import('./events.js')).run(input, options));

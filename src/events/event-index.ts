@@ -1,4 +1,6 @@
-import { InputError } from '../errors.js';
+import { InputError, UsageError } from '../errors.js';
+import { didYouMean } from '../nearest.js';
+import { isTrackKey, TRACK_KEYS } from '../track/read/columns.js';
 
 /** Where the rows of an event stand in a file. */
 export interface EventRange {
@@ -17,24 +19,61 @@ export interface EventHeading {
   readonly text: string;
   readonly eventAt: number;
   readonly rateAt: number;
+  /** a column of storms beside that of events */
+  readonly stormAt?: number;
 }
 
 /**
- * The heading of an event table.
- * @throws InputError `events.heading`
+ * The heading of an event table, under the names that it is read by.
+ * @param mapped the user's own headings by key: `event`, `rate` and those of a track table
+ * @throws InputError `events.heading`; UsageError `events.columns`
  */
-export function eventHeading(line: string, source: string): EventHeading {
+export function eventHeading(
+  line: string,
+  source: string,
+  mapped: Readonly<Record<string, string>> = {},
+): EventHeading {
   const columns = line
     .replace(/^\uFEFF/, '')
     .split(',')
     .map((word) => word.trim());
+  const own = new Map<number, string>();
+  for (const [key, heading] of Object.entries(mapped)) {
+    if (key !== 'event' && key !== 'rate' && !isTrackKey(key))
+      throw new UsageError(
+        'events.columns',
+        `--columns: '${key}' is no key of an event table${didYouMean(key, ['event', 'rate', ...TRACK_KEYS])}; keys are event, rate, ${TRACK_KEYS.join(', ')}, r34_ne_nmi …`,
+      );
+    const at = columns.indexOf(heading);
+    if (at < 0)
+      throw new UsageError(
+        'events.columns',
+        `--columns: ${source} has no heading '${heading}'${didYouMean(heading, columns)}; it has ${columns.join(', ')}`,
+      );
+    if (own.has(at))
+      throw new UsageError('events.columns', `--columns: '${heading}' is given to both ${own.get(at)} and ${key}`);
+    own.set(at, key);
+  }
+  // the user's own names go before those of the file
+  for (const [i, name] of columns.entries()) {
+    const key = own.get(i);
+    columns[i] = key ?? (Object.hasOwn(mapped, name) ? `unused_${name}` : name);
+  }
+  const twice = columns.find((name, i) => name !== '' && columns.indexOf(name) !== i);
+  if (twice !== undefined)
+    throw new InputError('events.heading', `${source}: two columns are called '${twice}'; rename one`);
   const eventAt = columns.indexOf('event');
   if (eventAt < 0)
     throw new InputError(
       'events.heading',
       `${source}: there is no column 'event'; an event table has event,time,lat_deg,lon_deg and the columns of a track, and a rate a year in 'rate' or by --years`,
     );
-  return { text: line.replace(/^\uFEFF/, ''), eventAt, rateAt: columns.indexOf('rate') };
+  return {
+    text: columns.join(','),
+    eventAt,
+    rateAt: columns.indexOf('rate'),
+    stormAt: columns.indexOf('storm'),
+  };
 }
 
 /** Gathers the index of a table row by row: rows of an event follow each other. */
@@ -95,14 +134,52 @@ export function eventIndexer(heading: EventHeading, source: string) {
   };
 }
 
-/** Rows of an event table as a track table: the event is the storm, the rate is left out. */
-export function trackText(heading: EventHeading, rows: string): string {
-  const columns = heading.text.split(',');
-  columns[heading.eventAt] = 'storm';
-  if (heading.rateAt < 0) return `${columns.join(',')}\n${rows}`;
-  const without = (cells: string[]): string => cells.filter((_, i) => i !== heading.rateAt).join(',');
+/** Rows of an event table as a track table: the event is the storm; the rate and the file's own storms are left out. */
+export function trackText({ text, eventAt, rateAt, stormAt = -1 }: EventHeading, rows: string): string {
+  const columns = text.split(',');
+  columns[eventAt] = 'storm';
+  if (rateAt < 0 && stormAt < 0) return `${columns.join(',')}\n${rows}`;
+  const without = (cells: string[]): string => cells.filter((_, i) => i !== rateAt && i !== stormAt).join(',');
   const lines = rows.split(/\r?\n/).filter((line) => line.trim() !== '');
   return `${without(columns)}\n${lines.map((line) => without(line.split(','))).join('\n')}\n`;
+}
+
+/**
+ * Events with the rates of a second table.
+ * @param table event and rate, row by row
+ * @throws InputError `events.rates` for an event without a rate, with two, or that the set does not have
+ */
+export function withRates(
+  events: readonly EventRange[],
+  table: Iterable<{ readonly event: string; readonly rate: number; readonly row: number }>,
+  source: string,
+): EventRange[] {
+  const rates = new Map<string, { readonly rate: number; readonly row: number }>();
+  for (const { event, rate, row } of table) {
+    const known = rates.get(event);
+    if (known)
+      throw new InputError(
+        'events.rates',
+        `${source}, row ${row}: event '${event}' has a rate already in row ${known.row}; an event has one rate`,
+      );
+    rates.set(event, { rate, row });
+  }
+  const rated = events.map((event) => {
+    const found = rates.get(event.id);
+    if (!found)
+      throw new InputError(
+        'events.rates',
+        `${source}: event '${event.id}' (row ${event.row} of the set) has no rate in it; add a row, or take the event out of the set`,
+      );
+    rates.delete(event.id);
+    return { ...event, rate: found.rate };
+  });
+  for (const [event, { row }] of rates)
+    throw new InputError(
+      'events.rates',
+      `${source}, row ${row}: the set has no event '${event}'; remove the row, or give the set that it belongs to`,
+    );
+  return rated;
 }
 
 /**

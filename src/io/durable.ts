@@ -25,6 +25,54 @@ export async function isLeftOver(path: string): Promise<boolean> {
 }
 
 /**
+ * Writes a file from pieces, durably as {@link writeDurably} does; its name may depend on what was written.
+ * @param fill writes the pieces
+ * @param nameOf the file's name in the folder, by the SHA-256 of its content
+ */
+export async function writeDurablyInPieces(
+  folder: string,
+  fill: (write: (piece: string) => Promise<void>) => Promise<void>,
+  nameOf: (sha256: string) => string,
+): Promise<{ readonly path: string; readonly sha256: string }> {
+  const temporary = join(folder, `.${HOST}-${process.pid}-${randomBytes(9).toString('hex')}.part`);
+  const hash = createHash('sha256');
+  let path = temporary;
+  try {
+    const file = await open(temporary, 'wx').catch((error: unknown) => {
+      throw unwritable(temporary, error);
+    });
+    try {
+      await fill(async (piece) => {
+        hash.update(piece);
+        await file.appendFile(piece).catch((error: unknown) => {
+          throw unwritable(temporary, error);
+        });
+      });
+      await file.sync();
+    } finally {
+      await file.close();
+    }
+    const sha256 = hash.digest('hex');
+    path = join(folder, nameOf(sha256));
+    await rename(temporary, path);
+    await syncFolder(folder);
+    return { path, sha256 };
+  } catch (error) {
+    await rm(temporary, { force: true });
+    throw error;
+  }
+}
+
+async function syncFolder(folder: string): Promise<void> {
+  const handle = await open(folder, 'r');
+  try {
+    await handle.sync();
+  } finally {
+    await handle.close();
+  }
+}
+
+/**
  * Writes a file so that it is whole or not there, also after a loss of power: temporary file, fsync, rename, fsync of the folder.
  * @throws InputError `io.*`: disk full, no permission …
  */
@@ -44,10 +92,5 @@ export async function writeDurably(path: string, content: Uint8Array | string): 
     await rm(temporary, { force: true });
     throw unwritable(path, error);
   }
-  const handle = await open(folder, 'r');
-  try {
-    await handle.sync();
-  } finally {
-    await handle.close();
-  }
+  await syncFolder(folder);
 }

@@ -3,8 +3,9 @@ import { createReadStream } from 'node:fs';
 import { mkdir, open, readdir, readFile, rm, stat } from 'node:fs/promises';
 import { hostname } from 'node:os';
 import { basename, join, resolve } from 'node:path';
-import { InputError } from '../errors.js';
+import { GalewakeError, InputError } from '../errors.js';
 import { type EventHeading, type EventRange, eventHeading, eventIndexer } from '../events/event-index.js';
+import type { NamedPlace } from '../events/event-row.js';
 import { isLeftOver, writeDurably } from './durable.js';
 import { unreadable } from './input.js';
 import { unwritable } from './unwritable.js';
@@ -27,6 +28,17 @@ export interface Plan {
   readonly events: number;
   /** years that the set stands for, where its rates are equal */
   readonly years: number | null;
+  /** of the second table that the rates came from */
+  readonly ratesSha256?: string;
+  /** what the event table holds */
+  readonly table?: {
+    readonly levelsMps: readonly number[];
+    readonly places: readonly NamedPlace[];
+    readonly landfalls: boolean;
+    /** the land of the landfalls: `natural-earth` or a file, and its checksum */
+    readonly land?: string;
+    readonly landSha256?: string;
+  };
   readonly planHash: string;
 }
 
@@ -41,6 +53,8 @@ export interface Manifest {
   readonly file: string;
   readonly bytes: number;
   readonly sha256: string;
+  /** the shard's part of the event table */
+  readonly table?: { readonly file: string; readonly bytes: number; readonly sha256: string };
   readonly setAside: readonly { readonly event: string; readonly row: number; readonly why: string }[];
   readonly host: string;
   readonly seconds: number;
@@ -49,10 +63,12 @@ export interface Manifest {
 export const hashOf = (content: string | Uint8Array): string => createHash('sha256').update(content).digest('hex');
 const shardName = (shard: number): string => String(shard).padStart(6, '0');
 const DATA = /^\d{6}\.[0-9a-f]{12}\.parquet$/;
+const TABLE = /^\d{6}\.[0-9a-f]{12}\.events\.csv$/;
 
 /** One pass over an event table: its heading, where each event stands, and its checksum. */
 export async function indexEvents(
   path: string,
+  columns: Readonly<Record<string, string>> = {},
 ): Promise<{ heading: EventHeading; events: readonly EventRange[]; sha256: string }> {
   const hash = createHash('sha256');
   const source = basename(path);
@@ -64,7 +80,7 @@ export async function indexEvents(
     row++;
     const text = bytes.toString('utf8').replace(/\r?\n?$/, '');
     if (heading === null) {
-      heading = eventHeading(text, source);
+      heading = eventHeading(text, source, columns);
       indexer = eventIndexer(heading, source);
     } else indexer!.add(text, from, to, row);
   };
@@ -86,7 +102,7 @@ export async function indexEvents(
         );
     }
   } catch (error) {
-    if (error instanceof InputError) throw error;
+    if (error instanceof GalewakeError) throw error;
     throw unreadable(path, error);
   }
   if (rest.length > 0) line(rest, at, at + rest.length);
@@ -193,14 +209,32 @@ export class EventRun {
   async commit(
     parts: Pick<Manifest, 'shard' | 'first' | 'end' | 'rows' | 'setAside' | 'seconds'>,
     bytes: Uint8Array,
+    table?: string,
   ): Promise<Manifest> {
     const sha256 = hashOf(bytes);
     const file = `${shardName(parts.shard)}.${sha256.slice(0, 12)}.parquet`;
     await writeDurably(this.path(file), bytes);
+    const tablePart = table === undefined ? {} : { table: await this.putTable(parts.shard, table) };
     const { shards, planHash } = this.plan;
-    const manifest: Manifest = { ...parts, shards, planHash, file, bytes: bytes.length, sha256, host: hostname() };
+    const manifest: Manifest = {
+      ...parts,
+      shards,
+      planHash,
+      file,
+      bytes: bytes.length,
+      sha256,
+      ...tablePart,
+      host: hostname(),
+    };
     await writeDurably(this.path(`${shardName(parts.shard)}.json`), `${JSON.stringify(manifest, null, 2)}\n`);
     return manifest;
+  }
+
+  private async putTable(shard: number, table: string): Promise<NonNullable<Manifest['table']>> {
+    const sha256 = hashOf(table);
+    const file = `${shardName(shard)}.${sha256.slice(0, 12)}.events.csv`;
+    await writeDurably(this.path(file), table);
+    return { file, bytes: Buffer.byteLength(table), sha256 };
   }
 
   /** The manifest of a shard that is done; null, and its manifest removed, where it is not or not as it says. */
@@ -225,11 +259,14 @@ export class EventRun {
     }
     if (manifest.planHash !== this.plan.planHash) return 'its manifest is of another plan';
     if (manifest.shard !== shard || !DATA.test(manifest.file)) return 'its manifest is not one of this shard';
-    const found = await stat(this.path(manifest.file)).catch(() => null);
-    if (!found) return `${manifest.file} is not there`;
-    if (found.size !== manifest.bytes) return `${manifest.file} has ${found.size} bytes instead of ${manifest.bytes}`;
-    if (checksum && hashOf(await readFile(this.path(manifest.file))) !== manifest.sha256)
-      return `${manifest.file} has changed since it was written: its SHA-256 is another one`;
+    if (manifest.table && !TABLE.test(manifest.table.file)) return 'its manifest is not one of this shard';
+    for (const { file, bytes, sha256 } of manifest.table ? [manifest, manifest.table] : [manifest]) {
+      const found = await stat(this.path(file)).catch(() => null);
+      if (!found) return `${file} is not there`;
+      if (found.size !== bytes) return `${file} has ${found.size} bytes instead of ${bytes}`;
+      if (checksum && hashOf(await readFile(this.path(file))) !== sha256)
+        return `${file} has changed since it was written: its SHA-256 is another one`;
+    }
     return null;
   }
 
@@ -246,6 +283,11 @@ export class EventRun {
     for (const folder of [this.folder, join(this.folder, 'shards')])
       for (const name of await readdir(folder))
         if (await isLeftOver(join(folder, name))) await rm(join(folder, name), { force: true });
+  }
+
+  /** A shard's part of the event table; null where it has none. */
+  tablePath(manifest: Manifest): string | null {
+    return manifest.table && this.plan.table ? this.path(manifest.table.file) : null;
   }
 
   dataPath(manifest: Manifest): string {

@@ -1,12 +1,16 @@
 import { parquetWriteBuffer } from 'hyparquet-writer';
 import { GalewakeError, InputError } from '../errors.js';
 import { shardRange, trackText } from '../events/event-index.js';
+import { type EventRow, eventRows } from '../events/event-row.js';
+import { cellAreasM2 } from '../isotach/area.js';
+import type { Land } from '../land/land.js';
 import { makeRecipe, type Recipe } from '../model/recipe.js';
 import { windModel } from '../model/wind.js';
 import { gustFactorOf } from '../swath/exact.js';
-import { gridOver } from '../swath/grid.js';
+import { type Grid, gridOver } from '../swath/grid.js';
 import { createSwathWorkspace } from '../swath/workspace.js';
 import { readTracksFromText } from '../track/read/read.js';
+import { eventLine } from '../write/event-table.js';
 import { type EventRun, type Manifest, readRange } from './event-run.js';
 
 /** Rows of a group of the Parquet file, which is the least that a reader takes. */
@@ -39,22 +43,35 @@ export async function runShard(run: EventRun, shard: number): Promise<{ manifest
       bounds: plan.grid.bounds as unknown as readonly [number, number, number, number],
     }),
   );
+  const { table } = plan;
+  const rowOf = table
+    ? eventRows(workspace.grid, {
+        cellAreaM2: cellAreaOf(workspace.grid),
+        levelsMps: table.levelsMps,
+        places: table.places,
+        isLand: table.landfalls ? (await landOf(table)).isLand : null,
+      })
+    : null;
+  const lines: string[] = [];
   const parts: { event: number; cells: Int32Array; windMps: Float32Array; gust: number }[] = [];
   const setAside: { event: string; row: number; why: string }[] = [];
   const from = first < end ? events[first]!.start : 0;
   const bytes = first < end ? await readRange(plan.input, from, events[end - 1]!.end) : Buffer.alloc(0);
   for (let event = first; event < end; event++) {
-    const { id, start, end: stop, row } = events[event]!;
+    const { id, start, end: stop, row, rate } = events[event]!;
+    let one: EventRow | null = null;
     try {
       const text = trackText(heading, bytes.subarray(start - from, stop - from).toString('utf8'));
-      const { footprint, gust } = footprintOf(text, id, { recipe, workspace, leastMps: plan.leastMps });
+      const { model, footprint, gust } = footprintOf(text, id, { recipe, workspace, leastMps: plan.leastMps });
       parts.push({ event, ...footprint, gust });
+      one = rowOf?.(model, footprint) ?? null;
     } catch (error) {
       if (!(error instanceof GalewakeError)) throw error;
       if (plan.badEvents === 'stop')
         throw new InputError('events.event', `event '${id}' (from row ${row}): ${error.message}`, { cause: error });
       setAside.push({ event: id, row, why: error.message });
     }
+    if (table) lines.push(eventLine({ id, number: event, rate }, one, table));
   }
   const rows = ordered(parts);
   const data = new Uint8Array(
@@ -70,8 +87,30 @@ export async function runShard(run: EventRun, shard: number): Promise<{ manifest
     }),
   );
   const seconds = Number(((performance.now() - startedAt) / 1000).toFixed(3));
-  const manifest = await run.commit({ shard, first, end, rows: rows.cells.length, setAside, seconds }, data);
+  const manifest = await run.commit(
+    { shard, first, end, rows: rows.cells.length, setAside, seconds },
+    data,
+    table ? lines.join('') : undefined,
+  );
   return { manifest, done: true };
+}
+
+function cellAreaOf(grid: Grid): (cell: number) => number {
+  const { per, areasM2 } = cellAreasM2(grid);
+  return (cell) => areasM2[per === 'row' ? Math.trunc(cell / grid.nx) : cell]!;
+}
+
+/** The land of the plan's landfalls. */
+async function landOf(table: NonNullable<EventRun['plan']['table']>): Promise<Land> {
+  const { readLand, worldLand } = await import('./land-file.js');
+  if (table.landSha256 === undefined) return worldLand('10m');
+  const { land, record } = await readLand(table.land!);
+  if (record.sha256 !== table.landSha256)
+    throw new InputError(
+      'events.land',
+      `${record.name}: the land has changed since the plan was made; make a new plan with galewake events plan`,
+    );
+  return land;
 }
 
 function footprintOf(
@@ -86,7 +125,7 @@ function footprintOf(
   const tracks = readTracksFromText(text, { source: `event ${id}` });
   // invented and synthetic tracks know no land
   const model = windModel({ ...tracks[0]!, kind: 'drawn' }, recipe, { lowestLevelMps: leastMps });
-  return { footprint: workspace.footprint(model, { leastMps }), gust: gustFactorOf(model, 'at-sea') };
+  return { model, footprint: workspace.footprint(model, { leastMps }), gust: gustFactorOf(model, 'at-sea') };
 }
 
 /** All rows by cell, then event. */

@@ -46,7 +46,11 @@ describe('galewake events', () => {
       const cases: [string[], number, RegExp][] = [
         [['plan', 'set.csv', '--out', 'run'], 2, /--bounds W,S,E,N/],
         [['plan', 'no.csv', '--out', 'run', ...grid], 3, /no\.csv: there is no such file/],
-        [['plan', 'set.csv', '--out', 'run', ...grid, '--years', '10'], 2, /rates of its own/],
+        [
+          ['plan', 'set.csv', '--out', 'run', ...grid, '--years', '10'],
+          2,
+          /the set's column rate and --years: an event has one rate/,
+        ],
         [['plan', 'set.csv', '--out', 'run', ...grid, '--set', 'surface.motion=georgiou-1985'], 2, /fast tables/],
         [['shard', 'run', '0'], 65, /there is no plan\.json/],
         [['plan', 'set.csv', '--out', 'run', ...grid], 0, /^$/],

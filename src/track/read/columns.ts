@@ -75,11 +75,12 @@ export function radiusKeyOf(key: string): RadiusKey | null {
   };
 }
 
-const SIMPLE_KEYS: readonly string[] = [
+/** Headings that a track table may have, besides those of wind radii. */
+export const TRACK_KEYS: readonly string[] = [
   ...PLAIN_KEYS,
   ...Object.values(QUANTITY_KEYS).flatMap((keys) => keys.map(({ key }) => key)),
 ];
-const KNOWN: ReadonlySet<string> = new Set(SIMPLE_KEYS);
+const KNOWN: ReadonlySet<string> = new Set(TRACK_KEYS);
 const EXAMPLE_RADII = [34, 50, 64].flatMap((kt) =>
   QUADRANT_KEYS.flatMap((q) => ['nmi', 'km'].map((unit) => `r${kt}_${q}_${unit}`)),
 );
@@ -102,10 +103,10 @@ export function columnsOf(
 
   for (const [key, heading] of Object.entries(options.columns ?? {})) {
     if (!isTrackKey(key)) {
-      const guess = didYouMean(key, [...SIMPLE_KEYS, ...EXAMPLE_RADII]);
+      const guess = didYouMean(key, [...TRACK_KEYS, ...EXAMPLE_RADII]);
       throw new UsageError(
         'track.columns',
-        `columns: '${shown(key)}' is no key of a track table${guess}; keys are ${SIMPLE_KEYS.join(', ')}, r34_ne_nmi …`,
+        `columns: '${shown(key)}' is no key of a track table${guess}; keys are ${TRACK_KEYS.join(', ')}, r34_ne_nmi …`,
         {
           fields: { key },
         },
@@ -127,7 +128,7 @@ export function columnsOf(
   lower.forEach((heading, index) => {
     if (mapped.has(index) || heading === '') return;
     if (!isTrackKey(heading)) {
-      const guess = nearest(heading, SIMPLE_KEYS);
+      const guess = nearest(heading, TRACK_KEYS);
       // heading 'lon' is far from nothing else, but a mistyped optional heading would pass unseen
       if (guess) {
         const odd = `the heading '${shown(heading)}' is none of the documented ones and is not read; was ${guess} meant?`;

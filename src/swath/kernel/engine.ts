@@ -16,8 +16,8 @@ export interface Engine {
   readonly trace: (count: number) => void;
   /** the same for winds (1) or gusts (2) over the points' own surfaces */
   readonly traceLocal: (count: number, kind: 1 | 2) => void;
-  /** numbers in single precision at a share of the way from those at `a` to those at `b`, whole groups of four */
-  readonly mix: (to: number, a: number, b: number, share: number, count: number) => void;
+  /** numbers in single precision on the parabola through those at `a` (share 0), `m` (½) and `b` (1), whole groups of four */
+  readonly mix: (to: number, a: number, m: number, b: number, share: number, count: number) => void;
   /** winds of the first `count` points at the moments in their column */
   readonly winds: (count: number) => void;
 }

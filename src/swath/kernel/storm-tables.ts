@@ -15,10 +15,10 @@ import { FRAME, type Leg, type Timeline } from './timeline.js';
 
 /** From one table to the next the wind changes by at most this, m/s: between them the nearer one serves, with R and V of the moment. */
 const SLOT_MPS = 0.015;
-/** A table is interpolated between two neighbours that explain the one in their middle within this, m/s. */
-const TOLERANCE_MPS = [0.02, 0.06] as const;
-/** Tables that differ by more than this, m/s, are not believed to explain the one in their middle. */
-const HIDDEN_MPS = 1;
+/** Tables are parabolas in time through three that are built, where these tell the ones between within this, m/s; where many harmonics make tables dear. */
+const TOLERANCE_MPS = [0.008, 0.03] as const;
+/** What is checked at a quarter and at three: each so many rows. */
+const CHECK_ROWS = 5;
 /** Winds below this need not be explained, m/s: nothing is promised of them. */
 const LEAST_MPS = 7.5;
 /** Truncation of the harmonics that is left out, m/s. */
@@ -36,11 +36,11 @@ const MOST_FLOATS = 80_000_000;
 /** Harmonics of the direction at most: 2° are promised of it. */
 const MOST_WIND_HARMONICS = 5;
 
-/** The tables of a storm as they are built, before any is interpolated: plain data. */
+/** The tables of a storm as they are built, before any is interpolated, leg by leg: plain data. */
 export interface StormTables {
   readonly layout: Layout;
   readonly complete: boolean;
-  readonly legTables: readonly (readonly Built[])[];
+  readonly legTables: readonly (readonly Piece[])[];
 }
 
 /**
@@ -56,82 +56,79 @@ export function stormTables(
   const build = (timeMs: number): MomentTable => tableOf(model.fieldAt(timeMs), layout, sampling);
   // where the model is continuous a fix serves the legs on both sides
   const continuous = model.recipe['path.interpolation'] !== 'linear';
-  const legTables: (readonly Built[])[] = [];
+  const legTables: (readonly Piece[])[] = [];
   let last: MomentTable | null = null;
   for (const leg of timeline.legs) {
-    const list = tablesOfLeg(leg, continuous ? last : null);
-    legTables.push(list);
-    last = list[list.length - 1]!.table;
+    const pieces = piecesOf(leg, continuous ? last : null);
+    legTables.push(pieces);
+    last = pieces[pieces.length - 1]!.b;
   }
 
   return { layout, complete, legTables };
 
-  /** Tables of a leg, more of them where two do not explain the one in their middle. */
-  function tablesOfLeg(leg: Leg, start: MomentTable | null): readonly Built[] {
-    const list: Built[] = [{ at: 0, table: start ?? build(leg.startMs) }];
-    if (leg.endMs === leg.startMs) return list;
-    const split = (from: number, a: MomentTable, to: number, b: MomentTable, depth: number): void => {
-      const at = 0.5 * (from + to);
-      const middle = build(leg.startMs + at * (leg.endMs - leg.startMs));
-      const maxWindMps = timeline.frames[(leg.first + Math.round(at * (1 << leg.depth))) * FRAME + 9]!;
-      // what bends one way first and then the other may pass through the mean in the middle
-      const hidden = depth < 3 && farthestApart(a, b, layout, maxWindMps) > HIDDEN_MPS;
-      const fine =
-        depth >= Math.min(MOST_SPLITS[layout.harmonics > 2 ? 1 : 0], leg.depth) ||
-        (!hidden && explains(a, b, middle, layout, maxWindMps));
-      if (!fine) split(from, a, at, middle, depth + 1);
-      list.push({ at, table: middle });
-      if (!fine) split(at, middle, to, b, depth + 1);
+  /** Tables of a leg, more of them where three do not tell those between. */
+  function piecesOf(leg: Leg, start: MomentTable | null): readonly Piece[] {
+    const first = start ?? build(leg.startMs);
+    if (leg.endMs === leg.startMs) return [{ from: 0, to: 1, a: first, m: first, b: first }];
+    const timeOf = (at: number): number => leg.startMs + at * (leg.endMs - leg.startMs);
+    const most = Math.min(MOST_SPLITS[layout.harmonics > 2 ? 1 : 0], leg.depth - 1);
+    const pieces: Piece[] = [];
+    const split = (piece: Piece, depth: number): void => {
+      const { from, to, a, m, b } = piece;
+      const quarter = 0.25 * (to - from);
+      const tells = (share: number): boolean => {
+        const at = from + share * (to - from);
+        const maxWindMps = timeline.frames[(leg.first + Math.round(at * (1 << leg.depth))) * FRAME + 9]!;
+        const check = tableOf(model.fieldAt(timeOf(at)), layout, sampling, CHECK_ROWS);
+        return isTold(piece, share, check, layout, maxWindMps);
+      };
+      if (depth >= most || (tells(0.25) && tells(0.75))) {
+        pieces.push(piece);
+        return;
+      }
+      const middle = from + 2 * quarter;
+      split({ from, to: middle, a, m: build(timeOf(from + quarter)), b: m }, depth + 1);
+      split({ from: middle, to, a: m, m: build(timeOf(to - quarter)), b }, depth + 1);
     };
-    const last = build(continuous ? leg.endMs : leg.endMs - 1);
-    split(0, list[0]!.table, 1, last, 1);
-    list.push({ at: 1, table: last });
-    return list;
+    const end = build(continuous ? leg.endMs : leg.endMs - 1);
+    split({ from: 0, to: 1, a: first, m: build(timeOf(0.5)), b: end }, 0);
+    return pieces;
   }
 }
 
-/** Which tables serve the moments of a storm: so many between two built ones that the wind changes little to the next. */
+/** Which tables serve the moments of a storm: so many of each piece that the wind changes little to the next. */
 export function servingTables({ layout, legTables }: StormTables, { legs, count, frames }: Timeline): Serving {
-  const wanted = (leg: Leg, a: Built, b: Built): number => {
+  const wanted = (leg: Leg, { from, to, a, m, b }: Piece): number => {
     const fine = 1 << leg.depth;
-    const middle = Math.min(count - 1, leg.first + Math.round(0.5 * (a.at + b.at) * fine));
-    const apartMps = farthestApart(a.table, b.table, layout, frames[middle * FRAME + 9]!);
-    return Math.min(Math.ceil(apartMps / SLOT_MPS) || 1, Math.max(1, Math.round((b.at - a.at) * fine)));
+    const middle = Math.min(count - 1, leg.first + Math.round(0.5 * (from + to) * fine));
+    const maxWindMps = frames[middle * FRAME + 9]!;
+    const apartMps = farthestApart(a, m, layout, maxWindMps) + farthestApart(m, b, layout, maxWindMps);
+    return Math.min(Math.ceil(apartMps / SLOT_MPS) || 1, Math.max(1, Math.round((to - from) * fine)));
   };
-  const partsOf = legs.map((leg, number) => {
-    const list = legTables[number]!;
-    return list.slice(1).map((b, i) => wanted(leg, list[i]!, b));
-  });
+  const partsOf = legs.map((leg, number) => legTables[number]!.map((piece) => wanted(leg, piece)));
   const asked = partsOf.flat().reduce((sum, parts) => sum + parts + 1, 1) * layout.rows * layout.speedStride;
   const thin = Math.max(1, asked / MOST_FLOATS);
   const slots = new Int32Array(count);
   const made: Mixture[] = [];
   for (const [number, leg] of legs.entries()) {
-    const list = legTables[number]!;
     const fine = 1 << leg.depth;
     let serving = 0;
-    for (let i = 0; i + 1 < list.length; i++) {
-      const [a, b] = [list[i]!, list[i + 1]!];
+    for (const [i, piece] of legTables[number]!.entries()) {
       const parts = Math.max(1, Math.round(partsOf[number]![i]! / thin));
       const first = made.length;
-      for (let part = 0; part <= parts; part++) made.push({ a: a.table, b: b.table, share: part / parts });
-      for (; serving <= b.at * fine && leg.first + serving < count; serving++) {
-        const t = (serving / fine - a.at) / (b.at - a.at);
+      for (let part = 0; part <= parts; part++) made.push({ piece, share: part / parts });
+      for (; serving <= piece.to * fine && leg.first + serving < count; serving++) {
+        const t = (serving / fine - piece.from) / (piece.to - piece.from);
         slots[leg.first + serving] = first + Math.round(t * parts);
       }
-    }
-    if (list.length === 1) {
-      slots.fill(made.length, leg.first, leg.first + 1);
-      made.push({ a: list[0]!.table, b: list[0]!.table, share: 0 });
     }
   }
   return { slots, tables: made };
 }
 
-/** A table between two built ones. */
+/** A table on the parabola through three built ones. */
 export interface Mixture {
-  readonly a: MomentTable;
-  readonly b: MomentTable;
+  readonly piece: Piece;
   readonly share: number;
 }
 
@@ -139,6 +136,11 @@ export interface Mixture {
 export interface Serving {
   readonly slots: Int32Array;
   readonly tables: readonly Mixture[];
+}
+
+/** The built tables of pieces, each once. */
+export function builtTables(pieces: readonly Piece[]): Set<MomentTable> {
+  return new Set(pieces.flatMap(({ a, m, b }) => [a, m, b]));
 }
 
 /** How many rows and harmonics the fields of this storm need. */
@@ -228,10 +230,31 @@ function harmonicsNeeded(values: readonly number[], bound: number, probe: Sampli
   return 1;
 }
 
-/** Whether the mean of two tables gives the one in their middle. */
-function explains(a: MomentTable, b: MomentTable, middle: MomentTable, layout: Layout, maxWindMps: number): boolean {
-  const mean = a.speed.map((value, k) => 0.5 * (value + b.speed[k]!));
-  return farthestApart({ speed: mean }, middle, layout, maxWindMps) <= TOLERANCE_MPS[layout.harmonics > 2 ? 1 : 0];
+/** Whether the parabola through a piece's tables tells one between them, of which some rows are known. */
+function isTold(
+  { a, m, b }: Piece,
+  share: number,
+  check: MomentTable,
+  { rows, speedStride, harmonics }: Layout,
+  maxWindMps: number,
+): boolean {
+  const ratio = rowRatios(rows);
+  const least = (LEAST_MPS / maxWindMps) ** 2;
+  const tolerance = (2 * TOLERANCE_MPS[harmonics > 2 ? 1 : 0]) / maxWindMps;
+  const [wa, wm, wb] = [(1 - share) * (1 - 2 * share), 4 * share * (1 - share), share * (2 * share - 1)];
+  for (let row = CHECK_ROWS; row < rows; row += CHECK_ROWS) {
+    const at = row * speedStride;
+    const squared = Math.max(check.speed[at]!, m.speed[at]!);
+    if (check.speed[at] === 0 || squared < least) continue;
+    let off = 0;
+    for (let c = speedStride - 1; c >= 0; c--) {
+      const told = wa * a.speed[at + c]! + wm * m.speed[at + c]! + wb * b.speed[at + c]!;
+      const own = Math.abs(told - check.speed[at + c]!);
+      off += c === 0 ? own : ratio[row]! * own;
+    }
+    if (off > tolerance * Math.sqrt(squared)) return false;
+  }
+  return true;
 }
 
 /** The most by which the speeds of two tables differ anywhere, m/s; calms count for nothing. */
@@ -256,8 +279,12 @@ function farthestApart(
   return most * maxWindMps;
 }
 
-/** A table at a share of its leg. */
-export interface Built {
-  readonly at: number;
-  readonly table: MomentTable;
+/** Tables at the start, in the middle and at the end of a part of a leg; between them goes a parabola. */
+export interface Piece {
+  /** shares of the leg */
+  readonly from: number;
+  readonly to: number;
+  readonly a: MomentTable;
+  readonly m: MomentTable;
+  readonly b: MomentTable;
 }

@@ -99,29 +99,38 @@ export function samplingOf(count: number): Sampling {
   return { count, directions, waves };
 }
 
-/** The table of a field; without parts of the wind where the layout has none. */
-export function tableOf(field: WindField, layout: Layout, { count, directions, waves }: Sampling): MomentTable {
+/**
+ * The table of a field; without parts of the wind where the layout has none.
+ * @param every only each so many rows are filled, and no parts of the wind
+ */
+export function tableOf(
+  field: WindField,
+  layout: Layout,
+  { count, directions, waves }: Sampling,
+  every = 1,
+): MomentTable {
   const { rows, speedStride, windStride, harmonics, windHarmonics } = layout;
   const { radiusOfMaxWindM, maxWindMps } = field.state;
   const speed = new Float32Array(rows * speedStride);
-  const wind = new Float32Array(rows * windStride);
+  const wind = new Float32Array(every === 1 ? rows * windStride : 0);
   const winds = new Float64Array(2 * count);
   const perWind = 1 / maxWindMps;
   const ratio = rowRatios(rows);
   const part = 1 + 2 * windHarmonics;
-  for (let row = 0; row < rows; row++) {
+  for (let row = 0; row < rows; row += every) {
     const s = ratio[row]!;
     const radiusM = EARTH_RADIUS_M * Math.asin(Math.min(1, (s * radiusOfMaxWindM) / EARTH_RADIUS_M));
     const fade = taper(radiusM, field.outerRadiusM);
     if (fade < LEAST_FADE) {
       // the taper is the kernel's; beyond what can be told of the wind under it, it goes on
+      if (every > 1) break;
       speed.copyWithin(row * speedStride, (row - 1) * speedStride, row * speedStride);
       wind.copyWithin(row * windStride, (row - 1) * windStride, row * windStride);
       continue;
     }
     field.onCircle(winds, radiusM, directions);
     if (fade < 1) for (let i = 0; i < 2 * count; i++) winds[i] = winds[i]! / fade;
-    if (windStride > 0) {
+    if (windStride > 0 && every === 1) {
       fourier(winds, waves, windHarmonics, perWind, s, wind, row * windStride, 0);
       fourier(winds, waves, windHarmonics, perWind, s, wind, row * windStride + part, 1);
     }

@@ -2,7 +2,7 @@ import { EARTH_RADIUS_M, RADIANS } from '../../earth.js';
 import { TAPER_SHARE } from '../../model/field.js';
 import type { Engine } from './engine.js';
 import * as at from './places.js';
-import { type StormTables, servingTables } from './storm-tables.js';
+import { builtTables, type Piece, type StormTables, servingTables } from './storm-tables.js';
 import { type MomentTable, rowRatios, rowsBelow } from './table.js';
 import { FRAME, type Leg, momentOf, type Timeline, timeMsOf } from './timeline.js';
 
@@ -13,6 +13,8 @@ const LONGEST_S = 2000;
 /** Winds in a taper that are stepped through with care, m/s. */
 const CALM_MPS = 6.5;
 const LEG_NUMBERS = 8;
+/** So many tables of the wind's parts serve a leg, and a straight line between each two. */
+const WIND_STEPS = 8;
 /** Numbers of a row of a surface; eight sectors each of wind and gust, and their highest. */
 const SURFACE_NUMBERS = 18;
 
@@ -74,12 +76,14 @@ export function tracerOf(
   const serving = servingTables(tables, timeline);
   const speedBytes = 4 * layout.rows * layout.speedStride;
   const windBytes = 4 * layout.rows * layout.windStride;
-  const built = new Map(tables.legTables.flat().map(({ table }) => [table, 0]));
+  const pieces = tables.legTables.flat();
+  const built = builtTables(pieces);
+  const windSteps = pieces.map(({ from, to }) => Math.max(2, Math.round(WIND_STEPS * (to - from))));
   const rounded = (bytes: number): number => (bytes + 63) & ~63;
   engine.release();
   engine.reserve(
     (serving.tables.length + built.size) * rounded(speedBytes) +
-      built.size * rounded(windBytes) +
+      (built.size + windSteps.reduce((sum, steps) => sum + steps, 0)) * rounded(windBytes) +
       count * (64 + 24 + 8) +
       legs.length * (64 + 8) +
       SURFACE_NUMBERS * (options.surface?.windRatio.length ?? 0) +
@@ -87,29 +91,37 @@ export function tracerOf(
   );
   const { f64, f32, i32 } = engine;
 
-  for (const table of built.keys()) {
-    const address = engine.allocate(windBytes);
-    f32.set(table.wind, address >> 2);
-    built.set(table, address);
-  }
-  // those that were built stand where the first that serves them is wanted
-  const placed = new Map<MomentTable, number>();
-  const placeOf = (table: MomentTable): number => {
-    const known = placed.get(table);
-    if (known !== undefined) return known;
-    const address = engine.allocate(speedBytes);
-    f32.set(table.speed, address >> 2);
-    placed.set(table, address);
-    return address;
+  // those that were built stand where the first that they serve is wanted
+  const placing = (part: 'speed' | 'wind', bytes: number): ((piece: Piece, share: number) => number) => {
+    const placed = new Map<MomentTable, number>();
+    const placeOf = (table: MomentTable): number => {
+      const known = placed.get(table);
+      if (known !== undefined) return known;
+      const address = engine.allocate(bytes);
+      f32.set(table[part], address >> 2);
+      placed.set(table, address);
+      return address;
+    };
+    return ({ a, m, b }, share) => {
+      if (share === 0) return placeOf(a);
+      if (share === 0.5) return placeOf(m);
+      if (share === 1) return placeOf(b);
+      const three = [placeOf(a), placeOf(m), placeOf(b)] as const;
+      const address = engine.allocate(bytes);
+      engine.mix(address, ...three, share, bytes / 4);
+      return address;
+    };
   };
-  const speedAt = serving.tables.map(({ a, b, share }) => {
-    if (share === 0) return placeOf(a);
-    if (share === 1) return placeOf(b);
-    const [from, to] = [placeOf(a), placeOf(b)];
-    const address = engine.allocate(speedBytes);
-    engine.mix(address, from, to, share, layout.rows * layout.speedStride);
-    return address;
-  });
+  const placeSpeed = placing('speed', speedBytes);
+  const speedAt = serving.tables.map(({ piece, share }) => placeSpeed(piece, share));
+  // parts of the wind, between which a straight line goes
+  const placeWind = placing('wind', windBytes);
+  const windsAt = new Map(
+    pieces.map((piece, i) => {
+      const steps = layout.windStride === 0 ? 0 : windSteps[i]!;
+      return [piece, Array.from({ length: steps + 1 }, (_, k) => (steps === 0 ? 0 : placeWind(piece, k / steps)))];
+    }),
+  );
   const framesAt = engine.allocate(64 * count);
   const windTablesAt = engine.allocate(24 * count);
   const hoursAt = engine.allocate(8 * count);
@@ -123,8 +135,14 @@ export function tracerOf(
     f64[to + 6] = frames[from + 8]!;
     const slot = serving.slots[m]!;
     f64[to + 7] = speedAt[slot]!;
-    const { a, b, share } = serving.tables[slot]!;
-    f64.set([built.get(a)!, built.get(b)!, share], (windTablesAt >> 3) + 3 * m);
+    const { piece, share } = serving.tables[slot]!;
+    const addresses = windsAt.get(piece)!;
+    const at = share * (addresses.length - 1);
+    const k = Math.max(0, Math.min(addresses.length - 2, Math.floor(at)));
+    const winds = (windTablesAt >> 3) + 3 * m;
+    f64[winds] = addresses[k]!;
+    f64[winds + 1] = addresses[k + 1] ?? 0;
+    f64[winds + 2] = at - k;
   }
   const surfaceAt = placeSurface();
   const legsAt = engine.allocate(8 * LEG_NUMBERS * legs.length);
@@ -301,7 +319,7 @@ function reachOf(
   };
   const envelopes = legs.map((_, number) => {
     let most: Float64Array | null = null;
-    for (const { table } of legTables[number]!) {
+    for (const table of builtTables(legTables[number]!)) {
       const bounds = boundsOf(table);
       most = most === null ? bounds : most.map((value, row) => Math.max(value, bounds[row]!));
     }
@@ -336,7 +354,7 @@ function carefulFromM({ legs, frames }: Timeline, { layout, legTables }: StormTa
   for (const [number, { first }] of legs.entries()) {
     const [radiusM, maxWindMps] = [frames[first * FRAME + 8]!, frames[first * FRAME + 9]!];
     const row = Math.min(layout.rows - 1, rowsBelow(((1 - TAPER_SHARE) * outerRadiusM) / radiusM));
-    for (const { table } of legTables[number]!)
+    for (const table of builtTables(legTables[number]!))
       if (Math.sqrt(table.speed[row * layout.speedStride]!) * maxWindMps > CALM_MPS)
         return (1 - 1.3 * TAPER_SHARE) * outerRadiusM;
   }

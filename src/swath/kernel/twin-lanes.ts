@@ -190,10 +190,12 @@ export function sides(winds: number, thresholds: number): number {
   return bits;
 }
 
-export function mix(to: number, a: number, b: number, share: number, count: number): void {
-  const t = fround(share);
+export function mix(to: number, a: number, m: number, b: number, share: number, count: number): void {
+  const wa = fround((1 - share) * (1 - 2 * share));
+  const wm = fround(4 * share * (1 - share));
+  const wb = fround(share * (2 * share - 1));
   for (let k = 0; k < 4 * count; k += 4) {
-    const p = f32At(a + k);
-    setF32(to + k, fround(p + fround(t * fround(f32At(b + k) - p))));
+    const ends = fround(fround(wa * f32At(a + k)) + fround(wb * f32At(b + k)));
+    setF32(to + k, fround(ends + fround(wm * f32At(m + k))));
   }
 }

@@ -33,9 +33,9 @@ export function twinEngine(): Engine {
       bind(views);
       traceLocal(count, kind);
     },
-    mix(to, a, b, share, count) {
+    mix(to, a, m, b, share, count) {
       bind(views);
-      mix(to, a, b, share, count);
+      mix(to, a, m, b, share, count);
     },
     winds(count) {
       bind(views);

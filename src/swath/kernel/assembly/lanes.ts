@@ -215,11 +215,13 @@ export function sides(winds: i32, thresholds: i32): i32 {
   return bits;
 }
 
-/** Numbers at a share of the way from `a` to `b`, whole groups of four. */
-export function mix(to: i32, a: i32, b: i32, share: f64, count: i32): void {
-  const t = f32x4.splat(<f32>share);
+/** Numbers on the parabola through those at `a` (share 0), `m` (½) and `b` (1), whole groups of four. */
+export function mix(to: i32, a: i32, m: i32, b: i32, share: f64, count: i32): void {
+  const wa = f32x4.splat(<f32>((1 - share) * (1 - 2 * share)));
+  const wm = f32x4.splat(<f32>(4 * share * (1 - share)));
+  const wb = f32x4.splat(<f32>(share * (2 * share - 1)));
   for (let k: usize = 0; k < <usize>(count << 2); k += 16) {
-    const p = v128.load(<usize>a + k);
-    v128.store(<usize>to + k, f32x4.add(p, f32x4.mul(t, f32x4.sub(v128.load(<usize>b + k), p))));
+    const ends = f32x4.add(f32x4.mul(wa, v128.load(<usize>a + k)), f32x4.mul(wb, v128.load(<usize>b + k)));
+    v128.store(<usize>to + k, f32x4.add(ends, f32x4.mul(wm, v128.load(<usize>m + k))));
   }
 }

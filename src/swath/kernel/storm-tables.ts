@@ -16,9 +16,9 @@ import { FRAME, type Leg, type Timeline } from './timeline.js';
 /** From one table to the next the wind changes by at most this, m/s: between them the nearer one serves, with R and V of the moment. */
 const SLOT_MPS = 0.015;
 /** Tables are parabolas in time through three that are built, where these tell the ones between within this, m/s; where many harmonics make tables dear. */
-const TOLERANCE_MPS = [0.008, 0.03] as const;
+const TOLERANCE_MPS = [0.016, 0.04] as const;
 /** What is checked at a quarter and at three: each so many rows. */
-const CHECK_ROWS = 5;
+const CHECK_ROWS = 8;
 /** Winds below this need not be explained, m/s: nothing is promised of them. */
 const LEAST_MPS = 7.5;
 /** Truncation of the harmonics that is left out, m/s. */
@@ -29,6 +29,8 @@ const PROBES = 64;
 /** Where a lowest wind is given, tables reach to this share of it, and farther by this factor: they are probed at some moments only. */
 const WEAK_SHARE = 0.5;
 const WEAK_MARGIN = 1.3;
+/** where any still has this share of the lowest wind at its end, all are made again to the storm's outer radius. */
+const ENDS_SHARE = 0.85;
 /** Splits of a leg at most, and where many harmonics make tables dear: the tables between are interpolated. */
 const MOST_SPLITS = [6, 5] as const;
 /** Floats that all tables of a storm may take; beyond it fewer tables serve for longer. */
@@ -52,7 +54,35 @@ export function stormTables(
   timeline: Timeline,
   options: { readonly leastMps?: number } = {},
 ): StormTables {
-  const { layout, sampling, complete } = planTables(model, timeline, options.leastMps ?? null);
+  const { leastMps = null } = options;
+  const short = tablesWith(model, timeline, planTables(model, timeline, leastMps));
+  if (leastMps === null || endsBelow(short, timeline, ENDS_SHARE * leastMps)) return short;
+  // a moment that was not probed reaches farther
+  return tablesWith(model, timeline, planTables(model, timeline, null));
+}
+
+/** Whether every table has a lower wind than a given one in its last row. */
+function endsBelow({ layout, legTables }: StormTables, { legs, frames, count }: Timeline, windMps: number): boolean {
+  const { rows, speedStride } = layout;
+  const at = (rows - 1) * speedStride;
+  const ratio = rowRatios(rows)[rows - 1]!;
+  return legs.every((leg, number) => {
+    let maxWindMps = 0;
+    for (let m = leg.first; m <= leg.first + (1 << leg.depth) && m < count; m++)
+      maxWindMps = Math.max(maxWindMps, frames[m * FRAME + 9]!);
+    return [...builtTables(legTables[number]!)].every(({ speed }) => {
+      let waves = 0;
+      for (let c = 1; c < speedStride; c++) waves += Math.abs(speed[at + c]!);
+      return maxWindMps * Math.sqrt(Math.max(0, speed[at]! + ratio * waves)) < windMps;
+    });
+  });
+}
+
+function tablesWith(
+  model: WindModel,
+  timeline: Timeline,
+  { layout, sampling, complete }: ReturnType<typeof planTables>,
+): StormTables {
   const build = (timeMs: number): MomentTable => tableOf(model.fieldAt(timeMs), layout, sampling);
   // where the model is continuous a fix serves the legs on both sides
   const continuous = model.recipe['path.interpolation'] !== 'linear';
@@ -181,6 +211,7 @@ function planTables(
         const needed = harmonicsNeeded(squared, 2 * Math.max(mean, 8) * TRUNCATION_MPS, probe);
         complete &&= needed <= MOST_HARMONICS;
         harmonics = Math.max(harmonics, Math.min(MOST_HARMONICS, needed));
+        if (leastMps !== null) continue;
         for (const part of [0, 1]) {
           const component = Array.from({ length: PROBES }, (_, i) => winds[2 * i + part]!);
           // a degree of the local wind

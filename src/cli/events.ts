@@ -4,7 +4,7 @@ import { availableParallelism, tmpdir } from 'node:os';
 import { basename, join, resolve } from 'node:path';
 import { fileURLToPath } from 'node:url';
 import { GalewakeError, InputError, LimitError, UsageError } from '../errors.js';
-import { trackText, usualShards, withRates } from '../events/event-index.js';
+import { hasRadii, trackText, usualShards, withRates } from '../events/event-index.js';
 import type { NamedPlace } from '../events/event-row.js';
 import { OPEN_SEA } from '../events/open-sea.js';
 import { taskIndex } from '../events/task-index.js';
@@ -12,7 +12,7 @@ import { eventTableOf, readRates } from '../io/event-input.js';
 import { EventRun, hashOf, indexEvents, type Manifest, readRange } from '../io/event-run.js';
 import { readInputBytes } from '../io/input.js';
 import { readPoints } from '../io/points.js';
-import { recipeDocument } from '../model/recipe.js';
+import { makeRecipe, recipeDocument } from '../model/recipe.js';
 import { nearest } from '../nearest.js';
 import { gridOver } from '../swath/grid.js';
 import { knots, quantityOf } from '../units.js';
@@ -222,6 +222,10 @@ export async function reduce(folder: string, options: CommonOptions): Promise<vo
   const { joinEventTables } = await import('../io/event-table.js');
   const files = [...maps, ...(await joinEventTables(run, manifests))];
   const setAside = manifests.flatMap((manifest) => manifest.setAside);
+  if (hasRadii(run.heading) && makeRecipe(run.plan.recipe)['vortex.radii'] === 'fit')
+    cautions.push(
+      'observed wind radii shape the fields of this set: the fast tables hold them in part, some cells may be off by up to 0.8 m/s; vortex.radii=ignore leaves the radii out',
+    );
   // one event more or less decides what is rarer than the rarest of them
   const longest = 1 / run.events.reduce((least, { rate }) => Math.min(least, rate), Number.POSITIVE_INFINITY);
   const beyond = RETURN_YEARS.filter((years) => years > longest);

@@ -1,6 +1,6 @@
 import { InputError, UsageError } from '../errors.js';
 import { didYouMean } from '../nearest.js';
-import { isTrackKey, TRACK_KEYS } from '../track/read/columns.js';
+import { isTrackKey, radiusKeyOf, TRACK_KEYS } from '../track/read/columns.js';
 
 /** Where the rows of an event stand in a file. */
 export interface EventRange {
@@ -74,6 +74,11 @@ export function eventHeading(
     rateAt: columns.indexOf('rate'),
     stormAt: columns.indexOf('storm'),
   };
+}
+
+/** Whether a table has columns of observed wind radii. */
+export function hasRadii({ text }: EventHeading): boolean {
+  return text.split(',').some((name) => radiusKeyOf(name.trim().toLowerCase()) !== null);
 }
 
 /** Gathers the index of a table row by row: rows of an event follow each other. */

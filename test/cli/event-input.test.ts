@@ -95,11 +95,14 @@ describe('the input of an event set', () => {
             '50',
             '--landfalls',
             'natural-earth',
+            '--json',
             '--out',
             out,
             ...GRID,
           ]);
-        expect((await run('a')).code).toBe(0);
+        const first = await run('a');
+        expect(first.code).toBe(0);
+        expect(first.stdout).toMatch(/observed wind radii shape the fields of this set/);
         const bytes = readFileSync(join(folder, 'a', 'events.parquet'));
         const file = bytes.buffer.slice(bytes.byteOffset, bytes.byteOffset + bytes.byteLength) as ArrayBuffer;
         const events = (await parquetReadObjects({ file })) as Record<string, unknown>[];

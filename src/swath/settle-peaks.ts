@@ -1,4 +1,5 @@
 import { type SurfaceMap, sectorValue } from '../land/surface-map.js';
+import type { WindField } from '../model/field.js';
 import { type WindModel, windOf } from '../model/wind.js';
 import { cellCentre, type Grid, projection } from './grid.js';
 import type { SwathFields } from './kernel/fields.js';
@@ -13,6 +14,8 @@ const BESIDE_MIN = [-6, -3, -2, -1, 1, 2, 3, 6] as const;
 const NEIGHBOUR_MIN = [0, -3, 3] as const;
 const OTHER_S = 480;
 const NEIGHBOUR_ROUNDS = 2;
+/** Fields that are kept for the next question: they are dear to make. */
+const MOST_FIELDS = 15_000;
 const MINUTE_MS = 60_000;
 /** Peaks below this are left as they are, m/s: nothing is promised of them. */
 const CALM_MPS = 7;
@@ -34,6 +37,7 @@ export function settlePeaks(
   const first = Math.ceil((period.fromMs - originMs) / MINUTE_MS);
   const last = Math.floor((period.toMs - originMs) / MINUTE_MS);
   const { inverse } = projection(grid.crs);
+  const fieldsKept = new Map<number, WindField>();
   const asked = windMps.map((wind, k) => (Math.max(wind, gustMps ? gustMps[k]! / gustAtSea : 0) > CALM_MPS ? 1 : 0));
   const best = new Float32Array(windMps.length);
   const bestGust = gustMps ? new Float32Array(windMps.length) : null;
@@ -55,6 +59,14 @@ export function settlePeaks(
     if (!(best[k]! > 0)) continue;
     windMps[k] = best[k]!;
     if (gustMps) gustMps[k] = bestGust![k]!;
+  }
+
+  function fieldAt(minute: number): WindField {
+    const known = fieldsKept.get(minute);
+    if (known) return known;
+    const field = model.fieldAt(originMs + minute * MINUTE_MS);
+    if (fieldsKept.size < MOST_FIELDS) fieldsKept.set(minute, field);
+    return field;
   }
 
   /** Asks at the times of the cells beside each that are others than its own, and around what that finds. */
@@ -95,7 +107,7 @@ export function settlePeaks(
       }
     }
     for (const [minute, cells] of byMinute) {
-      const field = model.fieldAt(originMs + minute * MINUTE_MS);
+      const field = fieldAt(minute);
       for (const k of cells) {
         const [lonDeg, latDeg] = inverse(...cellCentre(grid, k % grid.nx, Math.floor(k / grid.nx)));
         const { speedMps, eastMps, northMps, fromDeg } = windOf(field, { latDeg, lonDeg });

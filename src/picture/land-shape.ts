@@ -1,5 +1,6 @@
 import type { MultiPolygon, Position } from 'geojson';
 import { type LandPolygons, signedArea } from '../land/coast.js';
+import { type Land, landOf } from '../land/land.js';
 
 /** Edges are cut so that a great circle between two positions stays near the straight line in longitude and latitude, degrees. */
 const LONGEST_EDGE_DEG = 1;
@@ -9,15 +10,17 @@ const LONGEST_EDGE_DEG = 1;
  * (longitude and latitude in degrees).
  */
 export function landShape({ rings }: Pick<LandPolygons, 'rings'>): MultiPolygon {
-  const shells: { ring: Float64Array; coordinates: Position[][] }[] = [];
+  const shells: { land: Land; coordinates: Position[][] }[] = [];
   const holes: Float64Array[] = [];
   for (const ring of rings) {
-    if (signedArea(ring) > 0) shells.push({ ring, coordinates: [positionsOf(ring)] });
-    else holes.push(ring);
+    if (signedArea(ring) > 0) {
+      const land = landOf({ name: '', rings: [ring], detailM: null });
+      shells.push({ land, coordinates: [positionsOf(ring)] });
+    } else holes.push(ring);
   }
   for (const hole of holes) {
-    const shell = shells.find(({ ring }) => isInside(ring, hole[0]!, hole[1]!));
-    shell?.coordinates.push(positionsOf(hole));
+    const place = { lonDeg: hole[0]!, latDeg: hole[1]! };
+    shells.find(({ land }) => land.isLand(place))?.coordinates.push(positionsOf(hole));
   }
   return { type: 'MultiPolygon', coordinates: shells.map(({ coordinates }) => coordinates) };
 }
@@ -33,13 +36,4 @@ function positionsOf(ring: Float64Array): Position[] {
   }
   positions.push([ring[0]!, ring[1]!]);
   return positions;
-}
-
-function isInside(ring: Float64Array, lon: number, lat: number): boolean {
-  let inside = false;
-  for (let i = 0; i + 3 < ring.length; i += 2) {
-    const [x0, y0, x1, y1] = [ring[i]!, ring[i + 1]!, ring[i + 2]!, ring[i + 3]!];
-    if (y0 > lat !== y1 > lat && lon < x0 + ((lat - y0) / (y1 - y0)) * (x1 - x0)) inside = !inside;
-  }
-  return inside;
 }

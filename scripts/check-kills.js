@@ -31,7 +31,7 @@ function contents(run) {
       ? JSON.stringify({ ...JSON.parse(bytes), seconds: 0, host: '' })
       : bytes.toString('base64');
   }
-  for (const name of ['return-wind.tif', 'return-gust.tif', 'return-periods.nc'])
+  for (const name of ['return-wind.tif', 'return-gust.tif', 'return-periods.nc', 'events.csv', 'events.parquet'])
     found[name] = readFileSync(join(run, name)).toString('base64');
   return found;
 }

@@ -17,7 +17,7 @@ import { VERSION } from '../io/version.js';
 import { makeRecipe, recipeNumber } from '../model/recipe.js';
 import type { DrawnCurve } from '../picture/exceedance-svg.js';
 import { averagingText } from '../picture/words.js';
-import { cellCentre, type Grid, gridOver, projection } from '../swath/grid.js';
+import { cellCentre, type Grid, projection } from '../swath/grid.js';
 import { quantityOf } from '../units.js';
 import { csvLine } from '../write/csv-cell.js';
 import { CAUTION } from '../write/provenance.js';
@@ -94,11 +94,7 @@ export async function curves(folder: string, options: CurvesOptions): Promise<vo
       'curves.threshold',
       `--threshold ${options.threshold}: the run keeps no ${options.of} below ${leastMps.toFixed(2)} m/s; take a higher one`,
     );
-  const grid = gridOver({
-    crs: run.plan.grid.crs,
-    cell: run.plan.grid.cell,
-    bounds: run.plan.grid.bounds as unknown as readonly [number, number, number, number],
-  });
+  const { grid } = run;
   const { places, cautions, record } = await placesOf(options, grid);
   const manifests = await manifestsOf(run, out);
   if (!manifests) return;

@@ -20,7 +20,6 @@ import { OutputFolder } from '../io/output.js';
 import { type PointFile, readPoints } from '../io/points.js';
 import { VERSION } from '../io/version.js';
 import { makeRecipe, recipeNumber } from '../model/recipe.js';
-import { gridOver } from '../swath/grid.js';
 import { csvLine } from '../write/csv-cell.js';
 import { DAMAGE_CAUTION } from '../write/exposure-summary.js';
 import { CAUTION } from '../write/provenance.js';
@@ -193,13 +192,7 @@ async function portfolioOf(run: EventRun, options: LossesOptions) {
       'losses.values',
       `${options.assets}: there is no column of values; name one with --values, such as --values insured_sum`,
     );
-  const finder = cellFinder(
-    gridOver({
-      crs: run.plan.grid.crs,
-      cell: run.plan.grid.cell,
-      bounds: run.plan.grid.bounds as unknown as readonly [number, number, number, number],
-    }),
-  );
+  const finder = cellFinder(run.grid);
   let [outside, example] = [0, ''];
   const portfolio = cellPortfolio(assets, {
     columns,

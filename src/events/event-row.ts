@@ -1,7 +1,9 @@
 import { distanceM, type Place } from '../earth.js';
+import { staysOver } from '../land/decay.js';
 import type { WindModel } from '../model/wind.js';
 import { cellCentre, type Grid, projection } from '../swath/grid.js';
 import type { Footprint } from '../swath/workspace.js';
+import { nearestMs } from '../track/path.js';
 import { MINUTE_MS } from '../units.js';
 
 /** A place whose closest approach is asked for. */
@@ -37,7 +39,7 @@ export interface EventRow {
   readonly landfall: Landfall | null;
 }
 
-/** How often the centre is looked at, s: what lies between is narrowed to a second. */
+/** How often the centre is looked at for its closest approach. */
 const SCAN_MS = 10 * MINUTE_MS;
 
 /** Makes the rows of events on a grid. */
@@ -98,36 +100,20 @@ export function closestApproach({ path }: WindModel, place: Place): Approach {
     const own = at(Math.min(time, path.endMs));
     if (own < least) [timeMs, least] = [Math.min(time, path.endMs), own];
   }
-  let [low, high] = [Math.max(path.startMs, timeMs - SCAN_MS), Math.min(path.endMs, timeMs + SCAN_MS)];
-  while (high - low > 1000) {
-    const [a, b] = [low + (high - low) / 3, high - (high - low) / 3];
-    if (at(a) <= at(b)) high = b;
-    else low = a;
-  }
-  const time = 1000 * Math.round((0.5 * (low + high)) / 1000);
+  const refined = nearestMs(path, place, {
+    fromMs: Math.max(path.startMs, timeMs - SCAN_MS),
+    toMs: Math.min(path.endMs, timeMs + SCAN_MS),
+  });
+  const time = 1000 * Math.round(refined / 1000);
   const narrowed = at(time);
   return narrowed < least ? { distanceM: narrowed, timeMs: time } : { distanceM: least, timeMs };
 }
 
-/** The first time that the centre comes from sea to land; a crossing shorter than ten minutes is not seen. */
+/** The first time that the centre comes from sea to land, as the decay over land sees it. */
 export function firstLandfall({ path }: WindModel, isLand: (place: Place) => boolean): Landfall | null {
-  let before = path.startMs;
-  let wasLand = isLand(path.at(before));
-  for (let time = before + SCAN_MS; before < path.endMs; time += SCAN_MS) {
-    const now = Math.min(time, path.endMs);
-    const onLand = isLand(path.at(now));
-    if (onLand && !wasLand) {
-      let [low, high] = [before, now];
-      while (high - low > 1000) {
-        const middle = 0.5 * (low + high);
-        if (isLand(path.at(middle))) high = middle;
-        else low = middle;
-      }
-      const timeMs = 1000 * Math.ceil(high / 1000);
-      const { latDeg, lonDeg, maxWindMps } = path.at(timeMs);
-      return { timeMs, latDeg, lonDeg, maxWindMps };
-    }
-    [before, wasLand] = [now, onLand];
-  }
-  return null;
+  const stay = staysOver(path, isLand).find(({ fromStart }) => !fromStart);
+  if (!stay) return null;
+  const timeMs = 1000 * Math.ceil(stay.inMs / 1000);
+  const { latDeg, lonDeg, maxWindMps } = path.at(timeMs);
+  return { timeMs, latDeg, lonDeg, maxWindMps };
 }

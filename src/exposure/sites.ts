@@ -1,6 +1,7 @@
 import { bearingDeg, coriolisPerS, distanceM, type Place, RADIANS } from '../earth.js';
 import { type WindModel, windOf } from '../model/wind.js';
 import { shareAbove, stepTimes } from '../swath/exact.js';
+import { nearestMs } from '../track/path.js';
 import { pressureAt } from '../vortex/pressure.js';
 
 /** A named place. */
@@ -134,20 +135,13 @@ function tallyOf(site: Site, levelsMps: readonly number[]): Tally {
   };
 }
 
-/** The nearest point of the path: golden section around the nearest step. */
+/** The nearest point of the path, around the nearest step. */
 function closestApproach(model: WindModel, tally: Tally, { fromMs, toMs }: SiteOptions): SiteRecord['closest'] {
-  const distanceAt = (timeMs: number): number => distanceM(model.path.at(timeMs), tally.site);
-  let a = Math.max(fromMs, tally.nearestMs - STEP_S * 1000);
-  let b = Math.min(toMs, tally.nearestMs + STEP_S * 1000);
-  const golden = (Math.sqrt(5) - 1) / 2;
-  while (b - a > 500) {
-    const left = b - golden * (b - a);
-    const right = a + golden * (b - a);
-    if (distanceAt(left) <= distanceAt(right)) b = right;
-    else a = left;
-  }
-  const refined = 0.5 * (a + b);
-  const timeMs = distanceAt(refined) < tally.nearestM ? refined : tally.nearestMs;
+  const refined = nearestMs(model.path, tally.site, {
+    fromMs: Math.max(fromMs, tally.nearestMs - STEP_S * 1000),
+    toMs: Math.min(toMs, tally.nearestMs + STEP_S * 1000),
+  });
+  const timeMs = distanceM(model.path.at(refined), tally.site) < tally.nearestM ? refined : tally.nearestMs;
   const state = model.path.at(timeMs);
   const distance = distanceM(state, tally.site);
   const toward = bearingDeg(state, tally.site) * RADIANS;

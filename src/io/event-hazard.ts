@@ -2,7 +2,6 @@ import { join } from 'node:path';
 import { LimitError } from '../errors.js';
 import { OPEN_SEA } from '../events/open-sea.js';
 import { makeRecipe, recipeNumber } from '../model/recipe.js';
-import { gridOver } from '../swath/grid.js';
 import { cogChunks } from '../write/geotiff.js';
 import { CAUTION } from '../write/provenance.js';
 import { returnNetcdf } from '../write/return-netcdf.js';
@@ -31,9 +30,7 @@ export async function returnPeriodMaps(
   run: EventRun,
   manifests: readonly Manifest[],
 ): Promise<{ files: string[]; cautions: string[] }> {
-  const { plan } = run;
-  const bounds = plan.grid.bounds as unknown as readonly [number, number, number, number];
-  const grid = gridOver({ crs: plan.grid.crs, cell: plan.grid.cell, bounds });
+  const { plan, grid } = run;
   const maps = await mapsOf(run, { manifests, cells: grid.nx * grid.ny });
   const recipe = makeRecipe(plan.recipe);
   const [averagingS, gustDurationS] = [

@@ -6,6 +6,7 @@ import { basename, join, resolve } from 'node:path';
 import { GalewakeError, InputError } from '../errors.js';
 import { type EventHeading, type EventRange, eventHeading, eventIndexer } from '../events/event-index.js';
 import type { NamedPlace } from '../events/event-row.js';
+import { type Grid, gridOver } from '../swath/grid.js';
 import { isLeftOver, writeDurably } from './durable.js';
 import { unreadable } from './input.js';
 import { unwritable } from './unwritable.js';
@@ -196,6 +197,12 @@ export class EventRun {
         `${folder}/events.jsonl: ${events.length} events, the plan has ${plan.events}; make the plan again`,
       );
     return new EventRun(folder, plan, JSON.parse(first!) as EventHeading, events);
+  }
+
+  /** The grid of the plan. */
+  get grid(): Grid {
+    const { crs, cell, bounds } = this.plan.grid;
+    return gridOver({ crs, cell, bounds: bounds as unknown as readonly [number, number, number, number] });
   }
 
   /** Why shards that had a manifest count as missing, by number: found since the run was opened. */

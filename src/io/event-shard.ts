@@ -7,7 +7,7 @@ import type { Land } from '../land/land.js';
 import { makeRecipe, type Recipe } from '../model/recipe.js';
 import { windModel } from '../model/wind.js';
 import { gustFactorOf } from '../swath/exact.js';
-import { type Grid, gridOver } from '../swath/grid.js';
+import type { Grid } from '../swath/grid.js';
 import { createSwathWorkspace } from '../swath/workspace.js';
 import { readTracksFromText } from '../track/read/read.js';
 import { eventLine } from '../write/event-table.js';
@@ -36,13 +36,7 @@ export async function runShard(run: EventRun, shard: number): Promise<{ manifest
   const { plan, heading, events } = run;
   const [first, end] = shardRange(events.length, plan.shards, shard);
   const recipe = makeRecipe(plan.recipe);
-  const workspace = createSwathWorkspace(
-    gridOver({
-      crs: plan.grid.crs,
-      cell: plan.grid.cell,
-      bounds: plan.grid.bounds as unknown as readonly [number, number, number, number],
-    }),
-  );
+  const workspace = createSwathWorkspace(run.grid);
   const { table } = plan;
   const rowOf = table
     ? eventRows(workspace.grid, {

@@ -31,7 +31,7 @@ export interface DecayedTrack {
 }
 
 /** The centre's stay over land. */
-interface Stay {
+export interface Stay {
   readonly inMs: number;
   readonly outMs: number;
   /** the track begins over land */
@@ -100,8 +100,8 @@ export function decayOverLand(completed: CompletedTrack, options: DecayOptions):
   }
 }
 
-/** When the centre is over land; the coast is found to a second. */
-function staysOver(path: Path, isLand: DecayOptions['isLand']): Stay[] {
+/** When the centre is over land; the coast is found to a second. A stay between two questions is not seen. */
+export function staysOver(path: Path, isLand: DecayOptions['isLand']): Stay[] {
   const over = (timeMs: number): boolean => isLand(path.at(timeMs));
   const coast = (a: number, b: number): number => {
     const before = over(a);

@@ -23,7 +23,7 @@ const CALM_MPS = 7;
 /**
  * Takes each cell's peak wind and peak gust from the plain model, at the times that the tables gave and at moments around
  * them: for fields that vary more around the centre than the tables hold, such as those fitted to observed radii. Cells are
- * taken by time, so that a moment's field is built once.
+ * taken by time, and a moment's field is kept.
  */
 export function settlePeaks(
   model: WindModel,
@@ -37,8 +37,11 @@ export function settlePeaks(
   const first = Math.ceil((period.fromMs - originMs) / MINUTE_MS);
   const last = Math.floor((period.toMs - originMs) / MINUTE_MS);
   const { inverse } = projection(grid.crs);
+  const [lonDeg, latDeg] = [new Float64Array(windMps.length), new Float64Array(windMps.length)];
   const fieldsKept = new Map<number, WindField>();
   const asked = windMps.map((wind, k) => (Math.max(wind, gustMps ? gustMps[k]! / gustAtSea : 0) > CALM_MPS ? 1 : 0));
+  for (let k = 0; k < windMps.length; k++)
+    if (asked[k] === 1) [lonDeg[k], latDeg[k]] = inverse(...cellCentre(grid, k % grid.nx, Math.floor(k / grid.nx)));
   const best = new Float32Array(windMps.length);
   const bestGust = gustMps ? new Float32Array(windMps.length) : null;
   gustTimeS?.forEach((time, k) => {
@@ -109,8 +112,8 @@ export function settlePeaks(
     for (const [minute, cells] of byMinute) {
       const field = fieldAt(minute);
       for (const k of cells) {
-        const [lonDeg, latDeg] = inverse(...cellCentre(grid, k % grid.nx, Math.floor(k / grid.nx)));
-        const { speedMps, eastMps, northMps, fromDeg } = windOf(field, { latDeg, lonDeg });
+        const place = { latDeg: latDeg[k]!, lonDeg: lonDeg[k]! };
+        const { speedMps, eastMps, northMps, fromDeg } = windOf(field, place);
         const row = surface?.rowOf[k] ?? 0;
         const wind = row > 0 ? speedMps * sectorValue(surface!.windRatio, row, eastMps, northMps) : speedMps;
         if (wind > best[k]!) {

@@ -1,4 +1,4 @@
-import { bearingDeg, destination, distanceM, RADIANS } from '../earth.js';
+import { bearingDeg, destination, distanceM, type Place, RADIANS } from '../earth.js';
 import type { CompletedTrack } from './complete.js';
 import { type Curve, monotoneCubic, piecewiseLinear, segmentOf } from './interpolate.js';
 
@@ -29,6 +29,20 @@ export interface Path {
   readonly knotsMs: readonly number[];
   /** state at a time; before the first and after the last fix that fix's */
   readonly at: (timeMs: number) => StormState;
+}
+
+/** When the centre is nearest to a place between two times about that moment: golden section, to half a second. */
+export function nearestMs({ at }: Path, place: Place, { fromMs, toMs }: { fromMs: number; toMs: number }): number {
+  const distanceAt = (timeMs: number): number => distanceM(at(timeMs), place);
+  const golden = (Math.sqrt(5) - 1) / 2;
+  let [a, b] = [fromMs, toMs];
+  while (b - a > 500) {
+    const left = b - golden * (b - a);
+    const right = a + golden * (b - a);
+    if (distanceAt(left) <= distanceAt(right)) b = right;
+    else a = left;
+  }
+  return 0.5 * (a + b);
 }
 
 /**

@@ -107,7 +107,7 @@ describe('the input of an event set', () => {
         const file = bytes.buffer.slice(bytes.byteOffset, bytes.byteOffset + bytes.byteLength) as ArrayBuffer;
         const events = (await parquetReadObjects({ file })) as Record<string, unknown>[];
         expect(events.map(({ event }) => event)).toEqual(['QN-01', 'AL112017']);
-        // published: the best track has 914 hPa at the lowest, and its first landfall on Barbuda at 05:45 UTC of 6 September
+        // published (HURDAT2, AL112017): the best track has 914 hPa at the lowest, and its first landfall on Barbuda at 05:45 UTC of 6 September
         expect(events[1]!['lowest_pressure_hpa']).toBe(914);
         expect(events[1]!['landfall_time']).toMatch(/^2017-09-06T0[5-6]:/);
         copyFileSync(join(FIXTURES, 'demo-quillon.csv'), join(folder, 'tracks', 'again.csv'));

@@ -5,13 +5,14 @@ import {
   type Layout,
   layoutOf,
   type MomentTable,
+  rowBound,
   rowRatios,
   rowsBeyond,
   type Sampling,
   samplingOf,
   tableOf,
 } from './table.js';
-import { FRAME, type Leg, type Timeline } from './timeline.js';
+import { FRAME, highestOfLeg, type Leg, type Timeline } from './timeline.js';
 
 /** From one table to the next the wind changes by at most this, m/s: between them the nearer one serves, with R and V of the moment. */
 const SLOT_MPS = 0.015;
@@ -62,19 +63,10 @@ export function stormTables(
 }
 
 /** Whether every table has a lower wind than a given one in its last row. */
-function endsBelow({ layout, legTables }: StormTables, { legs, frames, count }: Timeline, windMps: number): boolean {
-  const { rows, speedStride } = layout;
-  const at = (rows - 1) * speedStride;
-  const ratio = rowRatios(rows)[rows - 1]!;
-  return legs.every((leg, number) => {
-    let maxWindMps = 0;
-    for (let m = leg.first; m <= leg.first + (1 << leg.depth) && m < count; m++)
-      maxWindMps = Math.max(maxWindMps, frames[m * FRAME + 9]!);
-    return [...builtTables(legTables[number]!)].every(({ speed }) => {
-      let waves = 0;
-      for (let c = 1; c < speedStride; c++) waves += Math.abs(speed[at + c]!);
-      return maxWindMps * Math.sqrt(Math.max(0, speed[at]! + ratio * waves)) < windMps;
-    });
+function endsBelow({ layout, legTables }: StormTables, timeline: Timeline, windMps: number): boolean {
+  return timeline.legs.every((leg, number) => {
+    const bound = (windMps / highestOfLeg(timeline, leg, 9)) ** 2;
+    return [...builtTables(legTables[number]!)].every((table) => rowBound(table, layout, layout.rows - 1) < bound);
   });
 }
 

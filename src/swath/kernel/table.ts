@@ -59,6 +59,14 @@ export function rowRatios(rows: number): Float64Array {
   return ratios;
 }
 
+/** Upper bound of the squared speed over V² in a row: the harmonics add up to no more than the sum of their amplitudes. */
+export function rowBound({ speed }: Pick<MomentTable, 'speed'>, { rows, speedStride }: Layout, row: number): number {
+  const at = row * speedStride;
+  let waves = 0;
+  for (let c = 1; c < speedStride; c++) waves += Math.abs(speed[at + c]!);
+  return speed[at]! + rowRatios(rows)[row]! * waves;
+}
+
 /** Rows that reach beyond x. */
 export function rowsBeyond(x: number): number {
   return CORE_ROWS + (Math.max(2, Math.ceil(Math.log2(x / CORE_X))) << OUTER_BITS) + 2;

@@ -44,6 +44,14 @@ export interface Timeline {
   readonly frames: Float64Array;
 }
 
+/** The highest value of a frame's number over the moments of a leg: 8 for R, 9 for the maximum wind. */
+export function highestOfLeg({ frames, count }: Timeline, leg: Leg, part: 8 | 9): number {
+  let most = 0;
+  for (let m = leg.first; m <= leg.first + (1 << leg.depth) && m < count; m++)
+    most = Math.max(most, frames[m * FRAME + part]!);
+  return most;
+}
+
 /** Time of a moment, or of one between two. */
 export function timeMsOf(timeline: Timeline, moment: number): number {
   const leg = timeline.legs[legOf(timeline, ({ first }) => first <= moment)]!;

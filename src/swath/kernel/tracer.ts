@@ -3,8 +3,8 @@ import { TAPER_SHARE } from '../../model/field.js';
 import type { Engine } from './engine.js';
 import * as at from './places.js';
 import { builtTables, type Piece, type StormTables, servingTables } from './storm-tables.js';
-import { type MomentTable, rowRatios, rowsBelow } from './table.js';
-import { FRAME, type Leg, momentOf, type Timeline, timeMsOf } from './timeline.js';
+import { type MomentTable, rowBound, rowRatios, rowsBelow } from './table.js';
+import { FRAME, highestOfLeg, momentOf, type Timeline, timeMsOf } from './timeline.js';
 
 /** A step changes a point's wind by at most this where the maximum wind changes, m/s. */
 const STEP_CHANGE_MPS = 2;
@@ -290,17 +290,15 @@ export function tracerOf(
 /** Rows beyond the last one with a wind, within which a parabola may still show some of it. */
 const SPARE_ROWS = 2;
 
-/**
- * How far from the centre a wind of `leastMps` reaches in a leg at most, m: the harmonics of each row of its tables add up
- * to no more than the sum of their amplitudes, and V and R are the highest of the leg.
- */
+/** How far from the centre a wind of `leastMps` reaches in a leg at most, m: V and R are the highest of the leg. */
 function reachOf(
-  { legs, count, frames }: Timeline,
+  timeline: Timeline,
   { layout, legTables }: StormTables,
   outerRadiusM: number,
 ): (leg: number, leastMps: number) => number {
-  const { rows, speedStride } = layout;
+  const { rows } = layout;
   const ratio = rowRatios(rows);
+  // of each table the highest bound of a row and those beyond it
   const known = new Map<MomentTable, Float64Array>();
   const boundsOf = (table: MomentTable): Float64Array => {
     let bounds = known.get(table);
@@ -308,31 +306,20 @@ function reachOf(
     bounds = new Float64Array(rows);
     let beyond = 0;
     for (let row = rows - 1; row >= 0; row--) {
-      const at = row * speedStride;
-      let waves = 0;
-      for (let c = 1; c < speedStride; c++) waves += Math.abs(table.speed[at + c]!);
-      beyond = Math.max(beyond, table.speed[at]! + ratio[row]! * waves);
+      beyond = Math.max(beyond, rowBound(table, layout, row));
       bounds[row] = beyond;
     }
     known.set(table, bounds);
     return bounds;
   };
-  const envelopes = legs.map((_, number) => {
-    let most: Float64Array | null = null;
-    for (const table of builtTables(legTables[number]!)) {
-      const bounds = boundsOf(table);
-      most = most === null ? bounds : most.map((value, row) => Math.max(value, bounds[row]!));
-    }
-    return most!;
-  });
-  const highest = (leg: Leg, part: number): number => {
-    let most = 0;
-    for (let m = leg.first; m <= leg.first + (1 << leg.depth) && m < count; m++)
-      most = Math.max(most, frames[m * FRAME + part]!);
+  const envelopes = legTables.map((pieces) => {
+    const most = new Float64Array(rows);
+    for (const table of builtTables(pieces))
+      for (const [row, bound] of boundsOf(table).entries()) most[row] = Math.max(most[row]!, bound);
     return most;
-  };
-  const radii = legs.map((leg) => highest(leg, 8));
-  const winds = legs.map((leg) => highest(leg, 9));
+  });
+  const radii = timeline.legs.map((leg) => highestOfLeg(timeline, leg, 8));
+  const winds = timeline.legs.map((leg) => highestOfLeg(timeline, leg, 9));
   return (number, leastMps) => {
     if (!(leastMps > 0)) return outerRadiusM;
     const envelope = envelopes[number]!;

@@ -780,11 +780,11 @@ function atCorner(
   return before <= top && behind <= top;
 }
 
-/** One of four lines that part the sectors' pairs: what tells on which side of it the last wind blows from. */
-function sideOf(line: i32): f64 {
-  if (line === 0) return -windEast;
-  if (line === 1) return -windNorth;
-  return line === 2 ? windNorth - windEast : -windNorth - windEast;
+/** One of four lines that part the sectors' pairs: what tells on which side of it a wind blows from. */
+function sideOf(line: i32, east: f64, north: f64): f64 {
+  if (line === 0) return -east;
+  if (line === 1) return -north;
+  return line === 2 ? north - east : -north - east;
 }
 
 /**
@@ -799,8 +799,8 @@ function bendBetween(p: i32, from: f64, east0: f64, north0: f64, to: f64): f64 {
   let before: f64 = 0;
   let after: f64 = 0;
   for (; line < 4; line++) {
-    after = sideOf(line);
-    before = line === 0 ? -east0 : line === 1 ? -north0 : line === 2 ? north0 - east0 : -north0 - east0;
+    before = sideOf(line, east0, north0);
+    after = sideOf(line, windEast, windNorth);
     if ((before < 0) !== (after < 0)) break;
   }
   if (line === 4) return -1;
@@ -819,7 +819,7 @@ function bendBetween(p: i32, from: f64, east0: f64, north0: f64, to: f64): f64 {
   for (let n = 0; n < 12; n++) {
     at = low - (before * (high - low)) / (after - before);
     foundMps = speedAt(p, at);
-    const value = sideOf(line);
+    const value = sideOf(line, windEast, windNorth);
     const size = (windEast < 0 ? -windEast : windEast) + (windNorth < 0 ? -windNorth : windNorth);
     if (value < BEND_SHARE * size && value > -BEND_SHARE * size) break;
     if ((value < 0) === (before < 0)) {
